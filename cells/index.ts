@@ -1,0 +1,92 @@
+/** The one public face of the calculation engine. Code outside `cells/` imports from here and nowhere deeper. */
+
+// Errors
+export { CellError, UnreadablePageError } from "./errors";
+export type { Problem, Severity, Span } from "./errors";
+
+// States and units
+export { State, countStates, stateName, stateNames } from "./quantity/state";
+export type { StateCode, StateName } from "./quantity/state";
+export { fromCanonical, parseUnit, sigmaFromCanonical, sigmaToCanonical, toCanonical, units } from "./quantity/unit";
+export type { DimensionName, Unit, UnitSymbol } from "./quantity/unit";
+
+// Page document
+export {
+  PAGE_FORMAT,
+  amendmentSchema,
+  assumedSchema,
+  blockKinds,
+  blockSchema,
+  columnSchema,
+  drawnSchema,
+  handleSchema,
+  leaveOutSchema,
+  pageSchema,
+  setAsideSchema,
+  stepSchema,
+  typedRowSchema,
+} from "./page/schema";
+export type {
+  Amendment,
+  Amount,
+  Assumed,
+  Axis,
+  Basis,
+  Block,
+  BlockKind,
+  BudgetBlock,
+  Column,
+  Correlation,
+  DataBlock,
+  Drawn,
+  Ellipses,
+  FormulaBlock,
+  LeaveOut,
+  NoteBlock,
+  PageDocument,
+  PlotBlock,
+  Role,
+  RowId,
+  SetAside,
+  Step,
+  Substance,
+  Target,
+  TrendBlock,
+  TypedRow,
+  UncertaintyKind,
+} from "./page/schema";
+
+// Tables
+export type { ColumnCorrelation, QuantityColumn, RowOrigin, Table, TableColumn, TextColumn } from "./table/table";
+
+// Results and the engine
+export { ENGINE_VERSION, RESULTS_FORMAT } from "./page/results";
+export type {
+  AxisInfo,
+  Band,
+  BlockResult,
+  BodyDistance,
+  BudgetPathPoint,
+  BudgetReport,
+  BudgetResult,
+  ColumnSummary,
+  Crossing,
+  Curve,
+  DataResult,
+  FitParameter,
+  FormulaResult,
+  LineCorrelation,
+  LineResult,
+  NoteResult,
+  PageResults,
+  PlotLayer,
+  PlotPoints,
+  PlotResult,
+  ScreeningFlag,
+  TraceNode,
+  TraceRequest,
+  TrendPoint,
+  TrendResult,
+  Uncertain,
+} from "./page/results";
+export type { Engine, ImportProposal, ProposedColumn } from "./page/engine";

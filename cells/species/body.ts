@@ -1,0 +1,48 @@
+/**
+ * Reference compositions: what a body holds of each species, by whom, and whether anyone looked.
+ */
+export interface BodyValue {
+  readonly species: string;
+  /** As the source has it, in `unit`. */
+  readonly value: number;
+  readonly unit: string;
+  /** 1σ in `unit`; null where the source gives none. Never 0 for "unknown". */
+  readonly sigma: number | null;
+  /** kg/kg for mass fractions; A(El) for solar abundances. */
+  readonly canonical: number;
+  readonly canonicalSigma: number | null;
+  readonly source: string;
+  /** Whether the value was read in a copy of the source or written down from memory. */
+  readonly checked: string;
+  readonly note: string;
+}
+
+export interface Body {
+  /** Id of the compilation: `CI_PLJ14`. */
+  readonly id: string;
+  /** "CI chondrite", "bulk silicate Earth", "solar photosphere", "phase" … */
+  readonly what: string;
+  /** `composition`: mass fractions; `dex`: solar abundances, log10(N/N_H) + 12; `phase`: stoichiometric, exact. */
+  readonly kind: "composition" | "dex" | "phase";
+  readonly formula?: string;
+  readonly values: readonly BodyValue[];
+  /** True where any value was written down from memory. */
+  readonly fromMemory: boolean;
+}
+
+/** Finds a body by an alias of the page first, then by its own id; undefined where there is none. */
+export type BodyLookup = (aliasOrId: string) => Body | undefined;
+
+/** How one species of a body comes about: the value used and the conversion. */
+export interface BodySpecies {
+  readonly body: Body;
+  readonly species: string;
+  /** Mass fraction in kg/kg; for dex bodies the mass per mass of hydrogen × 10¹² scale cancels in ratios: see {@link speciesOfBody}. */
+  readonly value: number;
+  /** 1σ, canonical; null where unknown. */
+  readonly sigma: number | null;
+  readonly of: BodyValue;
+  readonly factor: number;
+  /** Names the conversion; "" where the species is listed as it stands. */
+  readonly sentence: string;
+}

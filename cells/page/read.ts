@@ -22,7 +22,7 @@ export function readPageDocument(json: unknown): PageDocument {
   const read = pageSchema.safeParse(json);
   if (!read.success) {
     const sentences = read.error.issues.map((issue) => sentenceFor(issue, json));
-    const more = sentences.length > 1 ? ` (and ${sentences.length - 1} more)` : "";
+    const more = sentences.length > 1 ? ` ${sentences.length - 1} more like this.` : "";
     throw new UnreadablePageError(`${sentences[0] ?? "The page cannot be read."}${more}`);
   }
   refuseDuplicates(read.data);
@@ -59,12 +59,11 @@ function sentenceFor(issue: Issue, json: unknown): string {
       return `${where}: expected ${deepest.issue.values.map((value) => JSON.stringify(value)).join(" or ")}, got ${describe(valueAt(json, deepest.path))}.`;
     case "custom":
       return `${where}: ${deepest.issue.message}.`;
-    case "invalid_union": {
+    case "invalid_union":
       if (deepest.issue.discriminator !== undefined) {
-        return `${where}: "${deepest.issue.discriminator}" is ${describe(valueAt(json, [...deepest.path, deepest.issue.discriminator]) ?? valueAt(json, deepest.path))}, which is not one this page format knows.`;
+        return `${where} is ${describe(valueAt(json, deepest.path))}, which is not one this page format knows.`;
       }
       return `${where}: ${describe(valueAt(json, deepest.path))} fits none of the allowed forms.`;
-    }
     default:
       return `${where}: ${deepest.issue.message}.`;
   }
@@ -78,7 +77,7 @@ function narrow(issue: Issue, json: unknown, path: Path): { issue: Issue; path: 
   if (issue.code !== "invalid_union") return { issue, path };
   let best: { weight: number; issue: Issue } | undefined;
   for (const branch of issue.errors) {
-    const first = branch[0];
+    const first = branch.find((inner) => inner.code === "unrecognized_keys") ?? branch[0];
     if (first === undefined) continue;
     let weight = 0;
     for (const inner of branch) {

@@ -1,9 +1,10 @@
-import { fromWords, highWord, lowWord } from "./bits";
+import { highWord, powerOfTwo } from "./bits";
 import { expOfSum } from "./exp";
 import { LN2_HIGH, LN2_LOW } from "./log";
 
 const SPLIT = 134217729;
 const TWO_54 = 18014398509481984;
+const LEAST_NORMAL = 2.2250738585072014e-308;
 const TWO_53 = 9007199254740992;
 const SQRT_HALF_WORD = 0x3fe6a09e;
 const THIRD_LOW = 1.850371707708594e-17;
@@ -27,16 +28,13 @@ function productError(a: number, b: number, p: number): number {
 /** ln x of a positive finite x to about 65 bits, into {@link pair}. */
 function logPair(x: number): void {
   let k = 0;
-  let word = highWord(x);
-  if (word < 0x00100000) {
+  if (x < LEAST_NORMAL) {
     k = -54;
     x *= TWO_54;
-    word = highWord(x);
   }
-  const low = lowWord(x);
-  word += 0x3ff00000 - SQRT_HALF_WORD;
-  k += (word >> 20) - 1023;
-  const f = fromWords((word & 0xfffff) + SQRT_HALF_WORD, low) - 1;
+  const shift = (highWord(x) - SQRT_HALF_WORD) >> 20;
+  k += shift;
+  const f = x * powerOfTwo(-shift) - 1;
 
   // s = f / (2 + f) in two parts.
   const d = 2 + f;

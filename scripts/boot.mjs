@@ -44,13 +44,13 @@ async function databases() {
     migrate(environment, process.env.COTECTIC_DEMO === "yes");
     return writeBootFile(mode, environment);
   }
-  const cluster = await ensureCluster();
+  const cluster = await ensureCluster(mode === "test" ? "test" : "start");
   if (mode === "test") {
-    const environment = { TEST_ADMIN_URL: cluster.url("postgres", "owner") };
+    const environment = { TEST_ADMIN_URL: cluster.url("postgres", "owner"), CLUSTER_STARTED: String(cluster.started) };
     return writeBootFile(mode, environment);
   }
   await ensureDatabase(cluster, "cotectic");
-  const environment = { DATABASE_URL: cluster.url("cotectic", "application"), MIGRATION_DATABASE_URL: cluster.url("cotectic", "owner") };
+  const environment = { PRIVATE_CLUSTER: "yes", DATABASE_URL: cluster.url("cotectic", "application"), MIGRATION_DATABASE_URL: cluster.url("cotectic", "owner") };
   migrate(environment, process.env.COTECTIC_DEMO !== "no");
   return writeBootFile(mode, environment);
 }

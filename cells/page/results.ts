@@ -269,7 +269,21 @@ export interface Band {
 export interface NoteResult extends AnyResult {
   readonly kind: "note";
   /** The values a note quotes, in order: what stands between the braces, and what it comes to. */
-  readonly values: readonly { readonly span: Span; readonly name: string; readonly shown: string | null; readonly unit: string }[];
+  readonly values: readonly NoteValue[];
+}
+
+export interface NoteValue {
+  /** Braces included, in the note's text. */
+  readonly span: Span;
+  readonly name: string;
+  /** The value as text, its σ in concise form; null where there is none, with a problem that says why. */
+  readonly shown: string | null;
+  readonly unit: string;
+  /** The number itself, for other ways of writing it; null for ranges and words. */
+  readonly value: number | null;
+  readonly sigma: number | null;
+  /** What to trace when the value is asked where it comes from. */
+  readonly trace?: TraceRequest;
 }
 
 /** Where a number comes from: a tree from the asked number down to source cells. */

@@ -90,3 +90,23 @@ export type {
   Uncertain,
 } from "./page/results";
 export type { Engine, ImportProposal, ProposedColumn } from "./page/engine";
+
+// Species and reference bodies
+export {
+  atomicWeight,
+  bodyLookup,
+  condensationTemperature,
+  elementsByCondensation,
+  elementsOfBody,
+  isFromMemory,
+  listBodies,
+  lookupBody,
+  lookupPhase,
+  massFactor,
+  oxides,
+  parseChemical,
+  parseSpecies,
+  resolveSpecies,
+  speciesOfBody,
+} from "./species";
+export type { Body, BodyLookup, BodySpecies, BodyValue, Chemical, IronForm, Resolution, Species } from "./species";

@@ -37,12 +37,12 @@ export type BodyLookup = (aliasOrId: string) => Body | undefined;
 export interface BodySpecies {
   readonly body: Body;
   readonly species: string;
-  /** Mass fraction in kg/kg; for dex bodies the mass per mass of hydrogen × 10¹² scale cancels in ratios: see {@link speciesOfBody}. */
+  /** Mass fraction in kg/kg. Of a dex body: kg per kg of hydrogen, which serves for ratios and for nothing else. */
   readonly value: number;
-  /** 1σ, canonical; null where unknown. */
+  /** 1σ, canonical; null where unknown, 0 only for the exact composition of a phase. */
   readonly sigma: number | null;
+  /** The listed value it was made from. */
   readonly of: BodyValue;
-  readonly factor: number;
   /** Names the conversion; "" where the species is listed as it stands. */
   readonly sentence: string;
 }

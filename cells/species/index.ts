@@ -1,0 +1,12 @@
+export type { Body, BodyLookup, BodySpecies, BodyValue } from "./body";
+export { bodyLookup, isFromMemory, listBodies, lookupBody, lookupPhase } from "./bodies";
+export { measuredColumns } from "./candidates";
+export type { Measured } from "./candidates";
+export { atomicWeight, elementMassFraction, isElement, keyElement, parseChemical } from "./chemical";
+export type { Chemical } from "./chemical";
+export { condensationTemperature, elementsByCondensation } from "./condensation";
+export { massFactor, oxides, parseSpecies } from "./forms";
+export type { IronForm, Species } from "./forms";
+export type { Candidate, Refused, Resolution, ResolutionWarning, Resolved, Term } from "./resolution";
+export { resolveSpecies } from "./resolve";
+export { elementsOfBody, shortNumber, speciesOfBody } from "./speciesOfBody";

@@ -1,0 +1,45 @@
+import { counted, formatNumber, formatRange, formatValue, withUnit, type UncertaintyForm } from "@/app/_ui/concise";
+import { basisInWords, samplesInWords } from "@/app/_blocks/shared/words";
+import { extent, median } from "@/app/_blocks/shared/spread";
+import type { FormulaResult, LineResult } from "@/cells";
+
+/** A line's result at a glance: its range over the samples, or its one value with σ. */
+export function rangeText(line: LineResult, form: UncertaintyForm): string {
+  if (!line.ok) return "no result";
+  if (!line.perSample && line.byClass === undefined) return withUnit(formatValue(line.value[0] ?? NaN, line.sigma[0] ?? NaN, { form }), line.unit);
+  const ends = extent(line.value);
+  return ends === null ? "no values" : withUnit(formatRange(ends[0], ends[1]), line.unit);
+}
+
+/** What the numbers are: basis, what a basis-free number means, typical σ, and what makes them less than certain. */
+export function natureText(line: LineResult): string {
+  if (!line.ok) return "";
+  const parts = [basisInWords(line.basis), line.remark ?? ""].filter((part) => part !== "");
+  if (line.perSample) {
+    const typical = median(line.sigma);
+    parts.push(typical === null ? "σ unknown" : `median σ ${formatNumber(typical, 2)}`);
+    const common = median(line.sigmaCommon);
+    if (common !== null && typical !== null && common > 0.05 * typical) parts.push("part of σ is common to all");
+  }
+  const lower = line.lowerBound.reduce((n, bit) => n + bit, 0);
+  if (lower > 0) parts.push(line.value.length === 1 ? "σ is a lower bound" : `σ a lower bound for ${lower}`);
+  if (line.assumed > 0) parts.push(`${line.assumed} on assumed σ`);
+  return parts.join(", ");
+}
+
+/** How many samples stand behind the line, and what became of the others. */
+export function countsText(line: LineResult): string {
+  if (!line.ok) return "";
+  if (line.byClass !== undefined) return `${counted(line.byClass.length, "class", "classes")} of ${samplesInWords(line.n, line.states)}`;
+  if (!line.perSample && line.n === 0) return "no samples in it";
+  return samplesInWords(line.n, line.states);
+}
+
+/** What the head of a formula block says: which lines have a problem, else how many there are. */
+export function stateInWords(result: FormulaResult | undefined): { readonly text: string; readonly problem: boolean } {
+  if (result === undefined) return { text: "", problem: false };
+  const failed = result.lines.filter((line) => !line.ok).length;
+  if (failed > 0) return { text: `${failed} line${failed === 1 ? "" : "s"} of ${result.lines.length} ${failed === 1 ? "has" : "have"} a problem`, problem: true };
+  if (result.problems.some((p) => p.severity === "error")) return { text: "has a problem", problem: true };
+  return { text: result.lines.length === 0 ? "no lines yet" : counted(result.lines.length, "line"), problem: false };
+}

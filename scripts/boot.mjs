@@ -29,7 +29,7 @@ try {
   await ensurePackages();
   const environment = await databases();
   if (!databaseOnly) {
-    if (mode === "test") ensureBrowser();
+    if (mode === "test") writeBootFile(mode, { ...environment, ...ensureBrowser() });
     if (mode !== "dev") ensureBuild(environment);
   }
 } finally {

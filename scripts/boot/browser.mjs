@@ -1,15 +1,26 @@
+import { spawnSync } from "node:child_process";
 import { existsSync } from "node:fs";
-import { aptInstall } from "./debian.mjs";
-import { fail, isRoot, log } from "./shared.mjs";
+import path from "node:path";
+import { aptInstall, unpackDebian, unpackedLibraries, unpackedRoot } from "./debian.mjs";
+import { fail, isRoot } from "./shared.mjs";
 
-const browsers = ["/usr/bin/chromium", "/usr/bin/chromium-browser", "/usr/bin/google-chrome"];
-
-/** Debian's Chromium, for the browser tests. */
+/**
+ * Debian's Chromium, for the browser tests: installed as root, unpacked beside the data as anybody else.
+ *
+ * @returns {{ CHROMIUM: string, CHROMIUM_LIBRARIES?: string }}
+ */
 export function ensureBrowser() {
   const given = process.env.CHROMIUM;
-  if (given && !existsSync(given)) fail(`CHROMIUM names ${given}, which is not there.`);
-  if (given || browsers.some((file) => existsSync(file))) return;
-  if (!isRoot) fail("The browser tests need Chromium: install it with `apt-get install chromium`, or name one with CHROMIUM=/path.");
-  aptInstall(["chromium"], "Chromium could not be installed");
-  log("Chromium is there");
+  if (given) return existsSync(given) ? { CHROMIUM: given } : fail(`CHROMIUM names ${given}, which is not there.`);
+  const unpacked = path.join(unpackedRoot(), "usr/lib/chromium/chromium");
+  const installed = "/usr/bin/chromium";
+  if (!existsSync(installed) && !existsSync(unpacked)) {
+    if (isRoot) aptInstall(["chromium"], "Chromium could not be installed");
+    else unpackDebian("chromium", "The browser tests need Chromium, which could not be unpacked: as root, `apt-get install chromium`; or name one with CHROMIUM=/path.");
+  }
+  const found = existsSync(installed) ? { CHROMIUM: installed } : { CHROMIUM: unpacked, CHROMIUM_LIBRARIES: unpackedLibraries() };
+  const libraries = found.CHROMIUM_LIBRARIES ? { LD_LIBRARY_PATH: found.CHROMIUM_LIBRARIES } : {};
+  const probe = spawnSync(found.CHROMIUM, ["--version"], { env: { ...process.env, ...libraries }, encoding: "utf8" });
+  if (probe.status !== 0) fail(`${found.CHROMIUM} does not start: ${(probe.stderr || "").trim().split("\n")[0]}. Install Chromium with \`apt-get install chromium\` as root.`);
+  return found;
 }

@@ -2,7 +2,7 @@ import { spawnSync } from "node:child_process";
 import { chownSync, existsSync, mkdirSync, readFileSync, readdirSync, rmSync, writeFileSync } from "node:fs";
 import { createServer } from "node:net";
 import path from "node:path";
-import { aptInstall } from "./debian.mjs";
+import { aptInstall, unpackDebian, unpackedLibraries, unpackedRoot } from "./debian.mjs";
 import { childEnv, fail, home, isRoot, log } from "./shared.mjs";
 import { readState, writeState } from "./state.mjs";
 
@@ -88,9 +88,9 @@ class Server {
 
 function serverEnv() {
   const env = childEnv();
-  // Unpacked beside the data, the server finds its own libraries there.
-  if (process.env.COTECTIC_PG_LIBS) env.LD_LIBRARY_PATH = process.env.COTECTIC_PG_LIBS;
-  return env;
+  // A server unpacked beside the data finds its libraries there.
+  const libraries = unpackedLibraries();
+  return libraries ? { ...env, LD_LIBRARY_PATH: libraries } : env;
 }
 
 function initialise(server, state) {
@@ -130,7 +130,7 @@ async function serverBinaries(version) {
     aptInstall(["postgresql"], "PostgreSQL could not be installed");
     return findBinaries("/usr/lib/postgresql", version) ?? fail("PostgreSQL was installed, but its programs are not under /usr/lib/postgresql.");
   }
-  unpack();
+  unpackServer();
   return unpackedBinaries(version) ?? fail("PostgreSQL is missing: as root, `apt-get install postgresql`; or give DATABASE_URL.");
 }
 
@@ -142,40 +142,17 @@ function findBinaries(folder, version) {
     .map((name) => path.join(folder, name, "bin"))[0];
 }
 
-const unpackedRoot = () => path.join(home(), "debian");
-
 function unpackedBinaries(version) {
-  const bin = findBinaries(path.join(unpackedRoot(), "usr/lib/postgresql"), version);
-  if (bin && !process.env.COTECTIC_PG_LIBS) {
-    const libs = readdirSync(path.join(unpackedRoot(), "usr/lib"), { withFileTypes: true }).filter((e) => e.isDirectory() && e.name.endsWith("-linux-gnu"));
-    process.env.COTECTIC_PG_LIBS = libs.map((e) => path.join(unpackedRoot(), "usr/lib", e.name)).join(":");
-  }
-  return bin;
+  return findBinaries(path.join(unpackedRoot(), "usr/lib/postgresql"), version);
 }
 
 /** Debian's server unpacked beside the data, for people who are not root. */
-function unpack() {
-  log("PostgreSQL is missing and we are not root: unpacking Debian's beside the data");
-  const debs = path.join(home(), "debs");
-  mkdirSync(debs, { recursive: true });
+function unpackServer() {
   const listed = spawnSync("apt-cache", ["depends", "postgresql"], { encoding: "utf8" });
   const server = /Depends: (postgresql-\d+)/.exec(listed.stdout ?? "")?.[1];
   const sentence = "PostgreSQL is missing and could not be unpacked: as root, `apt-get install postgresql`; or give DATABASE_URL.";
   if (!server) fail(sentence);
-  const packages = [server, "libpq5", ...missingLibraries(server)];
-  const fetched = spawnSync("apt-get", ["download", "-qq", ...packages], { cwd: debs, stdio: ["ignore", "ignore", "ignore"], env: childEnv() });
-  if (fetched.status !== 0) fail(sentence);
-  for (const deb of readdirSync(debs).filter((name) => name.endsWith(".deb"))) {
-    if (spawnSync("dpkg", ["-x", path.join(debs, deb), unpackedRoot()]).status !== 0) fail(sentence);
-  }
-  rmSync(debs, { recursive: true, force: true });
-}
-
-/** Libraries the server wants that this machine does not have installed. */
-function missingLibraries(server) {
-  const wanted = spawnSync("apt-cache", ["depends", "--recurse", "--no-recommends", "--no-suggests", "--no-conflicts", "--no-breaks", "--no-replaces", "--no-enhances", server], { encoding: "utf8" });
-  const names = [...new Set((wanted.stdout ?? "").split("\n").filter((line) => /^lib[a-z0-9.+-]+$/.test(line)))];
-  return names.filter((name) => spawnSync("dpkg", ["-s", name], { stdio: "ignore" }).status !== 0);
+  unpackDebian(server, sentence);
 }
 
 export function freePort() {

@@ -1,5 +1,7 @@
 import { spawnSync } from "node:child_process";
-import { childEnv, fail, log } from "./shared.mjs";
+import { existsSync, mkdirSync, readdirSync, rmSync } from "node:fs";
+import path from "node:path";
+import { childEnv, fail, home, log } from "./shared.mjs";
 
 let updated = false;
 
@@ -21,4 +23,43 @@ function apt(args, env, sentence) {
     const why = result.error?.message ?? (result.stderr || "").trim().split("\n").at(-1) ?? "";
     fail(`${sentence} (apt-get ${args[0]}: ${why}).`);
   }
+}
+
+/** Where packages are unpacked for people who are not root. */
+export const unpackedRoot = () => path.join(home(), "debian");
+
+/**
+ * Unpacks a package and the libraries it wants beside the data, without installing anything. Libraries that the machine has
+ * are left out.
+ *
+ * @param sentence what to say when it fails
+ */
+export function unpackDebian(name, sentence) {
+  log(`unpacking Debian's ${name} beside the data, since we are not root`);
+  const folder = path.join(home(), "debs");
+  rmSync(folder, { recursive: true, force: true });
+  mkdirSync(folder, { recursive: true });
+  const packages = [name, ...missingDependencies(name)];
+  const fetched = spawnSync("apt-get", ["download", "-qq", ...packages], { cwd: folder, stdio: "ignore", env: childEnv() });
+  if (fetched.status !== 0) fail(sentence);
+  for (const deb of readdirSync(folder).filter((file) => file.endsWith(".deb"))) {
+    if (spawnSync("dpkg", ["-x", path.join(folder, deb), unpackedRoot()]).status !== 0) fail(sentence);
+  }
+  rmSync(folder, { recursive: true, force: true });
+}
+
+/** Everything `name` depends on that is not installed and is a library, a font or a part of the package itself. */
+function missingDependencies(name) {
+  const options = ["--recurse", "--no-recommends", "--no-suggests", "--no-conflicts", "--no-breaks", "--no-replaces", "--no-enhances"];
+  const listed = spawnSync("apt-cache", ["depends", ...options, name], { encoding: "utf8", maxBuffer: 1 << 26 });
+  const wanted = (listed.stdout ?? "").split("\n").filter((line) => /^[a-z0-9]\S*$/.test(line) && (/^lib|fonts-|-common$/.test(line) || line.startsWith(`${name}-`)));
+  return [...new Set(wanted)].filter((candidate) => candidate !== name && spawnSync("dpkg", ["-s", candidate], { stdio: "ignore" }).status !== 0);
+}
+
+/** Folders of the unpacked libraries, for LD_LIBRARY_PATH; `""` when nothing is unpacked. */
+export function unpackedLibraries() {
+  const roots = ["usr/lib", "lib"].map((part) => path.join(unpackedRoot(), part)).filter((folder) => existsSync(folder));
+  return roots
+    .flatMap((folder) => readdirSync(folder, { withFileTypes: true }).filter((entry) => entry.isDirectory() && entry.name.endsWith("-linux-gnu")).map((entry) => path.join(folder, entry.name)))
+    .join(":");
 }

@@ -56,10 +56,16 @@ function missingDependencies(name) {
   return [...new Set(wanted)].filter((candidate) => candidate !== name && spawnSync("dpkg", ["-s", candidate], { stdio: "ignore" }).status !== 0);
 }
 
-/** Folders of the unpacked libraries, for LD_LIBRARY_PATH; `""` when nothing is unpacked. */
+/** Folders of the unpacked libraries, for LD_LIBRARY_PATH; `""` when nothing is unpacked. Some keep theirs a folder deeper. */
 export function unpackedLibraries() {
   const roots = ["usr/lib", "lib"].map((part) => path.join(unpackedRoot(), part)).filter((folder) => existsSync(folder));
-  return roots
-    .flatMap((folder) => readdirSync(folder, { withFileTypes: true }).filter((entry) => entry.isDirectory() && entry.name.endsWith("-linux-gnu")).map((entry) => path.join(folder, entry.name)))
-    .join(":");
+  const ours = roots.flatMap((folder) => folders(folder)).filter((folder) => folder.endsWith("-linux-gnu"));
+  const deeper = ours.flatMap((folder) => folders(folder)).filter((folder) => readdirSync(folder).some((file) => /\.so(\.|$)/.test(file)));
+  return [...ours, ...deeper].join(":");
+}
+
+function folders(inside) {
+  return readdirSync(inside, { withFileTypes: true })
+    .filter((entry) => entry.isDirectory())
+    .map((entry) => path.join(inside, entry.name));
 }

@@ -8,9 +8,9 @@ import { Refusal } from "./problem";
  * `X-Forwarded-Host` nor a missing header is believed.
  *
  * @param headers of the request
- * @param ours the address people use, `NEXTAUTH_URL`
+ * @param ours the addresses people use, apart by commas: `APP_ORIGIN`, or `NEXTAUTH_URL` where that is not set
  */
-export function assertOwnOrigin(headers: Pick<Headers, "get">, ours: string | undefined = process.env.NEXTAUTH_URL): void {
+export function assertOwnOrigin(headers: Pick<Headers, "get">, ours: string | undefined = process.env.APP_ORIGIN ?? process.env.NEXTAUTH_URL): void {
   const origin = headers.get("origin");
   const from = origin === null || origin === "null" ? null : origin;
   if (from === null ? headers.get("sec-fetch-site") === "same-origin" : isOurs(from, ours)) return;
@@ -18,6 +18,5 @@ export function assertOwnOrigin(headers: Pick<Headers, "get">, ours: string | un
 }
 
 function isOurs(origin: string, ours: string | undefined): boolean {
-  if (!ours || !URL.canParse(ours)) return false;
-  return origin === new URL(ours).origin;
+  return (ours ?? "").split(",").some((address) => URL.canParse(address.trim()) && new URL(address.trim()).origin === origin);
 }

@@ -31,7 +31,7 @@ const environment = {
 };
 // Only the boot needs the owner's rights.
 delete environment.MIGRATION_DATABASE_URL;
-if (!process.env.SMTP_URL) await useMailbox(environment);
+if (!process.env.SMTP_URL) await offerMailbox(environment);
 
 const children = [];
 let stopping = false;
@@ -72,7 +72,7 @@ async function refuseTakenPorts() {
   }
 }
 
-async function useMailbox(target) {
+async function offerMailbox(target) {
   target.MAILBOX_SMTP_PORT = String(await freePort());
   target.MAILBOX_HTTP_PORT = String(await freePort());
   target.SMTP_URL = `smtp://127.0.0.1:${target.MAILBOX_SMTP_PORT}`;

@@ -9,7 +9,7 @@ import { placeAt } from "./orderKeys";
 import { freeHandle } from "./pageBlock";
 import { readPage } from "./readPage";
 import { renameColumn, renameHandle } from "./rename";
-import { attributedLists, blocksOf, bodiesOf, fieldFault, hasText, isListOf, listsOf, LOCAL, MOST_TITLE, pageOf } from "./shape";
+import { attributedLists, blocksOf, bodiesOf, fieldFault, hasText, isListOf, listsOf, LOCAL, MOST_TITLE, pageOf, plainCopy } from "./shape";
 
 /** Everything a person can do to a page. Each call is one transaction of the document, and one step of undo. */
 export interface PageEdits extends EntryEdits {
@@ -104,7 +104,7 @@ export function createEdits(doc: Y.Doc, me: { readonly id: string }): PageEdits 
       else if (field === "text" && hasText(kind)) editText(text(key), typeof value === "string" ? value : "");
       else if (value === undefined) block.delete(field);
       else {
-        block.set(field, value);
+        block.set(field, plainCopy(value));
         // A table has one content: the new one takes the old one's place.
         if (kind === "data" && contents.includes(field)) for (const other of contents) if (other !== field && block.has(other)) block.delete(other);
       }

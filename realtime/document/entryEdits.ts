@@ -2,7 +2,7 @@ import * as Y from "yjs";
 import { entryKeyFor, naturalKey } from "./entryKeys";
 import { EditError, kindOf, refuse, requireBlock } from "./editing";
 import { placeAt } from "./orderKeys";
-import { attributedLists, entriesOf, entryFault, isListOf, listLimits, listOf, LOCAL, storedEntry, type EntryMap, type ListName } from "./shape";
+import { attributedLists, entriesOf, entryFault, isListOf, listLimits, listOf, LOCAL, plainEntry, storedEntry, type EntryMap, type ListName } from "./shape";
 
 type Entry = Readonly<Record<string, unknown>>;
 
@@ -44,8 +44,6 @@ export function isSame(a: unknown, b: unknown): boolean {
 }
 
 const withoutAuthor = ({ by: _by, at: _at, ...rest }: Entry): Entry => rest;
-/** Yjs refuses `undefined`; a field that says nothing is left out. */
-const plain = (entry: object): Entry => Object.fromEntries(Object.entries(entry).filter(([, value]) => value !== undefined));
 
 export function createEntryEdits(doc: Y.Doc, me: { readonly id: string }): EntryEdits {
   function container(key: string, list: ListName): EntryMap {
@@ -82,7 +80,7 @@ export function createEntryEdits(doc: Y.Doc, me: { readonly id: string }): Entry
   }
 
   function keyOf(map: EntryMap, list: ListName, entry: object): string | null {
-    const natural = naturalKey(list, plain(entry));
+    const natural = naturalKey(list, plainEntry(entry));
     if (natural !== null && map.has(natural)) return natural;
     return entriesOf(map).find((e) => isSame(e.entry, entry))?.key ?? null;
   }
@@ -92,7 +90,7 @@ export function createEntryEdits(doc: Y.Doc, me: { readonly id: string }): Entry
 
     putEntry(key, list, given, entryKey) {
       const map = container(key, list);
-      const entry = plain(given);
+      const entry = plainEntry(given);
       refuse(entryFault(kindOf(requireBlock(doc, key)), list, entry));
       const at = entryKey ?? naturalKey(list, entry) ?? entryKeyFor(list, entry, (k) => map.has(k));
       if (!map.has(at) && map.size >= listLimits[list]) throw new EditError(`This list is full: it holds at most ${listLimits[list].toString()} entries.`);
@@ -118,7 +116,7 @@ export function createEntryEdits(doc: Y.Doc, me: { readonly id: string }): Entry
     setEntries(key, list, wanted) {
       const map = container(key, list);
       const kind = kindOf(requireBlock(doc, key));
-      const entries = wanted.map(plain);
+      const entries = wanted.map(plainEntry);
       for (const entry of entries) refuse(entryFault(kind, list, entry));
       if (entries.length > listLimits[list])
         throw new EditError(`This list holds at most ${listLimits[list].toString()} entries; ${entries.length.toString()} were given.`);

@@ -2,7 +2,7 @@ import type { Block, PageDocument } from "@/cells";
 import * as Y from "yjs";
 import { entryKeyFor, freshKey } from "./entryKeys";
 import { firstOrderKeys } from "./orderKeys";
-import { blocksOf, bodiesOf, hasText, isListOf, listsOf, pageOf, SHAPE_VERSION, type BlockMap, type ListName } from "./shape";
+import { blocksOf, bodiesOf, hasText, isListOf, listsOf, pageOf, plainCopy, plainEntry, SHAPE_VERSION, type BlockMap, type ListName } from "./shape";
 
 /** A record of anything, for walking over a block's fields by name. */
 export const fieldsOf = (block: Block): Readonly<Record<string, unknown>> => ({ ...block });
@@ -15,7 +15,7 @@ function fillList(map: Y.Map<unknown>, list: ListName, entries: readonly Readonl
   entries.forEach((entry, n) => {
     const key = entryKeyFor(list, entry, (k) => taken.has(k));
     taken.add(key);
-    map.set(key, { place: places[n] ?? "a0", entry });
+    map.set(key, { place: places[n] ?? "a0", entry: plainEntry(entry) });
   });
 }
 
@@ -29,7 +29,7 @@ export function createBlock(block: Block, place: string): BlockMap {
   const empty: string[] = [];
   for (const [field, value] of Object.entries(fields)) {
     if (value === undefined || isListOf(block.kind, field) || (field === "text" && hasText(block.kind))) continue;
-    map.set(field, value);
+    map.set(field, plainCopy(value));
   }
   map.set("place", place);
   if (hasText(block.kind)) map.set("text", new Y.Text(typeof fields.text === "string" ? fields.text : ""));

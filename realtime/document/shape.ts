@@ -99,6 +99,22 @@ export function fieldFault(kind: BlockKind, field: string, value: unknown): stri
 /** Why an entry cannot stand in a list; `null` where it can. */
 export const entryFault = (kind: BlockKind, list: ListName, entry: unknown): string | null => fieldFault(kind, list, [entry]);
 
+/** A copy of plain values as the document stores them: nothing undefined, no prototypes of others. */
+export function plainCopy(value: unknown): unknown {
+  if (Array.isArray(value)) return value.map(plainCopy);
+  if (typeof value !== "object" || value === null) return value;
+  return plainEntry(value);
+}
+
+/** {@link plainCopy} of an object. */
+export function plainEntry(value: object): Record<string, unknown> {
+  return Object.fromEntries(
+    Object.entries(value)
+      .filter(([, v]) => v !== undefined)
+      .map(([k, v]) => [k, plainCopy(v)]),
+  );
+}
+
 export const blocksOf = (doc: Y.Doc): Y.Map<BlockMap> => doc.getMap<BlockMap>("blocks");
 export const pageOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("page");
 export const bodiesOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("bodies");

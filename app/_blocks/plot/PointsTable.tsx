@@ -1,0 +1,103 @@
+"use client";
+
+import { useState } from "react";
+import type { PageView } from "@/app/_page/contract";
+import { Button } from "@/app/_ui/Button";
+import { ClassMarker } from "@/app/_ui/ClassMarker";
+import { Value } from "@/app/_ui/Value";
+import { originsOf, pickedIndices, rowLabel } from "@/app/_blocks/shared/picks";
+import { tableOf } from "@/app/_blocks/shared/tableOf";
+import type { PlotResult } from "@/cells";
+import { axisInWords } from "./plotWords";
+
+/** Rows shown at once; a table that nobody can read to its end only slows the page. */
+const step = 200;
+
+/** The same as the drawing, as a table: for those who listen, for the keyboard, and for reading a number off. */
+export function PointsTable({ result, view }: { readonly result: PlotResult; readonly view: PageView }) {
+  const [most, setMost] = useState(step);
+  const form = view.settings.uncertainty;
+  const rows = result.layers.flatMap((layer) => {
+    if (layer.what !== "samples") return [];
+    const table = tableOf(view.results, layer.data);
+    const picked = new Set(pickedIndices(table, view.picked));
+    return Array.from(layer.points.x, (x, index) => ({ layer, table, index, x, isPicked: picked.has(index) })).filter((row) => Number.isFinite(row.x) && Number.isFinite(row.layer.points.y[row.index] ?? NaN));
+  });
+  const bodies = result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : []));
+  const heads = ["sample", "class", axisInWords(result.x, undefined), axisInWords(result.y, undefined), "correlation"];
+  return (
+    <div className="mt-2 max-h-96 overflow-auto" tabIndex={0} role="region" aria-label="What is drawn, as a table">
+      <table className="w-full border-collapse text-margin">
+        <thead>
+          <tr>
+            {heads.map((head, i) => (
+              <th key={head} scope="col" className={`sticky top-0 border-b border-ink bg-paper py-1 pr-3 font-normal whitespace-nowrap text-second ${i < 2 ? "text-left" : "text-right"}`}>
+                {head}
+              </th>
+            ))}
+            {view.mode !== "frozen" && (
+              <th scope="col" className="sticky top-0 border-b border-ink bg-paper">
+                <span className="sr-only">pick</span>
+              </th>
+            )}
+          </tr>
+        </thead>
+        <tbody>
+          {bodies.map((b) => (
+            <tr key={`body ${b.name}`} className="border-b border-hairline">
+              <th scope="row" className="py-0.5 pr-3 text-left font-medium">
+                {b.name}
+              </th>
+              <td className="pr-3 text-second">body, {b.compilation}</td>
+              <td className="pr-3 text-right">
+                <Value value={b.x} sigma={b.sigmaX} form={form} />
+              </td>
+              <td className="pr-3 text-right">
+                <Value value={b.y} sigma={b.sigmaY} form={form} />
+              </td>
+              <td className="pr-3 text-right font-mono">{b.correlation.toFixed(2).replace("-", "−")}</td>
+              {view.mode !== "frozen" && <td />}
+            </tr>
+          ))}
+          {rows.slice(0, most).map(({ layer, table, index, x, isPicked }) => {
+            const name = layer.classes[index] ?? "";
+            const correlation = layer.points.correlation[index] ?? NaN;
+            const label = rowLabel(table, index);
+            return (
+              <tr key={`${layer.drawn} ${index}`} className={`border-b border-hairline ${isPicked ? "bg-surface shadow-[inset_2px_0_var(--indigo)]" : ""}`}>
+                <th scope="row" className="py-0.5 pr-3 pl-2 text-left font-mono font-normal">
+                  {label}
+                </th>
+                <td className="pr-3 whitespace-nowrap">
+                  {name !== "" && <ClassMarker index={view.classIndex(name)} className="mr-2" />}
+                  {name}
+                </td>
+                <td className="pr-3 text-right">
+                  <Value value={x} sigma={layer.points.sigmaX[index] ?? null} form={form} />
+                </td>
+                <td className="pr-3 text-right">
+                  <Value value={layer.points.y[index] ?? null} sigma={layer.points.sigmaY[index] ?? null} form={form} />
+                </td>
+                <td className="pr-3 text-right font-mono">{Number.isFinite(correlation) ? correlation.toFixed(2).replace("-", "−") : "–"}</td>
+                {view.mode !== "frozen" && (
+                  <td className="text-right">
+                    {table !== undefined && (
+                      <Button aria-pressed={isPicked} aria-label={`${isPicked ? "Let go of" : "Pick"} ${label}`} onClick={() => view.pick(isPicked ? view.picked.filter((p) => !(table.origins[index] ?? []).some((o) => o.table === p.table && o.row === p.row)) : [...view.picked, ...originsOf(table, [index])])}>
+                        {isPicked ? "Let go" : "Pick"}
+                      </Button>
+                    )}
+                  </td>
+                )}
+              </tr>
+            );
+          })}
+        </tbody>
+      </table>
+      {rows.length > most && (
+        <Button className="mt-2" onClick={() => setMost(most + step)}>
+          Show {Math.min(step, rows.length - most)} more of {rows.length}
+        </Button>
+      )}
+    </div>
+  );
+}

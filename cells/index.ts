@@ -99,6 +99,7 @@ export {
   elementsByCondensation,
   elementsOfBody,
   isFromMemory,
+  keyElement,
   listBodies,
   lookupBody,
   lookupPhase,

@@ -1,4 +1,4 @@
-import { isFromMemory, keyElement, lookupBody, type PageDocument } from "@/cells";
+import { isFromMemory, keyElement, lookupBody, parseChemical, type PageDocument } from "@/cells";
 import type { MemoryValue } from "./tasks";
 
 /**
@@ -12,7 +12,7 @@ export function valuesFromMemory(page: PageDocument, bodies: Readonly<Record<str
   const found: MemoryValue[] = [];
   for (const id of [...new Set(Object.values(bodies))].sort()) {
     for (const { species, value, unit, source, checked } of lookupBody(id)?.values ?? []) {
-      const element = keyElement(species);
+      const element = elementOf(species);
       if (isFromMemory(checked) && (elements === "all" || (element !== undefined && elements.has(element)))) found.push({ body: id, species, value, unit, source });
     }
   }
@@ -25,7 +25,7 @@ function elementsNamed(page: PageDocument): ReadonlySet<string> | "all" {
     if (typeof value === "string") {
       if (value === "condensation temperature") return true;
       for (const word of value.match(/[\p{L}_][\p{L}\p{N}_]*/gu) ?? []) {
-        const element = keyElement(word);
+        const element = elementOf(word);
         if (element !== undefined) named.add(element);
       }
       return false;
@@ -41,4 +41,9 @@ function elementsNamed(page: PageDocument): ReadonlySet<string> | "all" {
     return visit(block);
   });
   return all ? "all" : named;
+}
+
+function elementOf(text: string): string | undefined {
+  const chemical = parseChemical(text);
+  return chemical && keyElement(chemical);
 }

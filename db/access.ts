@@ -20,6 +20,7 @@ export interface Objects {
   snapshot: { readonly kind: "snapshot"; readonly id: string; readonly pageId: string; readonly groupId: string };
 }
 export type ObjectKind = keyof Objects;
+export type ObjectOf<K extends ObjectKind> = Objects[K] & { readonly kind: K };
 
 const everyone: readonly Role[] = ["lead", "analyst", "reader", "guest"];
 const members: readonly Role[] = ["lead", "analyst", "reader"];
@@ -66,11 +67,12 @@ const refusedOnArchived: ReadonlySet<string> = new Set(["edit", "upload source",
  * A member's role counts only in their own group, a guest's link only for the one thing it opens; that is checked here
  * again, though the loader already looks them up by object.
  */
-export function may<K extends ObjectKind>(subject: Subject, action: Action<K>, object: Objects[K]): boolean {
+export function may<K extends ObjectKind>(subject: Subject, action: Action<NoInfer<K>>, object: ObjectOf<K>): boolean {
+  const about: Objects[ObjectKind] = object;
   if (subject.role === "nobody") return false;
-  const allowed: Partial<Record<string, readonly Role[]>> = rules[object.kind];
+  const allowed: Partial<Record<string, readonly Role[]>> = rules[about.kind];
   if (!allowed[action]?.includes(subject.role)) return false;
-  if (object.kind === "page" && object.archived && refusedOnArchived.has(action)) return false;
-  if (subject.role === "guest") return subject.opens.kind === object.kind && subject.opens.id === object.id;
-  return subject.groupId === (object.kind === "group" ? object.id : object.groupId);
+  if (about.kind === "page" && about.archived && refusedOnArchived.has(action)) return false;
+  if (subject.role === "guest") return subject.opens.kind === about.kind && subject.opens.id === about.id;
+  return subject.groupId === (about.kind === "group" ? about.id : about.groupId);
 }

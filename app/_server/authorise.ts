@@ -1,5 +1,5 @@
 import "server-only";
-import { may, type Action, type ObjectKind, type Objects, type Subject } from "@/db/access";
+import { may, type Action, type ObjectKind, type ObjectOf, type Objects, type Subject } from "@/db/access";
 import { standingOnGroup, standingOnPage, standingOnSnapshot, type Standing, type Who } from "@/db/queries/subjects";
 import { database } from "./database";
 import { Refusal } from "./problem";
@@ -14,7 +14,7 @@ const find: { readonly [K in ObjectKind]: (who: Who, id: string) => Promise<Stan
 /** Somebody who may do what they asked for. */
 export interface Allowed<K extends ObjectKind> {
   readonly subject: Exclude<Subject, { role: "nobody" }>;
-  readonly object: Objects[K];
+  readonly object: ObjectOf<K>;
   /** The person's id; null for guests. */
   readonly userId: string | null;
 }

@@ -1,32 +1,19 @@
 import "server-only";
 import * as Y from "yjs";
 import type { PageDocument } from "@/cells";
-import { encodeNewPage, readPage, toPageDocument, type PageBlock } from "@/realtime/document";
+import { encodeNewPage, headingOf, readPage, toPageDocument } from "@/realtime/document";
 import { addPage, committedPage } from "@/db/queries/pages";
-import type { OutlineBlock } from "@/db/schema";
 import { database } from "./database";
 import { Refusal } from "./problem";
-
-/** What a group's home draws of a page: one line a block. */
-export function outlineOf(blocks: readonly PageBlock[]): OutlineBlock[] {
-  return blocks.map(({ key, block }) => ({
-    key,
-    id: block.id,
-    kind: block.kind,
-    name: block.name ?? block.id,
-    width: block.width ?? 12,
-    ...(block.kind === "data" && block.source?.sha256 ? { source: block.source.sha256 } : {}),
-  }));
-}
 
 /** Makes a page of a page document, filled once, here. */
 export async function createPage(groupId: string, by: string, page: PageDocument): Promise<string> {
   const update = encodeNewPage(page);
   const doc = new Y.Doc();
   Y.applyUpdate(doc, update);
-  const outline = outlineOf(readPage(doc).blocks);
+  const { outline } = headingOf(doc);
   doc.destroy();
-  return addPage(database(), { groupId, by, title: page.title, outline, update });
+  return addPage(database(), { groupId, by, title: page.title, outline: [...outline], update });
 }
 
 /** A page's committed document, as the database has it at this moment. @throws Refusal 404 */

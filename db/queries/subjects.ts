@@ -1,5 +1,5 @@
 import { and, eq, gt, inArray, isNull } from "drizzle-orm";
-import type { GroupRole, Objects, Subject } from "../access";
+import type { GroupRole, ObjectKind, ObjectOf, Subject } from "../access";
 import type { Database } from "../client";
 import { groups, memberships, pages, readingLinks, readingSessions, snapshots } from "../schema";
 
@@ -10,9 +10,9 @@ export interface Who {
 }
 
 /** Somebody's standing towards something that exists. */
-export interface Standing<K extends keyof Objects> {
+export interface Standing<K extends ObjectKind> {
   readonly subject: Subject;
-  readonly object: Objects[K];
+  readonly object: ObjectOf<K>;
 }
 
 const uuid = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/i;

@@ -1,0 +1,42 @@
+import "server-only";
+import { headers } from "next/headers";
+import { notFound, redirect } from "next/navigation";
+import type { Action, ObjectKind } from "@/db/access";
+import type { SignedIn } from "@/db/queries/sessions";
+import { allow, type Allowed } from "./authorise";
+import { Refusal } from "./problem";
+import { currentUser } from "./session";
+
+/** The person signed in; whoever is not is sent to sign in and comes back to `path` afterwards. */
+export async function signedIn(path: string): Promise<SignedIn> {
+  const user = await currentUser();
+  if (!user) redirect(signInPath(path));
+  return user;
+}
+
+export function signInPath(path: string): string {
+  return `/sign-in?callbackUrl=${encodeURIComponent(path)}`;
+}
+
+/**
+ * {@link allow} for a screen: who is not signed in is sent to sign in, what does not exist for this person is "not found",
+ * and what their role does not allow is handed back as the sentence to show.
+ */
+export async function allowOnScreen<K extends ObjectKind>(kind: K, id: string, action: Action<K>, path: string): Promise<Allowed<K>> {
+  try {
+    return await allow(kind, id, action);
+  } catch (error) {
+    if (!(error instanceof Refusal)) throw error;
+    if (error.status === 401) redirect(signInPath(path));
+    notFound();
+  }
+}
+
+/** Address of the realtime server as this browser reaches it. */
+export async function realtimeUrl(): Promise<string> {
+  const given = process.env.REALTIME_PUBLIC_URL;
+  if (given) return given;
+  const secure = process.env.NEXTAUTH_URL?.startsWith("https://") ?? false;
+  const host = (await headers()).get("host") ?? "127.0.0.1";
+  return `${secure ? "wss" : "ws"}://${new URL(`http://${host}`).hostname}:${process.env.REALTIME_PORT ?? "3001"}`;
+}

@@ -1,0 +1,49 @@
+"use client";
+
+import { use, type InputHTMLAttributes, type ReactNode } from "react";
+import { Field } from "@/app/_ui/Field";
+import { classNames } from "@/app/_ui/classNames";
+import { controlLook } from "@/app/_ui/TextField";
+import { SentValues } from "./formContext";
+
+export interface FormFieldProps extends Omit<InputHTMLAttributes<HTMLInputElement>, "onChange" | "children"> {
+  readonly name: string;
+  readonly label: ReactNode;
+  readonly hint?: ReactNode;
+}
+
+/** A text field of an {@link ActionForm}; keeps what was typed when the form comes back. */
+export function FormField({ name, label, hint, className, defaultValue, ...rest }: FormFieldProps) {
+  const sent = use(SentValues)[name];
+  return (
+    <Field label={label} hint={hint} className={className}>
+      {({ "aria-invalid": _, ...ids }) => <input name={name} {...ids} {...rest} key={sent} defaultValue={sent ?? defaultValue} className={controlLook} />}
+    </Field>
+  );
+}
+
+export interface FormChoiceProps {
+  readonly name: string;
+  readonly label: ReactNode;
+  readonly options: readonly { readonly value: string; readonly label: string }[];
+  readonly defaultValue?: string;
+  readonly className?: string;
+}
+
+/** A choice out of a list, in an {@link ActionForm}. */
+export function FormChoice({ name, label, options, defaultValue, className }: FormChoiceProps) {
+  const sent = use(SentValues)[name];
+  return (
+    <Field label={label} className={className}>
+      {({ "aria-invalid": _, ...ids }) => (
+        <select name={name} {...ids} key={sent} defaultValue={sent ?? defaultValue} className={classNames(controlLook, "appearance-none")}>
+          {options.map((option) => (
+            <option key={option.value} value={option.value} className="bg-surface text-ink">
+              {option.label}
+            </option>
+          ))}
+        </select>
+      )}
+    </Field>
+  );
+}

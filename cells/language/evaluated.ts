@@ -1,0 +1,126 @@
+import type { Problem } from "../errors";
+import type { Basis } from "../page/schema";
+import type { Unit } from "../quantity/unit";
+import type { Table } from "../table/table";
+import type { ColumnVariable, Uses } from "./compiled";
+import { commonCovariance, perSampleCovariance } from "./covariance";
+import type { Measurement } from "./measure";
+import type { CommonVariable } from "./scope";
+import type { CommonPart } from "./uncertainty";
+
+/** What an expression is apart from its numbers. */
+export interface EvaluatedMeaning {
+  /** The unit of `value` and `sigma`. Products such as Mg × Al have a unit that no table knows, made up of canonical ones. */
+  readonly unit: Unit;
+  readonly basis: Basis | "formula units" | null;
+  /** Says what a number without basis is: "normalised to CI (CI_PLJ14)", "logarithm", "mean of ratios" … */
+  readonly remark: string | null;
+}
+
+/**
+ * An expression, calculated. Arrays hold one entry for each row of the table, or each class, or one only (`perSample` false);
+ * where the state is not "present" every number is NaN.
+ */
+export class Evaluated implements EvaluatedMeaning {
+  readonly unit: Unit;
+  readonly basis: Basis | "formula units" | null;
+  readonly remark: string | null;
+  /** Entries of the arrays. */
+  readonly rows: number;
+  readonly value: Float64Array;
+  /** 1σ of both sorts of inputs together; NaN where unknown. */
+  readonly sigma: Float64Array;
+  /** 1σ from what was measured on each sample alone: what fits and means weigh by. */
+  readonly sigmaPerSample: Float64Array;
+  /** 1σ from what is common to all samples. */
+  readonly sigmaCommon: Float64Array;
+  readonly state: Uint8Array;
+  /** 1 where an input's σ is unknown and the σ given is that of the others. */
+  readonly lowerBound: Uint8Array;
+  readonly assumed: Uint8Array;
+  readonly assumedCount: number;
+  /** True where there is one entry for each row of `table`. */
+  readonly perSample: boolean;
+  /** Classes, where there is one entry for each. */
+  readonly byClass?: readonly string[];
+  /** The table the entries belong to; null where there is one for all. */
+  readonly table: Table | null;
+  /** Warnings: species that disagree, declared substitutions … */
+  readonly problems: readonly Problem[];
+  /** Alias or id as written → id of the compilation. */
+  readonly bodiesUsed: Readonly<Record<string, string>>;
+  /** Sentences of the conversions made: "Mg = MgO × 0.603036". */
+  readonly conversions: readonly string[];
+  /** Lines of formula blocks that the expression went through. */
+  readonly lines: readonly { readonly block: string; readonly name: string }[];
+  readonly #measured: Measurement;
+
+  constructor(
+    meaning: EvaluatedMeaning,
+    measured: Measurement,
+    of: { readonly table: Table | null; readonly byClass?: readonly string[]; readonly problems: readonly Problem[]; readonly uses: Uses },
+  ) {
+    this.unit = meaning.unit;
+    this.basis = meaning.basis;
+    this.remark = meaning.remark;
+    this.rows = measured.length;
+    this.value = measured.value;
+    this.sigma = measured.sigma;
+    this.sigmaPerSample = measured.sigmaPerSample;
+    this.sigmaCommon = measured.sigmaCommon;
+    this.state = measured.state;
+    this.lowerBound = measured.lowerBound;
+    this.assumed = measured.assumed;
+    this.assumedCount = measured.assumed.reduce((sum, flag) => sum + flag, 0);
+    this.table = of.table;
+    this.perSample = of.table !== null && of.byClass === undefined;
+    if (of.byClass !== undefined) this.byClass = of.byClass;
+    this.problems = of.problems;
+    this.bodiesUsed = Object.fromEntries(of.uses.bodies);
+    this.conversions = [...of.uses.conversions.values()].flat();
+    this.lines = [...of.uses.lines.values()];
+    this.#measured = measured;
+  }
+
+  /** Measured columns the result depends on, in order of first appearance. */
+  get inputs(): readonly { readonly variable: ColumnVariable; readonly partial: Float64Array }[] {
+    return this.#measured.columns.map((variable) => ({ variable, partial: this.#measured.partial(variable) }));
+  }
+
+  /** Common variables with the partial derivative of each entry (display unit per canonical unit), in order of first appearance. */
+  get common(): readonly { readonly variable: CommonVariable; readonly partial: Float64Array }[] {
+    return this.#measured.commons.flatMap((part) => this.#expand(part));
+  }
+
+  #expand(part: CommonPart): readonly { variable: CommonVariable; partial: Float64Array }[] {
+    const partial = this.#measured.partial(part);
+    if (part.sort === "common") return [{ variable: part.variable, partial }];
+    return part.variables.map((variable, place) => ({
+      variable,
+      partial: partial.map((value, i) => ((this.byClass === undefined ? part.split.classOf[i] : i) === place ? value : 0)),
+    }));
+  }
+
+  /** Covariance with another result, entry by entry, from what was measured on each sample alone. In both display units. */
+  covariance(other: Evaluated): Float64Array {
+    return perSampleCovariance(this.#measured, other.#measured);
+  }
+
+  /** Covariance with another result, entry by entry, through what is common to all samples. */
+  covarianceCommon(other: Evaluated): Float64Array {
+    return commonCovariance(this.#measured, other.#measured);
+  }
+
+  /** Correlation of the errors with those of another result, both sorts together; NaN where either σ is unknown or 0. */
+  correlation(other: Evaluated): Float64Array {
+    const [own, common] = [this.covariance(other), this.covarianceCommon(other)];
+    return own.map((value, i) => {
+      const sigmas = at(this.sigma, i) * at(other.sigma, i);
+      return sigmas > 0 ? Math.max(-1, Math.min(1, (value + (common[i] as number)) / sigmas)) : Number.NaN;
+    });
+  }
+}
+
+function at(column: Float64Array, i: number): number {
+  return (column.length === 1 ? column[0] : column[i]) as number;
+}

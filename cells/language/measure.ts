@@ -1,0 +1,103 @@
+import type { ColumnVariable, CompiledValue } from "./compiled";
+import type { Compiler } from "./compiler";
+import { partialsOf } from "./derivatives";
+import type { Column, Load } from "./graph";
+import { run } from "./interpreter";
+import { MAX_DERIVED_NODES } from "./limits";
+import { lower } from "./program";
+import { extentOf, type Over, type Split } from "./split";
+import { uncertaintyNodes, type CommonPart } from "./uncertainty";
+
+/** Numbers of one compiled expression over all rows, with what they depend on. */
+export interface Measurement {
+  readonly length: number;
+  readonly value: Float64Array;
+  readonly state: Uint8Array;
+  readonly sigma: Float64Array;
+  readonly sigmaPerSample: Float64Array;
+  readonly sigmaCommon: Float64Array;
+  readonly lowerBound: Uint8Array;
+  readonly assumed: Uint8Array;
+  /** Inputs in order of first appearance. */
+  readonly columns: readonly ColumnVariable[];
+  readonly commons: readonly CommonPart[];
+  /** Partial derivatives with respect to an input, row by row; made when first asked for. */
+  partial(variable: ColumnVariable | CommonPart): Float64Array;
+}
+
+/**
+ * Runs a compiled value over its rows. Where the state is not "present" every number is NaN.
+ *
+ * @param node the value to measure; `value.node` or that in another unit
+ */
+export function measure(compiler: Compiler, value: CompiledValue, node = value.node): Measurement {
+  const { graph, variables } = compiler;
+  graph.raiseLimit(MAX_DERIVED_NODES);
+  const partials = partialsOf(graph, node, new Set(variables.keys()), compiler.links);
+  const nodes = uncertaintyNodes(graph, partials, variables);
+  const asked = [node, graph.guard(value.state, node), nodes.sigma, nodes.sigmaPerSample, nodes.sigmaCommon, nodes.lowerBound, nodes.assumed];
+  const length = extentOf(value.over);
+  const columnOf = columnsOver(compiler, value.over);
+  const numbers = (): Float64Array => new Float64Array(length);
+  const bytes = (): Uint8Array => new Uint8Array(length);
+  const made = { value: numbers(), state: bytes(), sigma: numbers(), sigmaPerSample: numbers(), sigmaCommon: numbers(), lowerBound: bytes(), assumed: bytes() };
+  run(lower(graph, asked, columnOf), length, [made.value, made.state, made.sigma, made.sigmaPerSample, made.sigmaCommon, made.lowerBound, made.assumed]);
+  blankAbsent(made, length);
+
+  const columns: ColumnVariable[] = [];
+  const commons: CommonPart[] = [];
+  for (const leaf of partials.keys()) {
+    const variable = variables.get(leaf);
+    if (variable?.sort === "column") columns.push(variable);
+    else if (variable !== undefined) commons.push(variable);
+  }
+  const asCalculated = new Map<number, Float64Array>();
+  const partial = (variable: ColumnVariable | CommonPart): Float64Array => {
+    const known = asCalculated.get(variable.node);
+    if (known !== undefined) return known;
+    const found = numbers();
+    const wanted = partials.get(variable.node);
+    if (wanted !== undefined) run(lower(graph, [wanted], columnOf), length, [found]);
+    asCalculated.set(variable.node, found);
+    return found;
+  };
+  return { length, ...made, columns, commons, partial };
+}
+
+function blankAbsent(made: Omit<Measurement, "length" | "columns" | "commons" | "partial">, length: number): void {
+  const { value, state, sigma, sigmaPerSample, sigmaCommon, lowerBound, assumed } = made;
+  for (let i = 0; i < length; i++) {
+    if (state[i] === 0) continue;
+    value[i] = Number.NaN;
+    sigma[i] = Number.NaN;
+    sigmaPerSample[i] = Number.NaN;
+    sigmaCommon[i] = Number.NaN;
+    lowerBound[i] = 0;
+    assumed[i] = 0;
+  }
+}
+
+/** Loads as they run over `over`: a class's entry stands for every row of the class. */
+function columnsOver(compiler: Compiler, over: Over | null): (place: number) => Column {
+  return (place) => {
+    const load = compiler.graph.loads[place];
+    if (load === undefined) throw new RangeError(`expected a load from 0 to ${compiler.graph.loads.length - 1}, got ${place}`);
+    return load.split === null || over?.split === load.split ? load.column : spread(load, load.split);
+  };
+}
+
+const spreads = new WeakMap<Column, Column>();
+
+function spread({ column }: Load, split: Split): Column {
+  const known = spreads.get(column);
+  if (known !== undefined) return known;
+  const rows = split.classOf.length;
+  const wide = column instanceof Float64Array ? new Float64Array(rows) : column instanceof Uint8Array ? new Uint8Array(rows) : new Uint16Array(rows);
+  for (let row = 0; row < rows; row++) {
+    const place = split.classOf[row] ?? -1;
+    // A row without class has no class's value: 1 is the state "missing".
+    wide[row] = place >= 0 ? (column[place] as number) : column instanceof Float64Array ? Number.NaN : 1;
+  }
+  spreads.set(column, wide);
+  return wide;
+}

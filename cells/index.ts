@@ -78,6 +78,7 @@ export type {
   LineCorrelation,
   LineResult,
   NoteResult,
+  NoteValue,
   PageResults,
   PlotLayer,
   PlotPoints,
@@ -89,7 +90,17 @@ export type {
   TrendResult,
   Uncertain,
 } from "./page/results";
+export { createEngine } from "./page/engine";
 export type { Engine, ImportProposal, ProposedColumn } from "./page/engine";
+export { hasErrors, resultsJson } from "./page/resultsJson";
+export { resultsTable } from "./page/resultsTable";
+export { pageJsonSchema, readPageDocument } from "./page/read";
+
+// Notes and numbers as people read them
+export { quotesIn } from "./note/quotes";
+export type { Quote } from "./note/quotes";
+export { formatNumber, formatUncertain } from "./quantity/format";
+export type { UncertaintyStyle } from "./quantity/format";
 
 // Species and reference bodies
 export {
@@ -111,3 +122,33 @@ export {
   speciesOfBody,
 } from "./species";
 export type { Body, BodyLookup, BodySpecies, BodyValue, Chemical, IronForm, Resolution, Species } from "./species";
+
+// Expression language
+export {
+  compileOnComposition,
+  evaluateCondition,
+  evaluateExpression,
+  functions,
+  isPlainName,
+  namesUsed,
+  parseLines,
+  renameInText,
+  traceRow,
+  writeName,
+} from "./language";
+export type {
+  CommonVariable,
+  CompositionValue,
+  Evaluated,
+  ExpressionPlace,
+  FormulaLine,
+  FormulaLines,
+  FunctionInfo,
+  NameUse,
+  Named,
+  OnComposition,
+  RowTrace,
+  Scope,
+  ScopeOffer,
+  TracedInput,
+} from "./language";

@@ -24,7 +24,10 @@ const smtp = new SMTPServer({
   onData: (stream, session, done) => {
     simpleParser(stream).then((mail) => {
       const to = session.envelope.rcptTo.map((recipient) => recipient.address);
-      mails = [{ id: String(++count), at: new Date().toISOString(), from: mail.from?.text ?? "", to, subject: mail.subject ?? "", text: mail.text ?? "" }, ...mails].slice(0, KEPT);
+      mails = [
+        { id: String(++count), at: new Date().toISOString(), from: mail.from?.text ?? "", to, subject: mail.subject ?? "", text: mail.text ?? "" },
+        ...mails,
+      ].slice(0, KEPT);
       done();
     }, done);
   },

@@ -17,7 +17,10 @@ export interface FormState {
  * A server action for a form: takes requests from our own pages only, checks the fields, and gives every refusal back as a
  * sentence beside the form.
  */
-export function formAction<S extends z.ZodType>(schema: S, run: (fields: z.output<S>) => Promise<FormState | void>): (before: FormState, form: FormData) => Promise<FormState> {
+export function formAction<S extends z.ZodType>(
+  schema: S,
+  run: (fields: z.output<S>) => Promise<FormState | void>,
+): (before: FormState, form: FormData) => Promise<FormState> {
   return async (_before, form) => {
     const values: Record<string, string> = {};
     for (const [name, value] of form) if (typeof value === "string" && !name.startsWith("$") && !/password/i.test(name)) values[name] = value;

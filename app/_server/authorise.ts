@@ -32,7 +32,11 @@ export async function allow<K extends ObjectKind>(kind: K, id: string, action: A
   const subject = standing?.subject ?? { role: "nobody" };
   if (!standing || subject.role === "nobody") {
     if (asks.userId === null) throw new Refusal(401, "Not signed in", `Sign in to see this ${kind}, or open it by a reading link.`);
-    throw new Refusal(404, `No such ${kind}`, `There is no ${kind} at this address that you may see. Ask the person who sent you here whether you are in their group.`);
+    throw new Refusal(
+      404,
+      `No such ${kind}`,
+      `There is no ${kind} at this address that you may see. Ask the person who sent you here whether you are in their group.`,
+    );
   }
   if (!may(subject, action, standing.object)) throw new Refusal(403, "Not yours to do", forbidden(kind, action, subject.role, standing.object));
   return { subject, object: standing.object, userId: subject.role === "guest" ? null : subject.userId };

@@ -23,7 +23,14 @@ const made = new Map<Limit, RateLimiterPostgres>();
 function limiter(limit: Limit): RateLimiterPostgres {
   let found = made.get(limit);
   if (!found) {
-    found = new RateLimiterPostgres({ storeClient: connection().pool, storeType: "pool", tableName: "rate_limits", tableCreated: true, keyPrefix: limit, ...limits[limit] });
+    found = new RateLimiterPostgres({
+      storeClient: connection().pool,
+      storeType: "pool",
+      tableName: "rate_limits",
+      tableCreated: true,
+      keyPrefix: limit,
+      ...limits[limit],
+    });
     made.set(limit, found);
   }
   return found;

@@ -14,7 +14,11 @@ export function assertOwnOrigin(headers: Pick<Headers, "get">, ours: string | un
   const origin = headers.get("origin");
   const from = origin === null || origin === "null" ? null : origin;
   if (from === null ? headers.get("sec-fetch-site") === "same-origin" : isOurs(from, ours)) return;
-  throw new Refusal(403, "Sent from somewhere else", `This request came from ${from ?? "an unnamed place"}, not from a page of this server. Open the page here and try again.`);
+  throw new Refusal(
+    403,
+    "Sent from somewhere else",
+    `This request came from ${from ?? "an unnamed place"}, not from a page of this server. Open the page here and try again.`,
+  );
 }
 
 function isOurs(origin: string, ours: string | undefined): boolean {

@@ -25,6 +25,11 @@ export function problemResponse(refusal: Refusal): Response {
 export function unforeseen(error: unknown): Refusal {
   console.error(error);
   const code = error instanceof Error && "code" in error ? String(error.code) : "";
-  if (/^(ECONN|57P|08)/.test(code)) return new Refusal(503, "The database does not answer", "Nothing was changed. Wait a moment and try again.", {}, { "retry-after": "5" });
-  return new Refusal(500, "Something went wrong here", "Nothing was changed. Try again; if it happens again, tell whoever runs this server what you were doing and when.");
+  if (/^(ECONN|57P|08)/.test(code))
+    return new Refusal(503, "The database does not answer", "Nothing was changed. Wait a moment and try again.", {}, { "retry-after": "5" });
+  return new Refusal(
+    500,
+    "Something went wrong here",
+    "Nothing was changed. Try again; if it happens again, tell whoever runs this server what you were doing and when.",
+  );
 }

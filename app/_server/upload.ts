@@ -27,7 +27,8 @@ export async function keepUpload(request: Request, groupId: string, by: string |
   const { rows } = await calculate<"read">({ kind: "read", fileName: name, bytes }, DEADLINE);
   const sha256 = createHash("sha256").update(bytes).digest("hex");
   const over = await addSource(database(), { groupId, sha256, name, mediaType: mediaType(name), bytes, rows, by }, GROUP_QUOTA);
-  if (over !== null) throw new Refusal(413, "The group is full", `With ${name} the sources of this group would take ${inMiB(over)}; a group has ${inMiB(GROUP_QUOTA)}.`);
+  if (over !== null)
+    throw new Refusal(413, "The group is full", `With ${name} the sources of this group would take ${inMiB(over)}; a group has ${inMiB(GROUP_QUOTA)}.`);
   return { sha256, name, size: bytes.length, rows };
 }
 
@@ -40,13 +41,19 @@ function fileName(header: string | null): string {
   }
   // A path that some browsers send along says nothing here.
   name = (name.split(/[\\/]/).at(-1) ?? "").replaceAll(/\p{Cc}/gu, "").trim();
-  if (name === "" || name.length > 255) throw new Refusal(400, "No file name", "The upload must say the file's name, of at most 255 characters, in the header x-file-name.");
+  if (name === "" || name.length > 255)
+    throw new Refusal(400, "No file name", "The upload must say the file's name, of at most 255 characters, in the header x-file-name.");
   return name;
 }
 
 /** Reads the body and stops as soon as it is too long, whatever its header said. */
 async function readBody(request: Request, name: string): Promise<Uint8Array> {
-  const tooLong = () => new Refusal(413, "The file is too big", `${name} is larger than ${inMiB(MOST_BYTES)}, the most a table may have. Part it into several files and stack them on the page.`);
+  const tooLong = () =>
+    new Refusal(
+      413,
+      "The file is too big",
+      `${name} is larger than ${inMiB(MOST_BYTES)}, the most a table may have. Part it into several files and stack them on the page.`,
+    );
   if (Number(request.headers.get("content-length") ?? 0) > MOST_BYTES) throw tooLong();
   const chunks: Uint8Array[] = [];
   let size = 0;

@@ -12,7 +12,17 @@ export function Sheet({ title, says, children }: { readonly title: string; reado
 }
 
 /** A section of a screen: a line, a small heading, and what belongs beside it. */
-export function Section({ title, beside, children, id }: { readonly title: string; readonly beside?: ReactNode; readonly children: ReactNode; readonly id: string }) {
+export function Section({
+  title,
+  beside,
+  children,
+  id,
+}: {
+  readonly title: string;
+  readonly beside?: ReactNode;
+  readonly children: ReactNode;
+  readonly id: string;
+}) {
   return (
     <section aria-labelledby={id}>
       <div className="flex items-baseline justify-between gap-4 border-t border-ink pt-[7px] pb-2">

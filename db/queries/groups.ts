@@ -51,7 +51,14 @@ export interface Member {
 /** People of a group: leads first, then analysts, then readers, each in the order they joined. */
 export async function membersOf(db: Database, groupId: string): Promise<Member[]> {
   const rows = await db
-    .select({ userId: users.id, name: users.name, email: users.email, role: memberships.role, joinedAt: memberships.joinedAt, lastSeenAt: memberships.lastSeenAt })
+    .select({
+      userId: users.id,
+      name: users.name,
+      email: users.email,
+      role: memberships.role,
+      joinedAt: memberships.joinedAt,
+      lastSeenAt: memberships.lastSeenAt,
+    })
     .from(memberships)
     .innerJoin(users, eq(users.id, memberships.userId))
     .where(eq(memberships.groupId, groupId))
@@ -64,7 +71,9 @@ export async function noteSeen(db: Database, groupId: string, userId: string): P
   await db
     .update(memberships)
     .set({ lastSeenAt: new Date() })
-    .where(and(eq(memberships.groupId, groupId), eq(memberships.userId, userId), sql`coalesce(${memberships.lastSeenAt}, 'epoch') < now() - interval '1 minute'`));
+    .where(
+      and(eq(memberships.groupId, groupId), eq(memberships.userId, userId), sql`coalesce(${memberships.lastSeenAt}, 'epoch') < now() - interval '1 minute'`),
+    );
 }
 
 export type MemberChange = "changed" | "last lead" | "not in the group";
@@ -81,7 +90,13 @@ export async function removeMember(db: Database, groupId: string, userId: string
 
 type Transaction = Parameters<Parameters<Database["transaction"]>[0]>[0];
 
-async function changeMember(db: Database, groupId: string, userId: string, losesLead: boolean, change: (tx: Transaction, row: ReturnType<typeof and>) => PromiseLike<unknown>): Promise<MemberChange> {
+async function changeMember(
+  db: Database,
+  groupId: string,
+  userId: string,
+  losesLead: boolean,
+  change: (tx: Transaction, row: ReturnType<typeof and>) => PromiseLike<unknown>,
+): Promise<MemberChange> {
   return db.transaction(async (tx) => {
     // Two leads who demote each other at once must not both succeed: the group's row is the lock.
     await tx.select({ id: groups.id }).from(groups).where(eq(groups.id, groupId)).for("update");

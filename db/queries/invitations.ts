@@ -24,7 +24,10 @@ export async function openInvitations(db: Database, groupId: string): Promise<Op
 }
 
 /** Invites an address; an earlier open invitation of the same address is replaced. Gives the secret for the mail. */
-export async function addInvitation(db: Database, invitation: { groupId: string; email: string; role: GroupRole; invitedBy: string }): Promise<{ id: string; token: string }> {
+export async function addInvitation(
+  db: Database,
+  invitation: { groupId: string; email: string; role: GroupRole; invitedBy: string },
+): Promise<{ id: string; token: string }> {
   const token = newToken();
   const email = invitation.email.toLowerCase();
   return db.transaction(async (tx) => {

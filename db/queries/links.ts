@@ -111,7 +111,17 @@ export async function findLink(db: Database, token: string): Promise<FoundLink |
     .where(eq(readingLinks.tokenHash, hashToken(token)));
   if (!row) return null;
   const { id, groupId, pageId, snapshotId, expiresAt } = row.link;
-  return { id, groupId, group: row.group, pageId, snapshotId, title: row.snapshot ?? row.page ?? "", number: row.number, state: linkState(row.link), expiresAt };
+  return {
+    id,
+    groupId,
+    group: row.group,
+    pageId,
+    snapshotId,
+    title: row.snapshot ?? row.page ?? "",
+    number: row.number,
+    state: linkState(row.link),
+    expiresAt,
+  };
 }
 
 /** Gives a browser its own secret in exchange for an open link's; null when the link is not open any more. */

@@ -43,11 +43,14 @@ export async function findPage(db: Database, id: string): Promise<typeof pages.$
 }
 
 /** Adds a page whose document is `update`, the first row of its log. */
-export async function addPage(db: Database, page: { groupId: string; title: string; outline: OutlineBlock[]; by: string; update: Uint8Array }): Promise<string> {
+export async function addPage(
+  db: Database,
+  page: { id?: string; groupId: string; title: string; outline: OutlineBlock[]; by: string; update: Uint8Array },
+): Promise<string> {
   return db.transaction(async (tx) => {
     const [row] = await tx
       .insert(pages)
-      .values({ groupId: page.groupId, title: page.title, outline: page.outline, createdBy: page.by, changedBy: page.by })
+      .values({ ...(page.id ? { id: page.id } : {}), groupId: page.groupId, title: page.title, outline: page.outline, createdBy: page.by, changedBy: page.by })
       .returning({ id: pages.id, epoch: pages.epoch });
     if (!row) throw new Error("the page was not made");
     await tx.insert(pageUpdates).values({ pageId: row.id, epoch: row.epoch, userId: page.by, update: page.update });

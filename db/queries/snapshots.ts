@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, inArray, sql } from "drizzle-orm";
+import { and, asc, desc, eq, inArray, lt, sql } from "drizzle-orm";
 import type { Database } from "../client";
 import { contents, pages, snapshotFiles, snapshots } from "../schema";
 
@@ -40,9 +40,24 @@ export async function addSnapshot(db: Database, snapshot: NewSnapshot): Promise<
       .limit(1);
     const number = (last?.number ?? 0) + 1;
     const previousHash = last?.hash ?? null;
-    const [added] = await tx.insert(snapshots).values({ ...row, number, previousHash }).returning({ id: snapshots.id });
+    const [added] = await tx
+      .insert(snapshots)
+      .values({ ...row, number, previousHash })
+      .returning({ id: snapshots.id });
     if (!added) throw new Error("the snapshot was not made");
-    const present = new Set((await tx.select({ sha256: contents.sha256 }).from(contents).where(inArray(contents.sha256, files.map((f) => f.sha256)))).map((c) => c.sha256));
+    const present = new Set(
+      (
+        await tx
+          .select({ sha256: contents.sha256 })
+          .from(contents)
+          .where(
+            inArray(
+              contents.sha256,
+              files.map((f) => f.sha256),
+            ),
+          )
+      ).map((c) => c.sha256),
+    );
     for (const file of files) {
       if (present.has(file.sha256)) continue;
       present.add(file.sha256);
@@ -70,7 +85,9 @@ export async function snapshotsOf(db: Database, groupId: string) {
       frozenAt: snapshots.frozenAt,
       note: snapshots.note,
       openLinks: sql<number>`(select count(*)::int from reading_links l where l.snapshot_id = ${snapshots.id} and l.withdrawn_at is null and l.expires_at > now())`,
-      lastLinkEnds: sql<string | null>`(select max(l.expires_at)::text from reading_links l where l.snapshot_id = ${snapshots.id} and l.withdrawn_at is null and l.expires_at > now())`,
+      lastLinkEnds: sql<
+        string | null
+      >`(select max(l.expires_at)::text from reading_links l where l.snapshot_id = ${snapshots.id} and l.withdrawn_at is null and l.expires_at > now())`,
       endedLinks: sql<number>`(select count(*)::int from reading_links l where l.snapshot_id = ${snapshots.id} and (l.withdrawn_at is not null or l.expires_at <= now()))`,
     })
     .from(snapshots)
@@ -94,5 +111,16 @@ export async function fileOf(db: Database, snapshotId: string, path: string): Pr
     .from(snapshotFiles)
     .innerJoin(contents, eq(contents.sha256, snapshotFiles.sha256))
     .where(and(eq(snapshotFiles.snapshotId, snapshotId), eq(snapshotFiles.path, path)));
+  return row ?? null;
+}
+
+/** The last snapshot of a page before `number`, or its last of all; null where there is none. */
+export async function lastSnapshotOf(db: Database, pageId: string, before?: number): Promise<Snapshot | null> {
+  const [row] = await db
+    .select()
+    .from(snapshots)
+    .where(before === undefined ? eq(snapshots.pageId, pageId) : and(eq(snapshots.pageId, pageId), lt(snapshots.number, before)))
+    .orderBy(desc(snapshots.number))
+    .limit(1);
   return row ?? null;
 }

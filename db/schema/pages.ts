@@ -19,8 +19,12 @@ export const contents = pgTable("contents", {
 export const sources = pgTable(
   "sources",
   {
-    groupId: uuid("group_id").notNull().references(() => groups.id, { onDelete: "cascade" }),
-    sha256: text("sha256").notNull().references(() => contents.sha256),
+    groupId: uuid("group_id")
+      .notNull()
+      .references(() => groups.id, { onDelete: "cascade" }),
+    sha256: text("sha256")
+      .notNull()
+      .references(() => contents.sha256),
     name: text("name").notNull(),
     mediaType: text("media_type").notNull(),
     size: integer("size").notNull(),
@@ -46,7 +50,9 @@ export const pages = pgTable(
   "pages",
   {
     id: uuid("id").primaryKey().defaultRandom(),
-    groupId: uuid("group_id").notNull().references(() => groups.id, { onDelete: "cascade" }),
+    groupId: uuid("group_id")
+      .notNull()
+      .references(() => groups.id, { onDelete: "cascade" }),
     /** Copies of what the document says, kept by the realtime server for lists. */
     title: text("title").notNull(),
     outline: jsonb("outline").$type<OutlineBlock[]>().notNull().default([]),
@@ -66,7 +72,9 @@ export const pageUpdates = pgTable(
   "page_updates",
   {
     seq: bigserial("seq", { mode: "bigint" }).primaryKey(),
-    pageId: uuid("page_id").notNull().references(() => pages.id, { onDelete: "cascade" }),
+    pageId: uuid("page_id")
+      .notNull()
+      .references(() => pages.id, { onDelete: "cascade" }),
     epoch: integer("epoch").notNull(),
     userId: uuid("user_id").references(() => users.id, { onDelete: "set null" }),
     update: bytea("update").notNull(),
@@ -77,7 +85,9 @@ export const pageUpdates = pgTable(
 
 /** The compacted base of a page: everything whose rows have been taken out of the log. */
 export const pageStates = pgTable("page_states", {
-  pageId: uuid("page_id").primaryKey().references(() => pages.id, { onDelete: "cascade" }),
+  pageId: uuid("page_id")
+    .primaryKey()
+    .references(() => pages.id, { onDelete: "cascade" }),
   epoch: integer("epoch").notNull(),
   state: bytea("state").notNull(),
   /** Number of log rows folded in so far, and the exact sequence numbers of the last fold. */
@@ -90,7 +100,9 @@ export const pageStates = pgTable("page_states", {
 export const pageClients = pgTable(
   "page_clients",
   {
-    pageId: uuid("page_id").notNull().references(() => pages.id, { onDelete: "cascade" }),
+    pageId: uuid("page_id")
+      .notNull()
+      .references(() => pages.id, { onDelete: "cascade" }),
     clientId: bigint("client_id", { mode: "bigint" }).notNull(),
     userId: uuid("user_id"),
   },
@@ -102,7 +114,9 @@ export const amendmentLog = pgTable(
   "amendment_log",
   {
     id: bigserial("id", { mode: "bigint" }).primaryKey(),
-    pageId: uuid("page_id").notNull().references(() => pages.id, { onDelete: "cascade" }),
+    pageId: uuid("page_id")
+      .notNull()
+      .references(() => pages.id, { onDelete: "cascade" }),
     blockKey: text("block_key").notNull(),
     /** `amendments`, `setAside`, `assumed`, `leaveOut`. */
     list: text("list").notNull(),

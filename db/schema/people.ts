@@ -20,7 +20,9 @@ export const users = pgTable("users", {
 export const accounts = pgTable(
   "accounts",
   {
-    userId: uuid("user_id").notNull().references(() => users.id, { onDelete: "cascade" }),
+    userId: uuid("user_id")
+      .notNull()
+      .references(() => users.id, { onDelete: "cascade" }),
     type: text("type").notNull(),
     provider: text("provider").notNull(),
     providerAccountId: text("provider_account_id").notNull(),
@@ -40,7 +42,9 @@ export const sessions = pgTable(
   "sessions",
   {
     sessionToken: text("session_token").primaryKey(),
-    userId: uuid("user_id").notNull().references(() => users.id, { onDelete: "cascade" }),
+    userId: uuid("user_id")
+      .notNull()
+      .references(() => users.id, { onDelete: "cascade" }),
     expires: at("expires").notNull(),
     createdAt: at("created_at").notNull().defaultNow(),
   },
@@ -64,8 +68,12 @@ export const groups = pgTable("groups", {
 export const memberships = pgTable(
   "memberships",
   {
-    groupId: uuid("group_id").notNull().references(() => groups.id, { onDelete: "cascade" }),
-    userId: uuid("user_id").notNull().references(() => users.id, { onDelete: "cascade" }),
+    groupId: uuid("group_id")
+      .notNull()
+      .references(() => groups.id, { onDelete: "cascade" }),
+    userId: uuid("user_id")
+      .notNull()
+      .references(() => users.id, { onDelete: "cascade" }),
     role: roleEnum("role").notNull(),
     joinedAt: at("joined_at").notNull().defaultNow(),
     lastSeenAt: at("last_seen_at"),
@@ -78,7 +86,9 @@ export const invitations = pgTable(
   "invitations",
   {
     id: uuid("id").primaryKey().defaultRandom(),
-    groupId: uuid("group_id").notNull().references(() => groups.id, { onDelete: "cascade" }),
+    groupId: uuid("group_id")
+      .notNull()
+      .references(() => groups.id, { onDelete: "cascade" }),
     email: text("email").notNull(),
     role: roleEnum("role").notNull(),
     tokenHash: text("token_hash").notNull(),

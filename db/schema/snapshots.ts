@@ -12,8 +12,12 @@ export const snapshots = pgTable(
   "snapshots",
   {
     id: uuid("id").primaryKey().defaultRandom(),
-    pageId: uuid("page_id").notNull().references(() => pages.id, { onDelete: "restrict" }),
-    groupId: uuid("group_id").notNull().references(() => groups.id, { onDelete: "restrict" }),
+    pageId: uuid("page_id")
+      .notNull()
+      .references(() => pages.id, { onDelete: "restrict" }),
+    groupId: uuid("group_id")
+      .notNull()
+      .references(() => groups.id, { onDelete: "restrict" }),
     /** 1, 2, 3 … within the page. */
     number: integer("number").notNull(),
     title: text("title").notNull(),
@@ -36,9 +40,13 @@ export const snapshots = pgTable(
 export const snapshotFiles = pgTable(
   "snapshot_files",
   {
-    snapshotId: uuid("snapshot_id").notNull().references(() => snapshots.id, { onDelete: "restrict" }),
+    snapshotId: uuid("snapshot_id")
+      .notNull()
+      .references(() => snapshots.id, { onDelete: "restrict" }),
     path: text("path").notNull(),
-    sha256: text("sha256").notNull().references(() => contents.sha256),
+    sha256: text("sha256")
+      .notNull()
+      .references(() => contents.sha256),
     size: integer("size").notNull(),
   },
   (t) => [primaryKey({ columns: [t.snapshotId, t.path] })],
@@ -49,7 +57,9 @@ export const readingLinks = pgTable(
   "reading_links",
   {
     id: uuid("id").primaryKey().defaultRandom(),
-    groupId: uuid("group_id").notNull().references(() => groups.id, { onDelete: "cascade" }),
+    groupId: uuid("group_id")
+      .notNull()
+      .references(() => groups.id, { onDelete: "cascade" }),
     /** SHA-256 of the secret in the link. */
     tokenHash: text("token_hash").notNull().unique(),
     /** Exactly one of the two. */
@@ -68,6 +78,8 @@ export const readingLinks = pgTable(
 /** What a guest's cookie stands for, got by exchanging a link with a button. Token stored hashed. */
 export const readingSessions = pgTable("reading_sessions", {
   tokenHash: text("token_hash").primaryKey(),
-  linkId: uuid("link_id").notNull().references(() => readingLinks.id, { onDelete: "cascade" }),
+  linkId: uuid("link_id")
+    .notNull()
+    .references(() => readingLinks.id, { onDelete: "cascade" }),
   expires: at("expires").notNull(),
 });

@@ -29,8 +29,19 @@ export default async function AccountPage() {
           </Section>
           <Section id="password" title="Password">
             <ActionForm action={changePassword} submit="Change the password" look="act" label="Password">
-              {hasPassword ? <FormField name="present" label="Present password" type="password" autoComplete="current-password" required maxLength={200} /> : null}
-              <FormField name="password" label="New password" hint="At least 10 characters. Every other device is then signed out." type="password" autoComplete="new-password" required minLength={10} maxLength={200} />
+              {hasPassword ? (
+                <FormField name="present" label="Present password" type="password" autoComplete="current-password" required maxLength={200} />
+              ) : null}
+              <FormField
+                name="password"
+                label="New password"
+                hint="At least 10 characters. Every other device is then signed out."
+                type="password"
+                autoComplete="new-password"
+                required
+                minLength={10}
+                maxLength={200}
+              />
             </ActionForm>
           </Section>
           <Section id="sessions" title="Signed in">

@@ -20,7 +20,10 @@ export default async function GroupsPage() {
       <SiteHeader>
         <Link href="/account">{user.name}</Link>
       </SiteHeader>
-      <Sheet title={groups.length > 0 ? "Your groups" : "You are in no group yet"} says={groups.length > 0 ? null : "Open the invitation you got by mail, or make a group of your own and invite others."}>
+      <Sheet
+        title={groups.length > 0 ? "Your groups" : "You are in no group yet"}
+        says={groups.length > 0 ? null : "Open the invitation you got by mail, or make a group of your own and invite others."}
+      >
         {groups.length > 0 ? (
           <ul className="mb-8">
             {groups.map((group) => (

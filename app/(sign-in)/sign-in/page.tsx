@@ -23,7 +23,16 @@ export default async function SignInPage({ searchParams }: Props) {
       <SiteHeader>
         <Link href="/sign-up">Sign up</Link>
       </SiteHeader>
-      <Sheet title="Sign in" says={signedOut === "everywhere" ? <p role="status">You are signed out on every device.</p> : to === "/" ? null : <p>Sign in to go on to where you were going.</p>}>
+      <Sheet
+        title="Sign in"
+        says={
+          signedOut === "everywhere" ? (
+            <p role="status">You are signed out on every device.</p>
+          ) : to === "/" ? null : (
+            <p>Sign in to go on to where you were going.</p>
+          )
+        }
+      >
         {error ? (
           <p role="alert" className="mb-4 text-vermilion">
             Signing in elsewhere did not work. Try again, or sign in with your password.

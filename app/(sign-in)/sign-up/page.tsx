@@ -18,7 +18,16 @@ export default function SignUpPage() {
         <ActionForm action={signUp} submit="Sign up">
           <FormField name="name" label="Your name" hint="As it should stand beside your edits." autoComplete="name" required maxLength={120} />
           <FormField name="email" label="E-mail" type="email" autoComplete="username" required maxLength={254} />
-          <FormField name="password" label="Password" hint="At least 10 characters." type="password" autoComplete="new-password" required minLength={10} maxLength={200} />
+          <FormField
+            name="password"
+            label="Password"
+            hint="At least 10 characters."
+            type="password"
+            autoComplete="new-password"
+            required
+            minLength={10}
+            maxLength={200}
+          />
           <FormField name="group" label="Name of the group" required maxLength={120} />
         </ActionForm>
       </Sheet>

@@ -2,11 +2,12 @@
 
 import { redirect } from "next/navigation";
 import { z } from "zod";
+import { checkPassword, hashPassword } from "@/db/passwords";
 import { notifyAccess } from "@/db/queries/accessEvents";
 import { endAllSessions } from "@/db/queries/sessions";
 import { findUser, setName, setPasswordHash } from "@/db/queries/users";
 import { formAction } from "../action";
-import { checkPassword, hashPassword } from "../auth/password";
+
 import { database } from "../database";
 import { nameField, newPasswordField } from "../fields";
 import { countTry, forgetTries } from "../limits";
@@ -36,18 +37,22 @@ export const changeName = formAction(z.object({ name: nameField }), async ({ nam
 });
 
 /** Sets another password. All other sessions end: whoever else knew the old one is out. */
-export const changePassword = formAction(z.object({ present: z.string().max(200).optional(), password: newPasswordField }), async ({ present = "", password }) => {
-  const { id } = await me();
-  const user = await findUser(database(), id);
-  await countTry("sign-in", `change ${id}`);
-  if (user?.passwordHash && !(await checkPassword(user.passwordHash, present))) throw new Refusal(403, "Wrong password", "The present password is not that. Nothing was changed.");
-  await forgetTries("sign-in", `change ${id}`);
-  await setPasswordHash(database(), id, await hashPassword(password));
-  await endAllSessions(database(), id);
-  await startSession(id);
-  await notifyAccess(database(), { userId: id });
-  return { done: "Changed. Every other device is signed out." };
-});
+export const changePassword = formAction(
+  z.object({ present: z.string().max(200).optional(), password: newPasswordField }),
+  async ({ present = "", password }) => {
+    const { id } = await me();
+    const user = await findUser(database(), id);
+    await countTry("sign-in", `change ${id}`);
+    if (user?.passwordHash && !(await checkPassword(user.passwordHash, present)))
+      throw new Refusal(403, "Wrong password", "The present password is not that. Nothing was changed.");
+    await forgetTries("sign-in", `change ${id}`);
+    await setPasswordHash(database(), id, await hashPassword(password));
+    await endAllSessions(database(), id);
+    await startSession(id);
+    await notifyAccess(database(), { userId: id });
+    return { done: "Changed. Every other device is signed out." };
+  },
+);
 
 async function me() {
   const user = await currentUser();

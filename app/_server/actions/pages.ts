@@ -14,10 +14,15 @@ import { idField } from "../fields";
 import { Refusal } from "../problem";
 
 /** Makes an empty page and opens it. */
-export const newPage = formAction(z.object({ groupId: idField, title: z.string().trim().max(300, "A title has at most 300 characters").optional() }), async ({ groupId, title }) => {
-  const { userId } = await allow("group", groupId, "create page");
-  redirect(`/pages/${await createPage(groupId, person(userId), { format: PAGE_FORMAT, title: title || "Untitled page", bodies: { CI: "CI_PLJ14", BSE: "BSE_MS95" }, blocks: [] })}`);
-});
+export const newPage = formAction(
+  z.object({ groupId: idField, title: z.string().trim().max(300, "A title has at most 300 characters").optional() }),
+  async ({ groupId, title }) => {
+    const { userId } = await allow("group", groupId, "create page");
+    redirect(
+      `/pages/${await createPage(groupId, person(userId), { format: PAGE_FORMAT, title: title || "Untitled page", bodies: { CI: "CI_PLJ14", BSE: "BSE_MS95" }, blocks: [] })}`,
+    );
+  },
+);
 
 /** Copies a page, as it is committed at this moment, under a new title. */
 export const duplicatePage = formAction(z.object({ pageId: idField }), async ({ pageId }) => {

@@ -70,7 +70,8 @@ export const accept = formAction(z.object({ token: z.string().max(100) }), async
   const user = await currentUser();
   if (!user) throw new Refusal(401, "Not signed in", "You are not signed in any more. Sign in and open the invitation again.");
   const invitation = await findInvitation(database(), token);
-  if (!invitation || !(await acceptInvitation(database(), invitation.id, user.id))) throw new Refusal(410, "Not open", "This invitation is not open any more. Ask for a new one.");
+  if (!invitation || !(await acceptInvitation(database(), invitation.id, user.id)))
+    throw new Refusal(410, "Not open", "This invitation is not open any more. Ask for a new one.");
   await notifyAccess(database(), { groupId: invitation.groupId, userId: user.id });
   redirect(`/groups/${invitation.groupId}`);
 });

@@ -12,7 +12,10 @@ export function hashingAdapter(db: Database): Adapter {
   if (!createSession || !getSessionAndUser || !updateSession || !deleteSession) throw new Error("the adapter has no sessions");
   return {
     ...inner,
-    createSession: async (session) => ({ ...(await createSession({ ...session, sessionToken: hashToken(session.sessionToken) })), sessionToken: session.sessionToken }),
+    createSession: async (session) => ({
+      ...(await createSession({ ...session, sessionToken: hashToken(session.sessionToken) })),
+      sessionToken: session.sessionToken,
+    }),
     getSessionAndUser: async (token) => {
       const found = await getSessionAndUser(hashToken(token));
       return found && { ...found, session: { ...found.session, sessionToken: token } };

@@ -5,12 +5,12 @@ import CredentialsProvider from "next-auth/providers/credentials";
 import type { OAuthConfig } from "next-auth/providers/oauth";
 import { z } from "zod";
 import { cookieNames, isSecure } from "@/db/credentials";
+import { checkPassword } from "@/db/passwords";
 import { findUserByEmail } from "@/db/queries/users";
 import { createSession, SESSION_SECONDS } from "@/db/queries/sessions";
 import { countTry, forgetTries, placeOf, refuseIfUsedUp } from "../limits";
 import { database } from "../database";
 import { hashingAdapter } from "./adapter";
-import { checkPassword } from "./password";
 
 const fields = z.object({ email: z.string().trim().toLowerCase().max(254), password: z.string().max(200) });
 
@@ -35,7 +35,12 @@ export function authOptions(): AuthOptions {
         return { ...token, sessionToken: (await createSession(database(), user.id)).token };
       },
       session: ({ session, user }) => ({ ...session, user: { ...session.user, id: user.id } }),
-      redirect: ({ url, baseUrl }) => (url.startsWith("/") && !url.startsWith("//") ? `${baseUrl}${url}` : URL.canParse(url) && new URL(url).origin === new URL(baseUrl).origin ? url : baseUrl),
+      redirect: ({ url, baseUrl }) =>
+        url.startsWith("/") && !url.startsWith("//")
+          ? `${baseUrl}${url}`
+          : URL.canParse(url) && new URL(url).origin === new URL(baseUrl).origin
+            ? url
+            : baseUrl,
     },
     jwt: {
       encode: async (given) => (typeof given.token?.sessionToken === "string" ? given.token.sessionToken : encode(given)),
@@ -86,7 +91,12 @@ function orcid(): OAuthConfig<{ sub: string; name?: string; given_name?: string;
       authorization: { params: { scope: "openid" } },
       clientId,
       clientSecret,
-      profile: (profile) => ({ id: profile.sub, name: profile.name ?? [profile.given_name, profile.family_name].filter(Boolean).join(" ") ?? profile.sub, email: null, image: null }),
+      profile: (profile) => ({
+        id: profile.sub,
+        name: profile.name ?? [profile.given_name, profile.family_name].filter(Boolean).join(" ") ?? profile.sub,
+        email: null,
+        image: null,
+      }),
     },
   ];
 }

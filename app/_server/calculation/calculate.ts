@@ -50,7 +50,8 @@ function ask(worker: Worker, task: Task, deadline: number): Promise<Reply> {
       }
       settle();
     };
-    const tooMuch = (what: string) => new Refusal(503, "Too much to calculate", `This took more ${what} than one request may have. Nothing was saved. Try a smaller table.`);
+    const tooMuch = (what: string) =>
+      new Refusal(503, "Too much to calculate", `This took more ${what} than one request may have. Nothing was saved. Try a smaller table.`);
     const timer = setTimeout(() => end(() => reject(tooMuch("time")), false), deadline);
     worker.on("message", (reply: Reply) => end(() => resolve(reply), true));
     worker.on("error", (error: Error & { code?: string }) => end(() => reject(error.code === "ERR_WORKER_OUT_OF_MEMORY" ? tooMuch("memory") : error), false));

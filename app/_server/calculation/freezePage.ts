@@ -27,5 +27,8 @@ function readDocument(document: unknown): PageDocument {
   const read = pageSchema.safeParse(document);
   if (read.success) return read.data;
   const issue = read.error.issues[0];
-  throw new CellError("unreadable-page", `The page cannot be frozen: ${issue?.path.join(".") ?? "it"} is not as it must be (${issue?.message ?? "unknown"}). Repair that block first.`);
+  throw new CellError(
+    "unreadable-page",
+    `The page cannot be frozen: ${issue?.path.join(".") ?? "it"} is not as it must be (${issue?.message ?? "unknown"}). Repair that block first.`,
+  );
 }

@@ -13,7 +13,8 @@ export function valuesFromMemory(page: PageDocument, bodies: Readonly<Record<str
   for (const id of [...new Set(Object.values(bodies))].sort()) {
     for (const { species, value, unit, source, checked } of lookupBody(id)?.values ?? []) {
       const element = elementOf(species);
-      if (isFromMemory(checked) && (elements === "all" || (element !== undefined && elements.has(element)))) found.push({ body: id, species, value, unit, source });
+      if (isFromMemory(checked) && (elements === "all" || (element !== undefined && elements.has(element))))
+        found.push({ body: id, species, value, unit, source });
     }
   }
   return found;

@@ -3,7 +3,13 @@ import type { Problem } from "@/cells";
 /** What a worker thread is asked, and what it answers. Bytes are copied, never shared. */
 export type Task =
   | { readonly kind: "read"; readonly fileName: string; readonly bytes: Uint8Array }
-  | { readonly kind: "freeze"; readonly page: unknown; readonly sources: readonly TaskSource[]; readonly bodies: Uint8Array; readonly atomicWeights: Uint8Array };
+  | {
+      readonly kind: "freeze";
+      readonly page: unknown;
+      readonly sources: readonly TaskSource[];
+      readonly bodies: Uint8Array;
+      readonly atomicWeights: Uint8Array;
+    };
 
 export interface TaskSource {
   readonly sha256: string;

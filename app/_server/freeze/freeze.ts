@@ -79,7 +79,12 @@ export interface About {
 
 function about(frozen: FreezeAnswer): Record<string, unknown> {
   const count = (severity: string) => frozen.problems.filter((problem) => problem.severity === severity).length;
-  const said: About = { counts: frozen.counts, bodies: frozen.bodies, fromMemory: frozen.fromMemory, problems: { errors: count("error"), warnings: count("warning") } };
+  const said: About = {
+    counts: frozen.counts,
+    bodies: frozen.bodies,
+    fromMemory: frozen.fromMemory,
+    problems: { errors: count("error"), warnings: count("warning") },
+  };
   return { ...said };
 }
 
@@ -116,7 +121,12 @@ async function sourcesUsed(groupId: string, blocks: ReturnType<typeof toPageDocu
   const found: TaskSource[] = [];
   for (const [sha256, file] of used) {
     const source = await sourceBytes(database(), groupId, sha256);
-    if (!source) throw new Refusal(422, "A source is missing", `The bytes of ${file} are not among the sources of this group. Upload the file again, then freeze the page.`);
+    if (!source)
+      throw new Refusal(
+        422,
+        "A source is missing",
+        `The bytes of ${file} are not among the sources of this group. Upload the file again, then freeze the page.`,
+      );
     found.push({ sha256, name: file, bytes: source.bytes });
   }
   return found;

@@ -73,7 +73,8 @@ async function Open({ invitation, token }: { readonly invitation: FoundInvitatio
     return (
       <Sheet title={`Join ${invitation.group}`} says={says}>
         <p>
-          There is an account with this e-mail. <Link href={`${signInPath(`/invite/${token}`)}&email=${encodeURIComponent(invitation.email)}`}>Sign in</Link> and come back here.
+          There is an account with this e-mail. <Link href={`${signInPath(`/invite/${token}`)}&email=${encodeURIComponent(invitation.email)}`}>Sign in</Link>{" "}
+          and come back here.
         </p>
       </Sheet>
     );
@@ -82,7 +83,16 @@ async function Open({ invitation, token }: { readonly invitation: FoundInvitatio
       <ActionForm action={signUpInvited} submit="Make an account and join">
         <input type="hidden" name="token" value={token} />
         <FormField name="name" label="Your name" hint="As it should stand beside your edits." autoComplete="name" required maxLength={120} />
-        <FormField name="password" label="Password" hint="At least 10 characters." type="password" autoComplete="new-password" required minLength={10} maxLength={200} />
+        <FormField
+          name="password"
+          label="Password"
+          hint="At least 10 characters."
+          type="password"
+          autoComplete="new-password"
+          required
+          minLength={10}
+          maxLength={200}
+        />
       </ActionForm>
       <p className="mt-8 border-t border-hairline pt-3 text-second">
         Do you have an account under another e-mail? <Link href={signInPath(`/invite/${token}`)}>Sign in</Link> with it and come back here.

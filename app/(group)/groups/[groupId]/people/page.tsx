@@ -25,7 +25,11 @@ export default async function PeoplePage({ params }: { readonly params: Promise<
   const { groupId } = await params;
   const { subject, object, userId } = await allowOnScreen("group", groupId, "see", `/groups/${groupId}/people`);
   const leads = may(subject, "change role", object);
-  const [group, members, invitations] = await Promise.all([findGroup(database(), groupId), membersOf(database(), groupId), leads ? openInvitations(database(), groupId) : []]);
+  const [group, members, invitations] = await Promise.all([
+    findGroup(database(), groupId),
+    membersOf(database(), groupId),
+    leads ? openInvitations(database(), groupId) : [],
+  ]);
   return (
     <>
       <SiteHeader home={`/groups/${groupId}`} title={group?.name}>
@@ -36,8 +40,8 @@ export default async function PeoplePage({ params }: { readonly params: Promise<
         <div>
           <h1 className="font-serif text-title-phone font-medium">People of {group?.name}</h1>
           <p className="mt-3 text-second">
-            A lead edits, freezes snapshots, hands out reading links and looks after the people. An analyst edits every page. A reader reads every page and edits nothing. A change
-            here holds at once, also on pages that are open now.
+            A lead edits, freezes snapshots, hands out reading links and looks after the people. An analyst edits every page. A reader reads every page and
+            edits nothing. A change here holds at once, also on pages that are open now.
           </p>
         </div>
         <Section id="people" title="In the group" beside={`${members.length} ${members.length === 1 ? "person" : "people"}`}>
@@ -59,7 +63,10 @@ export default async function PeoplePage({ params }: { readonly params: Promise<
                 {invitations.map((invitation) => (
                   <li key={invitation.id} className="flex flex-wrap items-baseline justify-between gap-x-4 border-b border-hairline py-1.5">
                     <span>
-                      {invitation.email} <span className="text-second">as {invitation.role}, not accepted yet, until <When iso={invitation.expiresAt.toISOString()} as="day" /></span>
+                      {invitation.email}{" "}
+                      <span className="text-second">
+                        as {invitation.role}, not accepted yet, until <When iso={invitation.expiresAt.toISOString()} as="day" />
+                      </span>
                     </span>
                     <ActionForm action={withdrawInvitation} submit="Withdraw" look="danger" label={`Withdraw the invitation of ${invitation.email}`}>
                       <input type="hidden" name="groupId" value={groupId} />
@@ -85,7 +92,13 @@ export default async function PeoplePage({ params }: { readonly params: Promise<
 }
 
 function Person({ member, groupId, leads, me }: { readonly member: Member; readonly groupId: string; readonly leads: boolean; readonly me: boolean }) {
-  const seen = member.lastSeenAt ? <>last here <When iso={member.lastSeenAt.toISOString()} /></> : "not here yet";
+  const seen = member.lastSeenAt ? (
+    <>
+      last here <When iso={member.lastSeenAt.toISOString()} />
+    </>
+  ) : (
+    "not here yet"
+  );
   return (
     <li className="flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1 border-b border-hairline py-2">
       <div>

@@ -27,7 +27,8 @@ export const POST = route<{ pageId: string }>(async (request, { pageId }) => {
   const { object, userId } = await allow("page", pageId, "share");
   if (userId === null) throw new Refusal(403, "Not yours to do", "A guest cannot hand out reading links.");
   const { snapshotId, days, label = "" } = await readJson(request, body);
-  if (snapshotId && (await findSnapshot(database(), snapshotId))?.pageId !== pageId) throw new Refusal(404, "No such snapshot", "This page has no such snapshot.");
+  if (snapshotId && (await findSnapshot(database(), snapshotId))?.pageId !== pageId)
+    throw new Refusal(404, "No such snapshot", "This page has no such snapshot.");
   const target = snapshotId ? ({ kind: "snapshot", snapshotId } as const) : ({ kind: "page", pageId } as const);
   const { id, token, expiresAt } = await addLink(database(), { groupId: object.groupId, target, days, label, by: userId });
   return json({ id, url: address(`/read/${token}`), expiresAt }, 201);

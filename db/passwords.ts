@@ -1,4 +1,3 @@
-import "server-only";
 import { hash, verify } from "@node-rs/argon2";
 
 // Argon2id, 19 MiB, 2 passes, 1 lane: the OWASP password storage cheat sheet's first choice. Argon2id is the package's default.

@@ -71,7 +71,7 @@ export function may<K extends ObjectKind>(subject: Subject, action: Action<NoInf
   const about: Objects[ObjectKind] = object;
   if (subject.role === "nobody") return false;
   const allowed: Partial<Record<string, readonly Role[]>> = rules[about.kind];
-  if (!allowed[action]?.includes(subject.role)) return false;
+  if (!Object.hasOwn(allowed, action) || !allowed[action]?.includes(subject.role)) return false;
   if (about.kind === "page" && about.archived && refusedOnArchived.has(action)) return false;
   if (subject.role === "guest") return subject.opens.kind === about.kind && subject.opens.id === about.id;
   return subject.groupId === (about.kind === "group" ? about.id : about.groupId);

@@ -28,15 +28,17 @@ export interface FormChoiceProps {
   readonly options: readonly { readonly value: string; readonly label: string }[];
   readonly defaultValue?: string;
   readonly className?: string;
+  /** The label is read out and not shown, where what stands beside the control says the same. */
+  readonly bare?: boolean;
 }
 
 /** A choice out of a list, in an {@link ActionForm}. */
-export function FormChoice({ name, label, options, defaultValue, className }: FormChoiceProps) {
+export function FormChoice({ name, label, options, defaultValue, className, bare }: FormChoiceProps) {
   const sent = use(SentValues)[name];
   return (
-    <Field label={label} className={className}>
+    <Field label={bare ? <span className="sr-only">{label}</span> : label} className={className}>
       {({ "aria-invalid": _, ...ids }) => (
-        <select name={name} {...ids} key={sent} defaultValue={sent ?? defaultValue} className={classNames(controlLook, "appearance-none")}>
+        <select name={name} {...ids} key={sent ?? defaultValue} defaultValue={sent ?? defaultValue} className={classNames(controlLook, "appearance-none")}>
           {options.map((option) => (
             <option key={option.value} value={option.value} className="bg-surface text-ink">
               {option.label}

@@ -41,7 +41,7 @@ export default async function MailboxPage() {
 function withLinks(text: string) {
   return text.split(/(https?:\/\/\S+)/).map((part, n) =>
     n % 2 === 1 ? (
-      <a key={n} href={part} className="break-all">
+      <a key={n} href={part} className="break-all underline">
         {part}
       </a>
     ) : (

@@ -84,11 +84,11 @@ export async function snapshotsOf(db: Database, groupId: string) {
       hash: snapshots.hash,
       frozenAt: snapshots.frozenAt,
       note: snapshots.note,
-      openLinks: sql<number>`(select count(*)::int from reading_links l where l.snapshot_id = ${snapshots.id} and l.withdrawn_at is null and l.expires_at > now())`,
+      openLinks: sql<number>`(select count(*)::int from reading_links l where l.snapshot_id = "snapshots"."id" and l.withdrawn_at is null and l.expires_at > now())`,
       lastLinkEnds: sql<
         string | null
-      >`(select max(l.expires_at)::text from reading_links l where l.snapshot_id = ${snapshots.id} and l.withdrawn_at is null and l.expires_at > now())`,
-      endedLinks: sql<number>`(select count(*)::int from reading_links l where l.snapshot_id = ${snapshots.id} and (l.withdrawn_at is not null or l.expires_at <= now()))`,
+      >`(select max(l.expires_at)::text from reading_links l where l.snapshot_id = "snapshots"."id" and l.withdrawn_at is null and l.expires_at > now())`,
+      endedLinks: sql<number>`(select count(*)::int from reading_links l where l.snapshot_id = "snapshots"."id" and (l.withdrawn_at is not null or l.expires_at <= now()))`,
     })
     .from(snapshots)
     .where(eq(snapshots.groupId, groupId))

@@ -40,7 +40,11 @@ export default async function SignInPage({ searchParams }: Props) {
         ) : null}
         <SignInForm to={to} email={typeof email === "string" ? email.slice(0, 254) : ""} orcid={hasOrcid()} />
         <p className="mt-8 border-t border-hairline pt-3 text-second">
-          New here? <Link href="/sign-up">Sign up</Link> and make a group, or open the invitation you got by mail.
+          New here?{" "}
+          <Link className="underline" href="/sign-up">
+            Sign up
+          </Link>{" "}
+          and make a group, or open the invitation you got by mail.
         </p>
       </Sheet>
     </>

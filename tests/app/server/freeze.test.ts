@@ -26,7 +26,13 @@ const document = (title = "Frozen"): PageDocument => ({
       id: "t",
       kind: "data",
       source: { file: "table.csv", sha256: sha(csv) },
-      columns: [{ header: "Sample", role: "sample" }, quantity("SiO2 (wt%)", "SiO2"), sigma("1s SiO2", "SiO2"), quantity("MgO (wt%)", "MgO"), sigma("1s MgO", "MgO")],
+      columns: [
+        { header: "Sample", role: "sample" },
+        quantity("SiO2 (wt%)", "SiO2"),
+        sigma("1s SiO2", "SiO2"),
+        quantity("MgO (wt%)", "MgO"),
+        sigma("1s MgO", "MgO"),
+      ],
     },
     { id: "f", kind: "formula", data: "t", text: "mg_si = Mg / Si" },
   ],
@@ -37,7 +43,11 @@ let group: Awaited<ReturnType<typeof someGroup>>;
 beforeAll(async () => {
   db = await useDatabase();
   group = await someGroup(db.db);
-  await addSource(db.db, { groupId: group.groupId, sha256: sha(csv), name: "table.csv", mediaType: "text/csv", bytes: new TextEncoder().encode(csv), rows: 3, by: null }, 1e9);
+  await addSource(
+    db.db,
+    { groupId: group.groupId, sha256: sha(csv), name: "table.csv", mediaType: "text/csv", bytes: new TextEncoder().encode(csv), rows: 3, by: null },
+    1e9,
+  );
 });
 beforeEach(() => signInAs(db, group.lead));
 afterAll(() => db.drop());
@@ -60,7 +70,10 @@ async function freeze(of: { pageId: string; stateVector: string }, more: object 
 }
 const zipOf = async (snapshotId: string) => new Uint8Array(await (await getZip(request("GET"), params({ snapshotId }))).arrayBuffer());
 const text = (bytes: Uint8Array | undefined) => new TextDecoder().decode(bytes);
-const digest = (bytes: Uint8Array | undefined) => createHash("sha256").update(bytes ?? "").digest("hex");
+const digest = (bytes: Uint8Array | undefined) =>
+  createHash("sha256")
+    .update(bytes ?? "")
+    .digest("hex");
 
 describe("freezing a page", () => {
   it("gives the same hash for the same content, on another page, at another time, under another number", async () => {
@@ -113,7 +126,8 @@ describe("freezing a page", () => {
   it("names the hash before, outside the hash", async () => {
     const of = await page(document());
     const [first, second] = [await freeze(of), await freeze(of)];
-    const about = async (id: string) => (await getFile(request("GET"), params({ snapshotId: id, path: ["snapshot.json"] }))).json() as Promise<Record<string, unknown>>;
+    const about = async (id: string) =>
+      (await getFile(request("GET"), params({ snapshotId: id, path: ["snapshot.json"] }))).json() as Promise<Record<string, unknown>>;
     expect(await about(first.snapshotId)).toMatchObject({ number: 1, previousHash: null, hash: first.hash, frozenBy: group.lead });
     expect(await about(second.snapshotId)).toMatchObject({ number: 2, previousHash: first.hash });
     expect((await getFile(request("GET"), params({ snapshotId: first.snapshotId, path: ["no", "such.file"] }))).status).toBe(404);
@@ -125,7 +139,11 @@ describe("freezing is refused", () => {
 
   it("to everybody but a lead", async () => {
     const of = await page(document());
-    for (const [who, status] of [[group.analyst, 403], [group.reader, 403], [null, 401]] as const) {
+    for (const [who, status] of [
+      [group.analyst, 403],
+      [group.reader, 403],
+      [null, 401],
+    ] as const) {
       await signInAs(db, who);
       expect((await freeze(of)).status).toBe(status);
     }
@@ -136,7 +154,10 @@ describe("freezing is refused", () => {
     const ahead = new Y.Doc();
     ahead.getMap("blocks").set("x", 1);
     const before = await snapshots();
-    expect(await freeze({ ...of, stateVector: Buffer.from(Y.encodeStateVector(ahead)).toString("base64") })).toMatchObject({ status: 409, detail: expect.stringMatching(/Saved/) });
+    expect(await freeze({ ...of, stateVector: Buffer.from(Y.encodeStateVector(ahead)).toString("base64") })).toMatchObject({
+      status: 409,
+      detail: expect.stringMatching(/Saved/),
+    });
     expect(await snapshots()).toBe(before);
   });
 
@@ -157,7 +178,11 @@ describe("freezing is refused", () => {
 
   it("of a page with nothing on it, with a source that is not there, and with a request that is no request", async () => {
     expect((await freeze(await page({ format: "cotectic-page/1", title: "Empty", blocks: [] }))).detail).toMatch(/no blocks/);
-    const missing = await page({ format: "cotectic-page/1", title: "Missing", blocks: [{ id: "t", kind: "data", source: { file: "gone.csv", sha256: sha("gone") } }] });
+    const missing = await page({
+      format: "cotectic-page/1",
+      title: "Missing",
+      blocks: [{ id: "t", kind: "data", source: { file: "gone.csv", sha256: sha("gone") } }],
+    });
     expect(await freeze(missing)).toMatchObject({ status: 422, detail: expect.stringMatching(/gone\.csv/) });
     const of = await page(document());
     expect((await freeze({ ...of, stateVector: "!!" })).status).toBe(400);

@@ -20,7 +20,13 @@ let snapshotId: string;
 beforeAll(async () => {
   db = await useDatabase();
   group = await someGroup(db.db);
-  pageId = await addPage(db.db, { groupId: group.groupId, title: "Live", outline: [], by: group.lead, update: encodeNewPage({ format: "cotectic-page/1", title: "Live", blocks: [] }) });
+  pageId = await addPage(db.db, {
+    groupId: group.groupId,
+    title: "Live",
+    outline: [],
+    by: group.lead,
+    update: encodeNewPage({ format: "cotectic-page/1", title: "Live", blocks: [] }),
+  });
   snapshotId = (await someSnapshot(db.db, { ...group, pageId })).id;
 });
 beforeEach(() => signInAs(db, group.lead));

@@ -56,8 +56,8 @@ export default async function GroupPage({ params }: Props) {
             from.
           </p>
         ) : null}
-        <div className="mt-10 grid grid-cols-[minmax(0,1fr)_280px] gap-x-8 gap-y-10 narrow:grid-cols-1">
-          <div className="grid content-start gap-10">
+        <div className="mt-10 grid grid-cols-[minmax(0,1fr)_280px] gap-x-8 gap-y-10 narrow:grid-cols-[minmax(0,1fr)]">
+          <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-10">
             <Section
               id="pages"
               title="Pages"

@@ -73,7 +73,10 @@ async function Open({ invitation, token }: { readonly invitation: FoundInvitatio
     return (
       <Sheet title={`Join ${invitation.group}`} says={says}>
         <p>
-          There is an account with this e-mail. <Link href={`${signInPath(`/invite/${token}`)}&email=${encodeURIComponent(invitation.email)}`}>Sign in</Link>{" "}
+          There is an account with this e-mail.{" "}
+          <Link className="underline" href={`${signInPath(`/invite/${token}`)}&email=${encodeURIComponent(invitation.email)}`}>
+            Sign in
+          </Link>{" "}
           and come back here.
         </p>
       </Sheet>
@@ -95,7 +98,11 @@ async function Open({ invitation, token }: { readonly invitation: FoundInvitatio
         />
       </ActionForm>
       <p className="mt-8 border-t border-hairline pt-3 text-second">
-        Do you have an account under another e-mail? <Link href={signInPath(`/invite/${token}`)}>Sign in</Link> with it and come back here.
+        Do you have an account under another e-mail?{" "}
+        <Link className="underline" href={signInPath(`/invite/${token}`)}>
+          Sign in
+        </Link>{" "}
+        with it and come back here.
       </p>
     </Sheet>
   );

@@ -28,7 +28,7 @@ export function CorrelationPanel({ pages, sources, edits }: CorrelationPanelProp
   const width = (columns.length - 1) * PITCH + COLUMN + 72;
   return (
     <>
-      <div className="overflow-x-auto pt-4" tabIndex={0} role="region" aria-label="Pages side by side">
+      <div className="-ml-1 overflow-x-auto pt-4 pl-1" tabIndex={0} role="region" aria-label="Pages side by side">
         <div className="relative" style={{ width, height: HEAD + height + FOOT }}>
           <svg className="absolute left-0 overflow-visible" style={{ top: HEAD }} width={width} height={height + 1} aria-hidden="true">
             <RailPatterns />

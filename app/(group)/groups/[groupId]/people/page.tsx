@@ -110,10 +110,10 @@ function Person({ member, groupId, leads, me }: { readonly member: Member; reado
       </div>
       {leads ? (
         <div className="flex flex-wrap items-end gap-x-6 gap-y-1">
-          <ActionForm action={changeRole} submit="Change" look="act" inline label={`Role of ${member.name}`} key={member.role}>
+          <ActionForm action={changeRole} submit="Change" look="act" inline label={`Role of ${member.name}`}>
             <input type="hidden" name="groupId" value={groupId} />
             <input type="hidden" name="userId" value={member.userId} />
-            <FormChoice name="role" label={`Role of ${member.name}`} options={roles} defaultValue={member.role} className="w-32" />
+            <FormChoice name="role" label={`Role of ${member.name}`} options={roles} defaultValue={member.role} className="w-24" bare />
           </ActionForm>
           <ActionForm action={removePerson} submit={me ? "Leave" : "Remove"} look="danger" label={`Remove ${member.name}`}>
             <input type="hidden" name="groupId" value={groupId} />

@@ -38,12 +38,22 @@ export async function allow<K extends ObjectKind>(kind: K, id: string, action: A
       `There is no ${kind} at this address that you may see. Ask the person who sent you here whether you are in their group.`,
     );
   }
-  if (!may(subject, action, standing.object)) throw new Refusal(403, "Not yours to do", forbidden(kind, action, subject.role, standing.object));
+  if (!may(subject, action, standing.object))
+    throw new Refusal(
+      403,
+      "Not yours to do",
+      forbidden(kind, action, subject.role, standing.object.kind === "page" && may<K>(subject, action, unarchived(standing.object))),
+    );
   return { subject, object: standing.object, userId: subject.role === "guest" ? null : subject.userId };
 }
 
-function forbidden(kind: ObjectKind, action: string, role: string, object: Objects[ObjectKind]): string {
-  if (object.kind === "page" && object.archived) return "This page is archived. Take it out of the archive first.";
+function forbidden(kind: ObjectKind, action: string, role: string, archivedAlone: boolean): string {
+  if (archivedAlone) return "This page is archived. Take it out of the archive first.";
   const by = role === "guest" ? "A reading link lets you read" : `Your role in this group is ${role}`;
-  return `${by}; to ${action.replaceAll("-", " ")} on this ${kind} asks for more. A lead of the group can change that.`;
+  return `${by}; to ${action} on this ${kind} asks for more. A lead of the group can change that.`;
+}
+
+/** The same object, were it not archived. */
+function unarchived<O extends Objects[ObjectKind]>(object: O): O {
+  return "archived" in object ? { ...object, archived: false } : object;
 }

@@ -3,6 +3,7 @@
 import { use, type InputHTMLAttributes, type ReactNode } from "react";
 import { Field } from "@/app/_ui/Field";
 import { classNames } from "@/app/_ui/classNames";
+import { IconDown } from "@/app/_ui/icons";
 import { controlLook } from "@/app/_ui/TextField";
 import { SentValues } from "./formContext";
 
@@ -38,13 +39,22 @@ export function FormChoice({ name, label, options, defaultValue, className, bare
   return (
     <Field label={bare ? <span className="sr-only">{label}</span> : label} className={className}>
       {({ "aria-invalid": _, ...ids }) => (
-        <select name={name} {...ids} key={sent ?? defaultValue} defaultValue={sent ?? defaultValue} className={classNames(controlLook, "appearance-none")}>
-          {options.map((option) => (
-            <option key={option.value} value={option.value} className="bg-surface text-ink">
-              {option.label}
-            </option>
-          ))}
-        </select>
+        <span className="relative block">
+          <select
+            name={name}
+            {...ids}
+            key={sent ?? defaultValue}
+            defaultValue={sent ?? defaultValue}
+            className={classNames(controlLook, "appearance-none pr-5")}
+          >
+            {options.map((option) => (
+              <option key={option.value} value={option.value} className="bg-surface text-ink">
+                {option.label}
+              </option>
+            ))}
+          </select>
+          <IconDown size={12} className="pointer-events-none absolute top-1/2 right-0 -translate-y-1/2 text-second" />
+        </span>
       )}
     </Field>
   );

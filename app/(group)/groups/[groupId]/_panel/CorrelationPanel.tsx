@@ -67,7 +67,7 @@ function PageColumn({ page, x, height, edits }: { readonly page: PageOfGroup; re
         <Link href={`/pages/${page.id}`} className="line-clamp-2 font-serif text-[18px] leading-[22px] font-medium text-ink no-underline hover:underline">
           {page.title || "Untitled page"}
         </Link>
-        <span className="mt-1 flex items-baseline gap-2 text-margin text-second">
+        <span className="mt-1 flex items-center gap-2 text-margin text-second">
           <span className="truncate">
             <When iso={page.changedAt.toISOString()} />
             {page.changedBy ? `, ${page.changedBy}` : ""}

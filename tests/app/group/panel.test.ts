@@ -6,7 +6,12 @@ const page = (id: string, ...outline: ReturnType<typeof block>[]) => ({ id, outl
 
 describe("the correlation panel", () => {
   it("puts pages that share sources beside each other", () => {
-    const pages = [page("a", block("1", "data", "x")), page("b", block("2", "data", "y")), page("c", block("3", "data", "x")), page("d", block("4", "data", "y"), block("5", "data", "x"))];
+    const pages = [
+      page("a", block("1", "data", "x")),
+      page("b", block("2", "data", "y")),
+      page("c", block("3", "data", "x")),
+      page("d", block("4", "data", "y"), block("5", "data", "x")),
+    ];
     expect(orderBySources(pages).map((p) => p.id)).toEqual(["a", "c", "d", "b"]);
     expect(orderBySources([])).toEqual([]);
   });
@@ -27,8 +32,19 @@ describe("the correlation panel", () => {
       { sha256: "x2", name: "finds.csv" },
       { sha256: "y", name: "else.csv" },
     ];
-    const { bands } = layOut([page("a", block("1", "data", "x")), page("b", block("2", "note"), block("3", "data", "x")), page("c", block("4", "data", "x2")), page("d", block("5", "data", "y"))], sources);
-    expect(bands.map((b) => [b.label, b.older])).toEqual([["finds", false], ["finds, another version", true]]);
+    const { bands } = layOut(
+      [
+        page("a", block("1", "data", "x")),
+        page("b", block("2", "note"), block("3", "data", "x")),
+        page("c", block("4", "data", "x2")),
+        page("d", block("5", "data", "y")),
+      ],
+      sources,
+    );
+    expect(bands.map((b) => [b.label, b.older])).toEqual([
+      ["finds", false],
+      ["finds, another version", true],
+    ]);
     expect(bands[0]?.left).toEqual({ x: COLUMN, top: 0, bottom: 80 });
     expect(bands[0]?.right).toEqual({ x: PITCH, top: 28, bottom: 108 });
   });

@@ -1,5 +1,5 @@
 import "server-only";
-import { z } from "zod";
+import type { z } from "zod";
 import { assertOwnOrigin } from "./origin";
 import { problemResponse, Refusal, unforeseen } from "./problem";
 

@@ -1,5 +1,6 @@
 "use client";
 
+import { useRouter } from "next/navigation";
 import { startTransition, useActionState } from "react";
 import { archivePage, duplicatePage } from "@/app/_server/actions/pages";
 import { IconButton } from "@/app/_ui/IconButton";
@@ -14,6 +15,7 @@ export interface PageMenuProps {
 
 /** What can be done with a page from outside it. Its title is edited on the page, where everybody sees it change. */
 export function PageMenu({ pageId, title, archived }: PageMenuProps) {
+  const router = useRouter();
   const [copied, copy] = useActionState(duplicatePage, {});
   const [put, archive] = useActionState(archivePage, {});
   const form = (fields: Record<string, string>) => {
@@ -26,7 +28,7 @@ export function PageMenu({ pageId, title, archived }: PageMenuProps) {
     <>
       <Menu
         items={[
-          { label: "Rename", onChoose: () => window.location.assign(`/pages/${pageId}?rename=yes`), disabled: archived },
+          { label: "Rename", onChoose: () => router.push(`/pages/${pageId}`), disabled: archived },
           { label: "Duplicate", onChoose: () => startTransition(() => copy(form({}))) },
           { line: true },
           {

@@ -1,12 +1,11 @@
-import NextAuth from "next-auth";
 import { afterAll, beforeAll, describe, expect, it, vi } from "vitest";
-import { authOptions } from "@/app/_server/auth/options";
 import { hashingAdapter } from "@/app/_server/auth/adapter";
 import { checkPassword, hashPassword } from "@/db/passwords";
 import { createSession, endAllSessions, endSession, userBySession } from "@/db/queries/sessions";
 import { addUser } from "@/db/queries/users";
 import { hashToken } from "@/db/tokens";
 import type { TestDatabase } from "../../support/database";
+import { ask } from "./nextAuth";
 import { useDatabase } from "./world";
 
 let db: TestDatabase;
@@ -21,33 +20,6 @@ async function account(password = "a good password") {
   const email = `account-${++count}@example.org`;
   const user = await addUser(db.db, { name: "Account", email, passwordHash: await hashPassword(password) });
   return { id: user?.id ?? "", email, password };
-}
-
-interface Answer {
-  status: number;
-  body: unknown;
-  cookies: Map<string, string>;
-}
-
-/** Asks next-auth, as its handler is asked by Next. */
-async function ask(path: string[], method: string, body: Record<string, string>, cookies: Map<string, string>, place: string): Promise<Answer> {
-  const answer: Answer = { status: 200, body: undefined, cookies: new Map() };
-  const headers = new Map<string, string[]>();
-  const response = {
-    status: (status: number) => ((answer.status = status), response),
-    getHeader: (name: string) => headers.get(name),
-    setHeader: (name: string, value: string | string[]) => (headers.set(name, [value].flat()), response),
-    json: (json: unknown) => void (answer.body = json),
-    send: (sent: unknown) => void (answer.body = sent),
-    end: () => undefined,
-  };
-  const asked = { query: { nextauth: path }, method, body, cookies: Object.fromEntries(cookies), headers: { "x-forwarded-for": place } };
-  await (NextAuth as (request: unknown, response: unknown, options: unknown) => Promise<unknown>)(asked, response, authOptions());
-  for (const cookie of headers.get("Set-Cookie") ?? []) {
-    const [, name = "", value = ""] = /^([^=]+)=([^;]*)/.exec(cookie) ?? [];
-    answer.cookies.set(name, decodeURIComponent(value));
-  }
-  return answer;
 }
 
 /** Signs in through next-auth itself, as the form does. */

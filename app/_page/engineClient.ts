@@ -1,6 +1,6 @@
-import type { BlockResult, Column, ImportProposal, PageResults, TraceNode, TraceRequest } from "@/cells";
+import type { BlockResult, Column, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock } from "@/realtime/document";
-import type { FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
+import type { FileProposal, FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
 import { unpackTable } from "./tablePacking";
 
 /** As much of a Worker as is used; tests give their own. */
@@ -28,7 +28,7 @@ export interface EngineClient {
   /** Hands over the page as it is now; only changed blocks travel. */
   update(page: PageInput): void;
   trace(request: TraceRequest): Promise<TraceNode | null>;
-  propose(bytes: Uint8Array, fileName: string): Promise<ImportProposal>;
+  propose(bytes: Uint8Array, fileName: string): Promise<FileProposal>;
   preview(bytes: Uint8Array, fileName: string, columns: readonly Column[]): Promise<Preview>;
   giveSource(sha256: string, bytes: Uint8Array): void;
   stop(): void;

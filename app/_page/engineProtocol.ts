@@ -1,4 +1,4 @@
-import type { Block, BlockResult, Column, DataResult, ImportProposal, Problem, TraceNode, TraceRequest } from "@/cells";
+import type { Block, BlockResult, Column, DataResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
 import type { PackedTable } from "./tablePacking";
 
 /**
@@ -46,6 +46,19 @@ export interface ResultsMessage {
   readonly took: number;
 }
 
+/** What import proposes for a file, without its rows: those stay with the worker. */
+export interface FileProposal {
+  readonly fileName: string;
+  readonly headers: readonly string[];
+  readonly rows: number;
+  readonly columns: readonly ProposedColumn[];
+  /** The first values of each column, as the file writes them. */
+  readonly samples: readonly (readonly string[])[];
+  /** The first of what could not be read, and how much there is of it in all. */
+  readonly problems: readonly Problem[];
+  readonly problemCount: number;
+}
+
 /** What the preview of an import shows. */
 export interface Preview {
   readonly rows: number;
@@ -59,7 +72,7 @@ export interface Preview {
 export type FromWorker =
   | ResultsMessage
   | { readonly type: "trace"; readonly id: number; readonly node: TraceNode | null }
-  | { readonly type: "proposal"; readonly id: number; readonly proposal: ImportProposal }
+  | { readonly type: "proposal"; readonly id: number; readonly proposal: FileProposal }
   | { readonly type: "preview"; readonly id: number; readonly preview: Preview }
   | { readonly type: "failed"; readonly id: number; readonly text: string }
   /** The engine itself broke: a fault of ours, said as such. */

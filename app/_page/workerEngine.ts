@@ -1,5 +1,5 @@
 import { CellError, PAGE_FORMAT, type Block, type BlockResult, type Engine, type PageDocument, type PageResults, type Table } from "@/cells";
-import type { FromWorker, PageMessage, Preview, ToWorker, TravellingResult } from "./engineProtocol";
+import type { FileProposal, FromWorker, PageMessage, Preview, ToWorker, TravellingResult } from "./engineProtocol";
 import { packTable } from "./tablePacking";
 import { copyForTransfer } from "./transfer";
 
@@ -13,8 +13,12 @@ export interface WorkerEngineParts {
 
 /** Rows an import shows before it is saved. */
 export const PREVIEW_ROWS = 50;
-/** A file is previewed by its first rows only; beyond this many it is the whole that would hold people up. */
+/** Handle of the one block of a preview's page. */
 const PREVIEW_HANDLE = "preview";
+/** So many values show what a column holds. */
+const SAMPLE_VALUES = 4;
+/** More problems than this are counted only. */
+const MOST_PROBLEMS = 500;
 
 function travelling(result: BlockResult): TravellingResult {
   if (result.kind !== "data") return result;
@@ -169,7 +173,20 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
     const result = own.evaluate({ format: PAGE_FORMAT, title: "", blocks: [block] }).blocks.get(PREVIEW_HANDLE);
     if (result?.kind !== "data") throw new CellError("no-preview", "This file gives no table.");
     const table = result.table === undefined ? null : packTable(firstRows(result.table, PREVIEW_ROWS));
-    return { rows: result.table?.rows ?? 0, problems: result.problems, summaries: result.columns, screening: result.screening, table };
+    return { rows: result.table?.rows ?? 0, problems: result.problems.slice(0, MOST_PROBLEMS), summaries: result.columns, screening: result.screening, table };
+  };
+
+  const propose = (bytes: Uint8Array, fileName: string): FileProposal => {
+    const { headers, rows, columns, problems } = engine.propose(bytes, fileName);
+    return {
+      fileName,
+      headers,
+      rows: rows.length,
+      columns,
+      samples: headers.map((_, c) => rows.slice(0, SAMPLE_VALUES).map((row) => row[c] ?? "")),
+      problems: problems.slice(0, MOST_PROBLEMS),
+      problemCount: problems.length,
+    };
   };
 
   const answer = (id: number, make: () => FromWorker) => {
@@ -203,7 +220,7 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
         answer(message.id, () => ({ type: "trace", id: message.id, node: engine.trace(message.request) }));
         return;
       case "propose":
-        answer(message.id, () => ({ type: "proposal", id: message.id, proposal: engine.propose(message.bytes, message.fileName) }));
+        answer(message.id, () => ({ type: "proposal", id: message.id, proposal: propose(message.bytes, message.fileName) }));
         return;
       case "preview":
         answer(message.id, () => ({ type: "preview", id: message.id, preview: preview(message) }));

@@ -15,6 +15,9 @@ export interface Footnote {
   readonly at?: string;
 }
 
+/** Where notes on a row's sum of oxides stand: the grid's own column at the right. */
+export const TOTAL_COLUMN = "total";
+
 /** a … z, aa, ab … */
 export function footnoteLetter(index: number): string {
   const last = String.fromCharCode(97 + (index % 26));
@@ -38,7 +41,7 @@ export function footnotesOf(block: DataBlock, result: DataResult | undefined): F
     else notes.push({ kind: "value set aside", row: s.row, sample, column: s.column, title: `${sample}, ${s.column} only`, reason: s.reason, ...said(s) });
   }
   for (const flag of result?.screening ?? [])
-    notes.push({ kind: "screening", row: flag.row, sample: flag.sample, ...(flag.column === undefined ? {} : { column: flag.column }), title: flag.sample, reason: flag.text });
+    notes.push({ kind: "screening", row: flag.row, sample: flag.sample, ...(flag.code === "total" ? { column: TOTAL_COLUMN } : flag.column === undefined ? {} : { column: flag.column }), title: flag.sample, reason: flag.text });
   return notes.map((note, i) => ({ ...note, letter: footnoteLetter(i) }));
 }
 

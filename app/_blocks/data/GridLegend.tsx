@@ -1,0 +1,40 @@
+"use client";
+
+import type { ReactNode } from "react";
+import type { Assumed, DataBlock, DataResult } from "@/cells";
+
+/** "5 %" or "0.02". */
+function assumedWords(assumed: Assumed): string {
+  return assumed.relative === undefined ? String(assumed.absolute ?? "") : `${Number((assumed.relative * 100).toPrecision(3))} %`;
+}
+
+const kinds = new Map([
+  ["2 sigma", "source gives 2σ, halved on reading"],
+  ["2 sigma relative %", "source gives 2σ in % of the value, halved on reading"],
+  ["1 sigma relative %", "source gives σ in % of the value"],
+  ["95 % interval", "source gives 95 % intervals, divided by 1.96 on reading"],
+]);
+
+/** Under a table: only those signs that occur in it, each in words, and what can be done to the table as a whole. */
+export function GridLegend({ block, result, children }: { readonly block: DataBlock; readonly result: DataResult | undefined; readonly children: ReactNode }) {
+  const columns = result?.columns ?? [];
+  const has = (count: (c: (typeof columns)[number]) => number) => columns.some((c) => count(c) > 0);
+  const said = new Set((block.columns ?? []).flatMap((c) => (c.role === "uncertainty" && c.as !== undefined ? [kinds.get(c.as) ?? ""] : [])));
+  const signs = [
+    has((c) => c.missing) && "– missing",
+    has((c) => c.belowDetection) && "< below detection, never 0",
+    (result?.valuesSetAside ?? 0) > 0 && "[ ] value set aside",
+    ...said,
+    ...(block.assumed ?? []).slice(0, 3).map((a) => `° ${a.column}: σ assumed ${assumedWords(a)}, ${a.reason}`),
+    block.substitute !== undefined && `below detection counted as ${block.substitute.fraction} of the limit: ${block.substitute.reason}`,
+    result?.proposed === true && "read as the program proposes; nobody has looked at the mapping yet",
+  ].filter((sign): sign is string => typeof sign === "string" && sign !== "");
+  return (
+    <div className="flex flex-wrap gap-x-6 pt-2 text-margin text-second">
+      {signs.map((sign) => (
+        <span key={sign}>{sign}</span>
+      ))}
+      <span className="chrome flex flex-wrap gap-x-5">{children}</span>
+    </div>
+  );
+}

@@ -1,0 +1,14 @@
+export { readCell } from "./cell";
+export type { ReadCell } from "./cell";
+export { settleDecimal } from "./decimal";
+export { decodeText } from "./decode";
+export type { Decoded } from "./decode";
+export { guessDelimiter, splitDelimited, writeDelimited } from "./delimited";
+export { readHeader } from "./header";
+export type { ReadHeader } from "./header";
+export { identifier, proposeMapping } from "./propose";
+export type { Proposal } from "./propose";
+export { quotas } from "./raw";
+export type { DecimalSign, RawTable } from "./raw";
+export { readTable, shapeTable } from "./read";
+export type { ColumnCorrelation, QuantityColumn, RowOrigin, Table, TableColumn, TextColumn } from "./table";

@@ -3,8 +3,9 @@
 import type { PageView } from "@/app/_page/contract";
 import { Select } from "@/app/_ui/Select";
 import { CommitField } from "@/app/_blocks/shared/CommitField";
+import { handleChoices, withCurrent } from "@/app/_blocks/shared/choices";
 import { readNumber } from "@/app/_blocks/shared/readNumber";
-import type { Block, BlockKind, Drawn, Ellipses } from "@/cells";
+import type { Drawn, Ellipses } from "@/cells";
 import { ellipseChoices } from "./ellipse";
 
 export interface DrawnEditorProps {
@@ -14,16 +15,6 @@ export interface DrawnEditorProps {
   /** Sentence for a field that cannot be understood, by the field's name. */
   problemOf(field: string): string | null;
   onChange(next: Drawn): void;
-}
-
-/** Handles of the page's blocks of a kind, as choices with their titles. */
-export function handleChoices(view: PageView, kind: BlockKind): { value: string; label: string }[] {
-  return view.blocks.filter((b) => b.block.kind === kind).map(({ block }: { block: Block }) => ({ value: block.id, label: block.name ? `${block.id}, ${block.name}` : block.id }));
-}
-
-/** A choice that is not among the choices (its block is gone) stays visible, so that nothing changes unasked. */
-function withCurrent(choices: readonly { value: string; label: string }[], current: string): { value: string; label: string }[] {
-  return choices.some((c) => c.value === current) ? [...choices] : [{ value: current, label: `${current}, not on this page` }, ...choices];
 }
 
 /** The fields of one line of a plot's list. */

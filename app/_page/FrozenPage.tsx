@@ -5,7 +5,7 @@ import { useCallback, useEffect, useMemo, useState } from "react";
 import { Mark } from "@/app/_ui/icons";
 import { counted } from "@/app/_ui/concise";
 import { LightMenu } from "./head/LightMenu";
-import { goToBlock, goToPlace } from "./goTo";
+import { goToPlace } from "./goTo";
 import { initialState } from "./initialState";
 import { startPageEngine } from "./pageEngine";
 import { PageProvider, usePage } from "./pageContext";
@@ -14,6 +14,7 @@ import { createPageStore, type PageActions } from "./pageStore";
 import type { FrozenPageProps } from "./props";
 import { SectionRail } from "./rail/SectionRail";
 import { frozenSourceUrl } from "./sourceUrls";
+import { stepFrom } from "./stepFrom";
 import { dayOf, groupedHash, shortHash, sizeInWords } from "./times";
 import { ShortcutsDialog } from "./dialogs/ShortcutsDialog";
 import { useShortcuts } from "./useShortcuts";
@@ -169,13 +170,4 @@ export function FrozenPage({ snapshot, groupName, groupId, role, document: page,
       {keys ? <ShortcutsDialog onClose={() => setKeys(false)} /> : null}
     </PageProvider>
   );
-}
-
-/** Goes to the next block or the one before, from the one that has the focus or is at the top of the screen. */
-export function stepFrom(keys: readonly string[], by: 1 | -1): void {
-  const frames = keys.map((key) => document.querySelector(`[data-block-key="${CSS.escape(key)}"]`));
-  const focused = frames.findIndex((frame) => frame?.contains(document.activeElement) === true);
-  const at = focused >= 0 ? focused : frames.findIndex((frame) => (frame?.getBoundingClientRect().bottom ?? -1) > 64) - (by === 1 ? 1 : 0);
-  const next = keys[Math.max(0, Math.min(keys.length - 1, at + by))];
-  if (next !== undefined) goToBlock(next);
 }

@@ -8,6 +8,7 @@ import { addSnapshot } from "@/db/queries/snapshots";
 import { sourceBytes } from "@/db/queries/sources";
 import type { FreezeAnswer, TaskSource } from "../calculation/tasks";
 import { calculate } from "../calculation/calculate";
+import { oneAtATime } from "../calculation/oneAtATime";
 import { database } from "../database";
 import { loadDocument } from "../documents";
 import { Refusal } from "../problem";
@@ -52,7 +53,7 @@ export async function freeze(request: FreezeRequest): Promise<Frozen> {
   const sources = await sourcesUsed(request.groupId, page.blocks);
   const [bodies, atomicWeights] = await Promise.all(["bodies.csv", "atomic-weights.csv"].map(referenceTable));
   if (!bodies || !atomicWeights) throw new Error("a reference table is missing");
-  const frozen = await calculate<"freeze">({ kind: "freeze", page, sources, bodies, atomicWeights }, DEADLINE);
+  const frozen = await oneAtATime(request.groupId, () => calculate<"freeze">({ kind: "freeze", page, sources, bodies, atomicWeights }, DEADLINE));
   if (frozen.fromMemory.length > 0 && !request.acceptFromMemory) throw memoryRefusal(frozen);
   const { id, number } = await addSnapshot(database(), {
     pageId: request.pageId,

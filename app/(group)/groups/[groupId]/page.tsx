@@ -45,6 +45,7 @@ export default async function GroupPage({ params }: Props) {
     <>
       <SiteHeader>
         <Link href={`/groups/${groupId}/people`}>People</Link>
+        <Link href="/start">Groups</Link>
         <Link href="/account">Account</Link>
       </SiteHeader>
       <main className="px-12 pt-10 pb-16 narrow:px-4 narrow:pt-6">

@@ -1,4 +1,5 @@
 import { NextResponse, type NextRequest } from "next/server";
+import { realtimeAddress } from "@/app/_server/realtimeAddress";
 
 /**
  * Headers for every page: the content security policy with a nonce of this request. Nothing is authorised here; every page,
@@ -24,7 +25,7 @@ export const config = { matcher: ["/((?!_next/static|_next/image|mark.svg).*)"] 
 
 function contentSecurityPolicy(nonce: string, request: NextRequest): string {
   const development = process.env.NODE_ENV === "development";
-  const realtime = process.env.REALTIME_PUBLIC_URL ?? `${request.nextUrl.protocol === "https:" ? "wss" : "ws"}://${request.nextUrl.hostname}:${process.env.REALTIME_PORT ?? "3001"}`;
+  const realtime = realtimeAddress(request.headers.get("host"));
   const issuers = (process.env.SIGN_IN_ISSUERS ?? "").split(",").filter(Boolean).join(" ");
   return [
     "default-src 'self'",

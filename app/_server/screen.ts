@@ -5,6 +5,7 @@ import type { Action, ObjectKind } from "@/db/access";
 import type { SignedIn } from "@/db/queries/sessions";
 import { allow, type Allowed } from "./authorise";
 import { Refusal } from "./problem";
+import { realtimeAddress } from "./realtimeAddress";
 import { currentUser, who } from "./session";
 
 /** The person signed in; whoever is not is sent to sign in and comes back to `path` afterwards. */
@@ -36,9 +37,5 @@ export async function allowOnScreen<K extends ObjectKind>(kind: K, id: string, a
 
 /** Address of the realtime server as this browser reaches it. */
 export async function realtimeUrl(): Promise<string> {
-  const given = process.env.REALTIME_PUBLIC_URL;
-  if (given) return given;
-  const secure = process.env.NEXTAUTH_URL?.startsWith("https://") ?? false;
-  const host = (await headers()).get("host") ?? "127.0.0.1";
-  return `${secure ? "wss" : "ws"}://${new URL(`http://${host}`).hostname}:${process.env.REALTIME_PORT ?? "3001"}`;
+  return realtimeAddress((await headers()).get("host"));
 }

@@ -66,6 +66,7 @@ export type {
   Band,
   BlockResult,
   BodyDistance,
+  BudgetPart,
   BudgetPathPoint,
   BudgetReport,
   BudgetResult,

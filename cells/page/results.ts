@@ -193,12 +193,24 @@ export interface BudgetResult extends AnyResult {
   readonly report: readonly BudgetReport[];
   readonly left?: { readonly what: string; readonly mass: number; readonly composition: Readonly<Record<string, number>> };
   readonly path: readonly BudgetPathPoint[];
+  /** Where the mass and each element of the reported expressions lie at the end; left out where that cannot be said. */
+  readonly balance?: readonly BudgetPart[];
   /** Each input's share of the solved amount's variance, largest first, summing to 1. */
   readonly shares: readonly { readonly input: string; readonly share: number }[];
   /** Solved amount for each pair of compilations at hand. */
   readonly byCompilation: readonly { readonly bodies: Readonly<Record<string, string>>; readonly solved: number | null; readonly sigma: number | null }[];
   /** Mass at start and end, kg per kg of the start, and the difference that must be zero where closure can hold. */
   readonly closure?: { readonly start: number; readonly end: number; readonly error: number };
+}
+
+/** How one thing is divided between what the budget ends with and what it left behind: fractions of both together, summing to 1. */
+export interface BudgetPart {
+  /** `mass`, or an element's symbol. */
+  readonly of: string;
+  readonly kept: number;
+  readonly left: number;
+  /** Part of `left` that is the solved or swept species itself, where there is one. */
+  readonly moved?: number;
 }
 
 export interface BudgetReport {

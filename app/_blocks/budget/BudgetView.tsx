@@ -1,0 +1,84 @@
+"use client";
+
+import type { BlockViewProps } from "@/app/_page/contract";
+import { formatNumber, formatValue, withUnit } from "@/app/_ui/concise";
+import { resultOf } from "@/app/_blocks/shared/tableOf";
+import type { BudgetBlock, BudgetResult } from "@/cells";
+import { BudgetBars } from "./BudgetBars";
+import { BudgetSteps } from "./BudgetSteps";
+import { verdictOf } from "./budgetWords";
+import { CompilationChart } from "./CompilationChart";
+import { ReportTable } from "./ReportTable";
+
+export { stateInWords } from "./budgetWords";
+
+function LeftBehind({ left }: { readonly left: NonNullable<BudgetResult["left"]> }) {
+  const parts = Object.entries(left.composition)
+    .filter(([, v]) => v > 0)
+    .sort((a, b) => b[1] - a[1]);
+  return (
+    <details className="mt-2 text-margin">
+      <summary className="cursor-pointer">
+        <span className="text-second">Left behind: </span>
+        {left.what}, <span className="font-mono">{formatNumber(left.mass, 3)}</span> kg per kg
+      </summary>
+      <dl className="grid grid-cols-[repeat(auto-fill,minmax(120px,1fr))] gap-x-4 pt-1">
+        {parts.map(([species, v]) => (
+          <div key={species} className="flex justify-between">
+            <dt className="text-second">{species}</dt>
+            <dd className="font-mono">{formatNumber(v * 100, 3)} wt%</dd>
+          </div>
+        ))}
+      </dl>
+    </details>
+  );
+}
+
+/** A mass balance: its answer, its steps, where mass and elements went, and what the other ratios say to it. */
+export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock>) {
+  const result = resultOf(view.results, block.id, "budget");
+  const form = view.settings.uncertainty;
+  const solved = result?.ok ? result.solved : undefined;
+  const verdict = result === undefined ? null : verdictOf(block, result);
+  const problems = (result?.problems ?? []).filter((p) => p.severity !== "note");
+  const otherRoots = solved === undefined ? [] : (result?.roots ?? []).filter((root) => root !== solved.value);
+  return (
+    <div className="min-w-0">
+      {result === undefined && <p className="text-second">Calculating for the first time.</p>}
+      {solved !== undefined && (
+        <p className="font-mono text-solved font-medium max-[719px]:text-trace">
+          <button type="button" aria-label={`Trace the solved amount, ${withUnit(formatValue(solved.value, solved.sigma, { form }), solved.unit)}`} className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo" onClick={() => view.trace({ block: block.id, name: "solved" })}>
+            {formatValue(solved.value, solved.sigma, { form })}
+          </button>
+          <small className="ml-2 font-sans text-[14px] font-normal">
+            {solved.unit === "1" ? "" : solved.unit} {solved.of}
+            {solved.sigma === null ? ", σ unknown" : solved.sigmaIs === undefined ? ", 1σ" : ", 1σ at least"}
+          </small>
+        </p>
+      )}
+      {otherRoots.length > 0 && <p className="text-margin text-second">Also reached at {otherRoots.map((root) => formatNumber(root, 4)).join(", ")}; the smallest physical amount is taken.</p>}
+      <BudgetSteps blockKey={blockKey} block={block} result={result} view={view} />
+      {problems.map((p, index) => (
+        <p key={index} className={p.severity === "error" ? "mt-2 text-vermilion" : "mt-2 text-margin text-second"}>
+          {p.text}
+        </p>
+      ))}
+      {result?.ok && (
+        <>
+          <BudgetBars block={block} result={result} />
+          <ReportTable block={block} result={result} form={form} onTrace={(name) => view.trace({ block: block.id, name })} />
+          {verdict !== null && (
+            <p className="mt-2">
+              {verdict.before}
+              {verdict.against !== "" && <span className="text-vermilion">{verdict.against}</span>}
+              {verdict.after}
+            </p>
+          )}
+          <CompilationChart result={result} bodies={view.bodies} form={form} />
+          {result.left !== undefined && <LeftBehind left={result.left} />}
+        </>
+      )}
+      {block.steps.length === 0 && <p className="mt-2 text-second">{view.mode === "edit" ? "No step yet. Add one, and say what it must reach." : "This budget has no steps."}</p>}
+    </div>
+  );
+}

@@ -1,0 +1,111 @@
+import { classNames } from "@/app/_ui/classNames";
+import type { UncertaintyForm } from "@/app/_ui/concise";
+import { Value } from "@/app/_ui/Value";
+import { basisInWords, compactExpression } from "@/app/_blocks/shared/words";
+import type { BudgetBlock, BudgetReport, BudgetResult } from "@/cells";
+import { isSolvedFor, sharedBasis, targetName } from "./budgetWords";
+
+/** Half the width of the scale of misses, in σ: wide enough for the worst one, in whole steps of 1.5. */
+export function missScale(reports: readonly BudgetReport[]): number {
+  const worst = reports.reduce((most, r) => Math.max(most, Math.abs(r.miss ?? 0)), 0);
+  return Math.min(30, Math.max(4.5, Math.ceil((worst * 1.1) / 1.5) * 1.5));
+}
+
+function Miss({ miss, half }: { readonly miss: number; readonly half: number }) {
+  const at = (sigma: number): number => 50 + (Math.max(-half, Math.min(half, sigma)) / half) * 50;
+  return (
+    <svg viewBox="0 0 100 20" preserveAspectRatio="none" width={120} height={20} aria-hidden="true" className="inline-block overflow-visible align-middle">
+      <path d="M0 10.5H100" stroke="var(--axis)" vectorEffect="non-scaling-stroke" />
+      <path d={`M${at(-2)} 10.5H${at(2)}`} stroke="var(--ink)" strokeWidth={3} vectorEffect="non-scaling-stroke" />
+      <path d="M50 5V16" stroke="var(--ink)" vectorEffect="non-scaling-stroke" />
+      <path d={`M${at(miss)} 2V19`} stroke={Math.abs(miss) > 2 ? "var(--vermilion)" : "var(--indigo)"} strokeWidth={3} vectorEffect="non-scaling-stroke" />
+    </svg>
+  );
+}
+
+export interface ReportTableProps {
+  readonly block: BudgetBlock;
+  readonly result: BudgetResult;
+  readonly form: UncertaintyForm;
+  onTrace(expression: string): void;
+}
+
+/** Every reported ratio at the start, at the end and at the target, and by how many σ it misses. */
+export function ReportTable({ block, result, form, onTrace }: ReportTableProps) {
+  if (result.report.length === 0) return null;
+  const half = missScale(result.report);
+  const basis = sharedBasis(result.report);
+  const hasTarget = result.report.some((r) => r.target !== null);
+  const isWhole = block.steps.some((s) => s.do === "share with metal");
+  const head = "border-b border-ink pb-1 pl-3 text-right text-margin font-normal text-second max-[719px]:pl-0.5";
+  const cell = "h-7 border-b border-hairline pl-3 text-right text-cell leading-[23px] max-[719px]:pl-0.5 max-[719px]:text-[11.5px]";
+  return (
+    <table className="mt-3 w-full border-collapse">
+      <thead>
+        <tr>
+          <th scope="col" className={classNames(head, "!pl-0 !text-left")}>
+            {basis === "" ? "reported" : basis}
+          </th>
+          <th scope="col" className={head}>
+            start
+          </th>
+          <th scope="col" className={head}>
+            {isWhole ? "whole" : "end"}
+          </th>
+          {hasTarget && (
+            <>
+              <th scope="col" className={head}>
+                {targetName(block.target)}
+              </th>
+              <th scope="col" className={classNames(head, "max-[719px]:hidden")}>
+                miss, −{half}σ to +{half}σ
+              </th>
+              <th scope="col" className={head}>
+                <span className="sr-only">miss in σ</span>
+              </th>
+            </>
+          )}
+        </tr>
+      </thead>
+      <tbody>
+        {result.report.map((r) => (
+          <tr key={r.expression}>
+            <th scope="row" className={classNames(cell, "!pl-0 !text-left font-sans !text-ui font-normal")}>
+              {compactExpression(r.expression)}
+              {basis === "" && r.basis !== null && <span className="ml-2 text-margin text-second">{basisInWords(r.basis)}</span>}
+              {r.note !== undefined && <span className="block max-w-72 text-margin text-second">{r.note}</span>}
+            </th>
+            <td className={cell}>
+              <Value value={r.start} sigma={r.startSigma} form={form} unknown="" />
+            </td>
+            <td className={cell}>
+              <button type="button" className="border-b border-transparent hover:border-indigo focus-visible:border-indigo" onClick={() => onTrace(r.expression)} title="Where this number comes from">
+                <Value value={r.end} sigma={r.sigma} form={form} unknown="" />
+              </button>
+            </td>
+            {hasTarget && (
+              <>
+                <td className={cell}>
+                  <Value value={r.target} sigma={r.targetSigma} form={form} unknown="" />
+                </td>
+                <td className={classNames(cell, "max-[719px]:hidden")}>{(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}</td>
+                <td className={classNames(cell, "font-mono whitespace-nowrap")}>
+                  {isSolvedFor(r, block.target) && result.solved !== undefined ? (
+                    <span className="text-second">solved for</span>
+                  ) : r.miss === null ? (
+                    <span className="text-second">–</span>
+                  ) : (
+                    <span className={Math.abs(r.miss) > 2 ? "text-vermilion" : "text-second"}>
+                      {r.miss < 0 ? "−" : "+"}
+                      {Math.abs(r.miss).toFixed(1)}σ
+                    </span>
+                  )}
+                </td>
+              </>
+            )}
+          </tr>
+        ))}
+      </tbody>
+    </table>
+  );
+}

@@ -17,7 +17,7 @@ import { formulaLook } from "./formulaLook";
 import { createHeadHosts } from "./headHosts";
 import { formulaHighlight } from "./highlight";
 import { LineHead } from "./LineHead";
-import { formulaLines, resultFor } from "./lines";
+import { fitsText, formulaLines, resultFor } from "./lines";
 import { suggestionsFor } from "./suggestions";
 import { watchText } from "./watchText";
 
@@ -36,6 +36,10 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
   const table = tableOf(view.results, block.data);
   const picked = useMemo(() => pickedIndices(table, view.picked), [table, view.picked]);
   const lines = useMemo(() => formulaLines(written), [written]);
+  // The text as it was when the present result arrived: lines that have changed since are shown dimmed until the next one.
+  const [answered, setAnswered] = useState({ result, text: written });
+  if (answered.result !== result) setAnswered({ result, text: written });
+  const answeredLines = useMemo(() => new Set(formulaLines(answered.text).map((line) => answered.text.slice(line.from, line.to).trim())), [answered]);
 
   // The editor outlives renders; what it asks of the page it asks of the latest one.
   const latest = useRef({ block, view });
@@ -75,13 +79,13 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
     editor.dispatch({ changes: { from: 0, to: editor.state.doc.length, insert: block.text } });
   }, [editor, isReadOnly, block.text]);
 
-  // Places in results are places in the text they were made from; while a newer text is being calculated the old marks move
+  // Places in results are places in the text they were made from. While a newer text is being calculated, the old marks move
   // along with the typing instead.
   const problems = result?.problems;
-  const { calculating } = view;
   useEffect(() => {
-    if (editor !== null && !calculating) editor.dispatch({ effects: setProblems.of(placedProblems(problems ?? [])) });
-  }, [editor, problems, calculating]);
+    if (editor === null || !fitsText(formulaLines(editor.state.doc.toString()), result?.lines ?? [])) return;
+    editor.dispatch({ effects: setProblems.of(placedProblems(result?.problems ?? [])) });
+  }, [editor, result]);
   useEffect(() => editor?.requestMeasure(), [editor, result, places, picked]);
 
   const elsewhere = (problems ?? []).filter((p) => p.span === undefined || (p.field !== undefined && p.field !== "text"));
@@ -93,7 +97,7 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
         const host = places.get(line.ordinal);
         if (host === undefined) return null;
         return createPortal(
-          <LineHead block={block.id} line={line} result={resultFor(line, result?.lines ?? [])} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />,
+          <LineHead block={block.id} line={line} result={resultFor(line, result?.lines ?? [])} table={table} picked={picked} view={view} reachesMargin={reachesMargin} isStale={!answeredLines.has(written.slice(line.from, line.to).trim())} />,
           host,
           String(line.ordinal),
         );

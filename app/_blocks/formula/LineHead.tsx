@@ -18,16 +18,18 @@ export interface LineHeadProps {
   readonly picked: readonly number[];
   readonly view: PageView;
   readonly reachesMargin: boolean;
+  /** True while the line says something newer than its result. */
+  readonly isStale: boolean;
 }
 
 /** The small heading over a formula line: its result first, the reasoning stands under it. */
-export function LineHead({ block, line, result, table, picked, view, reachesMargin }: LineHeadProps) {
+export function LineHead({ block, line, result, table, picked, view, reachesMargin, isStale }: LineHeadProps) {
   const form = view.settings.uncertainty;
   const isSingle = result !== undefined && result.ok && !result.perSample && result.byClass === undefined;
   const range = result === undefined ? "" : rangeText(result, form);
   return (
     <div className={classNames("pt-3 font-sans text-ui text-ink", line.ordinal > 0 && "mt-4 border-t border-hairline")}>
-      <div className={classNames("flex flex-wrap items-baseline gap-x-4 leading-6 transition-opacity delay-300 duration-200", view.calculating && "opacity-60")}>
+      <div className={classNames("flex flex-wrap items-baseline gap-x-4 leading-6 transition-opacity delay-300 duration-200", isStale && "opacity-60")}>
         <b className="font-mono text-result font-medium">{line.name}</b>
         {isSingle ? (
           <button type="button" className="border-b border-transparent font-mono text-result hover:border-indigo hover:text-indigo focus-visible:border-indigo" onClick={() => view.trace({ block, name: line.name })} aria-label={`Trace ${line.name}, ${range}`}>

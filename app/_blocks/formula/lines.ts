@@ -43,3 +43,11 @@ export function resultFor(line: FormulaLine, results: readonly LineResult[]): Li
   for (const result of results) if (result.name === line.name && left-- === 0) return result;
   return undefined;
 }
+
+/**
+ * Whether results were made from this text, as far as their lines tell: each stands where the text has a line of its name.
+ * Results arrive later than typing; marks of an older text would stand under the wrong characters.
+ */
+export function fitsText(lines: readonly FormulaLine[], results: readonly LineResult[]): boolean {
+  return results.every((result) => lines.some((line) => line.name === result.name && result.span[0] >= line.from && result.span[0] <= line.to && result.span[1] <= line.to + 1));
+}

@@ -1,13 +1,12 @@
+import { elementName } from "@/app/_blocks/shared/words";
 import type { BudgetBlock, BudgetPart, BudgetResult } from "@/cells";
-
-const elementNames: Readonly<Record<string, string>> = { mass: "mass", Si: "silicon", Mg: "magnesium", Al: "aluminium", Ca: "calcium", Fe: "iron", Na: "sodium", S: "sulphur", Ti: "titanium", O: "oxygen", C: "carbon", Ni: "nickel", Cr: "chromium" };
 
 /** Names of the two sides of a balance, by what the budget does. */
 export function sidesOf(block: BudgetBlock): { readonly kept: string; readonly left: string; readonly moved: string } {
   const metal = block.steps.find((s) => s.do === "share with metal");
   if (metal?.do === "share with metal") {
     const species = typeof metal.species === "string" ? metal.species : metal.species.join(", ");
-    return { kept: "silicate", left: "metal", moved: `${elementNames[species] ?? species} in metal` };
+    return { kept: "silicate", left: "metal", moved: `${elementName(species)} in metal` };
   }
   if (block.steps.some((s) => s.do === "extract melt")) return { kept: "residue", left: "melt", moved: "" };
   return { kept: "result", left: "taken out", moved: "" };
@@ -35,7 +34,7 @@ export function BudgetBars({ block, result }: { readonly block: BudgetBlock; rea
       <dl className="mt-3 mb-1 grid grid-cols-[80px_1fr_auto] items-center gap-x-4 gap-y-1 text-margin max-[719px]:grid-cols-[72px_1fr_auto] max-[719px]:gap-x-2">
         {parts.map((p) => (
           <div key={p.of} className="contents">
-            <dt>{elementNames[p.of] ?? p.of}</dt>
+            <dt>{elementName(p.of)}</dt>
             <dd aria-hidden="true" className="flex h-4 border border-ink">
               <span style={{ width: `${p.kept * 100}%` }} />
               {p.left > 0 && (

@@ -1,5 +1,5 @@
 import { formatNumber, formatValue, withUnit, type UncertaintyForm } from "@/app/_ui/concise";
-import { basisInWords, compactExpression, listed } from "@/app/_blocks/shared/words";
+import { basisInWords, compactExpression, elementName, listed, sentence } from "@/app/_blocks/shared/words";
 import type { Amount, BudgetBlock, BudgetReport, BudgetResult, Step, Substance, Target } from "@/cells";
 
 /** What the parts of a sentence are: words, or a name that is set off from them. */
@@ -22,8 +22,13 @@ export function substanceName(what: Substance, bodies: Readonly<Record<string, s
   return parts.length === 0 ? "an empty composition" : parts.map(([species, v]) => `${species} ${formatNumber(typeof v === "number" ? v : v.value, 4)}`).join(", ");
 }
 
+/** A number as a person typed it: no zeros added, none of the noise of a factor. */
+function asTyped(value: number): string {
+  return String(Number(value.toPrecision(10))).replace("-", "−");
+}
+
 function fixed(amount: { readonly value: number; readonly sigma?: number | undefined }, factor: number, form: UncertaintyForm): string {
-  return amount.sigma === undefined || amount.sigma === 0 ? formatNumber(amount.value * factor, 4) : formatValue(amount.value * factor, amount.sigma * factor, { form });
+  return amount.sigma === undefined || amount.sigma === 0 ? asTyped(amount.value * factor) : formatValue(amount.value * factor, amount.sigma * factor, { form });
 }
 
 /** Unit in which a step's amount is written. */
@@ -35,7 +40,7 @@ export function amountUnit(step: Step): string {
 /** A step's amount: a value, a range that is swept, or solved for. */
 export function amountPhrase(amount: Amount, unit: string, form: UncertaintyForm): Phrase {
   if (amount === "solve") return ["amount ", { name: "solved" }];
-  if ("from" in amount) return ["from ", { name: formatNumber(amount.from, 4) }, " to ", { name: withUnit(formatNumber(amount.to, 4), unit) }];
+  if ("from" in amount) return ["from ", { name: asTyped(amount.from) }, " to ", { name: withUnit(asTyped(amount.to), unit) }];
   return [{ name: withUnit(fixed(amount, 1, form), unit) }];
 }
 
@@ -100,7 +105,7 @@ export function verdictOf(block: BudgetBlock, result: BudgetResult): Verdict | n
   const others = result.report.filter((r) => r !== solvedFor && r.miss !== null);
   if (others.length === 0) return null;
   const metal = block.steps.find((s) => s.do === "share with metal");
-  const subject = metal?.do === "share with metal" && metal.amount === "solve" && typeof metal.species === "string" ? `${metal.species} in the metal` : result.solved === undefined ? "This balance" : "The solved amount";
+  const subject = metal?.do === "share with metal" && metal.amount === "solve" && typeof metal.species === "string" ? sentence(`${elementName(metal.species)} in the metal`) : result.solved === undefined ? "This balance" : "The solved amount";
   const aim = targetName(block.target);
   const opening = solvedFor === undefined ? subject : `${subject} brings ${compactExpression(solvedFor.expression)} to ${aim}`;
   const missed = others.filter((r) => Math.abs(r.miss ?? 0) > tooFar);

@@ -31,7 +31,8 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
   const [written, setWritten] = useState(block.text);
   const places = useSyncExternalStore(hosts.subscribe, hosts.snapshot, hosts.snapshot);
   const text = useSharedText(view, blockKey);
-  const live = view.live ?? null;
+  const awareness = view.live?.awareness ?? null;
+  const undoManager = view.live?.undoManager ?? null;
   const result = resultOf(view.results, block.id, "formula");
   const table = tableOf(view.results, block.data);
   const picked = useMemo(() => pickedIndices(table, view.picked), [table, view.picked]);
@@ -55,7 +56,8 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
     const made = createCodeEditor(parent.current, {
       text,
       initial: initial.current,
-      live,
+      awareness,
+      undoManager,
       label,
       extensions: [
         lineDecorations(hosts),
@@ -71,7 +73,7 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
       made.destroy();
       setEditor(null);
     };
-  }, [text, live, label, hosts, isReadOnly]);
+  }, [text, awareness, undoManager, label, hosts, isReadOnly]);
 
   useEffect(() => {
     initial.current = block.text;

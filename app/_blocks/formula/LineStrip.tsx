@@ -66,7 +66,7 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
   const current = cursor ?? named ?? walk[0] ?? 0;
   const gaps = line.byClass === undefined ? absent(line.states) : [];
   return (
-    <div className="relative mt-1 mr-[88px] h-12">
+    <div className="relative mt-2 mr-[88px] h-12">
       <div
         role="slider"
         tabIndex={0}
@@ -96,7 +96,7 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
         </svg>
       </div>
       {gaps.length > 0 && (
-        <span className="absolute top-3 left-full flex h-5 w-[88px] items-end gap-2 pl-4 font-mono text-axis whitespace-nowrap text-second">
+        <span className="absolute top-3 left-full flex h-5 w-[88px] items-end gap-2 pl-4 font-mono text-[11px] leading-4 whitespace-nowrap text-second">
           <span aria-hidden="true" className="absolute right-0 bottom-0 left-3 border-t border-dotted border-axis" />
           {gaps.map(({ state, count }) => (
             <span key={state} title={`${count} ${state}`}>

@@ -17,7 +17,7 @@ export function natureText(line: LineResult): string {
   const parts = [basisInWords(line.basis), line.remark ?? ""].filter((part) => part !== "");
   if (line.perSample) {
     const typical = median(line.sigma);
-    parts.push(typical === null ? "σ unknown" : `median σ ${formatNumber(typical, 2)}`);
+    parts.push(typical === null ? "σ unknown" : `median σ ${formatNumber(typical, 2).replace(/(\.\d*?)0+$/u, "$1").replace(/\.$/u, "")}`);
     const common = median(line.sigmaCommon);
     if (common !== null && typical !== null && common > 0.05 * typical) parts.push("part of σ is common to all");
   }

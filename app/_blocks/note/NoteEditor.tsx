@@ -22,6 +22,8 @@ export function NoteEditor({ text, live, label, onLeave }: NoteEditorProps) {
   useEffect(() => {
     leave.current = onLeave;
   });
+  const awareness = live?.awareness ?? null;
+  const undoManager = live?.undoManager ?? null;
   useEffect(() => {
     if (parent.current === null) return;
     let escaped = false;
@@ -35,10 +37,10 @@ export function NoteEditor({ text, live, label, onLeave }: NoteEditorProps) {
         if (document.hasFocus() && !view.dom.contains(event.relatedTarget as Node | null)) leave.current(escaped);
       },
     });
-    const editor = createCodeEditor(parent.current, { text, initial: "", live, label, extensions: [noteLook, handlers] });
+    const editor = createCodeEditor(parent.current, { text, initial: "", awareness, undoManager, label, extensions: [noteLook, handlers] });
     editor.focus();
     editor.dispatch({ selection: { anchor: editor.state.doc.length } });
     return () => editor.destroy();
-  }, [text, live, label]);
+  }, [text, awareness, undoManager, label]);
   return <div ref={parent} />;
 }

@@ -35,7 +35,7 @@ export const NoteText = memo(function NoteText({ text, values = noValues, view }
         if (href?.startsWith(quoteAddress)) return <LiveValue value={values[Number(href.slice(quoteAddress.length))]} view={view} />;
         if (href === undefined || href === "") return <>{children}</>;
         return (
-          <a href={href} rel="noopener noreferrer nofollow" target="_blank">
+          <a href={href} className="underline" rel="noopener noreferrer nofollow" target="_blank">
             {children}
           </a>
         );

@@ -41,7 +41,7 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
           const words = drawnInWords(drawn, layer);
           const toggled: Drawn = drawn.hidden === true ? (({ hidden: _, ...rest }) => rest)(drawn) as Drawn : { ...drawn, hidden: true };
           return (
-            <li key={index} className={classNames("group grid grid-cols-[28px_1fr_auto] gap-x-1 border-b border-hairline pt-1.5 pb-[5px]", drawn.hidden && "text-second")}>
+            <li key={index} className={classNames("group relative grid grid-cols-[28px_1fr_auto] gap-x-1 border-b border-hairline pt-1.5 pb-[5px]", drawn.hidden && "text-second")}>
               {edits === null ? (
                 <span className="text-second">{drawn.hidden ? <IconEyeClosed size={18} /> : <IconEye size={18} />}</span>
               ) : (
@@ -63,22 +63,22 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
                   </Popover>
                 )}
                 <span className="block break-words text-second">{words.says}</span>
-                {edits !== null && (
-                  // Shown where the pointer or the focus is; always there for the keyboard and for fingers.
-                  <span className="flex gap-2 opacity-0 group-focus-within:opacity-100 group-hover:opacity-100 [@media(hover:none)]:opacity-100">
-                    <IconButton look="quiet" label={`Move ${words.title} up`} disabled={index === block.drawn.length - 1} onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, 1))}>
-                      <IconUp />
-                    </IconButton>
-                    <IconButton look="quiet" label={`Move ${words.title} down`} disabled={index === 0} onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, -1))}>
-                      <IconDown />
-                    </IconButton>
-                    <IconButton look="quiet" label={`Take ${words.title} away`} onClick={() => run(() => dropEntry(edits, blockKey, "drawn", index, drawn))}>
-                      <IconClose />
-                    </IconButton>
-                  </span>
-                )}
               </span>
               <span className="text-second">{words.count}</span>
+              {edits !== null && (
+                // Shown where the pointer or the focus is; always there for fingers.
+                <span className="absolute top-0 right-0 flex gap-1 bg-paper pl-1 opacity-0 group-focus-within:opacity-100 group-hover:opacity-100 [@media(hover:none)]:static [@media(hover:none)]:col-start-2 [@media(hover:none)]:opacity-100">
+                  <IconButton look="quiet" label={`Move ${words.title} up`} disabled={index === block.drawn.length - 1} onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, 1))}>
+                    <IconUp />
+                  </IconButton>
+                  <IconButton look="quiet" label={`Move ${words.title} down`} disabled={index === 0} onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, -1))}>
+                    <IconDown />
+                  </IconButton>
+                  <IconButton look="quiet" label={`Take ${words.title} away`} onClick={() => run(() => dropEntry(edits, blockKey, "drawn", index, drawn))}>
+                    <IconClose />
+                  </IconButton>
+                </span>
+              )}
             </li>
           );
         })}

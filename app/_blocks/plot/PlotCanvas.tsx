@@ -1,7 +1,7 @@
 "use client";
 
 import plotly from "plotly.js-dist-min";
-import { useMemo } from "react";
+import { useMemo, useRef } from "react";
 import createPlotlyComponent from "react-plotly.js/factory";
 import type { Figure } from "./figure";
 import type { PointRef } from "./traces";
@@ -30,6 +30,12 @@ interface EventPoint {
   readonly bbox?: { readonly x0: number; readonly x1: number; readonly y0: number; readonly y1: number };
 }
 
+interface Selected {
+  readonly points?: readonly EventPoint[];
+  readonly range?: unknown;
+  readonly lassoPoints?: unknown;
+}
+
 function refOf(point: EventPoint | undefined): PointRef | null {
   const custom = point?.customdata;
   if (!Array.isArray(custom)) return null;
@@ -47,12 +53,16 @@ function rangeOf(update: Readonly<Record<string, unknown>>, axis: "xaxis" | "yax
 /** Plotly's drawing surface: no modebar, no scrolling into it, no default look. In a chunk of its own that only a page with a plot fetches. */
 export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps) {
   const config = useMemo(() => ({ displayModeBar: false, displaylogo: false, scrollZoom: false, staticPlot: false, doubleClick: "reset", showTips: false, responsive: false }), []);
-  const pickAll = (event: { points?: readonly EventPoint[] } | undefined, graph: HTMLElement | null): void => {
-    if (event?.points === undefined) return;
-    const refs = event.points.map(refOf).filter((ref) => ref !== null && ref.index >= 0) as PointRef[];
-    onPick(refs, false);
-    // The outline of the selection has done its work; what is picked is marked by rings.
-    if (graph !== null) void plotly.relayout(graph, { selections: [] });
+  const graph = useRef<HTMLElement | null>(null);
+  const pickAll = (event: Selected | undefined): void => {
+    // Plotly says "selected" again whenever it redraws; only a drag of the pointer has a range or an outline.
+    if (event?.points === undefined || (event.range === undefined && event.lassoPoints === undefined)) return;
+    onPick(
+      event.points.map(refOf).filter((ref): ref is PointRef => ref !== null && ref.index >= 0),
+      false,
+    );
+    // The outline has done its work: what is picked is marked by rings.
+    if (graph.current !== null) void plotly.relayout(graph.current, { selections: [] });
   };
   return (
     <Plotly
@@ -70,7 +80,10 @@ export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps)
         const ref = refOf(event.points?.[0]);
         if (ref !== null && ref.index >= 0) onPick([ref], event.event?.shiftKey === true);
       }}
-      onSelected={(event: { points?: readonly EventPoint[] } | undefined) => pickAll(event, document.querySelector<HTMLElement>(".js-plotly-plot:hover"))}
+      onInitialized={(_: unknown, made: HTMLElement) => {
+        graph.current = made;
+      }}
+      onSelected={pickAll}
       onRelayout={(update: Readonly<Record<string, unknown>>) => {
         const x = rangeOf(update, "xaxis");
         const y = rangeOf(update, "yaxis");

@@ -3,6 +3,7 @@ import { formatValue } from "@/app/_ui/concise";
 import { rowLabel } from "@/app/_blocks/shared/picks";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
 import type { PageResults, PlotLayer } from "@/cells";
+import { missesOf } from "./misses";
 import { placeLabels, roughWidth, type LabelRequest, type Obstacle } from "./placeLabels";
 import { normalAt, washOf, type Drawing } from "./traces";
 
@@ -22,6 +23,9 @@ function plainText(text: string): string {
   return text.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
 }
 
+/** Below this width the long labels would cover what they name; the list beside the plot says the rest. */
+const narrow = 480;
+
 function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null): Label[] {
   const { palette } = drawing;
   switch (layer.what) {
@@ -35,7 +39,7 @@ function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null
           x: layer.x,
           y: layer.y,
           gap: 16,
-          lines: [
+          lines: drawing.frame.width < narrow ? [{ text: "crossing", size: 12, color: palette.magenta, weight: 500 }] : [
             { text: `crossing ${formatValue(layer.x, layer.sigmaX)}, ${formatValue(layer.y, layer.sigmaY)}`, size: 12, color: palette.magenta, weight: 500 },
             { text: nearest === null ? "ellipse 95 %" : `ellipse 95 %, ${nearest.body} ${nearest.distance.toFixed(1)}σ away`, size: 11, color: palette.second, weight: 400 },
           ],
@@ -135,7 +139,8 @@ export function buildAnnotations(layers: readonly PlotLayer[], axes: { readonly 
     textAt(frame.margin.l + 8, frame.margin.t + 6, axes.y, 12, palette.ink, 500, drawing),
   ];
   const inView = (l: Label): boolean => frame.px(l.x) >= frame.margin.l && frame.px(l.x) <= frame.width - frame.margin.r && frame.py(l.y) >= frame.margin.t && frame.py(l.y) <= frame.height - frame.margin.b;
-  const labels = layers.flatMap((layer) => labelOf(layer, drawing, results)).filter(inView);
+  const misses = missesOf(layers, results).map((miss): Label => ({ x: miss.x, y: (miss.from + miss.to) / 2, gap: 8, lines: [{ text: `${miss.what} missed by ${miss.sigmas.toFixed(1)}σ`, size: 11, color: palette.vermilion, weight: 400 }] }));
+  const labels = [...layers.flatMap((layer) => labelOf(layer, drawing, results)), ...misses].filter(inView);
   const requests: LabelRequest[] = labels.map((l) => ({ x: frame.px(l.x), y: frame.py(l.y), gap: l.gap, width: Math.max(...l.lines.map((line) => roughWidth(line.text, line.size))), height: l.lines.length * 16 }));
   const axisBox: Obstacle[] = Array.from({ length: 10 }, (_, i) => ({ x: frame.margin.l + 8 + i * roughWidth(axes.y) * 0.1, y: frame.margin.t + 14 }));
   const places = placeLabels(requests, [...obstaclesOf(layers, drawing), ...axisBox], { left: frame.margin.l + 4, top: frame.margin.t + 4, right: frame.width - frame.margin.r - 4, bottom: frame.height - frame.margin.b - 4 });

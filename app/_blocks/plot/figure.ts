@@ -3,8 +3,9 @@ import { tickDecimals, tickStep } from "@/app/_blocks/shared/scale";
 import type { PageResults, PlotBlock, PlotLayer, PlotResult } from "@/cells";
 import { buildAnnotations } from "./annotations";
 import type { Range } from "./frame";
+import { missesOf } from "./misses";
 import { axisInWords } from "./plotWords";
-import { bodiesTraces, crossingTraces, pathTraces, pickedTraces, samplesTraces, trendTraces, type Drawing } from "./traces";
+import { bodiesTraces, carriedOn, crossingTraces, missTraces, pathTraces, pickedTraces, samplesTraces, trendTraces, type Drawing } from "./traces";
 
 export interface Figure {
   readonly data: Data[];
@@ -34,7 +35,7 @@ function tracesOf(layer: PlotLayer, drawing: Drawing): Data[] {
 /** A framed axis with ticks inside on all four sides, figures outside, no grid and no zero line. */
 function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Partial<LayoutAxis> {
   const { palette } = drawing;
-  const step = tickStep(range[1] - range[0], Math.max(2, Math.floor(pixels / 78)));
+  const step = tickStep(range[1] - range[0], Math.max(2, Math.floor(pixels / 64)));
   return {
     range: [range[0], range[1]],
     type: log ? "log" : "linear",
@@ -56,12 +57,21 @@ function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Par
   } as Partial<LayoutAxis>;
 }
 
+/** The card knows dashes by name only. */
+function onGraphicsCard(trace: Data): void {
+  trace.type = "scattergl";
+  if ("line" in trace && trace.line !== undefined && "dash" in trace.line && trace.line.dash === carriedOn) trace.line.dash = "dash";
+}
+
 /** A plot as Plotly takes it: the layers bottom first, picks on top, all words as annotations. */
 export function buildFigure(block: PlotBlock, result: PlotResult, nameOf: (handle: string) => string, drawing: Drawing, results: PageResults | null, dragmode: DragMode): Figure {
   const { frame, palette } = drawing;
   const layers = result.layers.filter((layer) => block.drawn[layer.drawn]?.hidden !== true);
   const data = layers.flatMap((layer) => tracesOf(layer, drawing));
+  data.push(...missTraces(missesOf(layers, results), drawing));
   for (const layer of layers) if (layer.what === "samples") data.push(...pickedTraces(layer, drawing));
+  // The graphics card's layer lies over the vectors: with any of it, everything is drawn on it, so that the order holds.
+  if (data.some((trace) => trace.type === "scattergl")) for (const trace of data) onGraphicsCard(trace);
   const axes = { x: axisInWords(result.x, block.xAxis?.label), y: axisInWords(result.y, block.yAxis?.label) };
   return {
     data,
@@ -81,7 +91,7 @@ export function buildFigure(block: PlotBlock, result: PlotResult, nameOf: (handl
       annotations: buildAnnotations(layers, axes, nameOf, drawing, results),
       newselection: { line: { color: palette.indigo, width: 1, dash: "solid" } },
       activeselection: { fillcolor: palette.indigo, opacity: 0.06 },
-      modebar: { remove: [] },
+      selections: [],
     } as Partial<Layout>,
   };
 }

@@ -4,6 +4,7 @@ import type { Palette } from "@/app/_blocks/shared/usePalette";
 import { State, type Curve, type PlotLayer } from "@/cells";
 import { traceEllipse } from "./ellipse";
 import type { Frame } from "./frame";
+import type { Miss } from "./misses";
 import { mostEllipses } from "./plotWords";
 
 /** What the traces need to know beside the layers. */
@@ -86,7 +87,7 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
       x: rows.map((i) => points.x[i] ?? null),
       y: rows.map((i) => points.y[i] ?? null),
       customdata: rows.map((i) => [layer.data, i]),
-      marker: { symbol: look.symbol, size: drawing.projector ? 11 : isMany ? 5 : 7.5, color: look.fill, opacity: isMany && rows.length > 5000 ? 0.6 : 1, line: { color: look.line, width: isMany ? 0 : 1 } },
+      marker: { symbol: look.symbol, size: drawing.projector ? 11 : isMany ? 5 : 7.5, color: look.fill, opacity: isMany ? 0.55 : 1, line: { color: look.line, width: isMany ? 0 : 1 } },
     });
   }
   if (aside.length > 0) {
@@ -148,7 +149,7 @@ function part(curve: Curve, from: number, to: number): { x: number[]; y: number[
 }
 
 /** Dashes in pixels, which Plotly takes and its types do not know. */
-const carriedOn = "5px,3px" as Dash;
+export const carriedOn = "5px,3px" as Dash;
 
 /** A trend: its band, the line whole between its samples and dashed where it is carried on past them. */
 export function trendTraces(layer: Extract<PlotLayer, { what: "trend" }>, { palette }: Drawing): Data[] {
@@ -205,6 +206,11 @@ export function pathTraces(layer: Extract<PlotLayer, { what: "path" }>, { palett
   if (x.length > 0 && !frame.logX && !frame.logY) traces.push({ ...silent, type: "scatter", mode: "lines", x, y, line: { color: palette.indigo, width: 1.2 } });
   if (layer.end !== undefined) traces.push({ ...silent, type: "scatter", mode: "markers", x: [layer.end.x], y: [layer.end.y], marker: { symbol: "x-thin", size: 8, color: palette.indigo, line: { color: palette.indigo, width: 1.6 } } });
   return traces;
+}
+
+/** From the end of a path to where it was to be: what a budget misses by, dotted. */
+export function missTraces(misses: readonly Miss[], { palette }: Drawing): Data[] {
+  return misses.map((miss) => ({ ...silent, type: "scatter", mode: "lines", x: [miss.x, miss.x], y: [miss.from, miss.to], line: { color: palette.vermilion, width: 1.2, dash: "dot" } }));
 }
 
 /** Unit vector across a path at a tick, in pixels. */

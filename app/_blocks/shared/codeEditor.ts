@@ -32,7 +32,8 @@ export interface CodeEditorOptions {
   /** null: the text is only read, and `initial` is what it is. */
   readonly text: Text | null;
   readonly initial: string;
-  readonly live: LiveText | null | undefined;
+  readonly awareness: LiveText["awareness"] | null;
+  readonly undoManager: LiveText["undoManager"] | null;
   readonly label: string;
   readonly extensions: Extension;
 }
@@ -52,8 +53,8 @@ const leave = keymap.of([
  * An editor on a shared text, or on a plain one that can only be read. Undo is the page's, so it takes back one's own edits
  * and nobody else's. The caller destroys the view.
  */
-export function createCodeEditor(parent: HTMLElement, { text, initial, live, label, extensions }: CodeEditorOptions): EditorView {
-  const shared = text === null ? [EditorState.readOnly.of(true), EditorView.editable.of(false)] : [keymap.of(yUndoManagerKeymap), yCollab(text, live?.awareness ?? null, { undoManager: live?.undoManager ?? false })];
+export function createCodeEditor(parent: HTMLElement, { text, initial, awareness, undoManager, label, extensions }: CodeEditorOptions): EditorView {
+  const shared = text === null ? [EditorState.readOnly.of(true), EditorView.editable.of(false)] : [keymap.of(yUndoManagerKeymap), yCollab(text, awareness, { undoManager: undoManager ?? false })];
   return new EditorView({
     parent,
     state: EditorState.create({

@@ -45,7 +45,7 @@ function Branch({ node, view, depth }: { readonly node: TraceNode; readonly view
         {isTop && <span aria-hidden="true" className="absolute top-[11px] -left-6 w-4 border-t border-indigo" />}
         {node.cell !== undefined ? (
           <Cell node={node} view={view} />
-        ) : node.kind === "conversion" && node.from.length > 0 ? (
+        ) : node.kind === "conversion" && !isTop ? (
           <span className="block text-second">
             {node.label}
             {value !== "" && <span className="ml-2 font-mono text-ink">{value}</span>}

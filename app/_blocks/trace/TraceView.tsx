@@ -44,7 +44,7 @@ export function TraceView({ view }: { readonly view: PageView }) {
       tabIndex={-1}
       aria-label={`Trace of ${request.name}${sample === "" ? "" : `, ${sample}`}`}
       aria-busy={node === null}
-      className="border-t border-l border-indigo pt-2 pl-[19px] text-margin text-ink outline-none"
+      className="break-inside-avoid border-t border-l border-indigo pt-2 pl-[19px] text-margin text-ink outline-none"
       onKeyDown={(event) => {
         if (event.key !== "Escape") return;
         event.stopPropagation();

@@ -111,7 +111,7 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
         </svg>
       </div>
       {current !== undefined && !open && (
-        <span aria-hidden="true" className="pointer-events-none absolute -top-3 border border-hairline bg-surface px-1 text-axis whitespace-nowrap" style={{ left: current.x, transform: `translateX(${current.x > width / 2 ? "-100%" : "0"})` }}>
+        <span aria-hidden="true" className="pointer-events-none absolute -top-3 border border-hairline bg-surface px-1 text-[11px] leading-4 whitespace-nowrap" style={{ left: current.x, transform: `translateX(${current.x > width / 2 ? "-100%" : "0"})` }}>
           {nameOf(current.point)} <span className="font-mono">{signedSigma(current.point.residual)}</span>
         </span>
       )}
@@ -160,7 +160,7 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
           </div>
         </Popover>
       )}
-      {layout.clipped > 0 && <p className="text-axis text-second">{layout.clipped === 1 ? "One sample lies" : `${layout.clipped} samples lie`} beyond 8σ and stand at the edge.</p>}
+      {layout.clipped > 0 && <p className="text-[11px] leading-4 text-second">{layout.clipped === 1 ? "One sample lies" : `${layout.clipped} samples lie`} beyond 8σ and stand at the edge.</p>}
     </div>
   );
 }

@@ -127,7 +127,7 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
             <li key={String(entry.row)}>
               <b className="font-medium text-ink">{entry.sample ?? `row ${entry.row}`}</b> left out: {sentence(entry.reason)}{" "}
               {edits !== null && (
-                <Button aria-label={`Put ${entry.sample ?? `row ${entry.row}`} back into the fit`} onClick={() => run(() => edits.removeEntry(blockKey, "leaveOut", entry))}>
+                <Button aria-label={`Put back ${entry.sample ?? `row ${entry.row}`}`} onClick={() => run(() => edits.removeEntry(blockKey, "leaveOut", entry))}>
                   Put back
                 </Button>
               )}

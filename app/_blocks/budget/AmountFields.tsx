@@ -27,7 +27,12 @@ export function AmountFields({ label, amount, unit, onChange }: AmountFieldsProp
   const ends = amount !== "solve" && "from" in amount ? amount : null;
   return (
     <div className="grid gap-3">
-      <Select label={`${label}${unit === "" ? "" : `, ${unit}`}`} value={sort} options={sorts} onChoose={(next) => onChange(next === "solve" ? "solve" : next === "fixed" ? { value } : { from: 0, to: value === 0 ? 1 : value })} />
+      <Select
+        label={`${label}${unit === "" ? "" : `, ${unit}`}`}
+        value={sort}
+        options={sorts}
+        onChoose={(next) => onChange(next === "solve" ? "solve" : next === "fixed" ? { value } : { from: 0, to: value === 0 ? 1 : value })}
+      />
       {amount !== "solve" && !("from" in amount) && <UncertainField label="Amount" value={amount} onChange={onChange} />}
       {ends !== null && (
         <div className="grid grid-cols-2 gap-3">
@@ -51,7 +56,17 @@ export function AmountFields({ label, amount, unit, onChange }: AmountFieldsProp
 }
 
 /** One number with its σ in one field: `32.3 ± 0.5`, `32.3(5)`. `factor` is what the shown number is multiplied by against the kept one. */
-export function UncertainField({ label, value, factor = 1, onChange }: { readonly label: string; readonly value: { readonly value: number; readonly sigma?: number | undefined }; readonly factor?: number; onChange(next: { value: number; sigma?: number }): void }) {
+export function UncertainField({
+  label,
+  value,
+  factor = 1,
+  onChange,
+}: {
+  readonly label: string;
+  readonly value: { readonly value: number; readonly sigma?: number | undefined };
+  readonly factor?: number;
+  onChange(next: { value: number; sigma?: number }): void;
+}) {
   const [problem, setProblem] = useState<string | null>(null);
   const clean = (n: number): number => Number(n.toPrecision(12));
   const text = String(clean(value.value * factor)) + (value.sigma === undefined ? "" : ` ± ${clean(value.sigma * factor)}`);

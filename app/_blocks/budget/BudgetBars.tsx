@@ -39,7 +39,12 @@ export function BudgetBars({ block, result }: { readonly block: BudgetBlock; rea
               <span style={{ width: `${p.kept * 100}%` }} />
               {p.left > 0 && (
                 <span className="relative border-l border-ink" style={{ width: `${p.left * 100}%`, backgroundImage: hatch }}>
-                  {(p.moved ?? 0) > 0 && <span className="absolute inset-y-0 right-0 border-l border-ink bg-indigo" style={{ width: `${Math.min(100, ((p.moved ?? 0) / p.left) * 100)}%` }} />}
+                  {(p.moved ?? 0) > 0 && (
+                    <span
+                      className="absolute inset-y-0 right-0 border-l border-ink bg-indigo"
+                      style={{ width: `${Math.min(100, ((p.moved ?? 0) / p.left) * 100)}%` }}
+                    />
+                  )}
                 </span>
               )}
             </dd>
@@ -61,7 +66,11 @@ export function BudgetBars({ block, result }: { readonly block: BudgetBlock; rea
 function Key({ label, background }: { readonly label: string; readonly background?: string }) {
   return (
     <span className="inline-flex items-center gap-1.5">
-      <span aria-hidden="true" className="inline-block h-2.5 w-5 border border-ink" style={background === undefined ? undefined : { backgroundImage: background }} />
+      <span
+        aria-hidden="true"
+        className="inline-block h-2.5 w-5 border border-ink"
+        style={background === undefined ? undefined : { backgroundImage: background }}
+      />
       {label}
     </span>
   );

@@ -42,9 +42,13 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
   const [open, setOpen] = useState<number | null>(null);
   const edits = view.mode === "edit" ? view.edits : null;
   const form = view.settings.uncertainty;
-  const problem = (field: string): string | null => result?.problems.find((p) => p.field === field || p.field?.startsWith(`${field}.`) === true || p.field?.startsWith(`${field}[`) === true)?.text ?? null;
+  const problem = (field: string): string | null =>
+    result?.problems.find((p) => p.field === field || p.field?.startsWith(`${field}.`) === true || p.field?.startsWith(`${field}[`) === true)?.text ?? null;
   const start: Phrase = ["start ", { name: substanceName(block.start, view.bodies) }];
-  const target: Phrase = block.target === undefined ? ["no target"] : targetPhrase(block.target, view.bodies, sharedBasis(result?.report.filter((r) => r.target !== null) ?? []), form);
+  const target: Phrase =
+    block.target === undefined
+      ? ["no target"]
+      : targetPhrase(block.target, view.bodies, sharedBasis(result?.report.filter((r) => r.target !== null) ?? []), form);
   const phrases = block.steps.map((step) => stepPhrase(step, view.bodies, form));
   if (edits === null) {
     return (
@@ -66,8 +70,21 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
     <div className="text-margin leading-5">
       <ul className="flex flex-wrap gap-x-5">
         <li>
-          <Popover label="Start" trigger={<Button look="quiet" className={words} aria-label={`Change: ${phraseText(start)}`}><Words phrase={start} /></Button>}>
-            <SubstanceFields label="The budget starts at" what={block.start} view={view} problem={problem("start")} onChange={(next) => run(() => edits.setField(blockKey, "start", next))} />
+          <Popover
+            label="Start"
+            trigger={
+              <Button look="quiet" className={words} aria-label={`Change: ${phraseText(start)}`}>
+                <Words phrase={start} />
+              </Button>
+            }
+          >
+            <SubstanceFields
+              label="The budget starts at"
+              what={block.start}
+              view={view}
+              problem={problem("start")}
+              onChange={(next) => run(() => edits.setField(blockKey, "start", next))}
+            />
           </Popover>
         </li>
         {block.steps.map((step, index) => {
@@ -79,14 +96,33 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
                 label={said}
                 open={open === index}
                 onOpenChange={(next) => setOpen(next ? index : null)}
-                trigger={<Button look="quiet" className={words} aria-label={`Change: ${said}`}><Words phrase={phrase} /></Button>}
+                trigger={
+                  <Button look="quiet" className={words} aria-label={`Change: ${said}`}>
+                    <Words phrase={phrase} />
+                  </Button>
+                }
               >
-                <StepFields step={step} view={view} problem={problem(`steps.${index}`) ?? problem(`steps[${index}]`)} onChange={(next) => change(index, step, next)} />
+                <StepFields
+                  step={step}
+                  view={view}
+                  problem={problem(`steps.${index}`) ?? problem(`steps[${index}]`)}
+                  onChange={(next) => change(index, step, next)}
+                />
                 <div className="mt-3 flex gap-3 border-t border-hairline pt-2">
-                  <IconButton look="quiet" label="Earlier" disabled={index === 0} onClick={() => run(() => shiftEntry(edits, blockKey, "steps", index, step, -1))}>
+                  <IconButton
+                    look="quiet"
+                    label="Earlier"
+                    disabled={index === 0}
+                    onClick={() => run(() => shiftEntry(edits, blockKey, "steps", index, step, -1))}
+                  >
                     <IconUp />
                   </IconButton>
-                  <IconButton look="quiet" label="Later" disabled={index === block.steps.length - 1} onClick={() => run(() => shiftEntry(edits, blockKey, "steps", index, step, 1))}>
+                  <IconButton
+                    look="quiet"
+                    label="Later"
+                    disabled={index === block.steps.length - 1}
+                    onClick={() => run(() => shiftEntry(edits, blockKey, "steps", index, step, 1))}
+                  >
                     <IconDown />
                   </IconButton>
                   <IconButton
@@ -106,8 +142,20 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
           );
         })}
         <li>
-          <Popover label="Target" trigger={<Button look="quiet" className={words} aria-label={`Change: ${phraseText(target)}`}><Words phrase={target} /></Button>}>
-            <TargetFields target={block.target} view={view} problem={problem("target")} onChange={(next) => run(() => edits.setField(blockKey, "target", next))} />
+          <Popover
+            label="Target"
+            trigger={
+              <Button look="quiet" className={words} aria-label={`Change: ${phraseText(target)}`}>
+                <Words phrase={target} />
+              </Button>
+            }
+          >
+            <TargetFields
+              target={block.target}
+              view={view}
+              problem={problem("target")}
+              onChange={(next) => run(() => edits.setField(blockKey, "target", next))}
+            />
           </Popover>
         </li>
       </ul>

@@ -47,7 +47,12 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
       {result === undefined && <p className="text-second">Calculating for the first time.</p>}
       {solved !== undefined && (
         <p className="font-mono text-solved font-medium max-[719px]:text-trace">
-          <button type="button" aria-label={`Trace the solved amount, ${withUnit(formatValue(solved.value, solved.sigma, { form }), solved.unit)}`} className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo" onClick={() => view.trace({ block: block.id, name: "solved" })}>
+          <button
+            type="button"
+            aria-label={`Trace the solved amount, ${withUnit(formatValue(solved.value, solved.sigma, { form }), solved.unit)}`}
+            className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo"
+            onClick={() => view.trace({ block: block.id, name: "solved" })}
+          >
             {formatValue(solved.value, solved.sigma, { form })}
           </button>
           <small className="ml-2 font-sans text-[14px] font-normal">
@@ -56,7 +61,11 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
           </small>
         </p>
       )}
-      {otherRoots.length > 0 && <p className="text-margin text-second">Also reached at {otherRoots.map((root) => formatNumber(root, 4)).join(", ")}; the smallest physical amount is taken.</p>}
+      {otherRoots.length > 0 && (
+        <p className="text-margin text-second">
+          Also reached at {otherRoots.map((root) => formatNumber(root, 4)).join(", ")}; the smallest physical amount is taken.
+        </p>
+      )}
       <BudgetSteps blockKey={blockKey} block={block} result={result} view={view} />
       {problems.map((p, index) => (
         <p key={index} className={p.severity === "error" ? "mt-2 text-vermilion" : "mt-2 text-margin text-second"}>
@@ -78,7 +87,9 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
           {result.left !== undefined && <LeftBehind left={result.left} />}
         </>
       )}
-      {block.steps.length === 0 && <p className="mt-2 text-second">{view.mode === "edit" ? "No step yet. Add one, and say what it must reach." : "This budget has no steps."}</p>}
+      {block.steps.length === 0 && (
+        <p className="mt-2 text-second">{view.mode === "edit" ? "No step yet. Add one, and say what it must reach." : "This budget has no steps."}</p>
+      )}
     </div>
   );
 }

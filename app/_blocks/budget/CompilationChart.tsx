@@ -4,7 +4,15 @@ import type { BudgetResult } from "@/cells";
 import { compilationName } from "./budgetWords";
 
 /** The solved amount for each pair of compilations at hand: the choice alone moves the answer. */
-export function CompilationChart({ result, bodies, form }: { readonly result: BudgetResult; readonly bodies: Readonly<Record<string, string>>; readonly form: UncertaintyForm }) {
+export function CompilationChart({
+  result,
+  bodies,
+  form,
+}: {
+  readonly result: BudgetResult;
+  readonly bodies: Readonly<Record<string, string>>;
+  readonly form: UncertaintyForm;
+}) {
   const rows = result.byCompilation;
   const solved = rows.flatMap((r) => (r.solved === null ? [] : [r.solved - (r.sigma ?? 0), r.solved + (r.sigma ?? 0)]));
   if (rows.length < 2 || solved.length === 0) return null;
@@ -45,13 +53,27 @@ export function CompilationChart({ result, bodies, form }: { readonly result: Bu
                   <path d="M0 8.5H100" stroke="var(--hairline)" vectorEffect="non-scaling-stroke" />
                   {row.solved !== null && (
                     <>
-                      {row.sigma !== null && <path d={`M${at(row.solved - row.sigma)} 8.5H${at(row.solved + row.sigma)}`} stroke="var(--ink)" strokeWidth={1.2} vectorEffect="non-scaling-stroke" />}
-                      <path d={`M${at(row.solved)} 3V14`} stroke={isPresent ? "var(--indigo)" : "var(--ink)"} strokeWidth={3} vectorEffect="non-scaling-stroke" />
+                      {row.sigma !== null && (
+                        <path
+                          d={`M${at(row.solved - row.sigma)} 8.5H${at(row.solved + row.sigma)}`}
+                          stroke="var(--ink)"
+                          strokeWidth={1.2}
+                          vectorEffect="non-scaling-stroke"
+                        />
+                      )}
+                      <path
+                        d={`M${at(row.solved)} 3V14`}
+                        stroke={isPresent ? "var(--indigo)" : "var(--ink)"}
+                        strokeWidth={3}
+                        vectorEffect="non-scaling-stroke"
+                      />
                     </>
                   )}
                 </svg>
               </td>
-              <td className="w-px pl-4 text-right font-mono whitespace-nowrap text-second">{row.solved === null ? "no answer" : formatValue(row.solved, row.sigma, { form, unknown: "" })}</td>
+              <td className="w-px pl-4 text-right font-mono whitespace-nowrap text-second">
+                {row.solved === null ? "no answer" : formatValue(row.solved, row.sigma, { form, unknown: "" })}
+              </td>
             </tr>
           );
         })}

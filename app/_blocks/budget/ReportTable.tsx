@@ -79,7 +79,12 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
               <Value value={r.start} sigma={r.startSigma} form={form} unknown="" />
             </td>
             <td className={cell}>
-              <button type="button" className="border-b border-transparent hover:border-indigo focus-visible:border-indigo" onClick={() => onTrace(r.expression)} title="Where this number comes from">
+              <button
+                type="button"
+                className="border-b border-transparent hover:border-indigo focus-visible:border-indigo"
+                onClick={() => onTrace(r.expression)}
+                title="Where this number comes from"
+              >
                 <Value value={r.end} sigma={r.sigma} form={form} unknown="" />
               </button>
             </td>
@@ -88,7 +93,9 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
                 <td className={cell}>
                   <Value value={r.target} sigma={r.targetSigma} form={form} unknown="" />
                 </td>
-                <td className={classNames(cell, "max-[719px]:hidden")}>{(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}</td>
+                <td className={classNames(cell, "max-[719px]:hidden")}>
+                  {(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}
+                </td>
                 <td className={classNames(cell, "font-mono whitespace-nowrap")}>
                   {isSolvedFor(r, block.target) && result.solved !== undefined ? (
                     <span className="text-second">solved for</span>

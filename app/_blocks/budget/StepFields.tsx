@@ -42,12 +42,20 @@ export function StepFields({ step, view, problem = null, onChange }: StepFieldsP
           value={typeof step.species === "string" ? step.species : step.species.join(", ")}
           problem={problem}
           onCommit={(text) => {
-            const species = text.split(",").map((t) => t.trim()).filter((t) => t !== "");
+            const species = text
+              .split(",")
+              .map((t) => t.trim())
+              .filter((t) => t !== "");
             const [first] = species;
             if (first !== undefined) onChange({ ...step, species: species.length === 1 ? first : species });
           }}
         />
-        <UncertainField label="Metal, % of the whole" factor={100} value={step.metalFraction} onChange={(metalFraction) => onChange({ ...step, metalFraction })} />
+        <UncertainField
+          label="Metal, % of the whole"
+          factor={100}
+          value={step.metalFraction}
+          onChange={(metalFraction) => onChange({ ...step, metalFraction })}
+        />
         <AmountFields label="In the metal" unit="wt%" amount={step.amount} onChange={(amount) => onChange({ ...step, amount })} />
         <CommitField
           label="The rest of the metal is"
@@ -104,8 +112,19 @@ export function StepFields({ step, view, problem = null, onChange }: StepFieldsP
   }
   return (
     <div className="grid gap-3">
-      <SubstanceFields label={step.do === "add" ? "What is added" : step.do === "remove" ? "What is removed" : "What is mixed in"} what={step.what} view={view} problem={problem} onChange={(what) => onChange({ ...step, what })} />
-      <AmountFields label={step.do === "mix" ? "Its mass fraction in the mixture" : "Amount"} unit={amountUnit(step)} amount={step.amount} onChange={(amount) => onChange({ ...step, amount })} />
+      <SubstanceFields
+        label={step.do === "add" ? "What is added" : step.do === "remove" ? "What is removed" : "What is mixed in"}
+        what={step.what}
+        view={view}
+        problem={problem}
+        onChange={(what) => onChange({ ...step, what })}
+      />
+      <AmountFields
+        label={step.do === "mix" ? "Its mass fraction in the mixture" : "Amount"}
+        unit={amountUnit(step)}
+        amount={step.amount}
+        onChange={(amount) => onChange({ ...step, amount })}
+      />
     </div>
   );
 }

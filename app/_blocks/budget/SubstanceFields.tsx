@@ -62,17 +62,64 @@ export function SubstanceFields({ label, what, view, problem = null, onChange }:
   const bodies = Object.entries(view.bodies);
   return (
     <div className="grid gap-3">
-      <Select label={label} value={sort} options={tables.length === 0 ? sorts.filter((s) => s.value !== "sample" && s.value !== "class") : sorts} onChoose={(next) => onChange(start(next))} />
+      <Select
+        label={label}
+        value={sort}
+        options={tables.length === 0 ? sorts.filter((s) => s.value !== "sample" && s.value !== "class") : sorts}
+        onChoose={(next) => onChange(start(next))}
+      />
       {"body" in what && (
-        <CommitField label="Body" mono value={what.body} problem={problem} hint={bodies.length === 0 ? "A compilation's name, as CI_PLJ14." : `On this page ${bodies.map(([a, id]) => `${a} is ${id}`).join(", ")}; or a compilation's own name.`} onCommit={(body) => onChange({ body: body.trim() })} />
+        <CommitField
+          label="Body"
+          mono
+          value={what.body}
+          problem={problem}
+          hint={
+            bodies.length === 0
+              ? "A compilation's name, as CI_PLJ14."
+              : `On this page ${bodies.map(([a, id]) => `${a} is ${id}`).join(", ")}; or a compilation's own name.`
+          }
+          onCommit={(body) => onChange({ body: body.trim() })}
+        />
       )}
-      {"phase" in what && <CommitField label="Phase, or its formula" mono value={what.phase} placeholder="forsterite" problem={problem} onCommit={(phase) => onChange({ phase: phase.trim() })} />}
-      {"element" in what && <CommitField label="Element" mono value={what.element} problem={problem} onCommit={(element) => onChange({ element: element.trim() })} />}
+      {"phase" in what && (
+        <CommitField
+          label="Phase, or its formula"
+          mono
+          value={what.phase}
+          placeholder="forsterite"
+          problem={problem}
+          onCommit={(phase) => onChange({ phase: phase.trim() })}
+        />
+      )}
+      {"element" in what && (
+        <CommitField label="Element" mono value={what.element} problem={problem} onCommit={(element) => onChange({ element: element.trim() })} />
+      )}
       {"data" in what && (
         <>
           <Select label="Table" value={what.data} options={withCurrent(tables, what.data)} onChoose={(next) => onChange({ ...what, data: next })} />
-          {"sample" in what && <Select label="Sample" value={what.sample} options={withCurrent(samples.map((s) => ({ value: s, label: s })), what.sample)} onChoose={(sample) => onChange({ data: what.data, sample })} />}
-          {"class" in what && <Select label="Class" value={what.class} options={withCurrent(classes.map((c) => ({ value: c, label: c })), what.class)} onChoose={(name) => onChange({ data: what.data, class: name })} />}
+          {"sample" in what && (
+            <Select
+              label="Sample"
+              value={what.sample}
+              options={withCurrent(
+                samples.map((s) => ({ value: s, label: s })),
+                what.sample,
+              )}
+              onChoose={(sample) => onChange({ data: what.data, sample })}
+            />
+          )}
+          {"class" in what && (
+            <Select
+              label="Class"
+              value={what.class}
+              options={withCurrent(
+                classes.map((c) => ({ value: c, label: c })),
+                what.class,
+              )}
+              onChoose={(name) => onChange({ data: what.data, class: name })}
+            />
+          )}
         </>
       )}
       {"composition" in what && (

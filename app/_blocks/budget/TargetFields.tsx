@@ -56,12 +56,16 @@ export function TargetFields({ target, view, problem = null, onChange }: TargetF
       {target !== undefined && "expression" in target && (
         <>
           <CommitField label="Ratio" mono value={target.expression} problem={problem} onCommit={(text) => onChange({ ...target, expression: text.trim() })} />
-          {"body" in target.equals && <CommitField label="Of the body" mono value={target.equals.body} onCommit={(text) => onChange({ ...target, equals: { body: text.trim() } })} />}
+          {"body" in target.equals && (
+            <CommitField label="Of the body" mono value={target.equals.body} onCommit={(text) => onChange({ ...target, equals: { body: text.trim() } })} />
+          )}
           {"value" in target.equals && <ValueTarget target={target} onChange={onChange} />}
           {"sample" in target.equals && <SampleTarget target={target} view={view} onChange={onChange} />}
         </>
       )}
-      {target !== undefined && "trend" in target && <Select label="Trend" value={target.trend} options={withCurrent(trends, target.trend)} onChoose={(trend) => onChange({ trend })} />}
+      {target !== undefined && "trend" in target && (
+        <Select label="Trend" value={target.trend} options={withCurrent(trends, target.trend)} onChoose={(trend) => onChange({ trend })} />
+      )}
     </div>
   );
 }
@@ -92,7 +96,12 @@ function SampleTarget({ target, view, onChange }: { readonly target: ExpressionT
   if (!("sample" in equals)) return null;
   return (
     <>
-      <Select label="Table" value={equals.data} options={withCurrent(handleChoices(view, "data"), equals.data)} onChoose={(data) => onChange({ ...target, equals: { ...equals, data } })} />
+      <Select
+        label="Table"
+        value={equals.data}
+        options={withCurrent(handleChoices(view, "data"), equals.data)}
+        onChoose={(data) => onChange({ ...target, equals: { ...equals, data } })}
+      />
       <CommitField label="Sample" mono value={equals.sample} onCommit={(sample) => onChange({ ...target, equals: { ...equals, sample: sample.trim() } })} />
     </>
   );

@@ -19,7 +19,9 @@ export function substanceName(what: Substance, bodies: Readonly<Record<string, s
   if ("sample" in what) return `${what.sample} of ${what.data}`;
   if ("data" in what) return `row ${what.row} of ${what.data}`;
   const parts = Object.entries(what.composition);
-  return parts.length === 0 ? "an empty composition" : parts.map(([species, v]) => `${species} ${formatNumber(typeof v === "number" ? v : v.value, 4)}`).join(", ");
+  return parts.length === 0
+    ? "an empty composition"
+    : parts.map(([species, v]) => `${species} ${formatNumber(typeof v === "number" ? v : v.value, 4)}`).join(", ");
 }
 
 /** A number as a person typed it: no zeros added, none of the noise of a factor. */
@@ -28,7 +30,9 @@ function asTyped(value: number): string {
 }
 
 function fixed(amount: { readonly value: number; readonly sigma?: number | undefined }, factor: number, form: UncertaintyForm): string {
-  return amount.sigma === undefined || amount.sigma === 0 ? asTyped(amount.value * factor) : formatValue(amount.value * factor, amount.sigma * factor, { form });
+  return amount.sigma === undefined || amount.sigma === 0
+    ? asTyped(amount.value * factor)
+    : formatValue(amount.value * factor, amount.sigma * factor, { form });
 }
 
 /** Unit in which a step's amount is written. */
@@ -55,7 +59,12 @@ export function stepPhrase(step: Step, bodies: Readonly<Record<string, string>>,
   if (step.do === "extract melt") {
     const elements = Object.keys(step.coefficients);
     const melt: Phrase = step.melt === undefined ? [] : [" of ", { name: substanceName(step.melt, bodies) }];
-    return [`extract melt, ${step.model}, fraction `, ...amount, ...melt, elements.length === 0 ? "" : `, D of ${listed(elements.slice(0, 4))}${elements.length > 4 ? " …" : ""}`];
+    return [
+      `extract melt, ${step.model}, fraction `,
+      ...amount,
+      ...melt,
+      elements.length === 0 ? "" : `, D of ${listed(elements.slice(0, 4))}${elements.length > 4 ? " …" : ""}`,
+    ];
   }
   const verb = step.do === "mix" ? "mix in " : `${step.do} `;
   return [verb, { name: substanceName(step.what, bodies) }, ", ", ...amount];
@@ -105,13 +114,22 @@ export function verdictOf(block: BudgetBlock, result: BudgetResult): Verdict | n
   const others = result.report.filter((r) => r !== solvedFor && r.miss !== null);
   if (others.length === 0) return null;
   const metal = block.steps.find((s) => s.do === "share with metal");
-  const subject = metal?.do === "share with metal" && metal.amount === "solve" && typeof metal.species === "string" ? sentence(`${elementName(metal.species)} in the metal`) : result.solved === undefined ? "This balance" : "The solved amount";
+  const subject =
+    metal?.do === "share with metal" && metal.amount === "solve" && typeof metal.species === "string"
+      ? sentence(`${elementName(metal.species)} in the metal`)
+      : result.solved === undefined
+        ? "This balance"
+        : "The solved amount";
   const aim = targetName(block.target);
   const opening = solvedFor === undefined ? subject : `${subject} brings ${compactExpression(solvedFor.expression)} to ${aim}`;
   const missed = others.filter((r) => Math.abs(r.miss ?? 0) > tooFar);
   if (missed.length === 0) {
     const names = listed(others.map((r) => `${compactExpression(r.expression)} within ${Math.max(0.1, Math.abs(r.miss ?? 0)).toFixed(1)}σ`));
-    return { before: solvedFor === undefined ? `${subject} leaves ${names} of ${aim}.` : `${opening} and leaves ${names}.`, against: "", after: " Nothing reported here speaks against it." };
+    return {
+      before: solvedFor === undefined ? `${subject} leaves ${names} of ${aim}.` : `${opening} and leaves ${names}.`,
+      against: "",
+      after: " Nothing reported here speaks against it.",
+    };
   }
   const parts = missed.map((r) => `${compactExpression(r.expression)} ${Math.abs(r.miss ?? 0).toFixed(1)}σ too ${(r.miss ?? 0) > 0 ? "high" : "low"}`);
   return { before: `${opening}${solvedFor === undefined ? " leaves " : " but leaves "}`, against: listed(parts), after: ". One mechanism is not enough." };

@@ -63,7 +63,12 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
         lineDecorations(hosts),
         formulaHighlight,
         formulaLook,
-        isReadOnly ? [] : [formulaCompletion(() => suggestionsFor(latest.current.block, latest.current.view.results, latest.current.view.bodies)), keymap.of(completionKeymap)],
+        isReadOnly
+          ? []
+          : [
+              formulaCompletion(() => suggestionsFor(latest.current.block, latest.current.view.results, latest.current.view.bodies)),
+              keymap.of(completionKeymap),
+            ],
         watchText(setWritten),
       ],
     });
@@ -99,13 +104,24 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
         const host = places.get(line.ordinal);
         if (host === undefined) return null;
         return createPortal(
-          <LineHead block={block.id} line={line} result={resultFor(line, result?.lines ?? [])} table={table} picked={picked} view={view} reachesMargin={reachesMargin} isStale={!answeredLines.has(written.slice(line.from, line.to).trim())} />,
+          <LineHead
+            block={block.id}
+            line={line}
+            result={resultFor(line, result?.lines ?? [])}
+            table={table}
+            picked={picked}
+            view={view}
+            reachesMargin={reachesMargin}
+            isStale={!answeredLines.has(written.slice(line.from, line.to).trim())}
+          />,
           host,
           String(line.ordinal),
         );
       })}
       {written.trim() === "" && (
-        <p className="pointer-events-none -mt-6 pl-6 text-second">{isReadOnly ? "No formula is written here." : "Write a line: a name, an equals sign, an expression. For example mg_si = Mg / Si"}</p>
+        <p className="pointer-events-none -mt-6 pl-6 text-second">
+          {isReadOnly ? "No formula is written here." : "Write a line: a name, an equals sign, an expression. For example mg_si = Mg / Si"}
+        </p>
       )}
       {elsewhere.map((p, index) => (
         <p key={index} className={p.severity === "error" ? "mt-2 text-vermilion" : "mt-2 text-margin text-second"}>
@@ -113,7 +129,10 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
         </p>
       ))}
       <p className="sr-only" aria-live="polite">
-        {(problems ?? []).filter((p) => p.severity === "error" && !elsewhere.includes(p)).map((p) => p.text).join(" ")}
+        {(problems ?? [])
+          .filter((p) => p.severity === "error" && !elsewhere.includes(p))
+          .map((p) => p.text)
+          .join(" ")}
       </p>
     </div>
   );

@@ -32,16 +32,25 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
       <div className={classNames("flex flex-wrap items-baseline gap-x-4 leading-6 transition-opacity delay-300 duration-200", isStale && "opacity-60")}>
         <b className="font-mono text-result font-medium">{line.name}</b>
         {isSingle ? (
-          <button type="button" className="border-b border-transparent font-mono text-result hover:border-indigo hover:text-indigo focus-visible:border-indigo" onClick={() => view.trace({ block, name: line.name })} aria-label={`Trace ${line.name}, ${range}`}>
+          <button
+            type="button"
+            className="border-b border-transparent font-mono text-result hover:border-indigo hover:text-indigo focus-visible:border-indigo"
+            onClick={() => view.trace({ block, name: line.name })}
+            aria-label={`Trace ${line.name}, ${range}`}
+          >
             {range}
           </button>
         ) : (
           <span className={classNames("font-mono text-result", result !== undefined && !result.ok && "text-vermilion")}>{range}</span>
         )}
-        <span className="text-margin text-second max-[719px]:basis-full">{result === undefined ? (view.mode === "edit" ? "calculating" : "") : natureText(result)}</span>
+        <span className="text-margin text-second max-[719px]:basis-full">
+          {result === undefined ? (view.mode === "edit" ? "calculating" : "") : natureText(result)}
+        </span>
         <span className="ml-auto text-margin text-second max-[719px]:ml-0 max-[719px]:basis-full">{result === undefined ? "" : countsText(result)}</span>
       </div>
-      {result?.ok && (result.perSample || result.byClass !== undefined) && <LineStrip block={block} line={result} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />}
+      {result?.ok && (result.perSample || result.byClass !== undefined) && (
+        <LineStrip block={block} line={result} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />
+      )}
       {result?.ok && result.byClass !== undefined && (
         <dl className="flex flex-wrap gap-x-6 text-margin">
           {result.byClass.map((name, index) => (

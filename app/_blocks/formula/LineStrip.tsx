@@ -50,7 +50,14 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
   const onKeyDown = (event: KeyboardEvent): void => {
     const place = cursor === null ? -1 : walk.indexOf(cursor);
     const last = walk.length - 1;
-    const next = { ArrowRight: place + 1, ArrowUp: place + 1, ArrowLeft: place < 0 ? last : place - 1, ArrowDown: place < 0 ? last : place - 1, Home: 0, End: last }[event.key];
+    const next = {
+      ArrowRight: place + 1,
+      ArrowUp: place + 1,
+      ArrowLeft: place < 0 ? last : place - 1,
+      ArrowDown: place < 0 ? last : place - 1,
+      Home: 0,
+      End: last,
+    }[event.key];
     if (next !== undefined) {
       event.preventDefault();
       setCursor(walk[Math.min(Math.max(next, 0), last)] ?? null);
@@ -89,9 +96,18 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
         <svg viewBox="0 0 1000 20" preserveAspectRatio="none" width="100%" height="20" aria-hidden="true" className="block overflow-visible">
           <path d="M0 19.5H1000" stroke="var(--axis)" vectorEffect="non-scaling-stroke" />
           {strip.classes.map((one) => (
-            <path key={one.class} d={tickPath(one.slots, 5)} fill="none" stroke={classLine(one.class === "" ? -1 : view.classIndex(one.class))} strokeWidth={1.4} vectorEffect="non-scaling-stroke" />
+            <path
+              key={one.class}
+              d={tickPath(one.slots, 5)}
+              fill="none"
+              stroke={classLine(one.class === "" ? -1 : view.classIndex(one.class))}
+              strokeWidth={1.4}
+              vectorEffect="non-scaling-stroke"
+            />
           ))}
-          {drawnPicks.length > 0 && <path d={tickPath(drawnPicks.map(slot), 0)} fill="none" stroke="var(--indigo)" strokeWidth={2} vectorEffect="non-scaling-stroke" />}
+          {drawnPicks.length > 0 && (
+            <path d={tickPath(drawnPicks.map(slot), 0)} fill="none" stroke="var(--indigo)" strokeWidth={2} vectorEffect="non-scaling-stroke" />
+          )}
           {cursor !== null && <path d={tickPath([slot(cursor)], 0)} fill="none" stroke="var(--indigo)" strokeWidth={2} vectorEffect="non-scaling-stroke" />}
         </svg>
       </div>
@@ -145,14 +161,25 @@ function Pick({ at, name, value, asks, leads, onTrace }: PickProps) {
       >
         {name}{" "}
         {asks ? (
-          <button type="button" className="pointer-events-auto border-b border-indigo font-mono text-indigo" onClick={onTrace} aria-label={`Trace ${value} of ${name}`}>
+          <button
+            type="button"
+            className="pointer-events-auto border-b border-indigo font-mono text-indigo"
+            onClick={onTrace}
+            aria-label={`Trace ${value} of ${name}`}
+          >
             {value}
           </button>
         ) : (
           <span className="font-mono">{value}</span>
         )}
       </span>
-      {leads && <span aria-hidden="true" className="absolute -right-[120px] top-0 border-t border-indigo max-[1199px]:hidden" style={{ left: turns ? percentOf(at) : `calc(${percentOf(at)} + 14ch)` }} />}
+      {leads && (
+        <span
+          aria-hidden="true"
+          className="absolute -right-[120px] top-0 border-t border-indigo max-[1199px]:hidden"
+          style={{ left: turns ? percentOf(at) : `calc(${percentOf(at)} + 14ch)` }}
+        />
+      )}
     </>
   );
 }

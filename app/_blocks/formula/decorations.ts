@@ -106,7 +106,9 @@ function problemDecorations(state: EditorState, problems: readonly PlacedProblem
     const to = Math.min(Math.max(problem.to, problem.from + 1), line.to);
     if (to > problem.from) ranges.push(Decoration.mark({ class: `cm-problem cm-problem-${problem.severity}` }).range(problem.from, to));
     const column = problem.from - line.from;
-    ranges.push(Decoration.widget({ widget: new ProblemWidget(column > furthestLead ? 0 : column, problem.severity, problem.text), block: true, side: 1 }).range(line.to));
+    ranges.push(
+      Decoration.widget({ widget: new ProblemWidget(column > furthestLead ? 0 : column, problem.severity, problem.text), block: true, side: 1 }).range(line.to),
+    );
   }
   return Decoration.set(ranges, true);
 }
@@ -127,5 +129,7 @@ export function lineDecorations(hosts: HeadHosts): Extension {
 
 /** The problems of a block that stand in its text; the others belong elsewhere. */
 export function placedProblems(all: readonly Problem[]): readonly PlacedProblem[] {
-  return all.flatMap((p) => (p.span !== undefined && (p.field === undefined || p.field === "text") ? [{ from: p.span[0], to: p.span[1], severity: p.severity, text: p.text }] : []));
+  return all.flatMap((p) =>
+    p.span !== undefined && (p.field === undefined || p.field === "text") ? [{ from: p.span[0], to: p.span[1], severity: p.severity, text: p.text }] : [],
+  );
 }

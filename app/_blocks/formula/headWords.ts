@@ -17,7 +17,13 @@ export function natureText(line: LineResult): string {
   const parts = [basisInWords(line.basis), line.remark ?? ""].filter((part) => part !== "");
   if (line.perSample) {
     const typical = median(line.sigma);
-    parts.push(typical === null ? "σ unknown" : `median σ ${formatNumber(typical, 2).replace(/(\.\d*?)0+$/u, "$1").replace(/\.$/u, "")}`);
+    parts.push(
+      typical === null
+        ? "σ unknown"
+        : `median σ ${formatNumber(typical, 2)
+            .replace(/(\.\d*?)0+$/u, "$1")
+            .replace(/\.$/u, "")}`,
+    );
     const common = median(line.sigmaCommon);
     if (common !== null && typical !== null && common > 0.05 * typical) parts.push("part of σ is common to all");
   }
@@ -39,7 +45,8 @@ export function countsText(line: LineResult): string {
 export function stateInWords(result: FormulaResult | undefined): { readonly text: string; readonly problem: boolean } {
   if (result === undefined) return { text: "", problem: false };
   const failed = result.lines.filter((line) => !line.ok).length;
-  if (failed > 0) return { text: `${failed} line${failed === 1 ? "" : "s"} of ${result.lines.length} ${failed === 1 ? "has" : "have"} a problem`, problem: true };
+  if (failed > 0)
+    return { text: `${failed} line${failed === 1 ? "" : "s"} of ${result.lines.length} ${failed === 1 ? "has" : "have"} a problem`, problem: true };
   if (result.problems.some((p) => p.severity === "error")) return { text: "has a problem", problem: true };
   return { text: result.lines.length === 0 ? "no lines yet" : counted(result.lines.length, "line"), problem: false };
 }

@@ -11,7 +11,7 @@ const token = /(#.*$)|("[^"]*"?)|(`[^`]*`?)|([\p{L}_][\p{L}\p{N}_]*)(?=\s*\()/gu
 function colour(view: EditorView): DecorationSet {
   const builder = new RangeSetBuilder<Decoration>();
   for (const { from, to } of view.visibleRanges) {
-    for (let at = from; at <= to; ) {
+    for (let at = from; at <= to;) {
       const line = view.state.doc.lineAt(at);
       for (const match of line.text.matchAll(token)) {
         const start = line.from + match.index;

@@ -49,5 +49,7 @@ export function resultFor(line: FormulaLine, results: readonly LineResult[]): Li
  * Results arrive later than typing; marks of an older text would stand under the wrong characters.
  */
 export function fitsText(lines: readonly FormulaLine[], results: readonly LineResult[]): boolean {
-  return results.every((result) => lines.some((line) => line.name === result.name && result.span[0] >= line.from && result.span[0] <= line.to && result.span[1] <= line.to + 1));
+  return results.every((result) =>
+    lines.some((line) => line.name === result.name && result.span[0] >= line.from && result.span[0] <= line.to && result.span[1] <= line.to + 1),
+  );
 }

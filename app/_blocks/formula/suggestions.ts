@@ -33,16 +33,31 @@ export function suggestionsFor(block: FormulaBlock, results: PageResults | null,
   for (const column of table?.columns ?? []) {
     if (column.kind === "quantity") {
       const summary = data?.columns.find((c) => c.name === column.name);
-      add(column.name, column.unit.symbol === "1" ? "no unit" : column.unit.symbol, summary === undefined ? "" : `Column of ${block.data}, ${counted(summary.n, "value")}.`, 5);
+      add(
+        column.name,
+        column.unit.symbol === "1" ? "no unit" : column.unit.symbol,
+        summary === undefined ? "" : `Column of ${block.data}, ${counted(summary.n, "value")}.`,
+        5,
+      );
     } else if (column.role === "class") add(column.name, "class", `Compare with a class in quotes: ${column.name} == "CV".`, 3);
   }
   for (const column of table?.columns ?? []) {
     if (column.kind !== "quantity" || column.species === undefined) continue;
-    for (const element of elementsIn(column.species)) if (element !== "O" || column.species === "O") add(element, "mass", `${element} from ${column.name}, by atomic weights.`, 4);
+    for (const element of elementsIn(column.species))
+      if (element !== "O" || column.species === "O") add(element, "mass", `${element} from ${column.name}, by atomic weights.`, 4);
   }
   for (const [handle, result] of results?.blocks ?? []) {
-    if (result.kind === "formula") for (const line of result.lines) add(handle === block.id ? line.name : `${handle}.${line.name}`, line.unit === "1" ? (line.basis === "mass" ? "by mass" : line.basis === "atoms" ? "by atoms" : "") : line.unit, `Line of ${handle}.`, 2, handle === block.id ? writeName(line.name) : `${handle}.${writeName(line.name)}`);
-    else if (result.kind === "trend") for (const part of ["slope", "intercept"]) add(`${handle}.${part}`, "", `Of the trend ${handle}.`, 0, `${handle}.${part}`);
+    if (result.kind === "formula")
+      for (const line of result.lines)
+        add(
+          handle === block.id ? line.name : `${handle}.${line.name}`,
+          line.unit === "1" ? (line.basis === "mass" ? "by mass" : line.basis === "atoms" ? "by atoms" : "") : line.unit,
+          `Line of ${handle}.`,
+          2,
+          handle === block.id ? writeName(line.name) : `${handle}.${writeName(line.name)}`,
+        );
+    else if (result.kind === "trend")
+      for (const part of ["slope", "intercept"]) add(`${handle}.${part}`, "", `Of the trend ${handle}.`, 0, `${handle}.${part}`);
     else if (result.kind === "budget") add(`${handle}.solved`, result.solved?.unit ?? "", `Solved amount of the budget ${handle}.`, 0, `${handle}.solved`);
   }
   for (const [alias, compilation] of Object.entries(bodies)) add(alias, "body", `Stands for ${compilation} on this page.`, 1);

@@ -16,7 +16,10 @@ export function LiveValue({ value, view }: { readonly value: NoteValue | undefin
       </span>
     );
   }
-  const text = withUnit(value.value !== null && value.sigma !== null ? formatValue(value.value, value.sigma, { form: view.settings.uncertainty }) : value.shown, value.unit);
+  const text = withUnit(
+    value.value !== null && value.sigma !== null ? formatValue(value.value, value.sigma, { form: view.settings.uncertainty }) : value.shown,
+    value.unit,
+  );
   const { trace } = value;
   if (trace === undefined) return <span className={`${look} border-second`}>{text}</span>;
   return (

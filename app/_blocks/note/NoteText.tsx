@@ -19,7 +19,9 @@ export interface NoteTextProps {
 
 const noValues: readonly NoteValue[] = [];
 const remark = [remarkGfm, remarkMath];
-const rehype: [typeof rehypeKatex, { trust: false; strict: "ignore"; throwOnError: false }][] = [[rehypeKatex, { trust: false, strict: "ignore", throwOnError: false }]];
+const rehype: [typeof rehypeKatex, { trust: false; strict: "ignore"; throwOnError: false }][] = [
+  [rehypeKatex, { trust: false, strict: "ignore", throwOnError: false }],
+];
 
 /** Addresses a note may lead to: other pages of the web by https, mail, and our own quotes. Everything else becomes plain text. */
 function allowed(url: string): string {

@@ -60,10 +60,19 @@ export function NoteView({ blockKey, block, view }: BlockViewProps<NoteBlock>) {
     <div ref={frame} className="group relative">
       {/* The pointer may begin anywhere in the text; the keyboard begins at the button, which lies behind it. */}
       <div className={classNames(type, "[&>p+p]:mt-2", mayWrite && "cursor-text")} onClick={begin}>
-        {block.text.trim() === "" ? <p className="text-second">{mayWrite ? "Write here." : "Nothing is written here."}</p> : <NoteText text={block.text} values={values} view={view} />}
+        {block.text.trim() === "" ? (
+          <p className="text-second">{mayWrite ? "Write here." : "Nothing is written here."}</p>
+        ) : (
+          <NoteText text={block.text} values={values} view={view} />
+        )}
       </div>
       {mayWrite && (
-        <Button data-write className="text-margin opacity-0 group-hover:opacity-100 focus-visible:opacity-100 [@media(hover:none)]:opacity-100" aria-label={`Write in ${label}`} onClick={() => setWriting(true)}>
+        <Button
+          data-write
+          className="text-margin opacity-0 group-hover:opacity-100 focus-visible:opacity-100 [@media(hover:none)]:opacity-100"
+          aria-label={`Write in ${label}`}
+          onClick={() => setWriting(true)}
+        >
           Write
         </Button>
       )}

@@ -19,7 +19,9 @@ export interface DrawnEditorProps {
 
 /** The fields of one line of a plot's list. */
 export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEditorProps) {
-  const ellipses = (value: Ellipses | undefined, fallback: Ellipses, change: (next: Ellipses) => void) => <Select label="Ellipses" value={value ?? fallback} options={ellipseChoices} onChoose={change} />;
+  const ellipses = (value: Ellipses | undefined, fallback: Ellipses, change: (next: Ellipses) => void) => (
+    <Select label="Ellipses" value={value ?? fallback} options={ellipseChoices} onChoose={change} />
+  );
   if ("data" in drawn) {
     const expression = (field: "x" | "y" | "z", label: string) => (
       <CommitField
@@ -36,7 +38,12 @@ export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEdi
     );
     return (
       <div className="grid gap-3">
-        <Select label="Samples of" value={drawn.data} options={withCurrent(handleChoices(view, "data"), drawn.data)} onChoose={(data) => onChange({ ...drawn, data })} />
+        <Select
+          label="Samples of"
+          value={drawn.data}
+          options={withCurrent(handleChoices(view, "data"), drawn.data)}
+          onChoose={(data) => onChange({ ...drawn, data })}
+        />
         {plot === "pattern" ? (
           <CommitField
             label="Values, parted by commas"
@@ -46,7 +53,10 @@ export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEdi
             problem={problemOf("values")}
             onCommit={(text) => {
               const { values: _, ...rest } = drawn;
-              const values = text.split(",").map((t) => t.trim()).filter((t) => t !== "");
+              const values = text
+                .split(",")
+                .map((t) => t.trim())
+                .filter((t) => t !== "");
               onChange(values.length === 0 ? rest : { ...rest, values });
             }}
           />
@@ -76,13 +86,43 @@ export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEdi
   if ("trend" in drawn) {
     return (
       <div className="grid gap-3">
-        <Select label="Trend" value={drawn.trend} options={withCurrent(handleChoices(view, "trend"), drawn.trend)} onChoose={(trend) => onChange({ ...drawn, trend })} />
-        <Select label="Band" value={drawn.band === false ? "none" : "95 %"} options={[{ value: "95 %", label: "95 %" }, { value: "none", label: "none" }]} onChoose={(band) => onChange({ ...drawn, band: band !== "none" })} />
+        <Select
+          label="Trend"
+          value={drawn.trend}
+          options={withCurrent(handleChoices(view, "trend"), drawn.trend)}
+          onChoose={(trend) => onChange({ ...drawn, trend })}
+        />
+        <Select
+          label="Band"
+          value={drawn.band === false ? "none" : "95 %"}
+          options={[
+            { value: "95 %", label: "95 %" },
+            { value: "none", label: "none" },
+          ]}
+          onChoose={(band) => onChange({ ...drawn, band: band !== "none" })}
+        />
       </div>
     );
   }
-  if ("crossing" in drawn) return <Select label="Crossing of the trend" hint="With the trend that it is set to cross." value={drawn.crossing} options={withCurrent(handleChoices(view, "trend"), drawn.crossing)} onChoose={(crossing) => onChange({ ...drawn, crossing })} />;
-  if ("budget" in drawn) return <Select label="Path of the budget" value={drawn.budget} options={withCurrent(handleChoices(view, "budget"), drawn.budget)} onChoose={(budget) => onChange({ ...drawn, budget })} />;
+  if ("crossing" in drawn)
+    return (
+      <Select
+        label="Crossing of the trend"
+        hint="With the trend that it is set to cross."
+        value={drawn.crossing}
+        options={withCurrent(handleChoices(view, "trend"), drawn.crossing)}
+        onChoose={(crossing) => onChange({ ...drawn, crossing })}
+      />
+    );
+  if ("budget" in drawn)
+    return (
+      <Select
+        label="Path of the budget"
+        value={drawn.budget}
+        options={withCurrent(handleChoices(view, "budget"), drawn.budget)}
+        onChoose={(budget) => onChange({ ...drawn, budget })}
+      />
+    );
   if ("bodies" in drawn) {
     return (
       <div className="grid gap-3">
@@ -90,10 +130,20 @@ export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEdi
           label="Bodies, parted by commas"
           mono
           placeholder="CI, BSE"
-          hint={Object.keys(view.bodies).length === 0 ? "This page has no short names for bodies yet." : `On this page: ${Object.keys(view.bodies).join(", ")}.`}
+          hint={
+            Object.keys(view.bodies).length === 0 ? "This page has no short names for bodies yet." : `On this page: ${Object.keys(view.bodies).join(", ")}.`
+          }
           value={drawn.bodies.join(", ")}
           problem={problemOf("bodies")}
-          onCommit={(text) => onChange({ ...drawn, bodies: text.split(",").map((t) => t.trim()).filter((t) => t !== "") })}
+          onCommit={(text) =>
+            onChange({
+              ...drawn,
+              bodies: text
+                .split(",")
+                .map((t) => t.trim())
+                .filter((t) => t !== ""),
+            })
+          }
         />
         {ellipses(drawn.ellipses, "1 sigma", (next) => onChange({ ...drawn, ellipses: next }))}
       </div>

@@ -28,7 +28,8 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
   const [open, setOpen] = useState<number | null>(null);
   const edits = view.mode === "edit" ? view.edits : null;
   const topFirst = block.drawn.map((drawn, index) => ({ drawn, index })).reverse();
-  const problemOf = (index: number, field: string): string | null => result?.problems.find((p) => p.field === `drawn[${index}].${field}` || p.field === `drawn.${index}.${field}`)?.text ?? null;
+  const problemOf = (index: number, field: string): string | null =>
+    result?.problems.find((p) => p.field === `drawn[${index}].${field}` || p.field === `drawn.${index}.${field}`)?.text ?? null;
   const change = (index: number, shown: Drawn, next: Drawn): void => {
     if (edits !== null) run(() => changeEntry(edits, blockKey, "drawn", index, shown, next));
   };
@@ -39,13 +40,25 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
         {topFirst.map(({ drawn, index }) => {
           const layer = result?.layers.find((l) => l.drawn === index);
           const words = drawnInWords(drawn, layer);
-          const toggled: Drawn = drawn.hidden === true ? (({ hidden: _, ...rest }) => rest)(drawn) as Drawn : { ...drawn, hidden: true };
+          const toggled: Drawn = drawn.hidden === true ? ((({ hidden: _, ...rest }) => rest)(drawn) as Drawn) : { ...drawn, hidden: true };
           return (
-            <li key={index} className={classNames("group relative grid grid-cols-[28px_1fr_auto] gap-x-1 border-b border-hairline pt-1.5 pb-[5px]", drawn.hidden && "text-second")}>
+            <li
+              key={index}
+              className={classNames(
+                "group relative grid grid-cols-[28px_1fr_auto] gap-x-1 border-b border-hairline pt-1.5 pb-[5px]",
+                drawn.hidden && "text-second",
+              )}
+            >
               {edits === null ? (
                 <span className="text-second">{drawn.hidden ? <IconEyeClosed size={18} /> : <IconEye size={18} />}</span>
               ) : (
-                <IconButton look="quiet" label={`${drawn.hidden ? "Show" : "Hide"} ${words.title}`} aria-pressed={!drawn.hidden} className="self-start" onClick={() => change(index, drawn, toggled)}>
+                <IconButton
+                  look="quiet"
+                  label={`${drawn.hidden ? "Show" : "Hide"} ${words.title}`}
+                  aria-pressed={!drawn.hidden}
+                  className="self-start"
+                  onClick={() => change(index, drawn, toggled)}
+                >
                   {drawn.hidden ? <IconEyeClosed size={18} /> : <IconEye size={18} />}
                 </IconButton>
               )}
@@ -57,9 +70,19 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
                     label={words.title}
                     open={open === index}
                     onOpenChange={(next) => setOpen(next ? index : null)}
-                    trigger={<Button look="plain" className="text-margin hover:text-indigo">{words.title}</Button>}
+                    trigger={
+                      <Button look="plain" className="text-margin hover:text-indigo">
+                        {words.title}
+                      </Button>
+                    }
                   >
-                    <DrawnEditor drawn={drawn} view={view} plot={block.plot} problemOf={(field) => problemOf(index, field)} onChange={(next) => change(index, drawn, next)} />
+                    <DrawnEditor
+                      drawn={drawn}
+                      view={view}
+                      plot={block.plot}
+                      problemOf={(field) => problemOf(index, field)}
+                      onChange={(next) => change(index, drawn, next)}
+                    />
                   </Popover>
                 )}
                 <span className="block break-words text-second">{words.says}</span>
@@ -68,10 +91,20 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
               {edits !== null && (
                 // Shown where the pointer or the focus is; always there for fingers.
                 <span className="absolute top-0 right-0 flex gap-1 bg-paper pl-1 opacity-0 group-focus-within:opacity-100 group-hover:opacity-100 [@media(hover:none)]:static [@media(hover:none)]:col-start-2 [@media(hover:none)]:opacity-100">
-                  <IconButton look="quiet" label={`Move ${words.title} up`} disabled={index === block.drawn.length - 1} onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, 1))}>
+                  <IconButton
+                    look="quiet"
+                    label={`Move ${words.title} up`}
+                    disabled={index === block.drawn.length - 1}
+                    onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, 1))}
+                  >
                     <IconUp />
                   </IconButton>
-                  <IconButton look="quiet" label={`Move ${words.title} down`} disabled={index === 0} onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, -1))}>
+                  <IconButton
+                    look="quiet"
+                    label={`Move ${words.title} down`}
+                    disabled={index === 0}
+                    onClick={() => run(() => shiftEntry(edits, blockKey, "drawn", index, drawn, -1))}
+                  >
                     <IconDown />
                   </IconButton>
                   <IconButton look="quiet" label={`Take ${words.title} away`} onClick={() => run(() => dropEntry(edits, blockKey, "drawn", index, drawn))}>
@@ -87,7 +120,11 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
         <div className="pt-2">
           <Menu
             align="start"
-            items={newDrawn(block, view.blocks.map((b) => b.block), Object.keys(view.bodies)).map(({ label, drawn }) => ({
+            items={newDrawn(
+              block,
+              view.blocks.map((b) => b.block),
+              Object.keys(view.bodies),
+            ).map(({ label, drawn }) => ({
               label,
               onChoose: () => {
                 if (run(() => edits.putEntry(blockKey, "drawn", drawn))) setOpen(block.drawn.length);

@@ -52,7 +52,10 @@ function rangeOf(update: Readonly<Record<string, unknown>>, axis: "xaxis" | "yax
 
 /** Plotly's drawing surface: no modebar, no scrolling into it, no default look. In a chunk of its own that only a page with a plot fetches. */
 export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps) {
-  const config = useMemo(() => ({ displayModeBar: false, displaylogo: false, scrollZoom: false, staticPlot: false, doubleClick: "reset", showTips: false, responsive: false }), []);
+  const config = useMemo(
+    () => ({ displayModeBar: false, displaylogo: false, scrollZoom: false, staticPlot: false, doubleClick: "reset", showTips: false, responsive: false }),
+    [],
+  );
   const graph = useRef<HTMLElement | null>(null);
   const pickAll = (event: Selected | undefined): void => {
     // Plotly says "selected" again whenever it redraws; only a drag of the pointer has a range or an outline.

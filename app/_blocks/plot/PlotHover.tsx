@@ -21,7 +21,8 @@ export function PlotHover({ hovered, result, view, width }: PlotHoverProps) {
   const { ref } = hovered;
   const form = view.settings.uncertainty;
   const samples = result.layers.find((layer) => layer.what === "samples" && layer.data === ref.data);
-  const body = ref.index < 0 ? result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : [])).find((b) => `body ${b.name}` === ref.data) : undefined;
+  const body =
+    ref.index < 0 ? result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : [])).find((b) => `body ${b.name}` === ref.data) : undefined;
   if (samples?.what !== "samples" && body === undefined) return null;
   const table = tableOf(view.results, ref.data);
   const name = samples?.what === "samples" ? (samples.classes[ref.index] ?? "") : "";

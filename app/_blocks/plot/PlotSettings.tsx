@@ -45,14 +45,34 @@ export function PlotSettings({ blockKey, block, edits }: { readonly blockKey: st
       <Popover label="Axes and kind" trigger={<Button>Axes and kind</Button>}>
         <div className="grid gap-3">
           <Select label="Kind" value={block.plot} options={kinds} onChoose={(plot) => run(() => edits.setField(blockKey, "plot", plot))} />
-          {block.plot === "pattern" && <CommitField label="Normalised to" mono placeholder="CI" value={block.normalise ?? ""} onCommit={(text) => run(() => edits.setField(blockKey, "normalise", text.trim() === "" ? undefined : text.trim()))} />}
+          {block.plot === "pattern" && (
+            <CommitField
+              label="Normalised to"
+              mono
+              placeholder="CI"
+              value={block.normalise ?? ""}
+              onCommit={(text) => run(() => edits.setField(blockKey, "normalise", text.trim() === "" ? undefined : text.trim()))}
+            />
+          )}
           {(["xAxis", "yAxis"] as const).map((field) => (
             <fieldset key={field} className="grid grid-cols-2 gap-x-3 gap-y-2">
               <legend className="pb-1 font-medium">{field === "xAxis" ? "Across" : "Upwards"}</legend>
-              <CommitField label="Label" className="col-span-2" placeholder="as the expression" value={block[field]?.label ?? ""} onCommit={(label) => setAxis(field, { label: label.trim() })} />
+              <CommitField
+                label="Label"
+                className="col-span-2"
+                placeholder="as the expression"
+                value={block[field]?.label ?? ""}
+                onCommit={(label) => setAxis(field, { label: label.trim() })}
+              />
               {end(field, "from")}
               {end(field, "to")}
-              <Select label="Scale" className="col-span-2" value={block[field]?.scale ?? "linear"} options={scales} onChoose={(next) => setAxis(field, { scale: next === "linear" ? undefined : next })} />
+              <Select
+                label="Scale"
+                className="col-span-2"
+                value={block[field]?.scale ?? "linear"}
+                options={scales}
+                onChoose={(next) => setAxis(field, { scale: next === "linear" ? undefined : next })}
+              />
             </fieldset>
           ))}
           {refusal !== null && (

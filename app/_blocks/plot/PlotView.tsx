@@ -22,7 +22,10 @@ import type { PointRef } from "./traces";
 
 export { stateInWords } from "./plotWords";
 
-const PlotCanvas = dynamic(() => import("./PlotCanvas").then((module) => module.PlotCanvas), { ssr: false, loading: () => <p className="p-3 text-second">Fetching the drawing surface.</p> });
+const PlotCanvas = dynamic(() => import("./PlotCanvas").then((module) => module.PlotCanvas), {
+  ssr: false,
+  loading: () => <p className="p-3 text-second">Fetching the drawing surface.</p>,
+});
 
 const drags: readonly { readonly mode: DragMode; readonly label: string }[] = [
   { mode: "select", label: "Pick in a box" },
@@ -47,7 +50,14 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
     const range = closeUp ?? wholeView(result, block.xAxis, block.yAxis);
     const frame = plotFrame(width, plotHeight(width), range, block.xAxis?.scale === "log", block.yAxis?.scale === "log");
     const nameOf = (handle: string): string => view.blocks.find((b) => b.block.id === handle)?.block.name ?? handle;
-    return buildFigure(block, result, nameOf, { palette, frame, projector: view.settings.projector, classIndex: (name) => view.classIndex(name), pickedIn }, view.results, dragMode);
+    return buildFigure(
+      block,
+      result,
+      nameOf,
+      { palette, frame, projector: view.settings.projector, classIndex: (name) => view.classIndex(name), pickedIn },
+      view.results,
+      dragMode,
+    );
   }, [result, width, closeUp, block, view, palette, pickedIn, dragMode]);
 
   const onPick = useCallback(
@@ -66,17 +76,31 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
   return (
     <div className={isNarrow ? "min-w-0" : "grid min-w-0 grid-cols-[minmax(0,1fr)] gap-x-6 lg:grid-cols-[minmax(0,1fr)_232px]"}>
       <div className="min-w-0">
-        <div ref={box} role="img" aria-label={result === undefined ? "Plot, not calculated yet" : plotInWords(result)} className="relative overflow-hidden" style={{ height: width === 0 ? 360 : plotHeight(width) }}>
+        <div
+          ref={box}
+          role="img"
+          aria-label={result === undefined ? "Plot, not calculated yet" : plotInWords(result)}
+          className="relative overflow-hidden"
+          style={{ height: width === 0 ? 360 : plotHeight(width) }}
+        >
           {figure !== null && <PlotCanvas figure={figure} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
           {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}
           {figure === null && <p className="p-3 text-second">{view.results === null ? "Calculating for the first time." : "Nothing to draw yet."}</p>}
         </div>
         <div className="mt-1 flex flex-wrap items-baseline gap-x-4 gap-y-1 text-margin" role="group" aria-label="What dragging on the plot does">
-          {drags.filter(({ mode }) => view.mode !== "frozen" || mode === "pan" || mode === "zoom").map(({ mode, label }) => (
-            <Button key={mode} look={dragMode === mode ? "plain" : "quiet"} aria-pressed={dragMode === mode} className={dragMode === mode ? "border-b border-ink" : ""} onClick={() => setDragMode(mode)}>
-              {label}
-            </Button>
-          ))}
+          {drags
+            .filter(({ mode }) => view.mode !== "frozen" || mode === "pan" || mode === "zoom")
+            .map(({ mode, label }) => (
+              <Button
+                key={mode}
+                look={dragMode === mode ? "plain" : "quiet"}
+                aria-pressed={dragMode === mode}
+                className={dragMode === mode ? "border-b border-ink" : ""}
+                onClick={() => setDragMode(mode)}
+              >
+                {label}
+              </Button>
+            ))}
           {closeUp !== null && <Button onClick={() => setCloseUp(null)}>Whole view</Button>}
           {samples > mostEllipses && <span className="text-second">More than {mostEllipses} samples: drawn without ellipses.</span>}
         </div>
@@ -85,7 +109,11 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
             {p.text}
           </p>
         ))}
-        {block.drawn.length === 0 && <p className="mt-2 text-second">{view.mode === "edit" ? "Nothing is drawn yet. Choose “Draw more” and begin with samples." : "Nothing is drawn here."}</p>}
+        {block.drawn.length === 0 && (
+          <p className="mt-2 text-second">
+            {view.mode === "edit" ? "Nothing is drawn yet. Choose “Draw more” and begin with samples." : "Nothing is drawn here."}
+          </p>
+        )}
         {result !== undefined && (
           <details className="mt-2">
             <summary className="cursor-pointer text-margin font-medium text-indigo">The same as a table</summary>

@@ -21,7 +21,9 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
     if (layer.what !== "samples") return [];
     const table = tableOf(view.results, layer.data);
     const picked = new Set(pickedIndices(table, view.picked));
-    return Array.from(layer.points.x, (x, index) => ({ layer, table, index, x, isPicked: picked.has(index) })).filter((row) => Number.isFinite(row.x) && Number.isFinite(row.layer.points.y[row.index] ?? NaN));
+    return Array.from(layer.points.x, (x, index) => ({ layer, table, index, x, isPicked: picked.has(index) })).filter(
+      (row) => Number.isFinite(row.x) && Number.isFinite(row.layer.points.y[row.index] ?? NaN),
+    );
   });
   const bodies = result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : []));
   const heads = ["sample", "class", axisInWords(result.x, undefined), axisInWords(result.y, undefined), "correlation"];
@@ -31,7 +33,11 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
         <thead>
           <tr>
             {heads.map((head, i) => (
-              <th key={head} scope="col" className={`sticky top-0 border-b border-ink bg-paper py-1 pr-3 font-normal whitespace-nowrap text-second ${i < 2 ? "text-left" : "text-right"}`}>
+              <th
+                key={head}
+                scope="col"
+                className={`sticky top-0 border-b border-ink bg-paper py-1 pr-3 font-normal whitespace-nowrap text-second ${i < 2 ? "text-left" : "text-right"}`}
+              >
                 {head}
               </th>
             ))}
@@ -82,7 +88,17 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
                 {view.mode !== "frozen" && (
                   <td className="text-right">
                     {table !== undefined && (
-                      <Button aria-pressed={isPicked} aria-label={`${isPicked ? "Let go of" : "Pick"} ${label}`} onClick={() => view.pick(isPicked ? view.picked.filter((p) => !(table.origins[index] ?? []).some((o) => o.table === p.table && o.row === p.row)) : [...view.picked, ...originsOf(table, [index])])}>
+                      <Button
+                        aria-pressed={isPicked}
+                        aria-label={`${isPicked ? "Let go of" : "Pick"} ${label}`}
+                        onClick={() =>
+                          view.pick(
+                            isPicked
+                              ? view.picked.filter((p) => !(table.origins[index] ?? []).some((o) => o.table === p.table && o.row === p.row))
+                              : [...view.picked, ...originsOf(table, [index])],
+                          )
+                        }
+                      >
                         {isPicked ? "Let go" : "Pick"}
                       </Button>
                     )}

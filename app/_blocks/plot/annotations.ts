@@ -33,27 +33,49 @@ function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null
       return layer.bodies.map((b) => ({ x: b.x, y: b.y, gap: 10, lines: [{ text: b.name, size: 12, color: palette.ink, weight: 600 }] }));
     case "crossing": {
       const crossing = resultOf(results, layer.trends[0], "trend")?.crossing;
-      const nearest = crossing?.fromBodies.reduce<{ body: string; distance: number } | null>((best, b) => (best === null || b.distance < best.distance ? b : best), null) ?? null;
+      const nearest =
+        crossing?.fromBodies.reduce<{ body: string; distance: number } | null>((best, b) => (best === null || b.distance < best.distance ? b : best), null) ??
+        null;
       return [
         {
           x: layer.x,
           y: layer.y,
           gap: 16,
-          lines: drawing.frame.width < narrow ? [{ text: "crossing", size: 12, color: palette.magenta, weight: 500 }] : [
-            { text: `crossing ${formatValue(layer.x, layer.sigmaX)}, ${formatValue(layer.y, layer.sigmaY)}`, size: 12, color: palette.magenta, weight: 500 },
-            { text: nearest === null ? "ellipse 95 %" : `ellipse 95 %, ${nearest.body} ${nearest.distance.toFixed(1)}σ away`, size: 11, color: palette.second, weight: 400 },
-          ],
+          lines:
+            drawing.frame.width < narrow
+              ? [{ text: "crossing", size: 12, color: palette.magenta, weight: 500 }]
+              : [
+                  {
+                    text: `crossing ${formatValue(layer.x, layer.sigmaX)}, ${formatValue(layer.y, layer.sigmaY)}`,
+                    size: 12,
+                    color: palette.magenta,
+                    weight: 500,
+                  },
+                  {
+                    text: nearest === null ? "ellipse 95 %" : `ellipse 95 %, ${nearest.body} ${nearest.distance.toFixed(1)}σ away`,
+                    size: 11,
+                    color: palette.second,
+                    weight: 400,
+                  },
+                ],
         },
       ];
     }
     case "path":
-      return layer.end === undefined ? [] : [{ x: layer.end.x, y: layer.end.y, gap: 8, lines: [{ text: layer.end.label, size: 12, color: palette.indigo, weight: 400 }] }];
+      return layer.end === undefined
+        ? []
+        : [{ x: layer.end.x, y: layer.end.y, gap: 8, lines: [{ text: layer.end.label, size: 12, color: palette.indigo, weight: 400 }] }];
     case "samples": {
       const rows = drawing.pickedIn(layer.data).filter((i) => Number.isFinite(layer.points.x[i] ?? NaN));
       // Names of a few picked samples help; names of many only cover them.
       if (rows.length === 0 || rows.length > 4) return [];
       const table = tableOf(results, layer.data);
-      return rows.map((i) => ({ x: layer.points.x[i] ?? 0, y: layer.points.y[i] ?? 0, gap: 12, lines: [{ text: rowLabel(table, i), size: 12, color: palette.indigo, weight: 400 }] }));
+      return rows.map((i) => ({
+        x: layer.points.x[i] ?? 0,
+        y: layer.points.y[i] ?? 0,
+        gap: 12,
+        lines: [{ text: rowLabel(table, i), size: 12, color: palette.indigo, weight: 400 }],
+      }));
     }
     case "annotation":
       return [{ x: layer.x, y: layer.y, gap: 4, lines: [{ text: layer.text, size: 12, color: palette.ink, weight: 400 }] }];
@@ -65,7 +87,9 @@ function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null
 function obstaclesOf(layers: readonly PlotLayer[], drawing: Drawing): Obstacle[] {
   const found: Obstacle[] = [];
   for (const layer of layers) {
-    if (layer.what === "samples" && layer.points.x.length <= 2000) for (let i = 0; i < layer.points.x.length; i++) found.push({ x: drawing.frame.px(layer.points.x[i] ?? NaN), y: drawing.frame.py(layer.points.y[i] ?? NaN) });
+    if (layer.what === "samples" && layer.points.x.length <= 2000)
+      for (let i = 0; i < layer.points.x.length; i++)
+        found.push({ x: drawing.frame.px(layer.points.x[i] ?? NaN), y: drawing.frame.py(layer.points.y[i] ?? NaN) });
     else if (layer.what === "bodies") for (const b of layer.bodies) found.push({ x: drawing.frame.px(b.x), y: drawing.frame.py(b.y) });
     else if (layer.what === "path" || layer.what === "trend") {
       // A line is in the way all along itself.
@@ -74,7 +98,10 @@ function obstaclesOf(layers: readonly PlotLayer[], drawing: Drawing): Obstacle[]
         const t = (k / 60) * (x.length - 1);
         const i = Math.min(Math.floor(t), x.length - 2);
         const f = t - i;
-        found.push({ x: drawing.frame.px((x[i] ?? NaN) * (1 - f) + (x[i + 1] ?? NaN) * f), y: drawing.frame.py((y[i] ?? NaN) * (1 - f) + (y[i + 1] ?? NaN) * f) });
+        found.push({
+          x: drawing.frame.px((x[i] ?? NaN) * (1 - f) + (x[i + 1] ?? NaN) * f),
+          y: drawing.frame.py((y[i] ?? NaN) * (1 - f) + (y[i + 1] ?? NaN) * f),
+        });
       }
     }
   }
@@ -128,22 +155,72 @@ function trendName(layer: Extract<PlotLayer, { what: "trend" }>, name: string, d
   const t = 0.42;
   const cx = x0 + t * (x1 - x0) + nx * 16;
   const cy = y0 + t * (y1 - y0) + ny * 16;
-  return { ...inData, xref: "paper", yref: "paper", x: 0, y: 1, xanchor: "center", yanchor: "middle", xshift: cx - frame.margin.l, yshift: -(cy - frame.margin.t), textangle: String(angle), text: `<i>${plainText(name)}</i>`, font: { family: sans, size: 12, color: palette.ink } };
+  return {
+    ...inData,
+    xref: "paper",
+    yref: "paper",
+    x: 0,
+    y: 1,
+    xanchor: "center",
+    yanchor: "middle",
+    xshift: cx - frame.margin.l,
+    yshift: -(cy - frame.margin.t),
+    textangle: String(angle),
+    text: `<i>${plainText(name)}</i>`,
+    font: { family: sans, size: 12, color: palette.ink },
+  };
 }
 
 /** All that is written on a drawing: axes in words, labels beside their points, trends along their lines, numbers at ticks. */
-export function buildAnnotations(layers: readonly PlotLayer[], axes: { readonly x: string; readonly y: string }, nameOf: (handle: string) => string, drawing: Drawing, results: PageResults | null): Note[] {
+export function buildAnnotations(
+  layers: readonly PlotLayer[],
+  axes: { readonly x: string; readonly y: string },
+  nameOf: (handle: string) => string,
+  drawing: Drawing,
+  results: PageResults | null,
+): Note[] {
   const { frame, palette } = drawing;
   const notes: Note[] = [
-    { ...inData, xref: "paper", yref: "paper", x: 1, y: 0, xanchor: "right", yanchor: "top", yshift: -22, text: plainText(axes.x), font: { family: sans, size: 12, color: palette.ink, weight: 500 } as Note["font"] & { weight: number } },
+    {
+      ...inData,
+      xref: "paper",
+      yref: "paper",
+      x: 1,
+      y: 0,
+      xanchor: "right",
+      yanchor: "top",
+      yshift: -22,
+      text: plainText(axes.x),
+      font: { family: sans, size: 12, color: palette.ink, weight: 500 } as Note["font"] & { weight: number },
+    },
     textAt(frame.margin.l + 8, frame.margin.t + 6, axes.y, 12, palette.ink, 500, drawing),
   ];
-  const inView = (l: Label): boolean => frame.px(l.x) >= frame.margin.l && frame.px(l.x) <= frame.width - frame.margin.r && frame.py(l.y) >= frame.margin.t && frame.py(l.y) <= frame.height - frame.margin.b;
-  const misses = missesOf(layers, results).map((miss): Label => ({ x: miss.x, y: (miss.from + miss.to) / 2, gap: 8, lines: [{ text: `${miss.what} missed by ${miss.sigmas.toFixed(1)}σ`, size: 11, color: palette.vermilion, weight: 400 }] }));
+  const inView = (l: Label): boolean =>
+    frame.px(l.x) >= frame.margin.l &&
+    frame.px(l.x) <= frame.width - frame.margin.r &&
+    frame.py(l.y) >= frame.margin.t &&
+    frame.py(l.y) <= frame.height - frame.margin.b;
+  const misses = missesOf(layers, results).map((miss): Label => ({
+    x: miss.x,
+    y: (miss.from + miss.to) / 2,
+    gap: 8,
+    lines: [{ text: `${miss.what} missed by ${miss.sigmas.toFixed(1)}σ`, size: 11, color: palette.vermilion, weight: 400 }],
+  }));
   const labels = [...layers.flatMap((layer) => labelOf(layer, drawing, results)), ...misses].filter(inView);
-  const requests: LabelRequest[] = labels.map((l) => ({ x: frame.px(l.x), y: frame.py(l.y), gap: l.gap, width: Math.max(...l.lines.map((line) => roughWidth(line.text, line.size))), height: l.lines.length * 16 }));
+  const requests: LabelRequest[] = labels.map((l) => ({
+    x: frame.px(l.x),
+    y: frame.py(l.y),
+    gap: l.gap,
+    width: Math.max(...l.lines.map((line) => roughWidth(line.text, line.size))),
+    height: l.lines.length * 16,
+  }));
   const axisBox: Obstacle[] = Array.from({ length: 10 }, (_, i) => ({ x: frame.margin.l + 8 + i * roughWidth(axes.y) * 0.1, y: frame.margin.t + 14 }));
-  const places = placeLabels(requests, [...obstaclesOf(layers, drawing), ...axisBox], { left: frame.margin.l + 4, top: frame.margin.t + 4, right: frame.width - frame.margin.r - 4, bottom: frame.height - frame.margin.b - 4 });
+  const places = placeLabels(requests, [...obstaclesOf(layers, drawing), ...axisBox], {
+    left: frame.margin.l + 4,
+    top: frame.margin.t + 4,
+    right: frame.width - frame.margin.r - 4,
+    bottom: frame.height - frame.margin.b - 4,
+  });
   labels.forEach((label, i) => {
     const place = places[i];
     if (place === undefined) return;
@@ -158,7 +235,18 @@ export function buildAnnotations(layers: readonly PlotLayer[], axes: { readonly 
         const [dx, dy] = normalAt(layer.line, tick, frame);
         // The upper side of the path, where its samples seldom lie.
         const side = dy > 0 ? -1 : 1;
-        notes.push(textAt(frame.px(tick.x) + side * dx * 13 - roughWidth(tick.label, 11) / 2, frame.py(tick.y) + side * dy * 13 - 7, tick.label, 11, palette.indigo, 400, drawing, { bgcolor: "rgba(0,0,0,0)" }));
+        notes.push(
+          textAt(
+            frame.px(tick.x) + side * dx * 13 - roughWidth(tick.label, 11) / 2,
+            frame.py(tick.y) + side * dy * 13 - 7,
+            tick.label,
+            11,
+            palette.indigo,
+            400,
+            drawing,
+            { bgcolor: "rgba(0,0,0,0)" },
+          ),
+        );
       }
     }
   }

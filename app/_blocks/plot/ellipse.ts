@@ -10,7 +10,15 @@ const corners = 40;
  *
  * @param push called with each point, the first one again at the end
  */
-export function traceEllipse(x: number, y: number, sigmaX: number, sigmaY: number, correlation: number, radius: number, push: (x: number, y: number) => void): void {
+export function traceEllipse(
+  x: number,
+  y: number,
+  sigmaX: number,
+  sigmaY: number,
+  correlation: number,
+  radius: number,
+  push: (x: number, y: number) => void,
+): void {
   const rho = Math.min(1, Math.max(-1, Number.isFinite(correlation) ? correlation : 0));
   const rest = Math.sqrt(1 - rho * rho);
   for (let i = 0; i <= corners; i++) {

@@ -51,7 +51,13 @@ function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Par
     tickcolor: palette.ink,
     ...(log ? {} : { dtick: step, tick0: 0, tickformat: `.${tickDecimals(step)}f` }),
     tickfont: { family: '"IBM Plex Sans", "Helvetica Neue", Arial, sans-serif', size: drawing.projector ? 14 : 11, color: palette.second },
-    minor: { ticks: "inside", ticklen: 3, tickwidth: 0.7, tickcolor: palette.ink, ...(log ? {} : { dtick: step / (String(step / 10 ** Math.floor(Math.log10(step))).startsWith("5") ? 5 : 4) }) },
+    minor: {
+      ticks: "inside",
+      ticklen: 3,
+      tickwidth: 0.7,
+      tickcolor: palette.ink,
+      ...(log ? {} : { dtick: step / (String(step / 10 ** Math.floor(Math.log10(step))).startsWith("5") ? 5 : 4) }),
+    },
     fixedrange: false,
     automargin: false,
   } as Partial<LayoutAxis>;
@@ -64,7 +70,14 @@ function onGraphicsCard(trace: Data): void {
 }
 
 /** A plot as Plotly takes it: the layers bottom first, picks on top, all words as annotations. */
-export function buildFigure(block: PlotBlock, result: PlotResult, nameOf: (handle: string) => string, drawing: Drawing, results: PageResults | null, dragmode: DragMode): Figure {
+export function buildFigure(
+  block: PlotBlock,
+  result: PlotResult,
+  nameOf: (handle: string) => string,
+  drawing: Drawing,
+  results: PageResults | null,
+  dragmode: DragMode,
+): Figure {
   const { frame, palette } = drawing;
   const layers = result.layers.filter((layer) => block.drawn[layer.drawn]?.hidden !== true);
   const data = layers.flatMap((layer) => tracesOf(layer, drawing));

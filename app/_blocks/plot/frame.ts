@@ -61,7 +61,9 @@ export function wholeView(result: PlotResult, xAxis: Axis | undefined, yAxis: Ax
     ys.push([y, sy]);
   };
   for (const layer of result.layers) {
-    if (layer.what === "samples") for (let i = 0; i < layer.points.x.length; i++) add(layer.points.x[i] ?? NaN, layer.points.y[i] ?? NaN, layer.points.sigmaX[i] ?? 0, layer.points.sigmaY[i] ?? 0);
+    if (layer.what === "samples")
+      for (let i = 0; i < layer.points.x.length; i++)
+        add(layer.points.x[i] ?? NaN, layer.points.y[i] ?? NaN, layer.points.sigmaX[i] ?? 0, layer.points.sigmaY[i] ?? 0);
     else if (layer.what === "bodies") for (const body of layer.bodies) add(body.x, body.y, body.sigmaX ?? 0, body.sigmaY ?? 0);
     else if (layer.what === "crossing" || layer.what === "annotation") add(layer.x, layer.y, 0, 0);
     else if (layer.what === "path") for (let i = 0; i < layer.line.x.length; i++) add(layer.line.x[i] ?? NaN, layer.line.y[i] ?? NaN, 0, 0);

@@ -12,14 +12,17 @@ export function newDrawn(block: PlotBlock, blocks: readonly Block[], bodies: rea
   const data = last("data");
   const first = block.drawn.find((d) => "data" in d);
   if (data !== undefined) {
-    const axes = first !== undefined && "data" in first ? { ...(first.x === undefined ? {} : { x: first.x }), ...(first.y === undefined ? {} : { y: first.y }) } : {};
+    const axes =
+      first !== undefined && "data" in first ? { ...(first.x === undefined ? {} : { x: first.x }), ...(first.y === undefined ? {} : { y: first.y }) } : {};
     choices.push({ label: "Samples", drawn: { data, ...axes, ...(block.plot === "scatter" ? { ellipses: "1 sigma" } : {}) } });
   }
   if (block.plot === "scatter") {
-    const isDrawn = (kind: "trend" | "crossing" | "budget", id: string): boolean => block.drawn.some((d) => kind in d && (d as Readonly<Record<string, unknown>>)[kind] === id);
+    const isDrawn = (kind: "trend" | "crossing" | "budget", id: string): boolean =>
+      block.drawn.some((d) => kind in d && (d as Readonly<Record<string, unknown>>)[kind] === id);
     for (const b of blocks) {
       if (b.kind === "trend" && !isDrawn("trend", b.id)) choices.push({ label: `Trend ${b.id}`, drawn: { trend: b.id } });
-      if (b.kind === "trend" && b.crossWith !== undefined && !isDrawn("crossing", b.id)) choices.push({ label: `Crossing of ${b.id} with ${b.crossWith}`, drawn: { crossing: b.id } });
+      if (b.kind === "trend" && b.crossWith !== undefined && !isDrawn("crossing", b.id))
+        choices.push({ label: `Crossing of ${b.id} with ${b.crossWith}`, drawn: { crossing: b.id } });
       if (b.kind === "budget" && !isDrawn("budget", b.id)) choices.push({ label: `Path of ${b.id}`, drawn: { budget: b.id } });
     }
     choices.push({ label: "Bodies", drawn: { bodies: [...bodies].slice(0, 40), ellipses: "1 sigma" } });

@@ -21,14 +21,20 @@ export interface DrawnWords {
   readonly count: string;
 }
 
-const finitePoints = (layer: Extract<PlotLayer, { what: "samples" }>): number => layer.points.x.reduce((n, x, i) => (Number.isFinite(x) && Number.isFinite(layer.points.y[i] ?? NaN) && layer.points.state[i] === 0 ? n + 1 : n), 0);
+const finitePoints = (layer: Extract<PlotLayer, { what: "samples" }>): number =>
+  layer.points.x.reduce((n, x, i) => (Number.isFinite(x) && Number.isFinite(layer.points.y[i] ?? NaN) && layer.points.state[i] === 0 ? n + 1 : n), 0);
 
 /** One line of the list of what is drawn. `layer` is what it came to, if it is drawn. */
 export function drawnInWords(drawn: Drawn, layer: PlotLayer | undefined): DrawnWords {
   const says = (text: string): string => (drawn.hidden ? "hidden" : layer === undefined ? `${text}${text === "" ? "" : "; "}nothing to draw` : text);
   if ("data" in drawn) {
     const count = layer?.what === "samples" ? finitePoints(layer) : 0;
-    const size = layer?.what === "samples" ? (layer.points.x.length > mostEllipses && layer.ellipses > 0 ? `ellipses left off above ${mostEllipses} samples` : ellipseInWords(layer.ellipses)) : "";
+    const size =
+      layer?.what === "samples"
+        ? layer.points.x.length > mostEllipses && layer.ellipses > 0
+          ? `ellipses left off above ${mostEllipses} samples`
+          : ellipseInWords(layer.ellipses)
+        : "";
     const where = drawn.where === undefined || drawn.where.trim() === "" ? "" : `where ${drawn.where.trim()}`;
     return { title: `Samples of ${drawn.data}`, says: says([size, where].filter((t) => t !== "").join("; ")), count: drawn.hidden ? "" : String(count) };
   }
@@ -36,12 +42,21 @@ export function drawnInWords(drawn: Drawn, layer: PlotLayer | undefined): DrawnW
     const band = layer?.what === "trend" && layer.band !== undefined ? `band 95 %${layer.usesScatter ? ", with scatter" : ""}; ` : "";
     return { title: `Trend ${drawn.trend}`, says: says(`${band}dashed where carried on past its samples`), count: "" };
   }
-  if ("crossing" in drawn) return { title: "Crossing", says: says(layer?.what === "crossing" ? `${layer.trends[0]} with ${layer.trends[1]}, ellipse 95 %` : drawn.crossing), count: "" };
+  if ("crossing" in drawn)
+    return {
+      title: "Crossing",
+      says: says(layer?.what === "crossing" ? `${layer.trends[0]} with ${layer.trends[1]}, ellipse 95 %` : drawn.crossing),
+      count: "",
+    };
   if ("budget" in drawn) return { title: "Path", says: says(drawn.budget), count: "" };
   if ("bodies" in drawn) {
     const compilations = layer?.what === "bodies" ? layer.bodies.map((b) => b.compilation) : drawn.bodies;
     const size = drawn.ellipses === "2 sigma" ? ", 2σ" : drawn.ellipses === "95 %" ? ", 95 %" : drawn.ellipses === "none" ? "" : ", 1σ";
-    return { title: "Bodies", says: says(Array.from(new Set(compilations)).join(", ") + size), count: drawn.hidden ? "" : String(layer?.what === "bodies" ? layer.bodies.length : 0) };
+    return {
+      title: "Bodies",
+      says: says(Array.from(new Set(compilations)).join(", ") + size),
+      count: drawn.hidden ? "" : String(layer?.what === "bodies" ? layer.bodies.length : 0),
+    };
   }
   return { title: "Annotation", says: says(drawn.annotation), count: "" };
 }

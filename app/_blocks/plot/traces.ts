@@ -87,7 +87,13 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
       x: rows.map((i) => points.x[i] ?? null),
       y: rows.map((i) => points.y[i] ?? null),
       customdata: rows.map((i) => [layer.data, i]),
-      marker: { symbol: look.symbol, size: drawing.projector ? 11 : isMany ? 5 : 7.5, color: look.fill, opacity: isMany ? 0.55 : 1, line: { color: look.line, width: isMany ? 0 : 1 } },
+      marker: {
+        symbol: look.symbol,
+        size: drawing.projector ? 11 : isMany ? 5 : 7.5,
+        color: look.fill,
+        opacity: isMany ? 0.55 : 1,
+        line: { color: look.line, width: isMany ? 0 : 1 },
+      },
     });
   }
   if (aside.length > 0) {
@@ -156,7 +162,16 @@ export function trendTraces(layer: Extract<PlotLayer, { what: "trend" }>, { pale
   const traces: Data[] = [];
   if (layer.band !== undefined) {
     const x = Array.from(layer.band.x);
-    traces.push({ ...silent, type: "scatter", mode: "lines", x: [...x, ...x.slice().reverse()], y: [...layer.band.upper, ...Array.from(layer.band.lower).reverse()], fill: "toself", fillcolor: washOf(palette.ink, palette.light === "plane" ? 0.1 : 0.14), line: { width: 0, color: "transparent" } });
+    traces.push({
+      ...silent,
+      type: "scatter",
+      mode: "lines",
+      x: [...x, ...x.slice().reverse()],
+      y: [...layer.band.upper, ...Array.from(layer.band.lower).reverse()],
+      fill: "toself",
+      fillcolor: washOf(palette.ink, palette.light === "plane" ? 0.1 : 0.14),
+      line: { width: 0, color: "transparent" },
+    });
   }
   const xs = layer.line.x;
   const start = Math.min(xs[0] ?? 0, xs[xs.length - 1] ?? 0);
@@ -173,7 +188,18 @@ export function trendTraces(layer: Extract<PlotLayer, { what: "trend" }>, { pale
 
 /** A crossing: its ellipse in magenta. */
 export function crossingTraces(layer: Extract<PlotLayer, { what: "crossing" }>, { palette }: Drawing): Data[] {
-  return [{ ...silent, type: "scatter", mode: "lines", x: Array.from(layer.ellipse.x), y: Array.from(layer.ellipse.y), fill: "toself", fillcolor: washOf(palette.magenta, 0.1), line: { color: palette.magenta, width: 1.6 } }];
+  return [
+    {
+      ...silent,
+      type: "scatter",
+      mode: "lines",
+      x: Array.from(layer.ellipse.x),
+      y: Array.from(layer.ellipse.y),
+      fill: "toself",
+      fillcolor: washOf(palette.magenta, 0.1),
+      line: { color: palette.magenta, width: 1.6 },
+    },
+  ];
 }
 
 /** Bodies: ellipses and crosses. */
@@ -187,13 +213,23 @@ export function bodiesTraces(layer: Extract<PlotLayer, { what: "bodies" }>, { pa
   }
   return [
     { ...silent, type: "scatter", mode: "lines", x, y, line: { color: palette.ink, width: 0.9 } },
-    { ...quiet, type: "scatter", mode: "markers", x: layer.bodies.map((b) => b.x), y: layer.bodies.map((b) => b.y), customdata: layer.bodies.map((b) => [`body ${b.name}`, -1]), marker: { symbol: "cross-thin", size: 12, color: palette.ink, line: { color: palette.ink, width: 1.8 } } },
+    {
+      ...quiet,
+      type: "scatter",
+      mode: "markers",
+      x: layer.bodies.map((b) => b.x),
+      y: layer.bodies.map((b) => b.y),
+      customdata: layer.bodies.map((b) => [`body ${b.name}`, -1]),
+      marker: { symbol: "cross-thin", size: 12, color: palette.ink, line: { color: palette.ink, width: 1.8 } },
+    },
   ];
 }
 
 /** A budget's path with ticks across it and a cross at its end; the ticks are 9 pixels long whatever the scale. */
 export function pathTraces(layer: Extract<PlotLayer, { what: "path" }>, { palette, frame }: Drawing): Data[] {
-  const traces: Data[] = [{ ...silent, type: "scatter", mode: "lines", x: Array.from(layer.line.x), y: Array.from(layer.line.y), line: { color: palette.indigo, width: 1.4 } }];
+  const traces: Data[] = [
+    { ...silent, type: "scatter", mode: "lines", x: Array.from(layer.line.x), y: Array.from(layer.line.y), line: { color: palette.indigo, width: 1.4 } },
+  ];
   const x: (number | null)[] = [];
   const y: (number | null)[] = [];
   for (const tick of layer.ticks) {
@@ -204,13 +240,28 @@ export function pathTraces(layer: Extract<PlotLayer, { what: "path" }>, { palett
     y.push(tick.y + 4.5 * dy * perY, tick.y - 4.5 * dy * perY, null);
   }
   if (x.length > 0 && !frame.logX && !frame.logY) traces.push({ ...silent, type: "scatter", mode: "lines", x, y, line: { color: palette.indigo, width: 1.2 } });
-  if (layer.end !== undefined) traces.push({ ...silent, type: "scatter", mode: "markers", x: [layer.end.x], y: [layer.end.y], marker: { symbol: "x-thin", size: 8, color: palette.indigo, line: { color: palette.indigo, width: 1.6 } } });
+  if (layer.end !== undefined)
+    traces.push({
+      ...silent,
+      type: "scatter",
+      mode: "markers",
+      x: [layer.end.x],
+      y: [layer.end.y],
+      marker: { symbol: "x-thin", size: 8, color: palette.indigo, line: { color: palette.indigo, width: 1.6 } },
+    });
   return traces;
 }
 
 /** From the end of a path to where it was to be: what a budget misses by, dotted. */
 export function missTraces(misses: readonly Miss[], { palette }: Drawing): Data[] {
-  return misses.map((miss) => ({ ...silent, type: "scatter", mode: "lines", x: [miss.x, miss.x], y: [miss.from, miss.to], line: { color: palette.vermilion, width: 1.2, dash: "dot" } }));
+  return misses.map((miss) => ({
+    ...silent,
+    type: "scatter",
+    mode: "lines",
+    x: [miss.x, miss.x],
+    y: [miss.from, miss.to],
+    line: { color: palette.vermilion, width: 1.2, dash: "dot" },
+  }));
 }
 
 /** Unit vector across a path at a tick, in pixels. */

@@ -1,6 +1,6 @@
 "use client";
 
-import { useEffect, useState, type ReactNode } from "react";
+import { useState, type ReactNode } from "react";
 import { TextField } from "@/app/_ui/TextField";
 
 export interface CommitFieldProps {
@@ -20,7 +20,6 @@ export interface CommitFieldProps {
 /** A field whose text counts when the person is done with it: a half-written expression is nobody's calculation. Escape takes it back. */
 export function CommitField({ value, onCommit, className, problem = null, ...rest }: CommitFieldProps) {
   const [draft, setDraft] = useState<string | null>(null);
-  useEffect(() => setDraft(null), [value]);
   const commit = (): void => {
     if (draft !== null && draft !== value) onCommit(draft);
     setDraft(null);

@@ -8,7 +8,9 @@ export interface Choice {
 
 /** Handles of the page's blocks of a kind, as choices with their titles. */
 export function handleChoices(view: PageView, kind: BlockKind): Choice[] {
-  return view.blocks.filter((b) => b.block.kind === kind).map(({ block }) => ({ value: block.id, label: block.name ? `${block.id}, ${block.name}` : block.id }));
+  return view.blocks
+    .filter((b) => b.block.kind === kind)
+    .map(({ block }) => ({ value: block.id, label: block.name ? `${block.id}, ${block.name}` : block.id }));
 }
 
 /** The choices with the present one among them: one whose block is gone stays visible, so that nothing changes unasked. */

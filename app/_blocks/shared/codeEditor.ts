@@ -16,8 +16,17 @@ const look = EditorView.theme({
   ".cm-content": { padding: "0", caretColor: "var(--ink)" },
   ".cm-line": { padding: "0" },
   ".cm-cursor": { borderLeftColor: "var(--ink)" },
-  "&.cm-focused > .cm-scroller > .cm-selectionLayer .cm-selectionBackground, .cm-selectionBackground": { background: "color-mix(in srgb, var(--indigo) 24%, transparent)" },
-  ".cm-ySelectionInfo": { font: '500 11px/14px "IBM Plex Sans", sans-serif', color: "var(--ink)", background: "var(--surface)", padding: "0 3px", opacity: "1", top: "-1.2em" },
+  "&.cm-focused > .cm-scroller > .cm-selectionLayer .cm-selectionBackground, .cm-selectionBackground": {
+    background: "color-mix(in srgb, var(--indigo) 24%, transparent)",
+  },
+  ".cm-ySelectionInfo": {
+    font: '500 11px/14px "IBM Plex Sans", sans-serif',
+    color: "var(--ink)",
+    background: "var(--surface)",
+    padding: "0 3px",
+    opacity: "1",
+    top: "-1.2em",
+  },
   ".cm-ySelectionCaretDot": { display: "none" },
   ".cm-tooltip": { border: "1px solid var(--ink)", background: "var(--surface)", color: "var(--ink)", font: '400 13px/20px "IBM Plex Sans", sans-serif' },
   ".cm-tooltip.cm-tooltip-autocomplete > ul": { font: '400 13px/20px "IBM Plex Mono", monospace', maxHeight: "14em" },
@@ -54,7 +63,10 @@ const leave = keymap.of([
  * and nobody else's. The caller destroys the view.
  */
 export function createCodeEditor(parent: HTMLElement, { text, initial, awareness, undoManager, label, extensions }: CodeEditorOptions): EditorView {
-  const shared = text === null ? [EditorState.readOnly.of(true), EditorView.editable.of(false)] : [keymap.of(yUndoManagerKeymap), yCollab(text, awareness, { undoManager: undoManager ?? false })];
+  const shared =
+    text === null
+      ? [EditorState.readOnly.of(true), EditorView.editable.of(false)]
+      : [keymap.of(yUndoManagerKeymap), yCollab(text, awareness, { undoManager: undoManager ?? false })];
   return new EditorView({
     parent,
     state: EditorState.create({

@@ -51,7 +51,25 @@ export function sentence(text: string): string {
   return head.toUpperCase() + text.slice(head.length);
 }
 
-const elementNames: Readonly<Record<string, string>> = { Si: "silicon", Mg: "magnesium", Al: "aluminium", Ca: "calcium", Fe: "iron", Na: "sodium", K: "potassium", S: "sulphur", Ti: "titanium", O: "oxygen", C: "carbon", H: "hydrogen", P: "phosphorus", Ni: "nickel", Co: "cobalt", Cr: "chromium", Mn: "manganese" };
+const elementNames: Readonly<Record<string, string>> = {
+  Si: "silicon",
+  Mg: "magnesium",
+  Al: "aluminium",
+  Ca: "calcium",
+  Fe: "iron",
+  Na: "sodium",
+  K: "potassium",
+  S: "sulphur",
+  Ti: "titanium",
+  O: "oxygen",
+  C: "carbon",
+  H: "hydrogen",
+  P: "phosphorus",
+  Ni: "nickel",
+  Co: "cobalt",
+  Cr: "chromium",
+  Mn: "manganese",
+};
 
 /** Name of an element that rocks are mostly made of; the symbol itself for the others. */
 export function elementName(symbol: string): string {

@@ -97,14 +97,24 @@ function Cell({ node, view }: { readonly node: TraceNode; readonly view: PageVie
         </span>
       )}
       <span className="mt-1 block">
-        <button type="button" className={box} aria-label={`Go to ${where} of ${cell.block}: ${cell.raw === "" ? "empty" : cell.raw}`} onClick={() => go(cell.column)}>
+        <button
+          type="button"
+          className={box}
+          aria-label={`Go to ${where} of ${cell.block}: ${cell.raw === "" ? "empty" : cell.raw}`}
+          onClick={() => go(cell.column)}
+        >
           {cell.raw === "" ? "empty" : cell.raw}
         </button>{" "}
         <span className="text-second">{where}</span>
       </span>
       {cell.rawSigma !== "" && cell.rawSigma !== cell.raw && (
         <span className="mt-1 block">
-          <button type="button" className={box} aria-label={`Go to the uncertainty of ${where} of ${cell.block}: ${cell.rawSigma}`} onClick={() => go(cell.sigmaHeader ?? cell.column)}>
+          <button
+            type="button"
+            className={box}
+            aria-label={`Go to the uncertainty of ${where} of ${cell.block}: ${cell.rawSigma}`}
+            onClick={() => go(cell.sigmaHeader ?? cell.column)}
+          >
             {cell.rawSigma}
           </button>{" "}
           <span className="text-second">uncertainty{cell.sigmaHeader === undefined ? "" : `, ${cell.sigmaHeader}`}</span>

@@ -73,7 +73,11 @@ export function TraceView({ view }: { readonly view: PageView }) {
           <div className="mt-2">
             <p className="pb-1 font-mono break-words">{node.label}</p>
             {hasShares(node) && <p className="pb-1 text-second">the branch’s width is its share of the variance</p>}
-            {node.from.length > 0 ? <TraceBranches nodes={node.from} view={view} depth={0} /> : <p className="text-second">Nothing further stands behind this number.</p>}
+            {node.from.length > 0 ? (
+              <TraceBranches nodes={node.from} view={view} depth={0} />
+            ) : (
+              <p className="text-second">Nothing further stands behind this number.</p>
+            )}
             {node.notes.length > 0 && (
               <div className="mt-2 grid gap-1 border-t border-hairline pt-3 text-second">
                 {node.notes.map((note) => (

@@ -18,7 +18,13 @@ export function LeaveOut({ what, onLeaveOut }: { readonly what: string; onLeaveO
         else onLeaveOut(reason.trim());
       }}
     >
-      <TextField label={`Why ${what} is left out of this fit`} value={reason} onText={setReason} maxLength={2000} problem={asked && isEmpty ? "Give a reason: whoever reads this page later needs it." : null} />
+      <TextField
+        label={`Why ${what} is left out of this fit`}
+        value={reason}
+        onText={setReason}
+        maxLength={2000}
+        problem={asked && isEmpty ? "Give a reason: whoever reads this page later needs it." : null}
+      />
       <Button type="submit" look="main" className="justify-self-start">
         Leave out of this fit
       </Button>

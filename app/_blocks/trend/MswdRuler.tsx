@@ -16,7 +16,11 @@ export function MswdRuler({ mswd, expected }: { readonly mswd: number; readonly 
         <path d={`M${at(Math.min(mswd, end))} 2V20`} stroke={color} strokeWidth={3} vectorEffect="non-scaling-stroke" />
       </svg>
       {marks.map((m) => (
-        <span key={m} className="absolute top-5 text-[11px] leading-4 text-second" style={{ left: `${at(m)}%`, transform: m === 0 ? "none" : m >= end ? "translateX(-100%)" : "translateX(-50%)" }}>
+        <span
+          key={m}
+          className="absolute top-5 text-[11px] leading-4 text-second"
+          style={{ left: `${at(m)}%`, transform: m === 0 ? "none" : m >= end ? "translateX(-100%)" : "translateX(-50%)" }}
+        >
           {m}
         </span>
       ))}

@@ -38,7 +38,14 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
   const last = layout.marks.length - 1;
 
   const onKeyDown = (event: KeyboardEvent): void => {
-    const next = { ArrowRight: cursor === null ? 0 : cursor + 1, ArrowUp: cursor === null ? 0 : cursor + 1, ArrowLeft: cursor === null ? last : cursor - 1, ArrowDown: cursor === null ? last : cursor - 1, Home: 0, End: last }[event.key];
+    const next = {
+      ArrowRight: cursor === null ? 0 : cursor + 1,
+      ArrowUp: cursor === null ? 0 : cursor + 1,
+      ArrowLeft: cursor === null ? last : cursor - 1,
+      ArrowDown: cursor === null ? last : cursor - 1,
+      Home: 0,
+      End: last,
+    }[event.key];
     if (next !== undefined) {
       event.preventDefault();
       setCursor(Math.min(last, Math.max(0, next)));
@@ -82,7 +89,11 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
         <svg viewBox={`0 0 ${width} ${layout.height}`} width="100%" height={layout.height} aria-hidden="true" className="block overflow-visible font-sans">
           <rect x={layout.left} y={layout.middle - layout.two} width={width - layout.left} height={2 * layout.two} fill="var(--ink)" opacity={0.05} />
           <path d={`M${layout.left} ${layout.middle}H${width}`} stroke="var(--ink)" />
-          <path d={`M${layout.left} ${layout.middle - layout.two}H${width}M${layout.left} ${layout.middle + layout.two}H${width}`} stroke="var(--axis)" strokeDasharray="2 3" />
+          <path
+            d={`M${layout.left} ${layout.middle - layout.two}H${width}M${layout.left} ${layout.middle + layout.two}H${width}`}
+            stroke="var(--axis)"
+            strokeDasharray="2 3"
+          />
           {[
             [layout.middle - layout.two, "+2σ"],
             [layout.middle, "0"],
@@ -97,7 +108,12 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
             return (
               <g key={point.index}>
                 {!isDense && <path d={`M${x} ${layout.middle}V${y}`} stroke={classLine(index)} strokeWidth={1.2} />}
-                <path d={markerPath(index < 0 ? "circle" : classStyle(index).shape, x, y, isDense ? 2 : 3.3)} fill={classFill(index)} stroke={classLine(index)} strokeWidth={isDense ? 0 : 1} />
+                <path
+                  d={markerPath(index < 0 ? "circle" : classStyle(index).shape, x, y, isDense ? 2 : 3.3)}
+                  fill={classFill(index)}
+                  stroke={classLine(index)}
+                  strokeWidth={isDense ? 0 : 1}
+                />
                 {pickedRows.has(point.index) && <circle cx={x} cy={y} r={8} fill="none" stroke="var(--indigo)" strokeWidth={1.4} />}
                 {name !== null && (
                   <text x={name.x} y={name.y} textAnchor={name.anchor} fontSize={11} fill="var(--second)">
@@ -111,7 +127,11 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
         </svg>
       </div>
       {current !== undefined && !open && (
-        <span aria-hidden="true" className="pointer-events-none absolute -top-3 border border-hairline bg-surface px-1 text-[11px] leading-4 whitespace-nowrap" style={{ left: current.x, transform: `translateX(${current.x > width / 2 ? "-100%" : "0"})` }}>
+        <span
+          aria-hidden="true"
+          className="pointer-events-none absolute -top-3 border border-hairline bg-surface px-1 text-[11px] leading-4 whitespace-nowrap"
+          style={{ left: current.x, transform: `translateX(${current.x > width / 2 ? "-100%" : "0"})` }}
+        >
           {nameOf(current.point)} <span className="font-mono">{signedSigma(current.point.residual)}</span>
         </span>
       )}
@@ -127,12 +147,14 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
         >
           <div className="grid gap-3">
             <p>
-              <b className="font-semibold">{nameOf(current.point)}</b> {current.point.class !== "" && <span className="text-second">{current.point.class}</span>}
+              <b className="font-semibold">{nameOf(current.point)}</b>{" "}
+              {current.point.class !== "" && <span className="text-second">{current.point.class}</span>}
               <span className="block text-margin text-second">
                 {signedSigma(current.point.residual)} from the line{current.point.outlier ? ", flagged as an outlier" : ""}
               </span>
               <span className="block text-margin">
-                {axisName(result.x)} <Value value={current.point.x} sigma={current.point.sigmaX} form={view.settings.uncertainty} />, {axisName(result.y)} <Value value={current.point.y} sigma={current.point.sigmaY} form={view.settings.uncertainty} />
+                {axisName(result.x)} <Value value={current.point.x} sigma={current.point.sigmaX} form={view.settings.uncertainty} />, {axisName(result.y)}{" "}
+                <Value value={current.point.y} sigma={current.point.sigmaY} form={view.settings.uncertainty} />
               </span>
             </p>
             {view.mode !== "frozen" && table !== undefined && (
@@ -160,7 +182,11 @@ export function ResidualStrip({ result, table, picked, view, onLeaveOut }: Resid
           </div>
         </Popover>
       )}
-      {layout.clipped > 0 && <p className="text-[11px] leading-4 text-second">{layout.clipped === 1 ? "One sample lies" : `${layout.clipped} samples lie`} beyond 8σ and stand at the edge.</p>}
+      {layout.clipped > 0 && (
+        <p className="text-[11px] leading-4 text-second">
+          {layout.clipped === 1 ? "One sample lies" : `${layout.clipped} samples lie`} beyond 8σ and stand at the edge.
+        </p>
+      )}
     </div>
   );
 }

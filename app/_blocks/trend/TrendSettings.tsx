@@ -39,9 +39,24 @@ export function TrendSettings({ block, result, view, onSet }: TrendSettingsProps
         <Select label="Samples of" value={block.data} options={withCurrent(handleChoices(view, "data"), block.data)} onChoose={(data) => onSet("data", data)} />
         <CommitField label="Across" mono value={block.x} placeholder="Mg / Si" problem={problem("x")} onCommit={(x) => onSet("x", x.trim())} />
         <CommitField label="Upwards" mono value={block.y} placeholder="Al / Si" problem={problem("y")} onCommit={(y) => onSet("y", y.trim())} />
-        <CommitField label="Only where" mono value={block.where ?? ""} placeholder={'Group != "CI"'} hint="Left empty, all samples are fitted." problem={problem("where")} onCommit={(where) => onSet("where", where.trim() === "" ? undefined : where.trim())} />
+        <CommitField
+          label="Only where"
+          mono
+          value={block.where ?? ""}
+          placeholder={'Group != "CI"'}
+          hint="Left empty, all samples are fitted."
+          problem={problem("where")}
+          onCommit={(where) => onSet("where", where.trim() === "" ? undefined : where.trim())}
+        />
         <Select label="Method" value={block.method} options={methods} onChoose={(method) => onSet("method", method)} />
-        {block.method === "york" && <Select label="Scatter beyond the errors enters" value={block.scatter ?? "likelihood"} options={scatters} onChoose={(scatter) => onSet("scatter", scatter === "likelihood" ? undefined : scatter)} />}
+        {block.method === "york" && (
+          <Select
+            label="Scatter beyond the errors enters"
+            value={block.scatter ?? "likelihood"}
+            options={scatters}
+            onChoose={(scatter) => onSet("scatter", scatter === "likelihood" ? undefined : scatter)}
+          />
+        )}
         <Select
           label="Crosses"
           value={block.crossWith ?? ""}

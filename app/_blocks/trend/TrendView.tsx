@@ -30,7 +30,12 @@ function Row({ head, children }: { readonly head: string; readonly children: Rea
 /** A number that can be asked where it comes from. */
 function Asked({ text, label, onAsk }: { readonly text: string; readonly label: string; onAsk(): void }) {
   return (
-    <button type="button" aria-label={`Trace ${label}, ${text}`} className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo" onClick={onAsk}>
+    <button
+      type="button"
+      aria-label={`Trace ${label}, ${text}`}
+      className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo"
+      onClick={onAsk}
+    >
       {text}
     </button>
   );
@@ -75,7 +80,8 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
       {result === undefined && <p className="text-second">Calculating for the first time.</p>}
       {equation !== null && result !== undefined && (
         <p className="py-1 font-serif text-equation max-[719px]:text-[19px]">
-          {equation.y} = <Asked text={formatValue(equation.slope.value, equation.slope.sigma, { form })} label="the slope" onAsk={() => ask("slope")} /> {equation.x} {equation.sign}{" "}
+          {equation.y} = <Asked text={formatValue(equation.slope.value, equation.slope.sigma, { form })} label="the slope" onAsk={() => ask("slope")} />{" "}
+          {equation.x} {equation.sign}{" "}
           <Asked text={formatValue(equation.intercept.value, equation.intercept.sigma, { form })} label="the intercept" onAsk={() => ask("intercept")} />
           {equation.withScatter && <span className="ml-2 text-[0.76em] text-second">σ with scatter</span>}
         </p>
@@ -89,7 +95,8 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
         <>
           <dl className={grid}>
             <Row head="MSWD">
-              <span className="font-mono">{result.mswd.toFixed(2)}</span> {mswdPlace(result.mswd, result.mswdExpected)} the <span className="font-mono">{`${result.mswdExpected[0].toFixed(2)}–${result.mswdExpected[1].toFixed(2)}`}</span> expected of n = {result.n} (95 %)
+              <span className="font-mono">{result.mswd.toFixed(2)}</span> {mswdPlace(result.mswd, result.mswdExpected)} the{" "}
+              <span className="font-mono">{`${result.mswdExpected[0].toFixed(2)}–${result.mswdExpected[1].toFixed(2)}`}</span> expected of n = {result.n} (95 %)
             </Row>
           </dl>
           <MswdRuler mswd={result.mswd} expected={result.mswdExpected} />
@@ -102,16 +109,29 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
             <span className="font-mono">{result.n}</span>
             {samplesOfFit(result) === "" ? "" : `, ${samplesOfFit(result)}`}
           </Row>
-          {result.usesScatter && result.slope !== undefined && <Row head="errors alone">{`slope ${formatValue(result.slope.value, result.slope.sigma, { form })}`}</Row>}
+          {result.usesScatter && result.slope !== undefined && (
+            <Row head="errors alone">{`slope ${formatValue(result.slope.value, result.slope.sigma, { form })}`}</Row>
+          )}
           {result.covariance !== undefined && (
             <Row head="covariance">
-              <span className="font-mono">{small(result.usesScatter ? (result.covarianceWithScatter ?? result.covariance) : result.covariance)}</span>, slope with intercept
+              <span className="font-mono">{small(result.usesScatter ? (result.covarianceWithScatter ?? result.covariance) : result.covariance)}</span>, slope
+              with intercept
             </Row>
           )}
           {result.crossing !== undefined && (
             <Row head={`crosses ${result.crossing.with}`}>
               <span className="font-mono text-cell leading-5">
-                <Asked text={formatValue(result.crossing.x.value, result.crossing.x.sigma, { form })} label="the crossing across" onAsk={() => ask("crossing.x")} />, <Asked text={formatValue(result.crossing.y.value, result.crossing.y.sigma, { form })} label="the crossing upwards" onAsk={() => ask("crossing.y")} />
+                <Asked
+                  text={formatValue(result.crossing.x.value, result.crossing.x.sigma, { form })}
+                  label="the crossing across"
+                  onAsk={() => ask("crossing.x")}
+                />
+                ,{" "}
+                <Asked
+                  text={formatValue(result.crossing.y.value, result.crossing.y.sigma, { form })}
+                  label="the crossing upwards"
+                  onAsk={() => ask("crossing.y")}
+                />
               </span>
               {result.crossing.fromBodies.length > 0 ? `; ${distances(result.crossing.fromBodies)}` : ""}
               {result.crossing.region === "simulated" ? "; the slopes are too alike for an ellipse, its region is simulated" : ""}
@@ -120,7 +140,15 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
           {result.fromBodies.length > 0 && <Row head="from line">{distances(result.fromBodies)}</Row>}
         </dl>
       )}
-      {result?.ok && <ResidualStrip result={result} table={table} picked={picked} view={view} onLeaveOut={edits === null ? undefined : (point, reason) => leaveOut([point], reason)} />}
+      {result?.ok && (
+        <ResidualStrip
+          result={result}
+          table={table}
+          picked={picked}
+          view={view}
+          onLeaveOut={edits === null ? undefined : (point, reason) => leaveOut([point], reason)}
+        />
+      )}
       {(block.leaveOut ?? []).length > 0 && (
         <ul className="mt-2 text-margin text-second" aria-label="Left out of this fit">
           {(block.leaveOut ?? []).map((entry) => (
@@ -140,7 +168,10 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
           <TrendSettings block={block} result={result} view={view} onSet={(field, value) => run(() => edits.setField(blockKey, field, value))} />
           {pickedPoints.length > 0 && (
             <Popover label="Leave picked samples out" trigger={<Button>{`Leave ${pickedPoints.length} picked out`}</Button>}>
-              <LeaveOut what={pickedPoints.length === 1 ? (pickedPoints[0]?.sample ?? "") : `each of the ${pickedPoints.length} picked`} onLeaveOut={(reason) => leaveOut(pickedPoints, reason)} />
+              <LeaveOut
+                what={pickedPoints.length === 1 ? (pickedPoints[0]?.sample ?? "") : `each of the ${pickedPoints.length} picked`}
+                onLeaveOut={(reason) => leaveOut(pickedPoints, reason)}
+              />
             </Popover>
           )}
         </div>

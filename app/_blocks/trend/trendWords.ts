@@ -19,7 +19,10 @@ export interface Equation {
   readonly withScatter: boolean;
 }
 
-function used(parameter: { readonly value: number; readonly sigma: number | null; readonly sigmaWithScatter: number | null }, withScatter: boolean): UsedParameter {
+function used(
+  parameter: { readonly value: number; readonly sigma: number | null; readonly sigmaWithScatter: number | null },
+  withScatter: boolean,
+): UsedParameter {
   return { value: parameter.value, sigma: withScatter ? (parameter.sigmaWithScatter ?? parameter.sigma) : parameter.sigma };
 }
 
@@ -60,7 +63,8 @@ export function rulerEnd(mswd: number, expected: readonly [number, number]): num
 export function probabilityInWords(result: TrendResult): string {
   if (result.p === undefined) return "";
   const p = formatP(result.p);
-  if (result.p >= 0.05) return result.p > 0.975 ? `${p}, the points scatter less than their errors allow: are the σ too large?` : `${p}, the errors explain the scatter`;
+  if (result.p >= 0.05)
+    return result.p > 0.975 ? `${p}, the points scatter less than their errors allow: are the σ too large?` : `${p}, the errors explain the scatter`;
   const added = result.scatter !== undefined && result.scatter > 0 ? `; ${formatNumber(result.scatter, 2)} in ${axisName(result.y)} added` : "";
   return `${p}, more scatter than the errors explain${added}`;
 }

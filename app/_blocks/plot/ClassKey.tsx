@@ -1,6 +1,7 @@
 import type { PageView } from "@/app/_page/contract";
 import { ClassMarker } from "@/app/_ui/ClassMarker";
-import { State, type PlotResult } from "@/cells";
+import type { PlotResult } from "@/cells";
+import { isDrawn } from "./isDrawn";
 
 /** Classes drawn on a plot, with how many samples of each; in the order of the page's class sequence. */
 export function classCounts(result: PlotResult, classIndex: (name: string) => number): readonly { readonly name: string; readonly count: number }[] {
@@ -8,7 +9,7 @@ export function classCounts(result: PlotResult, classIndex: (name: string) => nu
   for (const layer of result.layers) {
     if (layer.what !== "samples") continue;
     for (let i = 0; i < layer.points.x.length; i++) {
-      if (layer.points.state[i] !== State.present || !Number.isFinite(layer.points.x[i] ?? NaN) || !Number.isFinite(layer.points.y[i] ?? NaN)) continue;
+      if (!isDrawn(layer.points, i, result.plot)) continue;
       const name = layer.classes[i] ?? "";
       counts.set(name, (counts.get(name) ?? 0) + 1);
     }

@@ -39,7 +39,7 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
       <ol>
         {topFirst.map(({ drawn, index }) => {
           const layer = result?.layers.find((l) => l.drawn === index);
-          const words = drawnInWords(drawn, layer);
+          const words = drawnInWords(drawn, layer, block.plot);
           const toggled: Drawn = drawn.hidden === true ? ((({ hidden: _, ...rest }) => rest)(drawn) as Drawn) : { ...drawn, hidden: true };
           return (
             <li

@@ -54,11 +54,15 @@ export function PlotHover({ hovered, result, view, width }: PlotHoverProps) {
         <dd className="text-right">
           <Value value={x} sigma={sx} form={form} />
         </dd>
-        <dt className="text-second">{axisInWords(result.y, undefined)}</dt>
-        <dd className="text-right">
-          <Value value={y} sigma={sy} form={form} />
-        </dd>
-        {Number.isFinite(correlation) && correlation !== 0 && (
+        {result.plot !== "distribution" && (
+          <>
+            <dt className="text-second">{axisInWords(result.y, undefined)}</dt>
+            <dd className="text-right">
+              <Value value={y} sigma={sy} form={form} />
+            </dd>
+          </>
+        )}
+        {Number.isFinite(correlation) && correlation !== 0 && result.plot !== "distribution" && (
           <>
             <dt className="text-second">correlation</dt>
             <dd className="text-right font-mono">{correlation.toFixed(2).replace("-", "−")}</dd>

@@ -11,10 +11,12 @@ import { usePalette } from "@/app/_blocks/shared/usePalette";
 import type { PlotBlock } from "@/cells";
 import { ClassKey } from "./ClassKey";
 import { DrawnList } from "./DrawnList";
+import { layOutDistribution } from "./distribution";
 import { buildFigure, type DragMode } from "./figure";
 import { plotFrame, plotHeight, wholeView, type ViewRange } from "./frame";
 import type { Hovered } from "./PlotCanvas";
 import { PlotHover } from "./PlotHover";
+import { roughWidth } from "./placeLabels";
 import { PlotSettings } from "./PlotSettings";
 import { mostEllipses, plotInWords } from "./plotWords";
 import { PointsTable } from "./PointsTable";
@@ -40,28 +42,42 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
   const palette = usePalette();
   const result = resultOf(view.results, block.id, "plot");
   const [hovered, setHovered] = useState<Hovered | null>(null);
-  const [dragMode, setDragMode] = useState<DragMode>("select");
+  const [dragMode, setDragMode] = useState<DragMode>(view.mode === "frozen" ? "zoom" : "select");
   const [closeUp, setCloseUp] = useState<ViewRange | null>(null);
 
   const pickedIn = useCallback((data: string) => pickedIndices(tableOf(view.results, data), view.picked), [view]);
+  const pickedByOthers = useCallback(
+    (data: string) =>
+      view.mode === "frozen"
+        ? []
+        : view.present
+            .filter((p) => !p.isMe && p.picked.length > 0)
+            .map((p) => ({ color: p.color, rows: pickedIndices(tableOf(view.results, data), p.picked) })),
+    [view],
+  );
   const width = Math.floor(size.width);
   const figure = useMemo(() => {
     if (result === undefined || width === 0) return null;
-    const range = closeUp ?? wholeView(result, block.xAxis, block.yAxis);
-    const frame = plotFrame(width, plotHeight(width), range, block.xAxis?.scale === "log", block.yAxis?.scale === "log");
+    const spread = result.plot === "distribution" ? layOutDistribution(result, (name) => view.classIndex(name)) : null;
+    const whole = wholeView(result, block.xAxis, block.yAxis);
+    const range = closeUp ?? (spread === null ? whole : { x: whole.x, y: [-0.6, spread.rows.length - 0.4] as const });
+    const left = spread === null ? undefined : Math.min(width / 3, 24 + Math.max(...spread.rows.map((name) => roughWidth(name, 11)), 24));
+    const frame = plotFrame(width, plotHeight(width), range, block.xAxis?.scale === "log", spread === null && block.yAxis?.scale === "log", left);
     const nameOf = (handle: string): string => view.blocks.find((b) => b.block.id === handle)?.block.name ?? handle;
     return buildFigure(
       block,
-      result,
+      spread?.result ?? result,
       nameOf,
-      { palette, frame, projector: view.settings.projector, classIndex: (name) => view.classIndex(name), pickedIn },
+      { palette, frame, projector: view.settings.projector, classIndex: (name) => view.classIndex(name), pickedIn, pickedByOthers },
       view.results,
       dragMode,
+      spread?.rows ?? null,
     );
-  }, [result, width, closeUp, block, view, palette, pickedIn, dragMode]);
+  }, [result, width, closeUp, block, view, palette, pickedIn, pickedByOthers, dragMode]);
 
   const onPick = useCallback(
     (points: readonly PointRef[], adds: boolean) => {
+      if (view.mode === "frozen") return;
       const rows = points.flatMap((point) => {
         const table = tableOf(view.results, point.data);
         return table === undefined ? [] : originsOf(table, [point.index]);

@@ -7,7 +7,8 @@ import { ClassMarker } from "@/app/_ui/ClassMarker";
 import { Value } from "@/app/_ui/Value";
 import { originsOf, pickedIndices, rowLabel } from "@/app/_blocks/shared/picks";
 import { tableOf } from "@/app/_blocks/shared/tableOf";
-import type { PlotResult } from "@/cells";
+import { State, stateName, type PlotResult } from "@/cells";
+import { hasPlace } from "./isDrawn";
 import { axisInWords } from "./plotWords";
 
 /** Rows shown at once; a table that nobody can read to its end only slows the page. */
@@ -21,12 +22,13 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
     if (layer.what !== "samples") return [];
     const table = tableOf(view.results, layer.data);
     const picked = new Set(pickedIndices(table, view.picked));
-    return Array.from(layer.points.x, (x, index) => ({ layer, table, index, x, isPicked: picked.has(index) })).filter(
-      (row) => Number.isFinite(row.x) && Number.isFinite(row.layer.points.y[row.index] ?? NaN),
+    return Array.from(layer.points.x, (x, index) => ({ layer, table, index, x, isPicked: picked.has(index) })).filter((row) =>
+      hasPlace(row.layer.points, row.index, result.plot),
     );
   });
   const bodies = result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : []));
-  const heads = ["sample", "class", axisInWords(result.x, undefined), axisInWords(result.y, undefined), "correlation"];
+  const hasY = result.plot !== "distribution";
+  const heads = ["sample", "class", axisInWords(result.x, undefined), ...(hasY ? [axisInWords(result.y, undefined), "correlation"] : [])];
   return (
     <div className="mt-2 max-h-96 overflow-auto" tabIndex={0} role="region" aria-label="What is drawn, as a table">
       <table className="w-full border-collapse text-margin">
@@ -34,7 +36,7 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
           <tr>
             {heads.map((head, i) => (
               <th
-                key={head}
+                key={i}
                 scope="col"
                 className={`sticky top-0 border-b border-ink bg-paper py-1 pr-3 font-normal whitespace-nowrap text-second ${i < 2 ? "text-left" : "text-right"}`}
               >
@@ -58,10 +60,14 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
               <td className="pr-3 text-right">
                 <Value value={b.x} sigma={b.sigmaX} form={form} />
               </td>
-              <td className="pr-3 text-right">
-                <Value value={b.y} sigma={b.sigmaY} form={form} />
-              </td>
-              <td className="pr-3 text-right font-mono">{b.correlation.toFixed(2).replace("-", "−")}</td>
+              {hasY && (
+                <>
+                  <td className="pr-3 text-right">
+                    <Value value={b.y} sigma={b.sigmaY} form={form} />
+                  </td>
+                  <td className="pr-3 text-right font-mono">{b.correlation.toFixed(2).replace("-", "−")}</td>
+                </>
+              )}
               {view.mode !== "frozen" && <td />}
             </tr>
           ))}
@@ -77,14 +83,19 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
                 <td className="pr-3 whitespace-nowrap">
                   {name !== "" && <ClassMarker index={view.classIndex(name)} className="mr-2" />}
                   {name}
+                  {layer.points.state[index] !== State.present && <span className="ml-2 text-second">{stateName(layer.points.state[index] ?? 0)}</span>}
                 </td>
                 <td className="pr-3 text-right">
                   <Value value={x} sigma={layer.points.sigmaX[index] ?? null} form={form} />
                 </td>
-                <td className="pr-3 text-right">
-                  <Value value={layer.points.y[index] ?? null} sigma={layer.points.sigmaY[index] ?? null} form={form} />
-                </td>
-                <td className="pr-3 text-right font-mono">{Number.isFinite(correlation) ? correlation.toFixed(2).replace("-", "−") : "–"}</td>
+                {hasY && (
+                  <>
+                    <td className="pr-3 text-right">
+                      <Value value={layer.points.y[index] ?? null} sigma={layer.points.sigmaY[index] ?? null} form={form} />
+                    </td>
+                    <td className="pr-3 text-right font-mono">{Number.isFinite(correlation) ? correlation.toFixed(2).replace("-", "−") : "–"}</td>
+                  </>
+                )}
                 {view.mode !== "frozen" && (
                   <td className="text-right">
                     {table !== undefined && (

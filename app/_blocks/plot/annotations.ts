@@ -193,7 +193,7 @@ export function buildAnnotations(
       text: plainText(axes.x),
       font: { family: sans, size: 12, color: palette.ink, weight: 500 } as Note["font"] & { weight: number },
     },
-    textAt(frame.margin.l + 8, frame.margin.t + 6, axes.y, 12, palette.ink, 500, drawing),
+    ...(axes.y === "" ? [] : [textAt(frame.margin.l + 8, frame.margin.t + 6, axes.y, 12, palette.ink, 500, drawing)]),
   ];
   const inView = (l: Label): boolean =>
     frame.px(l.x) >= frame.margin.l &&

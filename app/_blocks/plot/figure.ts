@@ -63,6 +63,11 @@ function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Par
   } as Partial<LayoutAxis>;
 }
 
+/** Rows of a distribution in place of figures. */
+function rowTicks(rows: readonly string[]): Partial<LayoutAxis> {
+  return { tickmode: "array", tickvals: rows.map((_, i) => i), ticktext: [...rows], ticks: "", minor: {} } as Partial<LayoutAxis>;
+}
+
 /** The card knows dashes by name only. */
 function onGraphicsCard(trace: Data): void {
   trace.type = "scattergl";
@@ -77,6 +82,7 @@ export function buildFigure(
   drawing: Drawing,
   results: PageResults | null,
   dragmode: DragMode,
+  rows: readonly string[] | null = null,
 ): Figure {
   const { frame, palette } = drawing;
   const layers = result.layers.filter((layer) => block.drawn[layer.drawn]?.hidden !== true);
@@ -85,7 +91,7 @@ export function buildFigure(
   for (const layer of layers) if (layer.what === "samples") data.push(...pickedTraces(layer, drawing));
   // The graphics card's layer lies over the vectors: with any of it, everything is drawn on it, so that the order holds.
   if (data.some((trace) => trace.type === "scattergl")) for (const trace of data) onGraphicsCard(trace);
-  const axes = { x: axisInWords(result.x, block.xAxis?.label), y: axisInWords(result.y, block.yAxis?.label) };
+  const axes = { x: axisInWords(result.x, block.xAxis?.label), y: rows === null ? axisInWords(result.y, block.yAxis?.label) : "" };
   return {
     data,
     layout: {
@@ -100,7 +106,7 @@ export function buildFigure(
       dragmode,
       font: { family: '"IBM Plex Sans", "Helvetica Neue", Arial, sans-serif', color: palette.ink, size: 12 },
       xaxis: axis(frame.view.x, frame.logX, frame.width - frame.margin.l - frame.margin.r, drawing),
-      yaxis: axis(frame.view.y, frame.logY, frame.height - frame.margin.t - frame.margin.b, drawing),
+      yaxis: { ...axis(frame.view.y, frame.logY, frame.height - frame.margin.t - frame.margin.b, drawing), ...(rows === null ? {} : rowTicks(rows)) },
       annotations: buildAnnotations(layers, axes, nameOf, drawing, results),
       newselection: { line: { color: palette.indigo, width: 1, dash: "solid" } },
       activeselection: { fillcolor: palette.indigo, opacity: 0.06 },

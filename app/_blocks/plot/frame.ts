@@ -25,10 +25,11 @@ export interface Frame {
 
 export const plotMargin = { l: 52, r: 8, t: 8, b: 42 } as const;
 
-export function plotFrame(width: number, height: number, view: ViewRange, logX: boolean, logY: boolean): Frame {
-  const sx: Scale = scale(view.x[0], view.x[1], plotMargin.l, width - plotMargin.r);
+export function plotFrame(width: number, height: number, view: ViewRange, logX: boolean, logY: boolean, left: number = plotMargin.l): Frame {
+  const margin = { ...plotMargin, l: left };
+  const sx: Scale = scale(view.x[0], view.x[1], left, width - plotMargin.r);
   const sy: Scale = scale(view.y[0], view.y[1], height - plotMargin.b, plotMargin.t);
-  return { width, height, margin: plotMargin, view, logX, logY, px: (x) => sx.at(logX ? Math.log10(x) : x), py: (y) => sy.at(logY ? Math.log10(y) : y) };
+  return { width, height, margin, view, logX, logY, px: (x) => sx.at(logX ? Math.log10(x) : x), py: (y) => sy.at(logY ? Math.log10(y) : y) };
 }
 
 /** Height that suits a width: a little flatter than square on wide pages, square on a phone. */

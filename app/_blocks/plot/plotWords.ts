@@ -2,6 +2,7 @@ import { basisInWords, compactExpression } from "@/app/_blocks/shared/words";
 import { absent } from "@/app/_blocks/shared/words";
 import type { AxisInfo, Drawn, PlotLayer, PlotResult } from "@/cells";
 import { ellipseInWords } from "./ellipse";
+import { isDrawn } from "./isDrawn";
 
 /** Samples up to this many are drawn with ellipses, as vectors; more are drawn as points on the graphics card. */
 export const mostEllipses = 2000;
@@ -21,16 +22,19 @@ export interface DrawnWords {
   readonly count: string;
 }
 
-const finitePoints = (layer: Extract<PlotLayer, { what: "samples" }>): number =>
-  layer.points.x.reduce((n, x, i) => (Number.isFinite(x) && Number.isFinite(layer.points.y[i] ?? NaN) && layer.points.state[i] === 0 ? n + 1 : n), 0);
+function countDrawn(layer: Extract<PlotLayer, { what: "samples" }>, plot: PlotResult["plot"]): number {
+  let count = 0;
+  for (let i = 0; i < layer.points.x.length; i++) if (isDrawn(layer.points, i, plot)) count++;
+  return count;
+}
 
 /** One line of the list of what is drawn. `layer` is what it came to, if it is drawn. */
-export function drawnInWords(drawn: Drawn, layer: PlotLayer | undefined): DrawnWords {
+export function drawnInWords(drawn: Drawn, layer: PlotLayer | undefined, plot: PlotResult["plot"] = "scatter"): DrawnWords {
   const says = (text: string): string => (drawn.hidden ? "hidden" : layer === undefined ? `${text}${text === "" ? "" : "; "}nothing to draw` : text);
   if ("data" in drawn) {
-    const count = layer?.what === "samples" ? finitePoints(layer) : 0;
+    const count = layer?.what === "samples" ? countDrawn(layer, plot) : 0;
     const size =
-      layer?.what === "samples"
+      layer?.what === "samples" && plot === "scatter"
         ? layer.points.x.length > mostEllipses && layer.ellipses > 0
           ? `ellipses left off above ${mostEllipses} samples`
           : ellipseInWords(layer.ellipses)

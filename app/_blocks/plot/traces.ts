@@ -15,6 +15,8 @@ export interface Drawing {
   classIndex(name: string): number;
   /** Rows of a table that are picked, by its handle. */
   pickedIn(data: string): readonly number[];
+  /** The same for the others who are on the page now, each in their colour. */
+  pickedByOthers(data: string): readonly { readonly color: string; readonly rows: readonly number[] }[];
 }
 
 /** What a marker stands for, as hovering and selecting hand it back. */
@@ -110,9 +112,8 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
   return traces;
 }
 
-/** Rings around the picked samples, over everything else. */
-export function pickedTraces(layer: Samples, drawing: Drawing): Data[] {
-  const rows = drawing.pickedIn(layer.data).filter((i) => Number.isFinite(layer.points.x[i] ?? NaN) && Number.isFinite(layer.points.y[i] ?? NaN));
+function ring(layer: Samples, picked: readonly number[], color: string, size: number): Data[] {
+  const rows = picked.filter((i) => Number.isFinite(layer.points.x[i] ?? NaN) && Number.isFinite(layer.points.y[i] ?? NaN));
   if (rows.length === 0) return [];
   return [
     {
@@ -121,8 +122,16 @@ export function pickedTraces(layer: Samples, drawing: Drawing): Data[] {
       mode: "markers",
       x: rows.map((i) => layer.points.x[i] ?? null),
       y: rows.map((i) => layer.points.y[i] ?? null),
-      marker: { symbol: "circle-open", size: 16, color: drawing.palette.indigo, line: { color: drawing.palette.indigo, width: 1.6 } },
+      marker: { symbol: "circle-open", size, color, line: { color, width: 1.6 } },
     },
+  ];
+}
+
+/** Rings around the picked samples, over everything else: one's own in indigo, those of others wider and in their colour. */
+export function pickedTraces(layer: Samples, drawing: Drawing): Data[] {
+  return [
+    ...drawing.pickedByOthers(layer.data).flatMap(({ color, rows }) => ring(layer, rows, color, 21)),
+    ...ring(layer, drawing.pickedIn(layer.data), drawing.palette.indigo, 16),
   ];
 }
 

@@ -43,7 +43,14 @@ const block: PlotBlock = { id: "p", kind: "plot", plot: "scatter", drawn: [{ tre
 function figureOf(layers: readonly PlotLayer[], plot = block, picked: readonly number[] = []) {
   const made = result(layers);
   const frame = plotFrame(680, 520, wholeView(made, plot.xAxis, plot.yAxis), false, false);
-  const drawing: Drawing = { palette: planeLight, frame, projector: false, classIndex: (name) => (name === "H" ? 0 : 1), pickedIn: () => picked };
+  const drawing: Drawing = {
+    palette: planeLight,
+    frame,
+    projector: false,
+    classIndex: (name) => (name === "H" ? 0 : 1),
+    pickedIn: () => picked,
+    pickedByOthers: () => [],
+  };
   return buildFigure(plot, made, (handle) => handle, drawing, null, "select");
 }
 

@@ -1,5 +1,7 @@
 "use client";
 
+// First: Plotly looks for these when it is loaded.
+import "./plotlyStyles";
 import plotly from "plotly.js-dist-min";
 import { useMemo, useRef } from "react";
 import createPlotlyComponent from "react-plotly.js/factory";

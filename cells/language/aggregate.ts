@@ -9,7 +9,7 @@ import { sourceOf, type Frame } from "./frame";
 import type { AggregateName } from "./functions";
 import { perSampleCovariance } from "./covariance";
 import { structureOf } from "./graph";
-import { plainNumber, type Meaning } from "./meaning";
+import { plainNumber, shownUnit, type Meaning } from "./meaning";
 import { measure, type Measurement } from "./measure";
 import type { CommonVariable } from "./scope";
 import { splitBy, type Split } from "./split";
@@ -73,7 +73,7 @@ function variableOf(aggregated: AggregateValue, key: string, label: string, of: 
   const notes = [`over ${rows.length} ${rows.length === 1 ? "sample" : "samples"}`];
   if (external !== undefined && mswd !== undefined && external === external)
     notes.push(`σ is the internal one; with the scatter it is ${short(external / sigma)} times that, MSWD ${short(mswd)}`);
-  const unit = name === "count" ? units["1"] : of.meaning.shown;
+  const unit = name === "count" ? units["1"] : shownUnit(of.meaning);
   const variable: CommonVariable = {
     key,
     label,

@@ -8,7 +8,7 @@ import { sourceOf, type Frame } from "./frame";
 import type { Compiled, CompiledValue } from "./compiled";
 import { dimensionOf, dimensionless, isDimensionless, sameDimension, type Counting } from "./dimension";
 import { aggregateNames, functionNamed, otherSpellings, unitSuffixes, type AggregateName } from "./functions";
-import { inWords, plainNumber, quantityIn, requireAlike, type Meaning } from "./meaning";
+import { inWords, plainNumber, powerMeaning, quantityIn, requireAlike, type Meaning } from "./meaning";
 import { joinOver } from "./split";
 import { countSpecies } from "./amounts";
 import { run } from "./interpreter";
@@ -143,12 +143,11 @@ function transcendental(compiler: Compiler, tree: CallTree, name: "log10" | "ln"
 
 function squareRoot(compiler: Compiler, of: CompiledValue): CompiledValue {
   const node = compiler.graph.apply("sqrt", of.node);
-  const dimension = of.meaning.dimension.map((exponent) => exponent / 2);
   return {
     kind: "value",
     node,
     state: compiler.graph.guard(of.state, node),
-    meaning: { dimension, counting: of.meaning.counting, onScale: false },
+    meaning: powerMeaning(of.meaning, 0.5),
     over: of.over,
   };
 }

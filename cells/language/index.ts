@@ -1,5 +1,7 @@
 /** The expression language: reading, checking, calculating with units, bases and correlated 1σ. */
 export type { ClassVariable, ColumnVariable, OneVariable, Variable } from "./compiled";
+export { complete, helpFor } from "./complete";
+export type { Completion, Completions } from "./complete";
 export { compileOnComposition } from "./composition";
 export type { CompositionValue, OnComposition } from "./composition";
 export { evaluateCondition, evaluateExpression } from "./evaluate";

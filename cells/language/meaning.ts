@@ -5,6 +5,7 @@ import {
   combineDimensions,
   countsAlike,
   dimensionInWords,
+  dimensionOf,
   dimensionless,
   isDimensionless,
   sameDimension,
@@ -17,7 +18,7 @@ import {
 export interface Meaning {
   readonly dimension: Dimension;
   readonly counting: Counting;
-  /** The unit it is shown in, where a column or function chose one. */
+  /** The unit of its first column, or the one a function chose. It counts where it is of the value's dimension: see {@link shownUnit}. */
   readonly shown?: Unit;
   /** True for temperatures on a scale with a zero of its own; false for differences of temperatures and everything else. */
   readonly onScale: boolean;
@@ -82,8 +83,9 @@ export function requireAlike(left: Meaning, right: Meaning, written: () => Sides
 function unitAdvice(left: Meaning, right: Meaning, sides: Sides): string {
   const [number, quantity] = left.counting === "number" && isDimensionless(left.dimension) ? [sides.left, right] : [sides.right, left];
   const plain = [left, right].some((m) => m.counting === "number" && isDimensionless(m.dimension));
-  if (plain && quantity.shown?.dimension === "mass fraction") return `Say what ${number} is: wtpct(${number}) or ugg(${number}).`;
-  if (plain && quantity.shown !== undefined) return `Say in which unit ${number} is, as in ${maker(quantity.shown)}(${number}).`;
+  const unit = shownUnit(quantity);
+  if (plain && unit?.dimension === "mass fraction") return `Say what ${number} is: wtpct(${number}) or ugg(${number}).`;
+  if (plain && unit !== undefined) return `Say in which unit ${number} is, as in ${maker(unit)}(${number}).`;
   return "Bring both to one kind of quantity first.";
 }
 
@@ -129,29 +131,24 @@ export function productMeaning(left: Meaning, right: Meaning, factor: 1 | -1): M
   const dimension = combineDimensions(left.dimension, right.dimension, factor);
   // Temperatures, pressures and the like have no basis of their own, so a product takes the other side's.
   const counting = combineCounting(left.counting, right.counting);
-  const shown = factor === 1 && isDimensionless(left.dimension) ? right.shown : left.shown;
-  const keeps =
-    shown !== undefined &&
-    sameDimension(dimension, isDimensionless(left.dimension) ? right.dimension : left.dimension) &&
-    (factor === 1 || isDimensionless(right.dimension));
+  const shown = left.shown ?? right.shown;
   const remark = counting === "mixed" ? "mixes mass and atoms" : (left.remark ?? right.remark);
-  return { dimension, counting, onScale: false, ...(keeps ? { shown } : {}), ...(remark === undefined ? {} : { remark }) };
+  return { dimension, counting, onScale: false, ...(shown === undefined ? {} : { shown }), ...(remark === undefined ? {} : { remark }) };
 }
 
 /** The meaning of x to a constant power. */
 export function powerMeaning(base: Meaning, exponent: number): Meaning {
-  const same = exponent === 1;
   return {
     dimension: scaleDimension(base.dimension, exponent),
     counting: base.counting,
-    onScale: same && base.onScale,
-    ...(same && base.shown !== undefined ? { shown: base.shown } : {}),
+    onScale: exponent === 1 && base.onScale,
+    ...(base.shown === undefined ? {} : { shown: base.shown }),
     ...(base.remark === undefined ? {} : { remark: base.remark }),
   };
 }
 
-/** The unit a value is shown in: the one chosen, for temperatures that are differences K, else undefined. */
-export function shownUnit(meaning: Meaning): Unit | undefined {
-  if (meaning.shown === undefined) return undefined;
-  return meaning.shown.offset !== 0 && !meaning.onScale ? units.K : meaning.shown;
+/** The unit a value is shown in: the one chosen, where it is of the value's dimension; K for differences of temperatures. */
+export function shownUnit({ shown, dimension, onScale }: Meaning): Unit | undefined {
+  if (shown === undefined || !sameDimension(dimension, dimensionOf(shown))) return undefined;
+  return shown.offset !== 0 && !onScale ? units.K : shown;
 }

@@ -67,7 +67,7 @@ export class Compiler {
     if (known !== undefined) return known;
     if (this.#active.has(place))
       throw new CellError("cycle", `${line.name} is calculated from itself, by way of ${[...this.#active].join(", ")}. Break the circle.`, { span: at });
-    if (this.#active.size >= MAX_DEPTH) throw new CellError("too-deep", `Lines that use lines go deeper than ${MAX_DEPTH} here.`, { span: at });
+    if (this.#active.size >= MAX_DEPTH) throw new CellError("lines-too-deep", `Lines that use lines go deeper than ${MAX_DEPTH} here.`, { span: at });
     this.#active.add(place);
     try {
       const made = this.compile(parse(line.text), { scope: line.scope, text: line.text, on: frame.on });
@@ -76,7 +76,8 @@ export class Compiler {
       return made;
     } catch (error) {
       if (!(error instanceof CellError)) throw error;
-      if (error.code === "cycle" || error.code === "bad-line" || error.code === "too-large") throw new CellError(error.code, error.message, { span: at });
+      if (error.code === "cycle" || error.code === "bad-line" || error.code === "lines-too-deep" || error.code === "too-large")
+        throw new CellError(error.code, error.message, { span: at });
       throw new CellError("bad-line", `${line.name} (block ${line.block}) cannot be calculated: ${error.message}`, { span: at });
     } finally {
       this.#active.delete(place);

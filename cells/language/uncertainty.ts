@@ -67,13 +67,17 @@ export function uncertaintyNodes(graph: Graph, partials: ReadonlyMap<number, num
     if (hasAssumed(variable.column))
       assumed = graph.max(assumed, graph.mul(graph.load(variable.column.assumed, `${labelOf(variable)}:assumed`), graph.compare("ne", partial, zero)));
   }
-  const lacks = graph.max(perSample.lacks, common.lacks);
-  const has = graph.max(perSample.has, common.has);
+  const both: Variance = {
+    variance: graph.add(perSample.variance, common.variance),
+    lacks: graph.max(perSample.lacks, common.lacks),
+    has: graph.max(perSample.has, common.has),
+    mayCancel: perSample.mayCancel || common.mayCancel,
+  };
   return {
-    sigma: root(graph, graph.add(perSample.variance, common.variance), lacks, has),
-    sigmaPerSample: root(graph, perSample.variance, perSample.lacks, perSample.has),
-    sigmaCommon: root(graph, common.variance, common.lacks, common.has),
-    lowerBound: graph.mul(lacks, has),
+    sigma: root(graph, both),
+    sigmaPerSample: root(graph, perSample),
+    sigmaCommon: root(graph, common),
+    lowerBound: graph.mul(both.lacks, both.has),
     assumed,
   };
 }
@@ -83,10 +87,14 @@ interface Variance {
   readonly variance: number;
   readonly has: number;
   readonly lacks: number;
+  /** True where covariances are among its terms. */
+  readonly mayCancel: boolean;
 }
 
-function root(graph: Graph, variance: number, lacks: number, has: number): number {
-  const sigma = graph.apply("sqrt", variance);
+function root(graph: Graph, { variance, lacks, has, mayCancel }: Variance): number {
+  const zero = graph.constant(0);
+  // Rounding may take a variance whose terms cancel just below 0.
+  const sigma = graph.apply("sqrt", mayCancel ? graph.select(graph.compare("lt", variance, zero), zero, variance) : variance);
   return graph.select(graph.mul(lacks, graph.not(has)), graph.constant(Number.NaN), sigma);
 }
 
@@ -119,8 +127,8 @@ function perSampleNodes(graph: Graph, parts: readonly { variable: ColumnVariable
       lacks = graph.max(lacks, graph.mul(counts, graph.not(known)));
     }
   }
-  variance = graph.add(variance, declaredCovariance(graph, parts, terms));
-  return { variance, has, lacks };
+  const covariance = declaredCovariance(graph, parts, terms);
+  return { variance: graph.add(variance, covariance), has, lacks, mayCancel: graph.constantOf(covariance) !== 0 };
 }
 
 /** 2 Σ ρ t_i t_j over the pairs of columns for which the table declares an error correlation. */
@@ -152,6 +160,7 @@ function commonNodes(graph: Graph, parts: readonly { variable: CommonPart; parti
   let variance = zero;
   let has = zero;
   let lacks = zero;
+  let mayCancel = false;
   for (const { variable, partial } of parts) {
     const counts = graph.compare("ne", partial, zero);
     const sigma = sigmaNode(graph, variable);
@@ -168,10 +177,11 @@ function commonNodes(graph: Graph, parts: readonly { variable: CommonPart; parti
       if (a === undefined || b === undefined) continue;
       const covariance = covarianceNode(graph, a.variable, b.variable);
       if (covariance === undefined) continue;
+      mayCancel = true;
       variance = graph.add(variance, graph.mul(graph.constant(2), graph.mul(covariance, graph.mul(a.partial, b.partial))));
     }
   }
-  return { variance, has, lacks };
+  return { variance, has, lacks, mayCancel };
 }
 
 /** An unknown σ is a constant, so that what depends on it alone folds away. */

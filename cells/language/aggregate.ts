@@ -150,17 +150,31 @@ function countable(compiler: Compiler, condition: CompiledCondition): CompiledVa
 }
 
 function presentRows(measured: Measurement, setAside: Uint8Array, onlyTrue: boolean): Int32Array {
-  const rows: number[] = [];
+  const rows = new Int32Array(measured.length);
+  let n = 0;
   for (let row = 0; row < measured.length; row++) {
-    if (measured.state[row] === State.present && setAside[row] !== 1 && (!onlyTrue || measured.value[row] === 1)) rows.push(row);
+    if (measured.state[row] === State.present && setAside[row] !== 1 && (!onlyTrue || measured.value[row] === 1)) rows[n++] = row;
   }
-  return Int32Array.from(rows);
+  return rows.slice(0, n);
 }
 
 function rowsByClass(rows: Int32Array, split: Split): Int32Array[] {
-  const sorted = split.classes.map((): number[] => []);
-  for (const row of rows) sorted[split.classOf[row] ?? -1]?.push(row);
-  return sorted.map((of) => Int32Array.from(of));
+  const counts = new Int32Array(split.classes.length);
+  for (const row of rows) {
+    const place = split.classOf[row] as number;
+    if (place >= 0) counts[place] = (counts[place] as number) + 1;
+  }
+  const sorted = split.classes.map((_, place) => new Int32Array(counts[place] as number));
+  counts.fill(0);
+  for (const row of rows) {
+    const place = split.classOf[row] as number;
+    const of = sorted[place];
+    const next = counts[place] as number;
+    if (of === undefined) continue;
+    of[next] = row;
+    counts[place] = next + 1;
+  }
+  return sorted;
 }
 
 function classes(compiler: Compiler, tree: Tree, table: Split["table"], frame: Frame, first: Tree): string | Split {

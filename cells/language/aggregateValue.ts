@@ -1,6 +1,6 @@
 import type { AggregateName } from "./functions";
 import type { Measurement } from "./measure";
-import { deviationOf, meanOf, middlePlaces, sampleCovariance } from "./statistics";
+import { deviationOf, gather, meanOf, middlePlaces, sampleCovariance } from "./statistics";
 
 /** Ratio of the σ of a median to that of a mean, for normal samples: √(π/2). */
 const MEDIAN = 1.2533141373155001;
@@ -27,7 +27,7 @@ export interface AggregateValue {
  * most that of the sample; count exact. NaN where n is too small for one.
  */
 export function aggregateValue(name: AggregateName, measured: Measurement, rows: Int32Array): AggregateValue {
-  const x = Float64Array.from(rows, (row) => measured.value[row] as number);
+  const x = gather(measured.value, rows);
   const n = x.length;
   const base = { name, rows, measured };
   const flat = (share: number): Float64Array => new Float64Array(n).fill(share);
@@ -48,7 +48,7 @@ export function aggregateValue(name: AggregateName, measured: Measurement, rows:
     case "sd":
     case "se": {
       const scale = name === "sd" ? 1 : 1 / root;
-      const influence = Float64Array.from(x, (value) => (scale * (value - mean)) / ((n - 1) * sd));
+      const influence = x.map((value) => (scale * (value - mean)) / ((n - 1) * sd));
       return { ...base, value: sd * scale, sigma: (sd * scale) / Math.sqrt(2 * (n - 1)), influence };
     }
     case "least":
@@ -70,10 +70,7 @@ function extreme(name: "least" | "most", x: Float64Array, measured: Measurement,
 /** Weights are 1/σ² of the samples alone: what is common to all samples does not weigh. Samples without σ, or with σ = 0, are left out. */
 function weighted(measured: Measurement, all: Int32Array): AggregateValue {
   const rows = all.filter((row) => (measured.sigmaPerSample[row] as number) > 0);
-  const weights = Float64Array.from(rows, (row) => {
-    const sigma = measured.sigmaPerSample[row] as number;
-    return 1 / (sigma * sigma);
-  });
+  const weights = gather(measured.sigmaPerSample, rows).map((sigma) => 1 / (sigma * sigma));
   let total = 0;
   let sum = 0;
   rows.forEach((row, i) => {
@@ -123,8 +120,14 @@ export function aggregateCovariance(a: AggregateValue, b: AggregateValue, errorC
   if (extremes(a) || extremes(b)) return 0;
   const spread = (x: AggregateValue): boolean => x.name === "sd" || x.name === "se";
   if (spread(a) !== spread(b)) return 0;
-  const x = Float64Array.from(atA, (i) => a.measured.value[a.rows[i] as number] as number);
-  const y = Float64Array.from(atB, (i) => b.measured.value[b.rows[i] as number] as number);
+  const x = gather(
+    a.measured.value,
+    atA.map((i) => a.rows[i] as number),
+  );
+  const y = gather(
+    b.measured.value,
+    atB.map((i) => b.rows[i] as number),
+  );
   if (spread(a)) {
     const rho = sampleCovariance(x, y) / (deviationOf(x) * deviationOf(y));
     return within((rho * rho * a.sigma * b.sigma * x.length) / Math.sqrt(a.rows.length * b.rows.length), a, b);
@@ -144,16 +147,17 @@ function within(covariance: number, a: AggregateValue, b: AggregateValue): numbe
 
 /** Places, in two ascending lists of rows, of the rows that are in both. */
 function sharedPlaces(a: Int32Array, b: Int32Array): [Int32Array, Int32Array] {
-  const inA: number[] = [];
-  const inB: number[] = [];
+  const inA = new Int32Array(Math.min(a.length, b.length));
+  const inB = new Int32Array(inA.length);
+  let n = 0;
   for (let i = 0, j = 0; i < a.length && j < b.length;) {
     const [x, y] = [a[i] as number, b[j] as number];
     if (x === y) {
-      inA.push(i);
-      inB.push(j);
+      inA[n] = i;
+      inB[n++] = j;
     }
     if (x <= y) i++;
     if (y <= x) j++;
   }
-  return [Int32Array.from(inA), Int32Array.from(inB)];
+  return [inA.subarray(0, n), inB.subarray(0, n)];
 }

@@ -1,7 +1,7 @@
 import { CellError } from "../errors";
 import { State } from "../quantity/state";
 import { units } from "../quantity/unit";
-import { parseSpecies, type Body } from "../species";
+import type { Body } from "../species";
 import { aggregate } from "./aggregate";
 import type { Compiler } from "./compiler";
 import { sourceOf, type Frame } from "./frame";
@@ -11,7 +11,7 @@ import { aggregateNames, functionNamed, otherSpellings, unitSuffixes, type Aggre
 import { inWords, plainNumber, powerMeaning, quantityIn, requireAlike, type Meaning } from "./meaning";
 import { joinOver } from "./split";
 import { countSpecies } from "./amounts";
-import { run } from "./interpreter";
+import { run } from "./execute";
 import { lower } from "./program";
 import type { CallTree, Tree } from "./tree";
 

@@ -7,7 +7,7 @@ import { partialsOf } from "./derivatives";
 import { canonicalUnit, composedSymbol, statedBasis } from "./dimension";
 import { placed } from "./evaluate";
 import type { Frame } from "./frame";
-import { run } from "./interpreter";
+import { run } from "./execute";
 import { MAX_DERIVED_NODES } from "./limits";
 import { shownUnit } from "./meaning";
 import { parse } from "./parse";

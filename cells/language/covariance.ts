@@ -26,10 +26,11 @@ export function perSampleCovariance(a: Measurement, b: Measurement): Float64Arra
   return found;
 }
 
+/** Adds p s · q t · ρ, entry by entry, where it is a number. */
 function addProducts(to: Float64Array, p: Float64Array, q: Float64Array, s: Float64Array, t: Float64Array, rho: Float64Array | undefined): void {
   for (let i = 0; i < to.length; i++) {
-    const product = (p[i] as number) * (s[i] as number) * ((q[i] as number) * (t[i] as number)) * (rho === undefined ? 1 : (rho[i] as number));
-    if (product === product) to[i] = (to[i] as number) + product;
+    const product = (p[i] as number) * (s[i] as number) * ((q[i] as number) * (t[i] as number));
+    if (product === product) to[i] = (to[i] as number) + (rho === undefined ? product : product * (rho[i] as number));
   }
 }
 

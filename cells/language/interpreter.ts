@@ -13,7 +13,7 @@ const none = new Float64Array(0);
  *
  * @param to one column of at least `rows` entries for each result of the program
  */
-export function run(program: Program, rows: number, to: readonly (Float64Array | Uint8Array)[]): void {
+export function interpret(program: Program, rows: number, to: readonly (Float64Array | Uint8Array)[]): void {
   while (pool.length < program.registers) pool.push(new Float64Array(CHUNK));
   for (const { register, value } of program.fixed) pool[register]?.fill(value, 0, Math.min(CHUNK, rows));
   const steps = program.instructions.map(({ op, target, a, b, c, column }) => ({

@@ -2,7 +2,7 @@ import type { ColumnVariable, CompiledValue } from "./compiled";
 import type { Compiler } from "./compiler";
 import { partialsOf } from "./derivatives";
 import type { Column, Load } from "./graph";
-import { run } from "./interpreter";
+import { run } from "./execute";
 import { MAX_DERIVED_NODES } from "./limits";
 import { lower } from "./program";
 import { extentOf, type Over, type Split } from "./split";
@@ -35,13 +35,19 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   graph.raiseLimit(MAX_DERIVED_NODES);
   const partials = partialsOf(graph, node, new Set(variables.keys()), compiler.links);
   const nodes = uncertaintyNodes(graph, partials, variables);
-  const asked = [node, graph.guard(value.state, node), nodes.sigma, nodes.sigmaPerSample, nodes.sigmaCommon, nodes.lowerBound, nodes.assumed];
   const length = extentOf(value.over);
   const columnOf = columnsOver(compiler, value.over);
-  const numbers = (): Float64Array => new Float64Array(length);
-  const bytes = (): Uint8Array => new Uint8Array(length);
-  const made = { value: numbers(), state: bytes(), sigma: numbers(), sigmaPerSample: numbers(), sigmaCommon: numbers(), lowerBound: bytes(), assumed: bytes() };
-  run(lower(graph, asked, columnOf), length, [made.value, made.state, made.sigma, made.sigmaPerSample, made.sigmaCommon, made.lowerBound, made.assumed]);
+  const results = new Results(compiler, length);
+  const made = {
+    value: results.numbers(node),
+    state: results.bytes(graph.guard(value.state, node)),
+    sigma: results.numbers(nodes.sigma),
+    sigmaPerSample: results.numbers(nodes.sigmaPerSample),
+    sigmaCommon: results.numbers(nodes.sigmaCommon),
+    lowerBound: results.bytes(nodes.lowerBound),
+    assumed: results.bytes(nodes.assumed),
+  };
+  results.calculate(columnOf);
   blankAbsent(made, length);
 
   const columns: ColumnVariable[] = [];
@@ -55,13 +61,50 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   const partial = (variable: ColumnVariable | CommonPart): Float64Array => {
     const known = asCalculated.get(variable.node);
     if (known !== undefined) return known;
-    const found = numbers();
+    const found = new Float64Array(length);
     const wanted = partials.get(variable.node);
     if (wanted !== undefined) run(lower(graph, [wanted], columnOf), length, [found]);
     asCalculated.set(variable.node, found);
     return found;
   };
   return { length, ...made, columns, commons, partial };
+}
+
+/** Collects what is to be calculated in one run: a node asked for twice is calculated once, and zeros not at all. */
+class Results {
+  readonly #numbers = new Map<number, Float64Array>();
+  readonly #asked: number[] = [];
+  readonly #to: (Float64Array | Uint8Array)[] = [];
+
+  constructor(
+    readonly compiler: Compiler,
+    readonly length: number,
+  ) {}
+
+  numbers(node: number): Float64Array {
+    const known = this.#numbers.get(node);
+    if (known !== undefined) return known;
+    const column = new Float64Array(this.length);
+    this.#numbers.set(node, column);
+    this.#ask(node, column);
+    return column;
+  }
+
+  bytes(node: number): Uint8Array {
+    const column = new Uint8Array(this.length);
+    this.#ask(node, column);
+    return column;
+  }
+
+  #ask(node: number, column: Float64Array | Uint8Array): void {
+    if (this.compiler.graph.constantOf(node) === 0) return;
+    this.#asked.push(node);
+    this.#to.push(column);
+  }
+
+  calculate(columnOf: (place: number) => Column): void {
+    run(lower(this.compiler.graph, this.#asked, columnOf), this.length, this.#to);
+  }
 }
 
 function blankAbsent(made: Omit<Measurement, "length" | "columns" | "commons" | "partial">, length: number): void {

@@ -28,11 +28,21 @@ export function sampleCovariance(x: ArrayLike<number>, y: ArrayLike<number>): nu
   return sum / (n - 1);
 }
 
-/** Positions of the middle value, or of the two around the middle, in ascending order of value; ties keep their order. */
+/** Entries of a column at some rows. */
+export function gather(column: Float64Array, rows: Int32Array): Float64Array {
+  const found = new Float64Array(rows.length);
+  for (let i = 0; i < found.length; i++) found[i] = column[rows[i] as number] as number;
+  return found;
+}
+
+/** Position of the middle value, or of the two around the middle; of equal values the first. */
 export function middlePlaces(x: Float64Array): readonly number[] {
   if (x.length === 0) return [];
-  const order = Array.from(x.keys()).sort((a, b) => (x[a] as number) - (x[b] as number) || a - b);
+  const sorted = x.slice().sort();
   const half = Math.floor(x.length / 2);
-  const places = x.length % 2 === 1 ? [order[half]] : [order[half - 1], order[half]];
-  return places.filter((place) => place !== undefined);
+  const upper = x.indexOf(sorted[half] as number);
+  if (x.length % 2 === 1) return [upper];
+  const lower = x.indexOf(sorted[half - 1] as number);
+  // Equal values around the middle are two samples, not one.
+  return [lower, lower === upper ? x.indexOf(sorted[half] as number, lower + 1) : upper];
 }

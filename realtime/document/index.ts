@@ -12,7 +12,15 @@ export { encodeNewPage, fillPage } from "./fillPage";
 export { createEdits } from "./edits";
 export type { PageEdits } from "./edits";
 export { EditError } from "./editing";
+export { isSame } from "./entryEdits";
 export type { EntryEdits, KeyedEntry } from "./entryEdits";
 export { createUndo } from "./undo";
 export { LOCAL, SHAPE_VERSION } from "./shape";
 export type { ListName } from "./shape";
+
+// The page, checked: what the server asks of every edit
+export { shapeFault } from "./checkShape";
+export { headingOf, touchesHeading } from "./outline";
+export type { Heading, OutlineLine } from "./outline";
+export { foreignEntries, recordOf } from "./record";
+export type { ForeignEntry, RecordLine } from "./record";

@@ -82,11 +82,19 @@ export const fieldNames = (kind: BlockKind): readonly string[] => [...(fieldSche
 
 export const isListOf = (kind: BlockKind, field: string): field is ListName => listsOf[kind].some((list) => list === field);
 
+/** Whether a plain value has a NUL character in it, in a key or a text: PostgreSQL's JSON keeps none. */
+export function holdsNul(value: unknown): boolean {
+  if (typeof value === "string") return value.includes("\u0000");
+  if (Array.isArray(value)) return value.some(holdsNul);
+  return typeof value === "object" && value !== null && Object.entries(value).some(([key, v]) => key.includes("\u0000") || holdsNul(v));
+}
+
 /**
  * Why a value cannot stand in a field of a block of this kind, in a sentence; `null` where it can. A field that this
  * release does not know is judged by its size alone, elsewhere.
  */
 export function fieldFault(kind: BlockKind, field: string, value: unknown): string | null {
+  if (holdsNul(value)) return `The field ${field} of a ${kind} block holds a NUL character, which no page can keep. Take it out.`;
   const schema = fieldSchemas.get(kind)?.get(field);
   if (schema === undefined) return null;
   const parsed = schema.safeParse(value);

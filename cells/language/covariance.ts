@@ -1,4 +1,8 @@
+import { run } from "./execute";
+import { Graph } from "./graph";
+import { MAX_DERIVED_NODES } from "./limits";
 import type { Measurement } from "./measure";
+import { lower } from "./program";
 import { covarianceOfParts, declaredCorrelation } from "./uncertainty";
 
 const made = new WeakMap<Measurement, WeakMap<Measurement, Float64Array>>();
@@ -11,27 +15,29 @@ export function perSampleCovariance(a: Measurement, b: Measurement): Float64Arra
   const known = made.get(a)?.get(b);
   if (known !== undefined) return known;
   const found = new Float64Array(Math.max(a.length, b.length));
+  const graph = new Graph(MAX_DERIVED_NODES);
+  let sum = graph.constant(0);
   for (const x of a.columns) {
     for (const y of b.columns) {
-      const same = x.column === y.column;
-      const rho = same ? undefined : declaredCorrelation(x, y);
-      if (!same && rho === undefined) continue;
-      addProducts(found, a.partial(x), b.partial(y), x.column.sigma, y.column.sigma, rho);
+      const rho = x.column === y.column ? undefined : declaredCorrelation(x, y);
+      if (x.column !== y.column && rho === undefined) continue;
+      const first = graph.mul(graph.adopt(a.graph, a.partialNode(x), a.columnOf, "a "), graph.load(x.column.sigma, "σ"));
+      const second = graph.mul(graph.adopt(b.graph, b.partialNode(y), b.columnOf, "b "), graph.load(y.column.sigma, "σ"));
+      const product = graph.apply("orZero", graph.mul(first, second));
+      sum = graph.add(sum, rho === undefined ? product : graph.mul(product, graph.apply("orZero", graph.load(rho, "ρ"))));
     }
   }
+  if (graph.constantOf(sum) !== 0)
+    run(
+      lower(graph, [sum], (place) => graph.loads[place]?.column ?? found),
+      found.length,
+      [found],
+    );
   blank(found, a.state, b.state);
   const inner = made.get(a) ?? new WeakMap<Measurement, Float64Array>();
   inner.set(b, found);
   made.set(a, inner);
   return found;
-}
-
-/** Adds p s · q t · ρ, entry by entry, where it is a number. */
-function addProducts(to: Float64Array, p: Float64Array, q: Float64Array, s: Float64Array, t: Float64Array, rho: Float64Array | undefined): void {
-  for (let i = 0; i < to.length; i++) {
-    const product = (p[i] as number) * (s[i] as number) * ((q[i] as number) * (t[i] as number));
-    if (product === product) to[i] = (to[i] as number) + (rho === undefined ? product : product * (rho[i] as number));
-  }
 }
 
 /** Covariance, row by row, through bodies, fits and aggregates. */

@@ -71,7 +71,7 @@ export class Evaluated implements EvaluatedMeaning {
     this.state = measured.state;
     this.lowerBound = measured.lowerBound;
     this.assumed = measured.assumed;
-    this.assumedCount = measured.assumed.reduce((sum, flag) => sum + flag, 0);
+    this.assumedCount = measured.assumedCount;
     this.table = of.table;
     this.perSample = of.table !== null && of.byClass === undefined;
     if (of.byClass !== undefined) this.byClass = of.byClass;

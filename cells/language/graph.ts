@@ -199,6 +199,24 @@ export class Graph {
     return this.#make("guard", state, value);
   }
 
+  /**
+   * Takes over a node of another graph, with all it stands on.
+   *
+   * @param columnOf the column that a load's place in the other graph stands for
+   * @param mark set before the keys of parameters, so that two graphs' parameters are never taken for one
+   */
+  adopt(from: Graph, root: number, columnOf: (place: number) => Column, mark: string): number {
+    const own = new Map<number, number>();
+    const place = (index: number): number => (index < 0 ? -1 : (own.get(index) ?? -1));
+    for (const index of nodesUnder(from, [root])) {
+      const { op, a, b, c, value } = from.at(index);
+      if (op === "load") own.set(index, this.load(columnOf(value), from.loads[value]?.label ?? ""));
+      else if (op === "param") own.set(index, this.param(`${mark}${from.paramKey(value)}`, from.params[value] ?? Number.NaN));
+      else own.set(index, this.#make(op, place(a), place(b), place(c), value));
+    }
+    return place(root);
+  }
+
   #make(op: Op, a: number, b = -1, c = -1, value = 0): number {
     const key = `${op}|${a}|${b}|${c}|${Object.is(value, -0) ? "-0" : value}`;
     const known = this.#numbers.get(key);
@@ -212,6 +230,24 @@ export class Graph {
   }
 }
 
+/** The operands of a node. */
+export function operandsOf({ a, b, c }: Node): number[] {
+  return [a, b, c].filter((operand) => operand >= 0);
+}
+
+/** Every node that some nodes stand on, themselves included, in the order of calculation. */
+export function nodesUnder(graph: Graph, roots: readonly number[]): number[] {
+  const wanted = new Uint8Array(graph.nodes.length);
+  for (const root of roots) wanted[root] = 1;
+  const found: number[] = [];
+  for (let i = wanted.length - 1; i >= 0; i--) {
+    if (wanted[i] === 0) continue;
+    found.push(i);
+    for (const operand of operandsOf(graph.at(i))) wanted[operand] = 1;
+  }
+  return found.reverse();
+}
+
 /**
  * A text that two nodes have in common exactly when they calculate the same from the same columns, whatever graph they are in.
  * Written as a list of operations, so that shared parts are written once.
@@ -219,18 +255,9 @@ export class Graph {
 export function structureOf(graph: Graph, of: number): string {
   const order = new Map<number, number>();
   const parts: string[] = [];
-  const pending: number[] = [of];
-  while (pending.length > 0) {
-    const top = pending[pending.length - 1] ?? 0;
-    const { op, a, b, c, value } = graph.at(top);
-    const missing = [a, b, c].filter((operand) => operand >= 0 && !order.has(operand));
-    if (missing.length > 0) {
-      pending.push(...missing);
-      continue;
-    }
-    pending.pop();
-    if (order.has(top)) continue;
-    order.set(top, order.size);
+  for (const index of nodesUnder(graph, [of])) {
+    const { op, a, b, c, value } = graph.at(index);
+    order.set(index, order.size);
     const leaf = op === "load" ? graph.loads[value]?.label : op === "param" ? graph.paramKey(value) : op === "const" ? String(value) : "";
     parts.push(`${op} ${[a, b, c].map((operand) => (operand < 0 ? "" : String(order.get(operand)))).join(",")}${leaf ?? ""}`);
   }

@@ -1,7 +1,7 @@
 import type { ColumnVariable, CompiledValue } from "./compiled";
 import type { Compiler } from "./compiler";
 import { partialsOf } from "./derivatives";
-import type { Column, Load } from "./graph";
+import type { Column, Graph, Load } from "./graph";
 import { run } from "./execute";
 import { MAX_DERIVED_NODES } from "./limits";
 import { lower } from "./program";
@@ -18,11 +18,16 @@ export interface Measurement {
   readonly sigmaCommon: Float64Array;
   readonly lowerBound: Uint8Array;
   readonly assumed: Uint8Array;
+  readonly assumedCount: number;
   /** Inputs in order of first appearance. */
   readonly columns: readonly ColumnVariable[];
   readonly commons: readonly CommonPart[];
   /** Partial derivatives with respect to an input, row by row; made when first asked for. */
   partial(variable: ColumnVariable | CommonPart): Float64Array;
+  /** The derivative as a node of `graph`, and the columns its loads stand for over these rows. */
+  readonly graph: Graph;
+  partialNode(variable: ColumnVariable | CommonPart): number;
+  columnOf(place: number): Column;
 }
 
 /**
@@ -57,17 +62,18 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
     if (variable?.sort === "column") columns.push(variable);
     else if (variable !== undefined) commons.push(variable);
   }
+  const partialNode = (variable: ColumnVariable | CommonPart): number => partials.get(variable.node) ?? graph.constant(0);
   const asCalculated = new Map<number, Float64Array>();
   const partial = (variable: ColumnVariable | CommonPart): Float64Array => {
     const known = asCalculated.get(variable.node);
     if (known !== undefined) return known;
     const found = new Float64Array(length);
-    const wanted = partials.get(variable.node);
-    if (wanted !== undefined) run(lower(graph, [wanted], columnOf), length, [found]);
+    run(lower(graph, [partialNode(variable)], columnOf), length, [found]);
     asCalculated.set(variable.node, found);
     return found;
   };
-  return { length, ...made, columns, commons, partial };
+  const assumedCount = graph.constantOf(nodes.assumed) === 0 ? 0 : countFlags(made.assumed);
+  return { length, ...made, assumedCount, columns, commons, partial, graph, partialNode, columnOf };
 }
 
 /** Collects what is to be calculated in one run: a node asked for twice is calculated once, and zeros not at all. */
@@ -107,7 +113,7 @@ class Results {
   }
 }
 
-function blankAbsent(made: Omit<Measurement, "length" | "columns" | "commons" | "partial">, length: number): void {
+function blankAbsent(made: Pick<Measurement, "value" | "state" | "sigma" | "sigmaPerSample" | "sigmaCommon" | "lowerBound" | "assumed">, length: number): void {
   const { value, state, sigma, sigmaPerSample, sigmaCommon, lowerBound, assumed } = made;
   for (let i = 0; i < length; i++) {
     if (state[i] === 0) continue;
@@ -118,6 +124,12 @@ function blankAbsent(made: Omit<Measurement, "length" | "columns" | "commons" | 
     lowerBound[i] = 0;
     assumed[i] = 0;
   }
+}
+
+function countFlags(flags: Uint8Array): number {
+  let sum = 0;
+  for (let i = 0; i < flags.length; i++) sum += flags[i] as number;
+  return sum;
 }
 
 /** Loads as they run over `over`: a class's entry stands for every row of the class. */

@@ -1,4 +1,4 @@
-import type { Column, Graph, Node } from "./graph";
+import { nodesUnder, operandsOf, type Column, type Graph, type Node } from "./graph";
 
 /**
  * A graph lowered to a list of instructions over numbered registers, in a fixed order. Both ways of running it (chunked here,
@@ -30,7 +30,7 @@ export interface Instruction {
  * @param columnOf the column that a load's place stands for, over the rows that are run
  */
 export function lower(graph: Graph, asked: readonly number[], columnOf: (place: number) => Column): Program {
-  const live = liveNodes(graph, asked);
+  const live = nodesUnder(graph, asked);
   const lastUse = new Map<number, number>();
   for (const i of live) for (const operand of operandsOf(graph.at(i))) lastUse.set(operand, i);
   for (const i of asked) lastUse.set(i, Number.POSITIVE_INFINITY);
@@ -66,20 +66,4 @@ export function lower(graph: Graph, asked: readonly number[], columnOf: (place: 
     }
   }
   return { instructions, fixed, registers, results: asked.map(register) };
-}
-
-function operandsOf({ a, b, c }: Node): number[] {
-  return [a, b, c].filter((operand) => operand >= 0);
-}
-
-function liveNodes(graph: Graph, asked: readonly number[]): number[] {
-  const wanted = new Uint8Array(graph.nodes.length);
-  for (const i of asked) wanted[i] = 1;
-  const live: number[] = [];
-  for (let i = wanted.length - 1; i >= 0; i--) {
-    if (wanted[i] === 0) continue;
-    live.push(i);
-    for (const operand of operandsOf(graph.at(i))) wanted[operand] = 1;
-  }
-  return live.reverse();
 }

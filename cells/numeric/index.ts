@@ -5,7 +5,7 @@ export { exp } from "./exp";
 export { chiSquareQuantile, chiSquareSurvival, incompleteGamma, logGamma } from "./gamma";
 export { bilinear, determinant2, inverseForm2, solveLinear } from "./linear";
 export type { Symmetric2 } from "./linear";
-export { log, log10 } from "./log";
+export { log, log10, logConstants } from "./log";
 export { normalCdf, normalQuantile, normalTwoSided } from "./normal";
 export { pow } from "./pow";
 export { createRandom } from "./random";

@@ -16,14 +16,34 @@ const LEAST_NORMAL = 2.2250738585072014e-308;
 /** High word of √½, where the significand's range [√½, √2) begins. */
 const SQRT_HALF_WORD = 0x3fe6a09e;
 
+const O0 = 0.40000000000000880105;
+const O1 = 0.22222222392147034197;
+const O2 = 0.15386242218879391352;
+const O3 = 0.13087330476603717432;
+const E0 = 0.66666666666666666464;
+const E1 = 0.28571428570801700871;
+const E2 = 0.18181795593863209294;
+const E3 = 0.13268705772970070268;
+
+/** What machine code made at run time needs to take logarithms as {@link log} and {@link log10} do, to the bit. */
+export const logConstants = {
+  odd: [O0, O1, O2, O3],
+  even: [E0, E1, E2, E3],
+  ln2: [LN2_HIGH, LN2_LOW],
+  log10of2: [LOG10_2_HIGH, LOG10_2_LOW],
+  inverseLn10: [INV_LN10_HIGH, INV_LN10_LOW],
+  leastNormal: LEAST_NORMAL,
+  sqrtHalfWord: SQRT_HALF_WORD,
+} as const;
+
 /**
  * (ln((1+s)/(1−s)) − 2s) / s³ as a polynomial in z = s², for z ≤ 0.02945: a Chebyshev fit of ours, made with mpmath at
  * 60 digits, largest error 2.1·10⁻¹⁸.
  */
 function tail(z: number): number {
   const w = z * z;
-  const odd = 0.40000000000000880105 + w * (0.22222222392147034197 + w * (0.15386242218879391352 + w * 0.13087330476603717432));
-  const even = 0.66666666666666666464 + w * (0.28571428570801700871 + w * (0.18181795593863209294 + w * 0.13268705772970070268));
+  const odd = O0 + w * (O1 + w * (O2 + w * O3));
+  const even = E0 + w * (E1 + w * (E2 + w * E3));
   return w * odd + z * even;
 }
 

@@ -57,6 +57,19 @@ export function simd(code: number, ...immediates: number[]): number[] {
   return [0xfd, ...unsigned(code), ...immediates];
 }
 
+/** A vector of two doubles of one value. */
+export function both(value: number): number[] {
+  return simd(0x0c, ...double(value), ...double(value));
+}
+
+/** A vector of two 64-bit words of one value, given as its upper and lower halves. */
+export function bothWords(high: number, low: number): number[] {
+  scratch.setInt32(0, low, true);
+  scratch.setInt32(4, high, true);
+  const bytes = Array.from({ length: 8 }, (_, i) => scratch.getUint8(i));
+  return simd(0x0c, ...bytes, ...bytes);
+}
+
 /** Codes of the vector instructions in use. */
 export const V = {
   load: 0x00,
@@ -72,6 +85,7 @@ export const V = {
   lt: 0x49,
   gt: 0x4a,
   le: 0x4b,
+  ge: 0x4c,
   and: 0x4e,
   bitselect: 0x52,
   i16ExtendLowU8: 0x89,
@@ -84,4 +98,9 @@ export const V = {
   div: 0xf3,
   i32TruncateU: 0xfd,
   f64ConvertU32: 0xff,
+  i64AllTrue: 0xc3,
+  i64Shl: 0xcb,
+  i64ShrS: 0xcc,
+  i64Add: 0xce,
+  i64Sub: 0xd1,
 } as const;

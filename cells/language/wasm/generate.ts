@@ -1,7 +1,8 @@
 import { State } from "../../quantity/state";
 import type { Column } from "../graph";
 import type { Instruction, Program } from "../program";
-import { double, F64, FUNCTION, header, I32, list, section, signed, simd, text, unsigned, V, V128 } from "./encode";
+import { both, F64, FUNCTION, header, I32, list, section, signed, simd, text, unsigned, V, V128 } from "./encode";
+import { LOG_LOCALS, logarithmCode } from "./logarithm";
 
 /** Rows handled by one call of the generated function; even, since two are handled at once. */
 export const ROWS = 1024;
@@ -27,7 +28,7 @@ export function shapeOf(program: Program, columns: readonly Column[], widths: re
 
 /**
  * Machine code for a program: a function `r(bytes)` that runs over the columns in memory two rows at a time, operation by
- * operation as the interpreter does, without fused operations. Logarithms, exponentials and powers are called row by row.
+ * operation as the interpreter does, without fused operations. Exponentials and powers are called row by row.
  *
  * @param columns distinct columns that are loaded, in the order of their places in memory; results stand after them
  * @param widths bytes of each result's entries
@@ -43,14 +44,17 @@ export function generate(program: Program, columns: readonly Column[], widths: r
 
   const before = program.fixed.flatMap(({ register }, i) => [0x41, 0x00, ...simd(V.load64Splat, 3, ...unsigned(FIXED_AT + i * 8)), ...set(register)]);
   const body = program.instructions.flatMap((step) => {
-    const code = step.op === "load" ? loadCode(step.column, memory(placeOf.get(step.column ?? new Uint8Array(0)) ?? 0), offset) : operationCode(step, get);
+    const code =
+      step.op === "load"
+        ? loadCode(step.column, memory(placeOf.get(step.column ?? new Uint8Array(0)) ?? 0), offset)
+        : operationCode(step, get, (i) => local(program.registers + i));
     return [...code, ...set(step.target)];
   });
   const stores = program.results.flatMap((register, k) => storeCode(get(register), memory(columns.length + k), widths[k] ?? 8, offset));
   const loop = [0x03, 0x40, ...body, ...stores, 0x20, offset, 0x41, 16, 0x6a, 0x22, offset, 0x20, 0, 0x49, 0x0d, 0, 0x0b];
   const locals = list([
     [...unsigned(1), I32],
-    [...unsigned(program.registers), V128],
+    [...unsigned(program.registers + LOG_LOCALS), V128],
   ]);
   const code = [...locals, ...before, ...loop, 0x0b];
   return new Uint8Array([
@@ -103,49 +107,45 @@ function storeCode(value: readonly number[], at: number, width: Width, offset: n
 const plain: Partial<Record<Instruction["op"], number>> = { add: V.add, sub: V.sub, mul: V.mul, div: V.div, sqrt: V.sqrt, abs: V.abs };
 const comparisons: Partial<Record<Instruction["op"], number>> = { eq: V.eq, ne: V.ne, lt: V.lt, le: V.le };
 
-function number(value: number): number[] {
-  return [0x44, ...double(value), ...simd(V.f64Splat)];
-}
-
 /** Code that leaves the operation's result on the stack; each case mirrors the interpreter's kernel of the name. */
-function operationCode({ op, a, b, c }: Instruction, get: (register: number) => number[]): number[] {
+function operationCode({ op, a, b, c }: Instruction, get: (register: number) => number[], spare: (i: number) => number[]): number[] {
   const binary = plain[op];
   if (binary !== undefined) return [...get(a), ...(b < 0 ? [] : get(b)), ...simd(binary)];
   const comparison = comparisons[op];
-  if (comparison !== undefined) return [...get(a), ...get(b), ...simd(comparison), ...number(1), ...simd(V.and)];
+  if (comparison !== undefined) return [...get(a), ...get(b), ...simd(comparison), ...both(1), ...simd(V.and)];
   switch (op) {
     case "max":
       return [...get(a), ...get(b), ...get(a), ...get(b), ...simd(V.gt), ...simd(V.bitselect)];
     case "select":
-      return [...get(b), ...get(c), ...get(a), ...number(0), ...simd(V.ne), ...simd(V.bitselect)];
+      return [...get(b), ...get(c), ...get(a), ...both(0), ...simd(V.ne), ...simd(V.bitselect)];
     case "guard": {
-      const finite = [...get(b), ...get(b), ...simd(V.sub), ...number(0), ...simd(V.eq)];
-      const ifPresent = [...number(State.present), ...number(State.outOfDomain), ...finite, ...simd(V.bitselect)];
-      return [...get(a), ...ifPresent, ...get(a), ...number(0), ...simd(V.ne), ...simd(V.bitselect)];
+      const finite = [...get(b), ...get(b), ...simd(V.sub), ...both(0), ...simd(V.eq)];
+      const ifPresent = [...both(State.present), ...both(State.outOfDomain), ...finite, ...simd(V.bitselect)];
+      return [...get(a), ...ifPresent, ...get(a), ...both(0), ...simd(V.ne), ...simd(V.bitselect)];
     }
     case "known":
-      return [...get(a), ...get(a), ...simd(V.eq), ...number(1), ...simd(V.and)];
+      return [...get(a), ...get(a), ...simd(V.eq), ...both(1), ...simd(V.and)];
     case "orZero":
       return [...get(a), ...get(a), ...get(a), ...simd(V.eq), ...simd(V.and)];
     case "sign": {
-      const above = [...get(a), ...number(0), ...simd(V.gt), ...number(1), ...simd(V.and)];
-      const below = [...get(a), ...number(0), ...simd(V.lt), ...number(1), ...simd(V.and)];
+      const above = [...get(a), ...both(0), ...simd(V.gt), ...both(1), ...simd(V.and)];
+      const below = [...get(a), ...both(0), ...simd(V.lt), ...both(1), ...simd(V.and)];
       return [...above, ...below, ...simd(V.sub)];
     }
     case "log":
     case "log10":
+      return logarithmCode(op, get(a), callCode(op, [get(a)]), spare);
     case "exp":
-    case "pow": {
-      const lane = (i: number): number[] => [
-        ...get(a),
-        ...simd(V.f64Extract, i),
-        ...(b < 0 ? [] : [...get(b), ...simd(V.f64Extract, i)]),
-        0x10,
-        called.indexOf(op),
-      ];
-      return [...lane(0), ...simd(V.f64Splat), ...lane(1), ...simd(V.f64Replace, 1)];
-    }
+      return callCode(op, [get(a)]);
+    case "pow":
+      return callCode(op, [get(a), get(b)]);
     default:
       throw new RangeError(`expected an operation with machine code, got ${op}`);
   }
+}
+
+/** Calls a function of cells/numeric for each of the two rows. */
+function callCode(name: (typeof called)[number], operands: readonly (readonly number[])[]): number[] {
+  const lane = (i: number): number[] => [...operands.flatMap((operand) => [...operand, ...simd(V.f64Extract, i)]), 0x10, called.indexOf(name)];
+  return [...lane(0), ...simd(V.f64Splat), ...lane(1), ...simd(V.f64Replace, 1)];
 }

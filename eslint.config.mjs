@@ -29,7 +29,11 @@ export default defineConfig([
       "no-eval": "error",
       "no-implied-eval": "error",
       "no-new-func": "error",
-      "no-restricted-syntax": ["error", noParserEvaluation, { selector: "ExportAllDeclaration", message: "Named exports only: a folder's public face is written out." }],
+      "no-restricted-syntax": [
+        "error",
+        noParserEvaluation,
+        { selector: "ExportAllDeclaration", message: "Named exports only: a folder's public face is written out." },
+      ],
       "@typescript-eslint/consistent-type-imports": "error",
       "@typescript-eslint/no-unused-vars": ["error", { argsIgnorePattern: "^_", varsIgnorePattern: "^_" }],
     },
@@ -39,24 +43,39 @@ export default defineConfig([
     rules: {
       "no-restricted-imports": forbid(
         [["@/*", "**/app/**", "**/db/**", "**/realtime/**"], "cells imports nothing of ours outside cells."],
-        [["react", "react-dom", "next", "next/*", "yjs", "y-*", "pg", "drizzle-orm", "node:*", "fs", "path", "crypto", "ws"], "cells is pure: no React, no Yjs, no SQL, no network, no node."],
+        [
+          ["react", "react-dom", "next", "next/*", "yjs", "y-*", "pg", "drizzle-orm", "node:*", "fs", "path", "crypto", "ws"],
+          "cells is pure: no React, no Yjs, no SQL, no network, no node.",
+        ],
       ),
       "no-restricted-globals": [
         "error",
-        ...["Date", "Intl", "performance", "fetch", "crypto", "process", "window", "document", "setTimeout"].map((name) => ({ name, message: "cells is pure and gives the same bits everywhere." })),
+        ...["Date", "Intl", "performance", "fetch", "crypto", "process", "window", "document", "setTimeout"].map((name) => ({
+          name,
+          message: "cells is pure and gives the same bits everywhere.",
+        })),
       ],
       "no-restricted-syntax": [
         "error",
         noParserEvaluation,
         { selector: "ExportAllDeclaration", message: "Named exports only." },
-        { selector: `MemberExpression[object.name='Math'][property.name!=/^(${allowedMath.join("|")})$/]`, message: "Engines differ in this function's last digit; use cells/numeric." },
+        {
+          selector: `MemberExpression[object.name='Math'][property.name!=/^(${allowedMath.join("|")})$/]`,
+          message: "Engines differ in this function's last digit; use cells/numeric.",
+        },
         { selector: "BinaryExpression[operator='**']", message: "Engines differ in **; use pow of cells/numeric." },
         { selector: "AssignmentExpression[operator='**=']", message: "Engines differ in **; use pow of cells/numeric." },
-        { selector: "CallExpression[callee.property.name=/^(localeCompare|toLocaleString|toLocaleLowerCase|toLocaleUpperCase)$/]", message: "Depends on the machine's language." },
+        {
+          selector: "CallExpression[callee.property.name=/^(localeCompare|toLocaleString|toLocaleLowerCase|toLocaleUpperCase)$/]",
+          message: "Depends on the machine's language.",
+        },
       ],
     },
   },
-  { files: ["db/**/*.ts"], rules: { "no-restricted-imports": forbid(noApp, deepCells, [["@/realtime/*", "**/realtime/**"], "db uses only the types of cells."]) } },
+  {
+    files: ["db/**/*.ts"],
+    rules: { "no-restricted-imports": forbid(noApp, deepCells, [["@/realtime/*", "**/realtime/**"], "db uses only the types of cells."]) },
+  },
   { files: ["db/seed/**/*.ts"], rules: { "no-restricted-imports": forbid(noApp, deepCells) } },
   { files: ["realtime/**/*.ts"], rules: { "no-restricted-imports": forbid(noApp, deepCells, testsMayGoDeep) } },
   { files: ["app/**/*.{ts,tsx}"], rules: { "no-restricted-imports": forbid(deepCells, testsMayGoDeep) } },

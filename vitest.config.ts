@@ -10,15 +10,34 @@ export default defineConfig({
     projects: [
       {
         resolve: { alias },
-        test: { name: "unit", include: ["tests/cells/**/*.test.ts", "tests/app/**/*.test.{ts,tsx}", "tests/examples.test.ts", "tests/compat/**/*.test.ts", "tests/house.test.ts"], exclude: ["tests/app/server/**"], testTimeout: 60_000 },
+        test: {
+          name: "unit",
+          include: ["tests/cells/**/*.test.ts", "tests/app/**/*.test.{ts,tsx}", "tests/examples.test.ts", "tests/compat/**/*.test.ts", "tests/house.test.ts"],
+          exclude: ["tests/app/server/**"],
+          testTimeout: 60_000,
+        },
       },
       {
         resolve: { alias },
-        test: { name: "integration", include: ["tests/db/**/*.test.ts", "tests/realtime/**/*.test.ts", "tests/app/server/**/*.test.ts"], testTimeout: 90_000, hookTimeout: 90_000, fileParallelism: true, maxWorkers: 2 },
+        test: {
+          name: "integration",
+          include: ["tests/db/**/*.test.ts", "tests/realtime/**/*.test.ts", "tests/app/server/**/*.test.ts"],
+          testTimeout: 90_000,
+          hookTimeout: 90_000,
+          fileParallelism: true,
+          maxWorkers: 2,
+        },
       },
       {
         resolve: { alias },
-        test: { name: "browser", include: ["tests/flow/**/*.test.ts"], testTimeout: 300_000, hookTimeout: 180_000, fileParallelism: false, globalSetup: ["tests/support/product.ts"] },
+        test: {
+          name: "browser",
+          include: ["tests/flow/**/*.test.ts"],
+          testTimeout: 300_000,
+          hookTimeout: 180_000,
+          fileParallelism: false,
+          globalSetup: ["tests/support/product.ts"],
+        },
       },
     ],
   },

@@ -14,7 +14,14 @@ export const metadata: Metadata = {
   icons: { icon: "/mark.svg" },
 };
 
-export const viewport: Viewport = { width: "device-width", initialScale: 1, themeColor: [{ media: "(prefers-color-scheme: light)", color: "#F6F5F1" }, { media: "(prefers-color-scheme: dark)", color: "#0E1013" }] };
+export const viewport: Viewport = {
+  width: "device-width",
+  initialScale: 1,
+  themeColor: [
+    { media: "(prefers-color-scheme: light)", color: "#F6F5F1" },
+    { media: "(prefers-color-scheme: dark)", color: "#0E1013" },
+  ],
+};
 
 /** Chooses the light before the first paint, so that nobody in a dark room sees a white flash. */
 const chooseLight = `try{var l=localStorage.getItem("cotectic-light")||"system";if(l==="polars"||(l==="system"&&matchMedia("(prefers-color-scheme: dark)").matches))document.documentElement.classList.add("polars")}catch(e){}`;

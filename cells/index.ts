@@ -127,9 +127,11 @@ export type { Body, BodyLookup, BodySpecies, BodyValue, Chemical, IronForm, Reso
 // Expression language
 export {
   compileOnComposition,
+  complete,
   evaluateCondition,
   evaluateExpression,
   functions,
+  helpFor,
   isPlainName,
   namesUsed,
   parseLines,
@@ -139,6 +141,8 @@ export {
 } from "./language";
 export type {
   CommonVariable,
+  Completion,
+  Completions,
   CompositionValue,
   Evaluated,
   ExpressionPlace,

@@ -50,7 +50,11 @@ async function databases() {
     return writeBootFile(mode, environment);
   }
   await ensureDatabase(cluster, "cotectic");
-  const environment = { PRIVATE_CLUSTER: "yes", DATABASE_URL: cluster.url("cotectic", "application"), MIGRATION_DATABASE_URL: cluster.url("cotectic", "owner") };
+  const environment = {
+    PRIVATE_CLUSTER: "yes",
+    DATABASE_URL: cluster.url("cotectic", "application"),
+    MIGRATION_DATABASE_URL: cluster.url("cotectic", "owner"),
+  };
   migrate(environment, process.env.COTECTIC_DEMO !== "no");
   return writeBootFile(mode, environment);
 }

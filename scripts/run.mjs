@@ -65,9 +65,15 @@ async function stop(code) {
 }
 
 async function refuseTakenPorts() {
-  for (const [name, number] of [["PORT", port], ["REALTIME_PORT", realtimePort]]) {
+  for (const [name, number] of [
+    ["PORT", port],
+    ["REALTIME_PORT", realtimePort],
+  ]) {
     if (await canBind(number, host)) continue;
-    const ours = await fetch(`http://${host}:${number}/api/health`).then((r) => r.ok, () => false);
+    const ours = await fetch(`http://${host}:${number}/api/health`).then(
+      (r) => r.ok,
+      () => false,
+    );
     fail(ours ? `Cotectic is already running on ${here}.` : `Port ${number} is taken by another program; choose another with ${name}=….`);
   }
 }
@@ -82,7 +88,14 @@ async function offerMailbox(target) {
 /** Says where to go once both servers answer. */
 async function announce() {
   for (let tries = 0; tries < 300 && !stopping; tries++) {
-    const [web, realtime] = await Promise.all([`http://${host}:${port}/api/health`, `http://${host}:${realtimePort}/health`].map((url) => fetch(url).then((r) => r.ok, () => false)));
+    const [web, realtime] = await Promise.all(
+      [`http://${host}:${port}/api/health`, `http://${host}:${realtimePort}/health`].map((url) =>
+        fetch(url).then(
+          (r) => r.ok,
+          () => false,
+        ),
+      ),
+    );
     if (web && realtime) return log(`ready on ${here}${target()}. Ctrl-C stops everything.`);
     await wait(200);
   }

@@ -13,7 +13,10 @@ let passed = 0;
 let failed = 0;
 mkdirSync(`${root}/.data`, { recursive: true });
 
-await Promise.all([check("format", ["node_modules/prettier/bin/prettier.cjs", "--check", "--log-level", "warn", "."]), check("types", ["node_modules/typescript/bin/tsc", "--noEmit"])]);
+await Promise.all([
+  check("format", ["node_modules/prettier/bin/prettier.cjs", "--check", "--log-level", "warn", "."]),
+  check("types", ["node_modules/typescript/bin/tsc", "--noEmit"]),
+]);
 await Promise.all([check("lint", ["node_modules/eslint/bin/eslint.js", ".", "--max-warnings", "0"]), suite("unit")]);
 await suite("integration");
 await suite("browser");
@@ -38,7 +41,15 @@ async function suite(name) {
   const started = Date.now();
   const report = `${root}/.data/vitest-${name}.json`;
   rmSync(report, { force: true });
-  const { code, output } = await node(["node_modules/vitest/vitest.mjs", "run", "--project", name, "--reporter=dot", "--reporter=json", `--outputFile.json=${report}`]);
+  const { code, output } = await node([
+    "node_modules/vitest/vitest.mjs",
+    "run",
+    "--project",
+    name,
+    "--reporter=dot",
+    "--reporter=json",
+    `--outputFile.json=${report}`,
+  ]);
   const result = existsSync(report) ? JSON.parse(readFileSync(report, "utf8")) : { numPassedTests: 0, numFailedTests: 0 };
   // A file that does not load, or a runner that dies, counts as a failure even where no single test does.
   const broken = code !== 0 && result.numFailedTests === 0 ? 1 : 0;

@@ -21,12 +21,27 @@ describe("the house", () => {
 
   it("lets only DEVELOPERS.md speak of where the product grew out of", () => {
     const word = ["lec", "ture"].join("");
-    const citing = tracked.filter((file) => /\.(ts|tsx|mjs|md|json|css)$/.test(file) && file !== "package-lock.json" && file !== "DEVELOPERS.md").filter((file) => new RegExp(`\\b${word}`, "i").test(read(file)));
+    const citing = tracked
+      .filter((file) => /\.(ts|tsx|mjs|md|json|css)$/.test(file) && file !== "package-lock.json" && file !== "DEVELOPERS.md")
+      .filter((file) => new RegExp(`\\b${word}`, "i").test(read(file)));
     expect(citing).toEqual([]);
   });
 
   it("holds at the top level only what the house plan names", () => {
-    const plan = ["README.md", "DEVELOPERS.md", "package.json", "next.config.ts", "tailwind.config.ts", "drizzle.config.ts", "app", "realtime", "cells", "db", "tests", "examples"];
+    const plan = [
+      "README.md",
+      "DEVELOPERS.md",
+      "package.json",
+      "next.config.ts",
+      "tailwind.config.ts",
+      "drizzle.config.ts",
+      "app",
+      "realtime",
+      "cells",
+      "db",
+      "tests",
+      "examples",
+    ];
     const demanded = ["package-lock.json", "tsconfig.json", "postcss.config.mjs", "eslint.config.mjs", "vitest.config.ts", "proxy.ts", "public", "scripts"];
     const there = new Set(tracked.map((file) => file.split("/")[0] ?? "").filter((name) => !name.startsWith(".")));
     expect([...there].filter((name) => !plan.includes(name) && !demanded.includes(name))).toEqual([]);

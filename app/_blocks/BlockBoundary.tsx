@@ -15,7 +15,8 @@ export class BlockBoundary extends Component<{ readonly children: ReactNode }, {
     if (this.state.failed === null) return this.props.children;
     return (
       <p className="py-2 text-vermilion" role="alert">
-        This block could not be drawn ({this.state.failed}). Nothing of it is lost. <Button onClick={() => this.setState({ failed: null })}>Draw it again</Button>
+        This block could not be drawn ({this.state.failed}). Nothing of it is lost.{" "}
+        <Button onClick={() => this.setState({ failed: null })}>Draw it again</Button>
       </p>
     );
   }

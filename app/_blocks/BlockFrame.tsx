@@ -66,7 +66,13 @@ export const BlockFrame = memo(function BlockFrame({ blockKey }: { readonly bloc
           >
             <Button aria-label={`More for ${block.name ?? block.id}`}>More</Button>
           </Menu>
-          <Button look="quiet" aria-label={`Move ${block.name ?? block.id}: drag, or press Alt and an arrow`} title="Drag to move, or Alt ↑ and Alt ↓" className="cursor-grab touch-none" onPointerDown={startDrag}>
+          <Button
+            look="quiet"
+            aria-label={`Move ${block.name ?? block.id}: drag, or press Alt and an arrow`}
+            title="Drag to move, or Alt ↑ and Alt ↓"
+            className="cursor-grab touch-none"
+            onPointerDown={startDrag}
+          >
             <IconMove />
           </Button>
         </div>

@@ -30,9 +30,25 @@ export function readsInWords(block: Block, from: readonly string[], result: Bloc
     case "plot":
       return from.length === 0 ? [] : ["draws ", ...names(from)];
     case "trend":
-      return ["reads ", { name: block.data }, { york: ", York, errors correlated", "ordinary least squares": ", ordinary least squares", "reduced major axis": ", reduced major axis", "theil-sen": ", Theil–Sen" }[block.method]];
+      return [
+        "reads ",
+        { name: block.data },
+        {
+          york: ", York, errors correlated",
+          "ordinary least squares": ", ordinary least squares",
+          "reduced major axis": ", reduced major axis",
+          "theil-sen": ", Theil–Sen",
+        }[block.method],
+      ];
     case "budget": {
-      const aim = block.target === undefined ? [] : "trend" in block.target ? [", aims at ", { name: block.target.trend }] : "body" in block.target.equals ? [", aims at ", { name: block.target.equals.body }] : [", aims at a value"];
+      const aim =
+        block.target === undefined
+          ? []
+          : "trend" in block.target
+            ? [", aims at ", { name: block.target.trend }]
+            : "body" in block.target.equals
+              ? [", aims at ", { name: block.target.equals.body }]
+              : [", aims at a value"];
       return ["starts at ", ...substanceName(block.start), ...aim];
     }
     case "note":

@@ -37,7 +37,8 @@ function FrozenTitle({ snapshot }: Pick<FrozenPageProps, "snapshot">) {
         {Object.keys(bodies).length > 0 ? ". " : ""}
         {snapshot.previous ? (
           <>
-            Follows no. {snapshot.previous.number} of {dayOf(snapshot.previous.frozenAt)}, <span className="font-mono text-[12px]">{shortHash(snapshot.previous.hash)}</span>.
+            Follows no. {snapshot.previous.number} of {dayOf(snapshot.previous.frozenAt)},{" "}
+            <span className="font-mono text-[12px]">{shortHash(snapshot.previous.hash)}</span>.
           </>
         ) : null}
       </p>
@@ -108,8 +109,17 @@ export function FrozenPage({ snapshot, groupName, groupId, role, document: page,
   useEffect(() => start(), [start]);
   useStoredSettings(store);
   const [keys, setKeys] = useState(false);
-  const step = useCallback((by: 1 | -1) => stepFrom(store.get().blocks.map((b) => b.key), by), [store]);
-  useShortcuts(useMemo(() => ({ projector: () => switchProjector(store), shortcuts: () => setKeys(true), step, letGo: () => store.actions.trace(null) }), [store, step]));
+  const step = useCallback(
+    (by: 1 | -1) =>
+      stepFrom(
+        store.get().blocks.map((b) => b.key),
+        by,
+      ),
+    [store],
+  );
+  useShortcuts(
+    useMemo(() => ({ projector: () => switchProjector(store), shortcuts: () => setKeys(true), step, letGo: () => store.actions.trace(null) }), [store, step]),
+  );
 
   const seal = (
     <>
@@ -157,7 +167,12 @@ export function FrozenPage({ snapshot, groupName, groupId, role, document: page,
                 </p>
               ) : null}
               <SectionRail />
-              <PageSheet title={<FrozenTitle snapshot={snapshot} />} beside={<Beside snapshot={snapshot} files={files} />} empty={<p className="text-second">This snapshot holds no blocks.</p>} foot={null} />
+              <PageSheet
+                title={<FrozenTitle snapshot={snapshot} />}
+                beside={<Beside snapshot={snapshot} files={files} />}
+                empty={<p className="text-second">This snapshot holds no blocks.</p>}
+                foot={null}
+              />
             </div>
             <footer className="frozen-foot">
               <b className="font-medium text-ink">Snapshot {snapshot.number}</b>

@@ -34,7 +34,14 @@ export function LivePage(props: LivePageProps) {
   useEffect(() => session.start(), [session]);
   useStoredSettings(store);
 
-  const step = useCallback((by: 1 | -1) => stepFrom(store.get().blocks.map((b) => b.key), by), [store]);
+  const step = useCallback(
+    (by: 1 | -1) =>
+      stepFrom(
+        store.get().blocks.map((b) => b.key),
+        by,
+      ),
+    [store],
+  );
   const keys = useMemo(
     () => ({
       undo: store.actions.undo,
@@ -58,7 +65,8 @@ export function LivePage(props: LivePageProps) {
         {role === "guest" ? (
           <p className="-ml-3 border-b border-hairline px-3 py-2 text-margin text-second">
             You read this live page by a link from {page.groupName}
-            {guestUntil ? `, good until ${dayOf(guestUntil)}` : ""}. It changes as the group works on it. Nobody in the group sees who you are or that you are here.
+            {guestUntil ? `, good until ${dayOf(guestUntil)}` : ""}. It changes as the group works on it. Nobody in the group sees who you are or that you are
+            here.
           </p>
         ) : null}
         <SectionRail />

@@ -43,7 +43,11 @@ function arrived(result: TravellingResult): BlockResult {
 /**
  * @param sourceUrl where the bytes of a source are fetched from, by hash and by file name.
  */
-export function createEngineClient(worker: WorkerLike, sourceUrl: (sha256: string, file: string) => string | undefined, events: EngineClientEvents): EngineClient {
+export function createEngineClient(
+  worker: WorkerLike,
+  sourceUrl: (sha256: string, file: string) => string | undefined,
+  events: EngineClientEvents,
+): EngineClient {
   let version = 0;
   let asked = 0;
   const given = new Map<string, PageBlock["block"]>();

@@ -68,7 +68,10 @@ export function createLiveSession(props: LivePageProps, connect: Connect): LiveS
       if (key !== undefined) goToPlace(key, place);
     },
   };
-  const store = createPageStore(initialState({ pageId: page.id, mode: mayEdit ? "edit" : "read", title: page.title, document: props.initialDocument ?? null, me, people: props.people }), actions);
+  const store = createPageStore(
+    initialState({ pageId: page.id, mode: mayEdit ? "edit" : "read", title: page.title, document: props.initialDocument ?? null, me, people: props.people }),
+    actions,
+  );
 
   const start = () => {
     let frame = 0;
@@ -97,7 +100,8 @@ export function createLiveSession(props: LivePageProps, connect: Connect): LiveS
         if (isReady) return;
         isReady = true;
         read();
-        if (mayEdit && me !== null) store.set({ edits: createEdits(connection.doc, me), live: undo === null ? null : { awareness: connection.awareness, undoManager: undo } });
+        if (mayEdit && me !== null)
+          store.set({ edits: createEdits(connection.doc, me), live: undo === null ? null : { awareness: connection.awareness, undoManager: undo } });
       },
       onEnded(sentence) {
         store.set({ mode: "read", edits: null, live: null, save: { kind: "refused", text: sentence, waiting: store.get().save?.waiting ?? 0 } });

@@ -4,7 +4,10 @@ import { createEngineClient, type EngineClient } from "./engineClient";
 import type { PageStore } from "./pageStore";
 
 /** Starts the engine's worker for a page and keeps its results in the store. Only in the browser. */
-export function startPageEngine(store: PageStore, sourceUrl: (sha256: string, file: string) => string | undefined): EngineClient & { askTrace(request: TraceRequest | null): void } {
+export function startPageEngine(
+  store: PageStore,
+  sourceUrl: (sha256: string, file: string) => string | undefined,
+): EngineClient & { askTrace(request: TraceRequest | null): void } {
   const worker = new Worker(new URL("./engine.worker.ts", import.meta.url), { type: "module" });
   let asked = 0;
 

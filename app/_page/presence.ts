@@ -26,7 +26,11 @@ const fallbackColors = ["var(--magenta)", "var(--green)", "var(--blue)", "var(--
  *
  * @param own client id of this tab
  */
-export function readPresence(states: ReadonlyMap<number, Readonly<Record<string, unknown>>>, own: number, me: { readonly id: string; readonly name: string } | null): Presence[] {
+export function readPresence(
+  states: ReadonlyMap<number, Readonly<Record<string, unknown>>>,
+  own: number,
+  me: { readonly id: string; readonly name: string } | null,
+): Presence[] {
   const found: Presence[] = [];
   for (const [clientId, state] of states) {
     const user = typeof state.user === "object" && state.user !== null ? (state.user as Record<string, unknown>) : {};
@@ -34,7 +38,10 @@ export function readPresence(states: ReadonlyMap<number, Readonly<Record<string,
     const userId = typeof user.id === "string" ? user.id : isMe ? (me?.id ?? "") : "";
     const name = typeof user.name === "string" ? user.name : isMe ? (me?.name ?? "") : "";
     if (userId === "" || name === "") continue;
-    const color = typeof user.color === "string" && /^(#[0-9a-f]{3,8}|var\(--[a-z0-9-]+\)|[a-z]+)$/i.test(user.color) ? user.color : (fallbackColors[clientId % fallbackColors.length] ?? "var(--blue)");
+    const color =
+      typeof user.color === "string" && /^(#[0-9a-f]{3,8}|var\(--[a-z0-9-]+\)|[a-z]+)$/i.test(user.color)
+        ? user.color
+        : (fallbackColors[clientId % fallbackColors.length] ?? "var(--blue)");
     const picked = Array.isArray(state.picked) ? state.picked.filter(isPicked).slice(0, MOST_PICKED) : [];
     found.push({ clientId, userId, name, color, block: typeof state.block === "string" ? state.block : null, isMe, picked });
   }

@@ -28,7 +28,10 @@ export const shortcutList: readonly (readonly [keys: string, does: string])[] = 
 ];
 
 function isTyping(target: EventTarget | null): boolean {
-  return target instanceof HTMLElement && (target.isContentEditable || target instanceof HTMLInputElement || target instanceof HTMLTextAreaElement || target instanceof HTMLSelectElement);
+  return (
+    target instanceof HTMLElement &&
+    (target.isContentEditable || target instanceof HTMLInputElement || target instanceof HTMLTextAreaElement || target instanceof HTMLSelectElement)
+  );
 }
 
 /** Keys that work anywhere on the page, except while somebody types. */

@@ -63,7 +63,7 @@ function sentence(error: unknown): string {
 /** Handles that lean, directly or through others, on one of `on`. */
 function leaning(on: ReadonlySet<string>, readsFrom: ReadonlyMap<string, readonly string[]>): Set<string> {
   const found = new Set(on);
-  for (let grew = on.size > 0; grew; ) {
+  for (let grew = on.size > 0; grew;) {
     grew = false;
     for (const [handle, from] of readsFrom) {
       if (found.has(handle) || !from.some((f) => found.has(f))) continue;

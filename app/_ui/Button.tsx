@@ -22,5 +22,12 @@ const looks: Record<ButtonLook, string> = {
 
 /** A button is words, never a box; what it does is said by the words. */
 export function Button({ look = "act", type = "button", className, ref, ...rest }: ButtonProps) {
-  return <button ref={ref} type={type} className={classNames("inline-flex items-center gap-1.5 text-left disabled:text-second disabled:no-underline", looks[look], className)} {...rest} />;
+  return (
+    <button
+      ref={ref}
+      type={type}
+      className={classNames("inline-flex items-center gap-1.5 text-left disabled:text-second disabled:no-underline", looks[look], className)}
+      {...rest}
+    />
+  );
 }

@@ -31,7 +31,10 @@ export function Dialog({ open, onClose, title, says, size = "narrow", children, 
         <RadixDialog.Overlay className="fixed inset-0 z-40 bg-[color-mix(in_srgb,var(--paper)_78%,transparent)]" />
         <RadixDialog.Content
           {...(says ? {} : { "aria-describedby": undefined })}
-          className={classNames("fixed top-[6vh] left-1/2 z-40 flex max-h-[88vh] w-[calc(100vw-32px)] -translate-x-1/2 flex-col border border-ink bg-paper text-ui text-ink focus:outline-none", sizes[size])}
+          className={classNames(
+            "fixed top-[6vh] left-1/2 z-40 flex max-h-[88vh] w-[calc(100vw-32px)] -translate-x-1/2 flex-col border border-ink bg-paper text-ui text-ink focus:outline-none",
+            sizes[size],
+          )}
         >
           <header className="flex items-start gap-4 border-b border-ink px-6 pt-4 pb-3">
             <div className="min-w-0 flex-1">

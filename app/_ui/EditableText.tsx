@@ -58,6 +58,7 @@ export function EditableText({ text, label, placeholder = "", onCommit, maxLengt
       <textarea
         ref={field}
         rows={1}
+        cols={1}
         value={shown}
         maxLength={maxLength}
         placeholder={placeholder}
@@ -66,7 +67,7 @@ export function EditableText({ text, label, placeholder = "", onCommit, maxLengt
         onChange={(event) => setDraft(event.target.value.replace(/[\r\n]+/g, " "))}
         onBlur={commit}
         onKeyDown={onKeyDown}
-        className="col-start-1 row-start-1 w-full resize-none overflow-hidden border-0 bg-transparent p-0 placeholder:text-second hover:bg-wash focus:bg-surface focus:outline-2 focus:outline-offset-2 focus:outline-indigo"
+        className="col-start-1 row-start-1 w-full min-w-0 resize-none overflow-hidden border-0 bg-transparent p-0 placeholder:text-second hover:bg-wash focus:bg-surface focus:outline-2 focus:outline-offset-2 focus:outline-indigo"
         style={{ font: "inherit", letterSpacing: "inherit", lineHeight: "inherit", color: "inherit" }}
       />
     </span>

@@ -29,7 +29,8 @@ export interface MenuProps {
 }
 
 const contentLook = "z-50 min-w-44 max-w-80 border border-ink bg-surface py-1 text-ui text-ink";
-const itemLook = "flex min-h-7 cursor-default items-center gap-2 px-3 outline-none data-[disabled]:text-second data-[highlighted]:bg-wash data-[highlighted]:text-ink";
+const itemLook =
+  "flex min-h-7 cursor-default items-center gap-2 px-3 outline-none data-[disabled]:text-second data-[highlighted]:bg-wash data-[highlighted]:text-ink";
 
 function content(items: readonly MenuItem[], kit: { Item: typeof RadixMenu.Item; Separator: typeof RadixMenu.Separator; Label: typeof RadixMenu.Label }) {
   const ticked = items.some((item) => "onChoose" in item && item.checked !== undefined);

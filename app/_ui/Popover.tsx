@@ -22,7 +22,13 @@ export function Popover({ open, onOpenChange, trigger, anchor, label, align = "s
       {trigger ? <RadixPopover.Trigger asChild>{trigger}</RadixPopover.Trigger> : null}
       {anchor ? <RadixPopover.Anchor asChild>{anchor}</RadixPopover.Anchor> : null}
       <RadixPopover.Portal>
-        <RadixPopover.Content aria-label={label} align={align} sideOffset={6} collisionPadding={12} className="z-50 w-80 max-w-[calc(100vw-24px)] border border-ink bg-surface p-4 text-ui text-ink focus:outline-none">
+        <RadixPopover.Content
+          aria-label={label}
+          align={align}
+          sideOffset={6}
+          collisionPadding={12}
+          className="z-50 w-80 max-w-[calc(100vw-24px)] border border-ink bg-surface p-4 text-ui text-ink focus:outline-none"
+        >
           {children}
         </RadixPopover.Content>
       </RadixPopover.Portal>

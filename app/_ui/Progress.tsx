@@ -16,7 +16,14 @@ export function Progress({ label, done, onStop }: ProgressProps) {
         <span>{label}</span>
         <span className="font-mono">{done === null ? "" : `${Math.floor(done * 100)} %`}</span>
       </div>
-      <div role="progressbar" aria-label={label} aria-valuemin={0} aria-valuemax={100} {...(done === null ? {} : { "aria-valuenow": Math.floor(done * 100) })} className="mt-1 h-1 border-b border-axis">
+      <div
+        role="progressbar"
+        aria-label={label}
+        aria-valuemin={0}
+        aria-valuemax={100}
+        {...(done === null ? {} : { "aria-valuenow": Math.floor(done * 100) })}
+        className="mt-1 h-1 border-b border-axis"
+      >
         <div className="h-1 bg-indigo" style={{ width: `${(done ?? 0.08) * 100}%` }} />
       </div>
       {onStop ? (

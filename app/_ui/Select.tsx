@@ -32,7 +32,10 @@ export function Select<T extends string = string>({ value, options, onChoose, la
           const chosen = options.find((o) => o.value === event.target.value);
           if (chosen !== undefined) onChoose(chosen.value);
         }}
-        className={classNames("w-full appearance-none truncate border-0 border-b border-axis bg-transparent py-1 pr-5 pl-0 text-ui text-ink focus:border-indigo disabled:text-second", mono && "font-mono text-cell")}
+        className={classNames(
+          "w-full appearance-none truncate border-0 border-b border-axis bg-transparent py-1 pr-5 pl-0 text-ui text-ink focus:border-indigo disabled:text-second",
+          mono && "font-mono text-cell",
+        )}
       >
         {options.map((option) => (
           <option key={option.value} value={option.value} className="bg-surface text-ink">

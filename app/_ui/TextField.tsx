@@ -5,7 +5,8 @@ import { classNames } from "./classNames";
 import { Field } from "./Field";
 
 /** The line that all text controls stand on. */
-export const controlLook = "w-full border-0 border-b border-axis bg-transparent px-0 py-1 text-ui text-ink placeholder:text-second focus:border-indigo aria-[invalid]:border-vermilion disabled:text-second";
+export const controlLook =
+  "w-full border-0 border-b border-axis bg-transparent px-0 py-1 text-ui text-ink placeholder:text-second focus:border-indigo aria-[invalid]:border-vermilion disabled:text-second";
 
 export interface TextFieldProps extends Omit<InputHTMLAttributes<HTMLInputElement>, "onChange"> {
   readonly label: ReactNode;
@@ -20,7 +21,15 @@ export interface TextFieldProps extends Omit<InputHTMLAttributes<HTMLInputElemen
 export function TextField({ label, hint, problem, onText, mono, className, fieldClassName, ref, ...rest }: TextFieldProps) {
   return (
     <Field label={label} hint={hint} problem={problem} className={fieldClassName}>
-      {(ids) => <input ref={ref} {...ids} {...rest} onChange={(event) => onText?.(event.target.value)} className={classNames(controlLook, mono && "font-mono", className)} />}
+      {(ids) => (
+        <input
+          ref={ref}
+          {...ids}
+          {...rest}
+          onChange={(event) => onText?.(event.target.value)}
+          className={classNames(controlLook, mono && "font-mono", className)}
+        />
+      )}
     </Field>
   );
 }
@@ -37,7 +46,16 @@ export interface TextAreaProps extends Omit<TextareaHTMLAttributes<HTMLTextAreaE
 export function TextArea({ label, hint, problem, onText, mono, className, ref, ...rest }: TextAreaProps) {
   return (
     <Field label={label} hint={hint} problem={problem}>
-      {(ids) => <textarea ref={ref} rows={2} {...ids} {...rest} onChange={(event) => onText?.(event.target.value)} className={classNames(controlLook, mono && "font-mono", className)} />}
+      {(ids) => (
+        <textarea
+          ref={ref}
+          rows={2}
+          {...ids}
+          {...rest}
+          onChange={(event) => onText?.(event.target.value)}
+          className={classNames(controlLook, mono && "font-mono", className)}
+        />
+      )}
     </Field>
   );
 }

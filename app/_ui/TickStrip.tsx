@@ -116,7 +116,8 @@ export function TickStrip({ values, classOf, hide, picked, range, marks, height 
       if (Number.isFinite(v) && v >= shown[0] && v <= shown[1]) context.fillRect(stripPlace(v, shown, width) - 1, 0, 2, height);
     }
     context.fillStyle = resolveColor(canvas, "var(--ink)");
-    for (const mark of marks ?? []) if (mark.value >= shown[0] && mark.value <= shown[1]) context.fillRect(stripPlace(mark.value, shown, width) - 0.5, height - 4, 1, 4);
+    for (const mark of marks ?? [])
+      if (mark.value >= shown[0] && mark.value <= shown[1]) context.fillRect(stripPlace(mark.value, shown, width) - 0.5, height - 4, 1, 4);
   }, [values, classOf, hide, picked, range, marks, height, width, light]);
   return (
     <div ref={box} className={`relative ${className ?? ""}`} style={{ height }}>

@@ -17,7 +17,12 @@ export function Tooltip({ says, children, side = "top" }: TooltipProps) {
       <RadixTooltip.Root>
         <RadixTooltip.Trigger asChild>{children}</RadixTooltip.Trigger>
         <RadixTooltip.Portal>
-          <RadixTooltip.Content side={side} sideOffset={4} collisionPadding={8} className="z-50 max-w-80 border border-ink bg-surface px-2 py-1 text-margin text-ink">
+          <RadixTooltip.Content
+            side={side}
+            sideOffset={4}
+            collisionPadding={8}
+            className="z-50 max-w-80 border border-ink bg-surface px-2 py-1 text-margin text-ink"
+          >
             {says}
           </RadixTooltip.Content>
         </RadixTooltip.Portal>

@@ -7,7 +7,17 @@ export interface IconProps {
 function drawn(path: string, strokeWidth = 1.2) {
   return function Icon({ size = 16, className }: IconProps) {
     return (
-      <svg width={size} height={size} viewBox="0 0 16 16" fill="none" stroke="currentColor" strokeWidth={strokeWidth} strokeLinecap="round" aria-hidden="true" className={`shrink-0 ${className ?? ""}`}>
+      <svg
+        width={size}
+        height={size}
+        viewBox="0 0 16 16"
+        fill="none"
+        stroke="currentColor"
+        strokeWidth={strokeWidth}
+        strokeLinecap="round"
+        aria-hidden="true"
+        className={`shrink-0 ${className ?? ""}`}
+      >
         <path d={path} />
       </svg>
     );

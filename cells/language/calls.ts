@@ -4,6 +4,7 @@ import { units } from "../quantity/unit";
 import type { Body } from "../species";
 import { aggregate } from "./aggregate";
 import type { Compiler } from "./compiler";
+import { NEAR_DOMAIN_EDGE } from "./edges";
 import { sourceOf, type Frame } from "./frame";
 import type { Compiled, CompiledValue } from "./compiled";
 import { dimensionOf, dimensionless, isDimensionless, sameDimension, type Counting } from "./dimension";
@@ -35,7 +36,7 @@ export function callFunction(compiler: Compiler, tree: CallTree, frame: Frame): 
     case "exp":
       return transcendental(compiler, tree, tree.name, frame);
     case "sqrt":
-      return squareRoot(compiler, compiler.value(first, frame));
+      return squareRoot(compiler, compiler.value(first, frame), sourceOf(first, frame));
     case "abs": {
       const of = compiler.value(first, frame);
       return { kind: "value", node: compiler.graph.apply("abs", of.node), state: of.state, meaning: of.meaning, over: of.over };
@@ -136,12 +137,14 @@ function transcendental(compiler: Compiler, tree: CallTree, name: "log10" | "ln"
   const of = compiler.value(argument(tree, 0), frame);
   requireNumber(of, tree, frame);
   const node = compiler.graph.apply(name === "ln" ? "log" : name, of.node);
+  if (name !== "exp") compiler.edges.set(of.node, { source: sourceOf(argument(tree, 0), frame), tolerated: NEAR_DOMAIN_EDGE });
   const remark = name === "exp" ? undefined : `logarithm${of.meaning.remark === undefined ? "" : `, ${of.meaning.remark}`}`;
   const meaning: Meaning = { dimension: dimensionless, counting: of.meaning.counting, onScale: false, ...(remark === undefined ? {} : { remark }) };
   return { kind: "value", node, state: compiler.graph.guard(of.state, node), meaning, over: of.over };
 }
 
-function squareRoot(compiler: Compiler, of: CompiledValue): CompiledValue {
+function squareRoot(compiler: Compiler, of: CompiledValue, source: string): CompiledValue {
+  compiler.edges.set(of.node, { source, tolerated: NEAR_DOMAIN_EDGE });
   const node = compiler.graph.apply("sqrt", of.node);
   return {
     kind: "value",

@@ -3,6 +3,7 @@ import { callFunction } from "./calls";
 import type { Compiled, CompiledCondition, CompiledValue, Uses, Variable } from "./compiled";
 import { compare, conjunction, negation } from "./conditions";
 import { notANumber, placeKey, sourceOf, type Frame } from "./frame";
+import { DENOMINATOR, type Edge } from "./edges";
 import { Graph } from "./graph";
 import { MAX_DEPTH, MAX_NODES } from "./limits";
 import { plainNumber, powerMeaning, productMeaning, requireAlike, sumMeaning, type Sides } from "./meaning";
@@ -23,6 +24,8 @@ export class Compiler {
   readonly variables = new Map<number, Variable>();
   readonly links = new Map<number, { to: number; partial: number }[]>();
   readonly uses: Uses = { lines: new Map(), bodies: new Map(), conversions: new Map(), warnings: new Map() };
+  /** Values near whose zero the result turns sharply: denominators, arguments of logarithms and roots. */
+  readonly edges = new Map<number, Edge>();
   readonly #lines = new Map<string, Compiled>();
   readonly #active = new Set<string>();
 
@@ -147,6 +150,7 @@ export class Compiler {
         return { kind: "value", node: graph.mul(left.node, right.node), state, meaning: productMeaning(left.meaning, right.meaning, 1), over };
       case "/": {
         const node = graph.div(left.node, right.node);
+        this.edges.set(right.node, { source: sourceOf(tree.right, frame), tolerated: DENOMINATOR });
         return { kind: "value", node, state: graph.guard(state, node), meaning: ratioMeaning(left, right), over };
       }
       case "^": {

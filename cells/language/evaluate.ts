@@ -6,7 +6,7 @@ import type { CompiledValue } from "./compiled";
 import { canonicalUnit, composedSymbol, statedBasis } from "./dimension";
 import { Evaluated } from "./evaluated";
 import { notANumber, type Frame } from "./frame";
-import { measure } from "./measure";
+import { measure, type Measurement } from "./measure";
 import { plainNumber, shownUnit, type Meaning } from "./meaning";
 import { parse } from "./parse";
 import type { ExpressionPlace, Scope } from "./scope";
@@ -44,6 +44,12 @@ function finish(compiler: Compiler, value: CompiledValue, at: ExpressionPlace): 
   const { over } = value;
   const meaning = { unit, basis: statedBasis(value.meaning.counting), remark: value.meaning.remark ?? null };
   return new Evaluated(meaning, measured, { table: over?.table ?? null, ...(over?.split == null ? {} : { byClass: over.split.classes }), problems, uses });
+}
+
+function nearEdgeSentence(compiler: Compiler, { nearEdgeCount, length }: Measurement): string {
+  const sources = [...new Set([...compiler.edges.values()].map((edge) => edge.source))].slice(0, 4).join(", ");
+  const where = length === 1 ? "Here" : `In ${nearEdgeCount} of ${length} values`;
+  return `${where} the σ of ${sources} is large against the value itself (over 10 % in a denominator, or 0 within 3σ in a logarithm or root), so the σ given, which is of first order, is a rough one.`;
 }
 
 /** The unit a result is given in: the one chosen, else the canonical one of its dimension, else one put together. */

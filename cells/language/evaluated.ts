@@ -39,6 +39,8 @@ export class Evaluated implements EvaluatedMeaning {
   readonly lowerBound: Uint8Array;
   readonly assumed: Uint8Array;
   readonly assumedCount: number;
+  /** 1 where first-order propagation is not to be trusted: a denominator with more than 10 % σ, a domain's edge within 3σ. */
+  readonly nearEdge: Uint8Array;
   /** True where there is one entry for each row of `table`. */
   readonly perSample: boolean;
   /** Classes, where there is one entry for each. */
@@ -71,6 +73,7 @@ export class Evaluated implements EvaluatedMeaning {
     this.state = measured.state;
     this.lowerBound = measured.lowerBound;
     this.assumed = measured.assumed;
+    this.nearEdge = measured.nearEdge;
     this.assumedCount = measured.assumedCount;
     this.table = of.table;
     this.perSample = of.table !== null && of.byClass === undefined;

@@ -1,5 +1,6 @@
 import type { ColumnVariable, CompiledValue } from "./compiled";
 import type { Compiler } from "./compiler";
+import { tooNearNode } from "./edges";
 import { partialsOf } from "./derivatives";
 import type { Column, Graph, Load } from "./graph";
 import { run } from "./execute";
@@ -19,6 +20,9 @@ export interface Measurement {
   readonly lowerBound: Uint8Array;
   readonly assumed: Uint8Array;
   readonly assumedCount: number;
+  /** 1 where first-order propagation is not to be trusted: see edges.ts. */
+  readonly nearEdge: Uint8Array;
+  readonly nearEdgeCount: number;
   /** Inputs in order of first appearance. */
   readonly columns: readonly ColumnVariable[];
   readonly commons: readonly CommonPart[];
@@ -40,6 +44,7 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   graph.raiseLimit(MAX_DERIVED_NODES);
   const partials = partialsOf(graph, node, new Set(variables.keys()), compiler.links);
   const nodes = uncertaintyNodes(graph, partials, variables);
+  const near = tooNearNode(graph, compiler.edges, variables, compiler.links);
   const length = extentOf(value.over);
   const columnOf = columnsOver(compiler, value.over);
   const results = new Results(compiler, length);
@@ -51,6 +56,7 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
     sigmaCommon: results.numbers(nodes.sigmaCommon),
     lowerBound: results.bytes(nodes.lowerBound),
     assumed: results.bytes(nodes.assumed),
+    nearEdge: results.bytes(near),
   };
   results.calculate(columnOf);
   blankAbsent(made, length);
@@ -73,7 +79,8 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
     return found;
   };
   const assumedCount = graph.constantOf(nodes.assumed) === 0 ? 0 : countFlags(made.assumed);
-  return { length, ...made, assumedCount, columns, commons, partial, graph, partialNode, columnOf };
+  const nearEdgeCount = graph.constantOf(near) === 0 ? 0 : countFlags(made.nearEdge);
+  return { length, ...made, assumedCount, nearEdgeCount, columns, commons, partial, graph, partialNode, columnOf };
 }
 
 /** Collects what is to be calculated in one run: a node asked for twice is calculated once, and zeros not at all. */
@@ -113,8 +120,11 @@ class Results {
   }
 }
 
-function blankAbsent(made: Pick<Measurement, "value" | "state" | "sigma" | "sigmaPerSample" | "sigmaCommon" | "lowerBound" | "assumed">, length: number): void {
-  const { value, state, sigma, sigmaPerSample, sigmaCommon, lowerBound, assumed } = made;
+function blankAbsent(
+  made: Pick<Measurement, "value" | "state" | "sigma" | "sigmaPerSample" | "sigmaCommon" | "lowerBound" | "assumed" | "nearEdge">,
+  length: number,
+): void {
+  const { value, state, sigma, sigmaPerSample, sigmaCommon, lowerBound, assumed, nearEdge } = made;
   for (let i = 0; i < length; i++) {
     if (state[i] === 0) continue;
     value[i] = Number.NaN;
@@ -123,6 +133,7 @@ function blankAbsent(made: Pick<Measurement, "value" | "state" | "sigma" | "sigm
     sigmaCommon[i] = Number.NaN;
     lowerBound[i] = 0;
     assumed[i] = 0;
+    nearEdge[i] = 0;
   }
 }
 

@@ -1,5 +1,5 @@
-import type { Scope } from "../language";
-import type { BodyLookup } from "../species";
+import type { Scope } from "../language/scope";
+import type { BodyLookup } from "../species/body";
 import type { BlockResult } from "./results";
 import type { Block } from "./schema";
 

@@ -27,6 +27,8 @@ export interface PageGraph {
   /** The lines named `name` over a data block: none, one, or several, which is an error where the name is used. */
   linesOver(data: string | undefined, name: string): readonly PageLine[];
   linesOf(block: string): readonly PageLine[];
+  /** The lines of that name over whatever data block. */
+  linesNamed(name: string): readonly PageLine[];
   /** Everything that can be calculated, each after what it needs. */
   readonly steps: readonly Step[];
   /** By block: what its calculation needs, in a fixed order, those of its lines included. */
@@ -113,7 +115,7 @@ export function pageGraph(page: PageDocument): PageGraph {
       if (own === undefined) continue;
       node.needs.push(own.key);
       if (line.data !== undefined) own.needs.push(blockKey(line.data));
-      own.needs.push(...nameNeeds(line.line.expression, line.data, block.id));
+      own.needs.push(...nameNeeds(line.line.text, line.data, block.id));
     }
     if (block.kind === "note") {
       for (const quote of quotesIn(block.text)) {
@@ -137,6 +139,7 @@ export function pageGraph(page: PageDocument): PageGraph {
     resolve,
     linesOver: (data, name) => lines.over(data, name),
     linesOf: (block) => lines.of(block),
+    linesNamed: (name) => lines.named(name),
     steps: order.flatMap((key) => {
       const step = nodes.get(key)?.step;
       return step === undefined || circular.has(step.block.id) ? [] : [step];
@@ -158,7 +161,8 @@ function fitKey(id: string): string {
 
 function resolver(page: PageDocument): (handle: string) => Block | undefined {
   const byHandle = new Map<string, Block>();
-  for (const block of page.blocks) for (const former of block.formerly ?? []) if (!byHandle.has(former.normalize("NFC"))) byHandle.set(former.normalize("NFC"), block);
+  for (const block of page.blocks)
+    for (const former of block.formerly ?? []) if (!byHandle.has(former.normalize("NFC"))) byHandle.set(former.normalize("NFC"), block);
   for (const block of page.blocks) byHandle.set(block.id.normalize("NFC"), block);
   return (handle) => byHandle.get(handle.normalize("NFC"));
 }
@@ -172,7 +176,7 @@ class PageLines {
     for (const block of page.blocks) {
       if (block.kind !== "formula") continue;
       const data = block.data === undefined ? undefined : (resolve(block.data)?.id ?? block.data);
-      const lines = parseLines(block.text).map((line): PageLine => ({ name: line.name.normalize("NFC"), block, line, data }));
+      const lines = parseLines(block.text).lines.map((line): PageLine => ({ name: line.name, block, line, data }));
       this.byBlock.set(block.id, lines);
       for (const line of lines) {
         const key = dataKey(data, line.name);
@@ -194,9 +198,8 @@ class PageLines {
     return [...this.byBlock.values()].flat().filter((line) => line.name === name);
   }
 
-  /** Two lines of one name are two nodes. */
   key(line: PageLine): string {
-    return `line:${line.block.id}:${this.of(line.block.id).indexOf(line)}`;
+    return `line:${line.block.id}:${line.name}`;
   }
 }
 
@@ -232,7 +235,14 @@ function quotedBlocks(parts: readonly string[], resolve: (handle: string) => Blo
   return block.kind === "data" ? [block.id, ...lines.over(block.id, second).map(fromLine)] : [block.id];
 }
 
-const kindNames: Readonly<Record<Block["kind"], string>> = { data: "a data block", formula: "a formula block", plot: "a plot", trend: "a trend", budget: "a budget", note: "a note" };
+const kindNames: Readonly<Record<Block["kind"], string>> = {
+  data: "a data block",
+  formula: "a formula block",
+  plot: "a plot",
+  trend: "a trend",
+  budget: "a budget",
+  note: "a note",
+};
 
 function danglingIn(block: Block, resolve: (handle: string) => Block | undefined): Problem[] {
   return referencesOf(block).flatMap((reference): Problem[] => {
@@ -240,15 +250,29 @@ function danglingIn(block: Block, resolve: (handle: string) => Block | undefined
     const wanted = kindNames[reference.expects[0] ?? "data"];
     const at = { severity: "error" as const, block: block.id, field: reference.field };
     if (other === undefined) {
-      return [{ code: "no-such-block", ...at, text: `There is no block "${reference.handle}" on this page; ${reference.field} needs ${wanted}. Choose another, or bring it back from the bin.` }];
+      return [
+        {
+          code: "no-such-block",
+          ...at,
+          text: `There is no block "${reference.handle}" on this page; ${reference.field} needs ${wanted}. Choose another, or bring it back from the bin.`,
+        },
+      ];
     }
     if (reference.expects.includes(other.kind)) return [];
-    return [{ code: "wrong-kind", ...at, text: `${reference.field} needs ${wanted}, and "${reference.handle}" is ${kindNames[other.kind]}. Choose ${wanted}.` }];
+    return [
+      { code: "wrong-kind", ...at, text: `${reference.field} needs ${wanted}, and "${reference.handle}" is ${kindNames[other.kind]}. Choose ${wanted}.` },
+    ];
   });
 }
 
 /** Says at every line and block of a circle how it goes round. */
-function nameCircle(cycle: readonly string[], nodes: ReadonlyMap<string, Node>, problems: ReadonlyMap<string, Problem[]>, circular: Set<string>, circleByLine: Map<PageLine, string>): void {
+function nameCircle(
+  cycle: readonly string[],
+  nodes: ReadonlyMap<string, Node>,
+  problems: ReadonlyMap<string, Problem[]>,
+  circular: Set<string>,
+  circleByLine: Map<PageLine, string>,
+): void {
   const names = cycle.map((key) => {
     const node = nodes.get(key);
     return node?.line?.name ?? node?.step?.block.id ?? key;
@@ -269,7 +293,9 @@ function nameCircle(cycle: readonly string[], nodes: ReadonlyMap<string, Node>, 
     if (node?.step !== undefined && !circular.has(node.step.block.id)) {
       const id = node.step.block.id;
       circular.add(id);
-      problems.get(id)?.push({ code: "circle", severity: "error", block: id, text: `${id} reads from itself: ${round}. Break the circle in one of its places.` });
+      problems
+        .get(id)
+        ?.push({ code: "circle", severity: "error", block: id, text: `${id} reads from itself: ${round}. Break the circle in one of its places.` });
     }
   }
 }

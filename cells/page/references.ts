@@ -24,7 +24,10 @@ export function referencesOf(block: Block): Reference[] {
     case "formula":
       return block.data === undefined ? [] : [data(block.data, "data")];
     case "trend":
-      return [data(block.data, "data"), ...(block.crossWith === undefined ? [] : [{ handle: block.crossWith, field: "crossWith", expects: ["trend"] as const }])];
+      return [
+        data(block.data, "data"),
+        ...(block.crossWith === undefined ? [] : [{ handle: block.crossWith, field: "crossWith", expects: ["trend"] as const }]),
+      ];
     case "budget":
       return ofBudget(block);
     case "plot":

@@ -250,11 +250,58 @@ export interface PlotResult extends AnyResult {
 
 /** What one line of a plot's list comes to: numbers ready to be drawn. `drawn` is its place in the block's list. */
 export type PlotLayer =
-  | { readonly what: "samples"; readonly drawn: number; readonly data: string; readonly ellipses: number; readonly points: PlotPoints; readonly classes: readonly string[]; readonly samples: readonly string[]; readonly rows: readonly RowId[]; readonly references: readonly string[] }
-  | { readonly what: "trend"; readonly drawn: number; readonly trend: string; readonly line: Curve; readonly range: readonly [number, number]; readonly band?: Band; readonly usesScatter: boolean }
-  | { readonly what: "crossing"; readonly drawn: number; readonly trends: readonly [string, string]; readonly x: number; readonly y: number; readonly sigmaX: number; readonly sigmaY: number; readonly ellipse: Curve }
-  | { readonly what: "path"; readonly drawn: number; readonly budget: string; readonly line: Curve; readonly ticks: readonly { readonly x: number; readonly y: number; readonly label: string }[]; readonly end?: { readonly x: number; readonly y: number; readonly label: string } }
-  | { readonly what: "bodies"; readonly drawn: number; readonly bodies: readonly { readonly name: string; readonly compilation: string; readonly x: number; readonly y: number; readonly sigmaX: number | null; readonly sigmaY: number | null; readonly correlation: number; readonly ellipse?: Curve }[] }
+  | {
+      readonly what: "samples";
+      readonly drawn: number;
+      readonly data: string;
+      readonly ellipses: number;
+      readonly points: PlotPoints;
+      readonly classes: readonly string[];
+      readonly samples: readonly string[];
+      readonly rows: readonly RowId[];
+      readonly references: readonly string[];
+    }
+  | {
+      readonly what: "trend";
+      readonly drawn: number;
+      readonly trend: string;
+      readonly line: Curve;
+      readonly range: readonly [number, number];
+      readonly band?: Band;
+      readonly usesScatter: boolean;
+    }
+  | {
+      readonly what: "crossing";
+      readonly drawn: number;
+      readonly trends: readonly [string, string];
+      readonly x: number;
+      readonly y: number;
+      readonly sigmaX: number;
+      readonly sigmaY: number;
+      readonly ellipse: Curve;
+    }
+  | {
+      readonly what: "path";
+      readonly drawn: number;
+      readonly budget: string;
+      readonly line: Curve;
+      readonly ticks: readonly { readonly x: number; readonly y: number; readonly label: string }[];
+      readonly end?: { readonly x: number; readonly y: number; readonly label: string };
+    }
+  | {
+      readonly what: "bodies";
+      readonly drawn: number;
+      readonly bodies: readonly {
+        readonly name: string;
+        readonly compilation: string;
+        readonly x: number;
+        readonly y: number;
+        readonly sigmaX: number | null;
+        readonly sigmaY: number | null;
+        readonly correlation: number;
+        readonly ellipse?: Curve;
+      }[];
+    }
   | { readonly what: "annotation"; readonly drawn: number; readonly text: string; readonly x: number; readonly y: number };
 
 export interface PlotPoints {
@@ -312,7 +359,14 @@ export interface TraceNode {
   /** Sentences: conversion used, amendment and its reason, assumed σ and its reason, source and checked state of a body. */
   readonly notes: readonly string[];
   /** For cells: where it stands. */
-  readonly cell?: { readonly block: string; readonly row: RowId; readonly column: string; readonly raw: string; readonly rawSigma: string; readonly sigmaHeader?: string };
+  readonly cell?: {
+    readonly block: string;
+    readonly row: RowId;
+    readonly column: string;
+    readonly raw: string;
+    readonly rawSigma: string;
+    readonly sigmaHeader?: string;
+  };
   readonly from: readonly TraceNode[];
 }
 

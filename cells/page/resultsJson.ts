@@ -61,7 +61,16 @@ function dataJson(result: DataResult): object {
     ...(result.proposed ? { proposed: true } : {}),
     columns: result.columns
       .filter((column) => column.role === "quantity")
-      .map(({ name, unit, n, missing, belowDetection, setAside, assumed, withoutSigma }) => ({ name, unit, n, missing, belowDetection, setAside, assumed, withoutSigma })),
+      .map(({ name, unit, n, missing, belowDetection, setAside, assumed, withoutSigma }) => ({
+        name,
+        unit,
+        n,
+        missing,
+        belowDetection,
+        setAside,
+        assumed,
+        withoutSigma,
+      })),
     screening: result.screening,
     problems: result.problems.map(problemJson),
   };
@@ -167,7 +176,17 @@ function layerJson(layer: PlotLayer): object {
     case "path":
       return { what: layer.what, budget: layer.budget, points: layer.line.x.length, end: layer.end ?? null };
     case "bodies":
-      return { what: layer.what, bodies: layer.bodies.map(({ name, compilation, x, y, sigmaX, sigmaY }) => ({ name, compilation, x: orNull(x), y: orNull(y), sigmaX: orNull(sigmaX), sigmaY: orNull(sigmaY) })) };
+      return {
+        what: layer.what,
+        bodies: layer.bodies.map(({ name, compilation, x, y, sigmaX, sigmaY }) => ({
+          name,
+          compilation,
+          x: orNull(x),
+          y: orNull(y),
+          sigmaX: orNull(sigmaX),
+          sigmaY: orNull(sigmaY),
+        })),
+      };
     case "annotation":
       return { what: layer.what, text: layer.text, x: layer.x, y: layer.y };
   }

@@ -176,7 +176,9 @@ export const substanceSchema = z.union([
   z.strictObject({ data: handleSchema, sample: z.string().min(1).max(200) }),
   z.strictObject({ data: handleSchema, row: rowSchema }),
   z.strictObject({ data: handleSchema, class: z.string().min(1).max(200) }),
-  z.strictObject({ composition: z.record(z.string().max(60), z.union([z.number(), z.strictObject({ value: z.number(), sigma: z.number().min(0).optional() })])) }),
+  z.strictObject({
+    composition: z.record(z.string().max(60), z.union([z.number(), z.strictObject({ value: z.number(), sigma: z.number().min(0).optional() })])),
+  }),
 ]);
 
 export const fixedAmountSchema = z.strictObject({ value: z.number(), sigma: z.number().min(0).optional() });
@@ -269,7 +271,14 @@ export const noteBlockSchema = z.strictObject({
   text: z.string().max(100_000),
 });
 
-export const blockSchema = z.discriminatedUnion("kind", [dataBlockSchema, formulaBlockSchema, plotBlockSchema, trendBlockSchema, budgetBlockSchema, noteBlockSchema]);
+export const blockSchema = z.discriminatedUnion("kind", [
+  dataBlockSchema,
+  formulaBlockSchema,
+  plotBlockSchema,
+  trendBlockSchema,
+  budgetBlockSchema,
+  noteBlockSchema,
+]);
 export const blockKinds = ["data", "formula", "plot", "trend", "budget", "note"] as const;
 
 export const PAGE_FORMAT = "cotectic-page/1";

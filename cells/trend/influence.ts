@@ -62,7 +62,11 @@ export function emptyInfluence(n: number): Influence {
 }
 
 /** Covariance of a line's slope and intercept that errors of its points bring, point by point. */
-export function propagate(influence: Influence, points: Pick<FitPoints, "sigmaX" | "sigmaY" | "correlation">, extraVarianceY: number): Pick<LineFit, "slopeVariance" | "interceptVariance" | "covariance"> {
+export function propagate(
+  influence: Influence,
+  points: Pick<FitPoints, "sigmaX" | "sigmaY" | "correlation">,
+  extraVarianceY: number,
+): Pick<LineFit, "slopeVariance" | "interceptVariance" | "covariance"> {
   let slopeVariance = 0;
   let interceptVariance = 0;
   let covariance = 0;

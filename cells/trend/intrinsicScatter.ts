@@ -13,28 +13,47 @@ export interface ScatterFit {
  * Intrinsic scatter by maximum likelihood: normal, in y, the same for every point, added to its errors. At the maximum,
  * Σ(W²r² − W) = 0 with W = 1/(σy² + s² + b²σx² − 2bρσxσy); the line is the York line for those errors.
  *
- * The root of the score is bracketed and halved in s²; where the score is not positive at s = 0 the scatter is 0.
+ * The root of the score is bracketed in s²; where the score is not positive at s = 0 the scatter is 0.
  */
 export function intrinsicScatter(points: FitPoints, plain: YorkFit): ScatterFit {
-  if (!(score(points, plain) > 0)) return { scatter: 0, fit: plain };
-  let high = residualVariance(points, plain);
+  let atLow = score(points, plain);
+  if (!(atLow > 0)) return { scatter: 0, fit: plain };
   let low = 0;
-  let fit = widened(points, high);
-  while (score(points, fit) > 0) {
+  let high = residualVariance(points, plain);
+  let fit = widened(points, high, plain.slope);
+  let atHigh = score(points, fit);
+  while (atHigh > 0) {
     low = high;
+    atLow = atHigh;
     high *= 4;
-    fit = widened(points, high);
     if (!Number.isFinite(high)) return { scatter: NaN, fit: plain };
+    fit = widened(points, high, fit.slope);
+    atHigh = score(points, fit);
   }
-  for (let step = 0; step < 200; step++) {
-    const middle = 0.5 * (low + high);
-    if (middle <= low || middle >= high || high - low <= 1e-14 * high) break;
-    fit = widened(points, middle);
-    if (score(points, fit) > 0) low = middle;
-    else high = middle;
+  // False position, with the Illinois rule: the end that stays put counts half.
+  let kept = 0;
+  for (let step = 0; step < 200 && high - low > 1e-14 * high; step++) {
+    const ratio = atLow / (atLow - atHigh);
+    let next = low + ratio * (high - low);
+    if (!(next > low && next < high)) next = 0.5 * (low + high);
+    if (!(next > low && next < high)) break;
+    fit = widened(points, next, fit.slope);
+    const value = score(points, fit);
+    if (value === 0) return { scatter: Math.sqrt(next), fit };
+    if (value > 0) {
+      low = next;
+      atLow = value;
+      if (kept === 1) atHigh *= 0.5;
+      kept = 1;
+    } else {
+      high = next;
+      atHigh = value;
+      if (kept === -1) atLow *= 0.5;
+      kept = -1;
+    }
   }
   const s2 = 0.5 * (low + high);
-  return { scatter: Math.sqrt(s2), fit: widened(points, s2) };
+  return { scatter: Math.sqrt(s2), fit: widened(points, s2, fit.slope) };
 }
 
 /** Derivative of the log-likelihood to s², times two. */
@@ -58,7 +77,7 @@ function residualVariance({ x, y }: FitPoints, { slope, intercept }: YorkFit): n
 }
 
 /** The York fit with a variance added to every σy; the error covariance of x and y stays what it was. */
-export function widened(points: FitPoints, variance: number): YorkFit {
+export function widened(points: FitPoints, variance: number, start: number): YorkFit {
   const n = points.x.length;
   const sigmaY = new Float64Array(n);
   const correlation = new Float64Array(n);
@@ -68,5 +87,5 @@ export function widened(points: FitPoints, variance: number): YorkFit {
     sigmaY[i] = wide;
     correlation[i] = ((points.correlation[i] ?? 0) * q) / wide;
   }
-  return york({ ...points, sigmaY, correlation });
+  return york({ ...points, sigmaY, correlation }, start);
 }

@@ -17,7 +17,8 @@ export function reducedMajorAxis(points: FitPoints): ScatterLine {
   const { x, y } = points;
   const n = x.length;
   const { xMean, yMean, xx, xy, yy } = moments(points);
-  if (xy === 0) throw new CellError("no-direction", "x and y are not correlated at all, so the sign of a reduced major axis cannot be told. Use ordinary least squares.");
+  if (xy === 0)
+    throw new CellError("no-direction", "x and y are not correlated at all, so the sign of a reduced major axis cannot be told. Use ordinary least squares.");
   const r2 = Math.min(1, (xy * xy) / (xx * yy));
   const slope = (xy < 0 ? -1 : 1) * Math.sqrt(yy / xx);
   const slopeVariance = ((yy / xx) * (1 - r2)) / (n - 2);

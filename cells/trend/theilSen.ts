@@ -19,7 +19,11 @@ export function theilSen(points: FitPoints): ScatterLine {
   checkPoints(points, { needsErrors: false });
   const { x, y } = points;
   const n = x.length;
-  if (n > MAX_POINTS) throw new CellError("too-many-points", `Theil–Sen compares every pair of points and takes up to ${MAX_POINTS} of them; there are ${n}. Choose fewer samples or another method.`);
+  if (n > MAX_POINTS)
+    throw new CellError(
+      "too-many-points",
+      `Theil–Sen compares every pair of points and takes up to ${MAX_POINTS} of them; there are ${n}. Choose fewer samples or another method.`,
+    );
   const slopes = new Float64Array((n * (n - 1)) / 2);
   let count = 0;
   for (let i = 0; i < n; i++) {

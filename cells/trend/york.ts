@@ -23,14 +23,16 @@ const STRONG_CORRELATION = 0.7;
  * variances, so that σ = 0 on one axis is allowed. σ of slope and intercept from the adjusted points (their equations
  * 13–14 of section III); they agree with maximum likelihood (Titterington & Halliday 1979). Cost n × iterations.
  *
+ * @param start a slope known to be near, to be tried first
  * @throws CellError where there are fewer than 3 points, all x are equal, or a point has σ = 0 on both axes
  */
-export function york(points: FitPoints): YorkFit {
+export function york(points: FitPoints, start?: number): YorkFit {
   checkPoints(points, { needsErrors: true });
   const strong = points.correlation.some((r) => Math.abs(r) > STRONG_CORRELATION);
   let best: YorkFit | undefined;
-  for (const start of startingSlopes(points)) {
-    const fit = yorkFrom(points, start);
+  const starts = startingSlopes(points);
+  for (const slope of start === undefined ? starts : [start, ...starts]) {
+    const fit = yorkFrom(points, slope);
     if (fit !== undefined && better(fit, best)) best = fit;
     if (best?.converged && !strong) break;
   }
@@ -143,5 +145,14 @@ function summarise(points: FitPoints, slope: number, weight: Float64Array, conve
 
 /** What stands where no start led to a number: a line that says it did not converge. */
 function failed(points: FitPoints): YorkFit {
-  return { slope: NaN, intercept: NaN, slopeVariance: NaN, interceptVariance: NaN, covariance: NaN, S: NaN, converged: false, weight: new Float64Array(points.x.length) };
+  return {
+    slope: NaN,
+    intercept: NaN,
+    slopeVariance: NaN,
+    interceptVariance: NaN,
+    covariance: NaN,
+    S: NaN,
+    converged: false,
+    weight: new Float64Array(points.x.length),
+  };
 }

@@ -8,6 +8,7 @@ import {
   fieldFault,
   fieldNames,
   hasText,
+  holdsNul,
   isBlockKind,
   isListOf,
   listLimits,

@@ -16,11 +16,16 @@ export function ensureBrowser() {
   const installed = "/usr/bin/chromium";
   if (!existsSync(installed) && !existsSync(unpacked)) {
     if (isRoot) aptInstall(["chromium"], "Chromium could not be installed");
-    else unpackDebian("chromium", "The browser tests need Chromium, which could not be unpacked: as root, `apt-get install chromium`; or name one with CHROMIUM=/path.");
+    else
+      unpackDebian(
+        "chromium",
+        "The browser tests need Chromium, which could not be unpacked: as root, `apt-get install chromium`; or name one with CHROMIUM=/path.",
+      );
   }
   const found = existsSync(installed) ? { CHROMIUM: installed } : { CHROMIUM: unpacked, CHROMIUM_LIBRARIES: unpackedLibraries() };
   const libraries = found.CHROMIUM_LIBRARIES ? { LD_LIBRARY_PATH: found.CHROMIUM_LIBRARIES } : {};
   const probe = spawnSync(found.CHROMIUM, ["--version"], { env: { ...process.env, ...libraries }, encoding: "utf8" });
-  if (probe.status !== 0) fail(`${found.CHROMIUM} does not start: ${(probe.stderr || "").trim().split("\n")[0]}. Install Chromium with \`apt-get install chromium\` as root.`);
+  if (probe.status !== 0)
+    fail(`${found.CHROMIUM} does not start: ${(probe.stderr || "").trim().split("\n")[0]}. Install Chromium with \`apt-get install chromium\` as root.`);
   return found;
 }

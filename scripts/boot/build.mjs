@@ -10,7 +10,8 @@ const files = ["next.config.ts", "tailwind.config.ts", "postcss.config.mjs", "pr
 /** `next build`, unless nothing it reads has changed since the last one. */
 export function ensureBuild(environment) {
   const hash = createHash("sha256");
-  for (const file of [...folders.flatMap(walk), ...files].filter((name) => existsSync(path.join(root, name)))) hash.update(file).update(readFileSync(path.join(root, file)));
+  for (const file of [...folders.flatMap(walk), ...files].filter((name) => existsSync(path.join(root, name))))
+    hash.update(file).update(readFileSync(path.join(root, file)));
   const wanted = hash.digest("hex");
   if (existsSync(stampFile) && readFileSync(stampFile, "utf8") === wanted) return;
   log("building (half a minute or so)");

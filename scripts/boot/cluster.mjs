@@ -104,7 +104,19 @@ function initialise(server, state) {
     chownSync(server.data, uid, gid);
     chownSync(passwordFile, uid, gid);
   }
-  const result = server.run("initdb", ["-D", server.data, "-U", "cotectic_owner", "--pwfile", passwordFile, "--auth=scram-sha-256", "-E", "UTF8", "--locale=C.UTF-8", "--no-instructions"]);
+  const result = server.run("initdb", [
+    "-D",
+    server.data,
+    "-U",
+    "cotectic_owner",
+    "--pwfile",
+    passwordFile,
+    "--auth=scram-sha-256",
+    "-E",
+    "UTF8",
+    "--locale=C.UTF-8",
+    "--no-instructions",
+  ]);
   rmSync(passwordFile, { force: true });
   if (result.status !== 0) {
     rmSync(server.data, { recursive: true, force: true });
@@ -120,7 +132,9 @@ async function serverBinaries(version) {
   const found = findBinaries("/usr/lib/postgresql", version) ?? unpackedBinaries(version);
   if (found) return found;
   if (version && findBinaries("/usr/lib/postgresql")) {
-    fail(`The cluster was made by PostgreSQL ${version}, which is no longer installed; dump it with that version and restore it, or install postgresql-${version}.`);
+    fail(
+      `The cluster was made by PostgreSQL ${version}, which is no longer installed; dump it with that version and restore it, or install postgresql-${version}.`,
+    );
   }
   if (isRoot) {
     aptInstall(["postgresql-common"], "PostgreSQL could not be installed");
@@ -157,15 +171,19 @@ function unpackServer() {
 
 export function freePort() {
   return new Promise((resolve, reject) => {
-    const probe = createServer().once("error", reject).listen(0, "127.0.0.1", () => {
-      const { port } = probe.address();
-      probe.close(() => resolve(port));
-    });
+    const probe = createServer()
+      .once("error", reject)
+      .listen(0, "127.0.0.1", () => {
+        const { port } = probe.address();
+        probe.close(() => resolve(port));
+      });
   });
 }
 
 export function canBind(port, host = "127.0.0.1") {
   return new Promise((resolve) => {
-    const probe = createServer().once("error", () => resolve(false)).listen(port, host, () => probe.close(() => resolve(true)));
+    const probe = createServer()
+      .once("error", () => resolve(false))
+      .listen(port, host, () => probe.close(() => resolve(true)));
   });
 }

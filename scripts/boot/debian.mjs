@@ -52,7 +52,9 @@ export function unpackDebian(name, sentence) {
 function missingDependencies(name) {
   const options = ["--recurse", "--no-recommends", "--no-suggests", "--no-conflicts", "--no-breaks", "--no-replaces", "--no-enhances"];
   const listed = spawnSync("apt-cache", ["depends", ...options, name], { encoding: "utf8", maxBuffer: 1 << 26 });
-  const wanted = (listed.stdout ?? "").split("\n").filter((line) => /^[a-z0-9]\S*$/.test(line) && (/^lib|fonts-|-common$/.test(line) || line.startsWith(`${name}-`)));
+  const wanted = (listed.stdout ?? "")
+    .split("\n")
+    .filter((line) => /^[a-z0-9]\S*$/.test(line) && (/^lib|fonts-|-common$/.test(line) || line.startsWith(`${name}-`)));
   return [...new Set(wanted)].filter((candidate) => candidate !== name && spawnSync("dpkg", ["-s", candidate], { stdio: "ignore" }).status !== 0);
 }
 

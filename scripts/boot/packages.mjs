@@ -5,7 +5,12 @@ import { log, run } from "./shared.mjs";
 export async function ensurePackages() {
   if (isInstalled()) return;
   log("installing npm packages (a minute or so)");
-  run("npm", ["ci", "--include=dev", "--no-audit", "--no-fund", "--loglevel=error"], {}, "The npm packages could not be installed; is the npm registry in reach?");
+  run(
+    "npm",
+    ["ci", "--include=dev", "--no-audit", "--no-fund", "--loglevel=error"],
+    {},
+    "The npm packages could not be installed; is the npm registry in reach?",
+  );
 }
 
 /** Compares with the list npm itself keeps of what it installed, so that a package added by hand costs no second install. */

@@ -33,13 +33,16 @@ export function home() {
  */
 export function childEnv() {
   return Object.fromEntries(
-    Object.entries(process.env).filter(([name]) => name !== "NODE_ENV" && !/^npm_(config_(omit|include|production|only|ignore_scripts)|lifecycle|package|command)/.test(name)),
+    Object.entries(process.env).filter(
+      ([name]) => name !== "NODE_ENV" && !/^npm_(config_(omit|include|production|only|ignore_scripts)|lifecycle|package|command)/.test(name),
+    ),
   );
 }
 
 /** Runs a command to its end; a failure ends the process with `sentence`. */
 export function run(command, args, options, sentence) {
   const result = spawnSync(command, args, { stdio: ["ignore", "inherit", "inherit"], env: childEnv(), cwd: root, ...options });
-  if (result.error || result.status !== 0) fail(`${sentence} (${command} ${args.join(" ")}: ${result.error?.message ?? `exit ${result.status ?? result.signal}`}).`);
+  if (result.error || result.status !== 0)
+    fail(`${sentence} (${command} ${args.join(" ")}: ${result.error?.message ?? `exit ${result.status ?? result.signal}`}).`);
   return result;
 }

@@ -9,7 +9,15 @@ export function launchBrowser(): Promise<Browser> {
     executablePath: CHROMIUM ?? "/usr/bin/chromium",
     headless: true,
     env: { ...process.env, ...(CHROMIUM_LIBRARIES ? { LD_LIBRARY_PATH: CHROMIUM_LIBRARIES } : {}) } as Record<string, string>,
-    args: ["--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"],
+    args: [
+      "--no-sandbox",
+      "--disable-gpu",
+      "--disable-quic",
+      "--no-first-run",
+      "--disable-background-networking",
+      "--disable-component-update",
+      "--disable-sync",
+    ],
   });
 }
 

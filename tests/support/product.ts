@@ -40,7 +40,11 @@ export default async function startProduct(project: TestProject): Promise<() => 
     MAILBOX_URL: `http://127.0.0.1:${http}`,
     NEXT_TELEMETRY_DISABLED: "1",
   };
-  execFileSync(process.execPath, ["--import", "tsx", "db/seed/seed.ts"], { cwd: root, env: { ...env, MIGRATION_DATABASE_URL: database.ownerUrl }, stdio: ["ignore", "ignore", "inherit"] });
+  execFileSync(process.execPath, ["--import", "tsx", "db/seed/seed.ts"], {
+    cwd: root,
+    env: { ...env, MIGRATION_DATABASE_URL: database.ownerUrl },
+    stdio: ["ignore", "ignore", "inherit"],
+  });
   const logs = path.join(root, ".data/logs");
   rmSync(logs, { recursive: true, force: true });
   mkdirSync(logs, { recursive: true });
@@ -82,7 +86,13 @@ function end(child: ChildProcess): Promise<void> {
 
 async function answering(url: string, logs: string): Promise<void> {
   for (let tries = 0; tries < 300; tries++) {
-    if (await fetch(url).then((r) => r.ok, () => false)) return;
+    if (
+      await fetch(url).then(
+        (r) => r.ok,
+        () => false,
+      )
+    )
+      return;
     await new Promise((resolve) => setTimeout(resolve, 200));
   }
   const said = ["web", "realtime"].map((name) => readFileSync(path.join(logs, `${name}.log`), "utf8").slice(-2000)).join("\n");
@@ -95,10 +105,12 @@ function withoutNodeEnv(): Record<string, string | undefined> {
 
 function freePort(): Promise<number> {
   return new Promise((resolve, reject) => {
-    const probe = createServer().once("error", reject).listen(0, "127.0.0.1", () => {
-      const address = probe.address();
-      const port = typeof address === "object" && address ? address.port : 0;
-      probe.close(() => resolve(port));
-    });
+    const probe = createServer()
+      .once("error", reject)
+      .listen(0, "127.0.0.1", () => {
+        const address = probe.address();
+        const port = typeof address === "object" && address ? address.port : 0;
+        probe.close(() => resolve(port));
+      });
   });
 }

@@ -29,7 +29,9 @@ export function AddColumnDialog({ columns, onAdd, onClose }: AddColumnDialogProp
     if (guess === undefined) return setFault("Write a name, with its unit in brackets.");
     const shaped = inRole(guess, chosen, quantities);
     const column: Column = chosen === "uncertainty" ? { ...shaped, of, as } : shaped;
-    const wrong = columns.some((c) => columnName(c) === columnName(column)) ? `There is a column ${columnName(column)} already.` : columnFault([...columns, column], columns.length);
+    const wrong = columns.some((c) => columnName(c) === columnName(column))
+      ? `There is a column ${columnName(column)} already.`
+      : columnFault([...columns, column], columns.length);
     const refused = wrong ?? onAdd(column);
     if (refused === null) onClose();
     else setFault(refused);
@@ -57,7 +59,15 @@ export function AddColumnDialog({ columns, onAdd, onClose }: AddColumnDialogProp
           add();
         }}
       >
-        <TextField label="Name, unit in brackets" mono value={text} autoFocus problem={fault} onText={(next) => (setText(next), setFault(null))} placeholder="Na2O (wt%)" />
+        <TextField
+          label="Name, unit in brackets"
+          mono
+          value={text}
+          autoFocus
+          problem={fault}
+          onText={(next) => (setText(next), setFault(null))}
+          placeholder="Na2O (wt%)"
+        />
         <Select label="is" value={chosen} options={roleOptions} onChoose={setRole} />
         {chosen === "uncertainty" ? (
           <div className="grid grid-cols-2 gap-4">

@@ -38,7 +38,8 @@ export function targetAt(block: DataBlock, model: GridModel, place: CellPlace): 
   if (row === undefined) return undefined;
   const column = model.columns[place.column];
   const raw = column?.quantity?.raw[place.row] ?? column?.text?.[place.row] ?? "";
-  const amended = column === undefined ? undefined : block.amendments?.find((a) => a.row === row && (a.column === column.name || a.column === column.quantity?.header));
+  const amended =
+    column === undefined ? undefined : block.amendments?.find((a) => a.row === row && (a.column === column.name || a.column === column.quantity?.header));
   return { row, sample: sampleAt(model.table, place.row), column, raw: amended?.was ?? raw, now: amended?.value ?? raw };
 }
 
@@ -56,17 +57,26 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
   const rowAside = (block.setAside ?? []).find((s) => s.row === row && s.column === undefined);
   const canEdit = view.edits !== null;
   return (
-    <div role="toolbar" aria-label={`Actions on ${sample}`} className="chrome flex flex-wrap items-baseline gap-x-5 gap-y-1 border-b border-hairline py-1 text-margin">
+    <div
+      role="toolbar"
+      aria-label={`Actions on ${sample}`}
+      className="chrome flex flex-wrap items-baseline gap-x-5 gap-y-1 border-b border-hairline py-1 text-margin"
+    >
       <span className="text-second">
         {sample}
         {isTotal ? "" : `, ${column.name}`}
       </span>
       {column?.quantity !== undefined ? <Button onClick={() => view.trace({ block: block.id, name: column.name, index: place.row })}>Trace</Button> : null}
-      {made ? origins.map((origin) => (
-        <Button key={`${origin.table} ${origin.row}`} onClick={() => view.show?.({ block: origin.table, row: origin.row, ...(column === undefined ? {} : { column: column.name }) })}>
-          Go to its source in {origin.table}
-        </Button>
-      )) : null}
+      {made
+        ? origins.map((origin) => (
+            <Button
+              key={`${origin.table} ${origin.row}`}
+              onClick={() => view.show?.({ block: origin.table, row: origin.row, ...(column === undefined ? {} : { column: column.name }) })}
+            >
+              Go to its source in {origin.table}
+            </Button>
+          ))
+        : null}
       {!canEdit || made ? null : (
         <>
           {isTotal || model.typed ? null : <Button onClick={() => onAmend(target)}>{amendment === undefined ? "Amend" : "Amend again"}</Button>}
@@ -76,7 +86,11 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
           ) : (
             <Button onClick={() => onUndo("setAside", valueAside)}>Bring this value back</Button>
           )}
-          {rowAside === undefined ? <Button onClick={() => onSetAside(target, true)}>Set the sample aside</Button> : <Button onClick={() => onUndo("setAside", rowAside)}>Bring the sample back</Button>}
+          {rowAside === undefined ? (
+            <Button onClick={() => onSetAside(target, true)}>Set the sample aside</Button>
+          ) : (
+            <Button onClick={() => onUndo("setAside", rowAside)}>Bring the sample back</Button>
+          )}
           {onDelete === undefined ? null : (
             <Button look="danger" onClick={() => onDelete(place)}>
               Delete the row

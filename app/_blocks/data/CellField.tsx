@@ -48,7 +48,10 @@ export function CellField({ initial, label, onDone }: CellFieldProps) {
         className="grid-input"
       />
       {fault === null ? null : (
-        <span role="alert" className="fixed bottom-4 left-1/2 z-50 max-w-[80ch] -translate-x-1/2 border border-vermilion bg-surface px-3 py-2 font-sans text-ui whitespace-normal text-vermilion">
+        <span
+          role="alert"
+          className="fixed bottom-4 left-1/2 z-50 max-w-[80ch] -translate-x-1/2 border border-vermilion bg-surface px-3 py-2 font-sans text-ui whitespace-normal text-vermilion"
+        >
           {fault}
         </span>
       )}

@@ -87,7 +87,16 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
   const pick = (row: number, way: "only" | "toggle" | "range") => {
     if (table === undefined || row >= table.rows || view.mode === "frozen") return;
     const from = anchor.current ?? row;
-    const next = way === "range" ? between(from, row) : way === "toggle" ? (pickedSet.has(row) ? picked.filter((r) => r !== row) : [...picked, row]) : pickedSet.has(row) && picked.length === 1 ? [] : [row];
+    const next =
+      way === "range"
+        ? between(from, row)
+        : way === "toggle"
+          ? pickedSet.has(row)
+            ? picked.filter((r) => r !== row)
+            : [...picked, row]
+          : pickedSet.has(row) && picked.length === 1
+            ? []
+            : [row];
     if (way !== "range") anchor.current = row;
     view.pick(originsOf(table, next));
   };
@@ -156,7 +165,14 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
         onDone={(text, move) => {
           const fault = text === null || text === before ? null : onType(place, model, text);
           if (fault !== null) return fault;
-          const next = move === "down" ? { row: Math.min(rows - 1, place.row + 1), column: place.column } : move === "right" ? { row: place.row, column: Math.min(model.columns.length - 1, place.column + 1) } : move === "left" ? { row: place.row, column: Math.max(0, place.column - 1) } : place;
+          const next =
+            move === "down"
+              ? { row: Math.min(rows - 1, place.row + 1), column: place.column }
+              : move === "right"
+                ? { row: place.row, column: Math.min(model.columns.length - 1, place.column + 1) }
+                : move === "left"
+                  ? { row: place.row, column: Math.max(0, place.column - 1) }
+                  : place;
           go(next);
           if (move !== null || text === null) scroller.current?.focus();
           return null;
@@ -165,7 +181,9 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
     );
   };
 
-  const template = model.columns.map((c) => (c.role === "sample" ? `${c.width}px` : `minmax(${c.width}px, 1fr)`)).join(" ") + (totals === null ? "" : ` minmax(${TOTAL_WIDTH}px, 0.8fr)`);
+  const template =
+    model.columns.map((c) => (c.role === "sample" ? `${c.width}px` : `minmax(${c.width}px, 1fr)`)).join(" ") +
+    (totals === null ? "" : ` minmax(${TOTAL_WIDTH}px, 0.8fr)`);
   const least = model.columns.reduce((sum, c) => sum + c.width, totals === null ? 0 : TOTAL_WIDTH);
   const drawn: number[] = [];
   for (let r = shown.first; r < shown.end; r++) drawn.push(r);

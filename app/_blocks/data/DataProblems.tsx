@@ -25,7 +25,11 @@ export function DataProblems({ result, block, view }: { readonly result: DataRes
               <span className="font-mono text-[12px]">{place}: </span>
             ) : (
               <>
-                <button type="button" className="font-mono text-[12px] underline decoration-dotted underline-offset-2" onClick={() => view.show?.({ block: block.id, row, ...(column === undefined ? {} : { column }) })}>
+                <button
+                  type="button"
+                  className="font-mono text-[12px] underline decoration-dotted underline-offset-2"
+                  onClick={() => view.show?.({ block: block.id, row, ...(column === undefined ? {} : { column }) })}
+                >
                   {place}
                 </button>
                 {": "}

@@ -12,6 +12,7 @@ import { columnItems } from "./columnItems";
 import { DataGrid } from "./DataGrid";
 import { DataProblems } from "./DataProblems";
 import { EmptyTable } from "./EmptyTable";
+import { FoldedTable } from "./FoldedTable";
 import type { CellPlace } from "./gridKeys";
 import type { GridColumn, GridModel } from "./gridModel";
 import { GridLegend } from "./GridLegend";
@@ -41,6 +42,10 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
   const [run, refusal] = useRefusal();
   const result = resultOf(view.results, block.id, "data");
   const { edits } = view;
+  const isMade = block.stack !== undefined || block.join !== undefined;
+  // A third of the page has no room for a table; what is folded is each person's own choice.
+  const [folded, setFolded] = useState<boolean | null>(null);
+  const isFolded = result?.table !== undefined && (folded ?? (block.width === 4 || (isMade && block.width === 6)));
   const made = edits === null ? null : tableEdits(edits, blockKey, block);
   const close = () => setAsking(null);
   const tables = view.blocks.filter((b) => b.block.kind === "data" && b.key !== blockKey).length;
@@ -55,7 +60,7 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
   };
   const without = (column: GridColumn) => result?.columns.find((c) => c.name === column.name)?.withoutSigma ?? 0;
   const itemsOf =
-    made === null || block.stack !== undefined || block.join !== undefined
+    made === null || isMade
       ? undefined
       : (column: GridColumn) =>
           columnItems(block, column, {
@@ -70,29 +75,46 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
         made === null ? (
           <p className="py-2 text-second">This table is empty.</p>
         ) : (
-          <EmptyTable tables={tables} onFile={(bytes, fileName) => setAsking({ what: "import", bytes, fileName, kept: false })} onColumns={(columns) => run(() => made.startTyped(columns))} onStack={() => setAsking({ what: "stack" })} />
+          <EmptyTable
+            tables={tables}
+            onFile={(bytes, fileName) => setAsking({ what: "import", bytes, fileName, kept: false })}
+            onColumns={(columns) => run(() => made.startTyped(columns))}
+            onStack={() => setAsking({ what: "stack" })}
+          />
         )
       ) : loading && result === undefined ? (
         <p className="py-2 text-second">Reading {block.source?.file ?? "the source"}.</p>
       ) : block.typed !== undefined || result?.table !== undefined ? (
         <>
-          <DataGrid
-            block={block}
-            blockKey={blockKey}
-            result={result}
-            view={view}
-            spare={made !== null && block.typed !== undefined && block.typed.length < 2000 ? 1 : 0}
-            onActive={(place, model) => setActive(place === null ? null : { place, model })}
-            itemsOf={itemsOf}
-            onOpen={(place, model) => {
-              const target = made === null ? undefined : targetAt(block, model, place);
-              if (block.source !== undefined && target?.column !== undefined) setAsking({ what: "amend", target });
-            }}
-            onType={made === null || block.typed === undefined ? undefined : (place, model, text) => made.typeCell(place.row, model.columns[place.column]?.name ?? "", text)}
-            onPasteTable={made === null || block.typed === undefined ? undefined : (place, model, text) => run(() => made.pasteCells(place, model, text))}
-            onDelete={made === null || block.typed === undefined ? undefined : (place, model) => run(() => made.clearCell(place.row, model.columns[place.column]?.name ?? ""))}
-          />
-          {active === null ? null : (
+          {isFolded && result?.table !== undefined ? (
+            <FoldedTable table={result.table} view={view} byClass={isMade} />
+          ) : (
+            <DataGrid
+              block={block}
+              blockKey={blockKey}
+              result={result}
+              view={view}
+              spare={made !== null && block.typed !== undefined && block.typed.length < 2000 ? 1 : 0}
+              onActive={(place, model) => setActive(place === null ? null : { place, model })}
+              itemsOf={itemsOf}
+              onOpen={(place, model) => {
+                const target = made === null ? undefined : targetAt(block, model, place);
+                if (block.source !== undefined && target?.column !== undefined) setAsking({ what: "amend", target });
+              }}
+              onType={
+                made === null || block.typed === undefined
+                  ? undefined
+                  : (place, model, text) => made.typeCell(place.row, model.columns[place.column]?.name ?? "", text)
+              }
+              onPasteTable={made === null || block.typed === undefined ? undefined : (place, model, text) => run(() => made.pasteCells(place, model, text))}
+              onDelete={
+                made === null || block.typed === undefined
+                  ? undefined
+                  : (place, model) => run(() => made.clearCell(place.row, model.columns[place.column]?.name ?? ""))
+              }
+            />
+          )}
+          {active === null || isFolded ? null : (
             <CellActions
               block={block}
               model={active.model}
@@ -104,7 +126,8 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
               onDelete={made === null || block.typed === undefined ? undefined : (place) => run(() => made.deleteRow(place.row))}
             />
           )}
-          <GridLegend block={block} result={result}>
+          <GridLegend block={block} result={result} short={isFolded}>
+            {result?.table === undefined ? null : <Button onClick={() => setFolded(!isFolded)}>{isFolded ? "Unfold the table" : "Fold to its heads"}</Button>}
             {made === null ? null : (
               <>
                 {block.source?.sha256 === undefined ? null : <Button onClick={() => void remap()}>How it is read</Button>}

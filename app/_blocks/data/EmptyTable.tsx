@@ -29,7 +29,10 @@ export function EmptyTable({ onFile, onColumns, onStack, tables }: EmptyTablePro
   const take = async (chosen: File | undefined) => {
     if (chosen === undefined) return;
     if (chosen.size === 0) return setRefused(`${chosen.name} is empty. Choose a file with a header and rows.`);
-    if (chosen.size > MOST_BYTES) return setRefused(`${chosen.name} has ${Math.round(chosen.size / 1048576)} MiB; a source holds at most 50 MiB. Leave out columns that are not needed, or part it into several tables and stack them.`);
+    if (chosen.size > MOST_BYTES)
+      return setRefused(
+        `${chosen.name} has ${Math.round(chosen.size / 1048576)} MiB; a source holds at most 50 MiB. Leave out columns that are not needed, or part it into several tables and stack them.`,
+      );
     setRefused(null);
     try {
       onFile(new Uint8Array(await chosen.arrayBuffer()), chosen.name);
@@ -85,7 +88,15 @@ export function EmptyTable({ onFile, onColumns, onStack, tables }: EmptyTablePro
           <span className="text-second">{tables === 0 ? "other tables: there are none on this page yet" : "other tables of this page into one"}</span>
         </li>
       </ul>
-      <input ref={file} type="file" accept=".csv,.tsv,.txt,text/csv,text/tab-separated-values,text/plain" className="sr-only" aria-label="Choose a table to upload" tabIndex={-1} onChange={(event) => void take(event.target.files?.[0])} />
+      <input
+        ref={file}
+        type="file"
+        accept=".csv,.tsv,.txt,text/csv,text/tab-separated-values,text/plain"
+        className="sr-only"
+        aria-label="Choose a table to upload"
+        tabIndex={-1}
+        onChange={(event) => void take(event.target.files?.[0])}
+      />
       {way === "paste" ? (
         <form
           className="mt-4"
@@ -111,7 +122,15 @@ export function EmptyTable({ onFile, onColumns, onStack, tables }: EmptyTablePro
             onColumns(columns);
           }}
         >
-          <TextArea label="Columns, parted by commas, units in brackets" mono rows={2} value={heads} autoFocus onText={setHeads} hint="An uncertainty can be typed with its value, 45.0 ± 0.4 or 45.0(4), below detection as <0.05." />
+          <TextArea
+            label="Columns, parted by commas, units in brackets"
+            mono
+            rows={2}
+            value={heads}
+            autoFocus
+            onText={setHeads}
+            hint="An uncertainty can be typed with its value, 45.0 ± 0.4 or 45.0(4), below detection as <0.05."
+          />
           <Button type="submit" look="main" className="mt-2">
             Start the table
           </Button>

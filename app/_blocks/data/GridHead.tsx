@@ -41,15 +41,30 @@ export function GridHead({ model, view, totals, picked, itemsOf }: GridHeadProps
         const { quantity } = column;
         const words = column.role !== "quantity" && column.role !== "uncertainty";
         return (
-          <div key={column.name} role="columnheader" aria-colindex={i + 1} className={classNames("min-w-0 pt-1 pb-1", words ? "text-left" : "pr-2 text-right", column.role === "sample" && "sticky left-0 z-[2] bg-paper pl-2")}>
+          <div
+            key={column.name}
+            role="columnheader"
+            aria-colindex={i + 1}
+            className={classNames(
+              "min-w-0 pt-1 pb-1",
+              words ? "text-left" : "pr-2 text-right",
+              column.role === "sample" && "sticky left-0 z-[2] bg-paper pl-2",
+            )}
+          >
             <div className="truncate">
               <Name column={column} items={itemsOf?.(column)} />
             </div>
-            <div className="truncate text-[12px] leading-4 text-second">{quantity !== undefined ? unitWords(quantity) : column.role === "uncertainty" ? "σ" : "\u00a0"}</div>
-            <div className="h-7 py-1 pl-4">
-              {quantity !== undefined && table !== undefined ? <TickStrip values={quantity.value} hide={table.setAside} classOf={classOf} picked={picked} label={`${column.name}: one tick a sample`} /> : null}
+            <div className="truncate text-[12px] leading-4 text-second">
+              {quantity !== undefined ? unitWords(quantity) : column.role === "uncertainty" ? "σ" : "\u00a0"}
             </div>
-            <div className="truncate text-axis text-second">{quantity !== undefined && table !== undefined ? columnCounts(quantity, table.setAside) : i === firstWords ? "in use, not in use" : "\u00a0"}</div>
+            <div className="h-7 py-1 pl-4">
+              {quantity !== undefined && table !== undefined ? (
+                <TickStrip values={quantity.value} hide={table.setAside} classOf={classOf} picked={picked} label={`${column.name}: one tick a sample`} />
+              ) : null}
+            </div>
+            <div className={classNames("text-axis whitespace-nowrap text-second", words ? "" : "truncate")}>
+              {quantity !== undefined && table !== undefined ? columnCounts(quantity, table.setAside) : i === firstWords ? "in use, not in use" : "\u00a0"}
+            </div>
           </div>
         );
       })}

@@ -15,8 +15,16 @@ const kinds = new Map([
   ["95 % interval", "source gives 95 % intervals, divided by 1.96 on reading"],
 ]);
 
+export interface GridLegendProps {
+  readonly block: DataBlock;
+  readonly result: DataResult | undefined;
+  /** The table is folded: signs of cells need no words. */
+  readonly short: boolean;
+  readonly children: ReactNode;
+}
+
 /** Under a table: only those signs that occur in it, each in words, and what can be done to the table as a whole. */
-export function GridLegend({ block, result, children }: { readonly block: DataBlock; readonly result: DataResult | undefined; readonly children: ReactNode }) {
+export function GridLegend({ block, result, short, children }: GridLegendProps) {
   const columns = result?.columns ?? [];
   const has = (count: (c: (typeof columns)[number]) => number) => columns.some((c) => count(c) > 0);
   const said = new Set((block.columns ?? []).flatMap((c) => (c.role === "uncertainty" && c.as !== undefined ? [kinds.get(c.as) ?? ""] : [])));
@@ -31,7 +39,7 @@ export function GridLegend({ block, result, children }: { readonly block: DataBl
   ].filter((sign): sign is string => typeof sign === "string" && sign !== "");
   return (
     <div className="flex flex-wrap gap-x-6 pt-2 text-margin text-second">
-      {signs.map((sign) => (
+      {(short ? [] : signs).map((sign) => (
         <span key={sign}>{sign}</span>
       ))}
       <span className="chrome flex flex-wrap gap-x-5">{children}</span>

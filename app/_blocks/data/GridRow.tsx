@@ -72,7 +72,14 @@ function Words({ cell }: { readonly cell: DrawnCell }) {
 /** A row of a table; drawn again only when something in it changed. */
 export const GridRow = memo(function GridRow({ id, index, top, cells, picked, aside, active, field, others }: GridRowProps) {
   return (
-    <div role="row" aria-rowindex={index + 2} aria-selected={picked} data-row={index} className={classNames("grid-row", aside && "grid-row-aside")} style={{ top }}>
+    <div
+      role="row"
+      aria-rowindex={index + 2}
+      aria-selected={picked}
+      data-row={index}
+      className={classNames("grid-row", aside && "grid-row-aside")}
+      style={{ top }}
+    >
       {cells.map((cell, c) => (
         <div
           key={cell.name}
@@ -80,7 +87,12 @@ export const GridRow = memo(function GridRow({ id, index, top, cells, picked, as
           role="gridcell"
           aria-colindex={c + 1}
           data-column={c}
-          className={classNames("grid-cell", cell.look === "sample" && "grid-cell-sample", (cell.look === "class" || cell.look === "words") && "grid-cell-words", c === active && "grid-cell-active")}
+          className={classNames(
+            "grid-cell",
+            cell.look === "sample" && "grid-cell-sample",
+            (cell.look === "class" || cell.look === "words") && "grid-cell-words",
+            c === active && "grid-cell-active",
+          )}
         >
           {c === active && field !== null ? field : cell.look === "figure" ? <Figure cell={cell} /> : <Words cell={cell} />}
           {cell.look === "sample" && others.length > 0 ? (

@@ -44,7 +44,20 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
         </div>
       </th>
       <td className="w-36 py-1 pr-4">
-        <Select aria-label={`Role of ${header}`} value={column.role} options={roleOptions} onChoose={(role) => set(inRole(column, role, names.filter((n) => n !== columnName(column))))} />
+        <Select
+          aria-label={`Role of ${header}`}
+          value={column.role}
+          options={roleOptions}
+          onChoose={(role) =>
+            set(
+              inRole(
+                column,
+                role,
+                names.filter((n) => n !== columnName(column)),
+              ),
+            )
+          }
+        />
       </td>
       <td className="py-1 pr-4">
         {column.role === "quantity" ? (
@@ -80,7 +93,10 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
               aria-label={`${header} is the uncertainty of`}
               mono
               value={of}
-              options={[...(names.includes(of) ? [] : [{ value: of, label: of === "" ? "choose" : `${of} (gone)` }]), ...names.map((name) => ({ value: name, label: name }))]}
+              options={[
+                ...(names.includes(of) ? [] : [{ value: of, label: of === "" ? "choose" : `${of} (gone)` }]),
+                ...names.map((name) => ({ value: name, label: name })),
+              ]}
               onChoose={(next) => set({ ...column, of: next })}
             />
             <Select aria-label={`${header} is given as`} value={column.as ?? "1 sigma"} options={kindOptions} onChoose={(as) => set({ ...column, as })} />
@@ -88,7 +104,13 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
         ) : null}
       </td>
       <td className="w-24 py-1 pr-4">
-        <input aria-label={`Name of ${header} in formulas`} className={`${controlLook} font-mono text-cell`} maxLength={80} value={columnName(column)} onChange={(event) => set({ ...column, name: event.target.value })} />
+        <input
+          aria-label={`Name of ${header} in formulas`}
+          className={`${controlLook} font-mono text-cell`}
+          maxLength={80}
+          value={columnName(column)}
+          onChange={(event) => set({ ...column, name: event.target.value })}
+        />
       </td>
       <td className={`py-1.5 text-margin ${problem === null ? "text-second" : "text-vermilion"}`}>{problem ?? reason}</td>
     </tr>

@@ -93,7 +93,11 @@ export function PreviewTable({ preview, problems, rows }: PreviewTableProps) {
               </tbody>
             </table>
           </div>
-          {rows > table.rows ? <p className="mt-1 text-margin text-second">The first {table.rows} of {counted(rows, "row")}; all of them are saved.</p> : null}
+          {rows > table.rows ? (
+            <p className="mt-1 text-margin text-second">
+              The first {table.rows} of {counted(rows, "row")}; all of them are saved.
+            </p>
+          ) : null}
         </>
       )}
     </section>

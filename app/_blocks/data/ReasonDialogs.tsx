@@ -103,7 +103,15 @@ export function AmendDialog({ sample, column, was, now, onAmend, onClose }: Amen
       onAct={(reason) => (value.trim() === was.trim() ? "This is what the source says already. Write the value it should be." : onAmend(value.trim(), reason))}
       onClose={onClose}
     >
-      <TextField label="Value" mono value={value} onText={setValue} maxLength={2000} autoFocus hint="As a table would have it: 24.1, 24.1 ± 0.2, <0.05, or nothing." />
+      <TextField
+        label="Value"
+        mono
+        value={value}
+        onText={setValue}
+        maxLength={2000}
+        autoFocus
+        hint="As a table would have it: 24.1, 24.1 ± 0.2, <0.05, or nothing."
+      />
     </ReasonForm>
   );
 }
@@ -120,7 +128,11 @@ export function SetAsideDialog({ what, whole, onSetAside, onClose }: SetAsideDia
   return (
     <ReasonForm
       title={`Set aside ${what}`}
-      says={whole ? "The sample stays in the table and leaves every calculation. It is counted wherever it is missing." : "The value stays in the table and leaves every calculation; the rest of the sample stays in use."}
+      says={
+        whole
+          ? "The sample stays in the table and leaves every calculation. It is counted wherever it is missing."
+          : "The value stays in the table and leaves every calculation; the rest of the sample stays in use."
+      }
       act="Set aside"
       onAct={onSetAside}
       onClose={onClose}

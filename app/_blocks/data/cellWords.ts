@@ -36,9 +36,18 @@ export function writeCell(column: QuantityColumn, index: number, form: Uncertain
   if (state === State.missing || state === undefined) return { ...empty, was };
   const value = column.value[index] ?? NaN;
   if (!Number.isFinite(value)) {
-    const text = written.trim() === "" ? "–" : written.trim();
+    // The engine gives no number for what is set aside; the text itself is shown, parted where a σ begins.
+    const [, text = "–", sigma = ""] = /^\s*(.+?)\s*(\([\d.]+\)|±.*)?\s*$/.exec(written) ?? [];
     const aside = state === State.setAside && !wholeRow;
-    return { was, value: text, sigma: "", mark: "", aside, absent: false, spoken: `${text}, ${state === State.outOfDomain ? "out of domain" : "set aside"}` };
+    return {
+      was,
+      value: text,
+      sigma,
+      mark: "",
+      aside,
+      absent: false,
+      spoken: `${text}${sigma}, ${state === State.outOfDomain ? "out of domain" : "set aside"}`,
+    };
   }
   const sigma = column.sigma[index] ?? NaN;
   const shown = fromCanonical(value, column.unit);
@@ -77,7 +86,9 @@ export function columnCounts(column: QuantityColumn, setAside: Uint8Array): stri
     else if (state === State.setAside) aside++;
     else outside++;
   }
-  return [String(n), aside > 0 && `${aside} [ ]`, missing > 0 && `${missing} –`, below > 0 && `${below} <`, outside > 0 && `${outside} ∅`].filter(Boolean).join(", ");
+  return [String(n), aside > 0 && `${aside} [ ]`, missing > 0 && `${missing} –`, below > 0 && `${below} <`, outside > 0 && `${outside} ∅`]
+    .filter(Boolean)
+    .join(", ");
 }
 
 /** The line under a column's name: "wt%, 1σ", "ng/g, 1σ°", "wt%, no σ". */

@@ -33,10 +33,19 @@ export function columnName(column: Column): string {
 
 /** The column in another role, with only what that role has. */
 export function inRole(column: Column, role: Role, quantities: readonly string[]): Column {
-  const common: Column = { role, ...(column.header === undefined ? {} : { header: column.header }), ...(column.position === undefined ? {} : { position: column.position }), ...(column.name === undefined ? {} : { name: column.name }) };
+  const common: Column = {
+    role,
+    ...(column.header === undefined ? {} : { header: column.header }),
+    ...(column.position === undefined ? {} : { position: column.position }),
+    ...(column.name === undefined ? {} : { name: column.name }),
+  };
   if (role === "quantity") {
     const name = columnName(column);
-    return { ...common, ...(column.species === undefined ? (parseSpecies(name) === undefined ? {} : { species: name }) : { species: column.species }), unit: column.unit ?? "wt%" };
+    return {
+      ...common,
+      ...(column.species === undefined ? (parseSpecies(name) === undefined ? {} : { species: name }) : { species: column.species }),
+      unit: column.unit ?? "wt%",
+    };
   }
   if (role === "uncertainty") return { ...common, of: column.of ?? quantities[0] ?? "", as: column.as ?? "1 sigma" };
   return common;
@@ -54,7 +63,8 @@ export function columnsFromText(text: string): Column[] {
     if (/^(sample|name|id|specimen)s?$/.test(plain)) columns.push({ name, role: "sample" });
     else if (/^(class|group|type|rock)$/.test(plain)) columns.push({ name, role: "class" });
     else if (/^(reference|ref|doi|citation)$/.test(plain)) columns.push({ name, role: "reference" });
-    else if (unit !== undefined || parseSpecies(name) !== undefined) columns.push({ name, role: "quantity", ...(parseSpecies(name) === undefined ? {} : { species: name }), unit: unit ?? "wt%" });
+    else if (unit !== undefined || parseSpecies(name) !== undefined)
+      columns.push({ name, role: "quantity", ...(parseSpecies(name) === undefined ? {} : { species: name }), unit: unit ?? "wt%" });
     else columns.push({ name, role: "text" });
   }
   return columns;

@@ -12,7 +12,12 @@ export const PAGE_ROWS = 16;
  *
  * @returns undefined for keys that do not move
  */
-export function movedBy(event: { readonly key: string; readonly ctrlKey: boolean; readonly metaKey: boolean }, at: CellPlace, rows: number, columns: number): CellPlace | undefined {
+export function movedBy(
+  event: { readonly key: string; readonly ctrlKey: boolean; readonly metaKey: boolean },
+  at: CellPlace,
+  rows: number,
+  columns: number,
+): CellPlace | undefined {
   const all = event.ctrlKey || event.metaKey;
   const row = (r: number) => Math.max(0, Math.min(rows - 1, r));
   const column = (c: number) => Math.max(0, Math.min(columns - 1, c));

@@ -32,7 +32,7 @@ function textWidth(texts: readonly string[], least: number): number {
 }
 
 function quantityWidth(column: QuantityColumn, form: UncertaintyForm): number {
-  const base = form === "plus-minus" ? 124 : 96;
+  const base = form === "plus-minus" ? 124 : 88;
   return column.amended.includes(1) ? base + 44 : base;
 }
 
@@ -52,7 +52,13 @@ function fromDocument(block: DataBlock, table: Table | undefined): GridColumn[] 
   return (block.columns ?? []).map((column): GridColumn => {
     const name = column.name ?? column.header ?? "";
     const made = table?.columns.find((c) => c.name === name);
-    const width = column.role === "quantity" || column.role === "uncertainty" ? 104 : 112;
+    const width =
+      column.role === "quantity" || column.role === "uncertainty"
+        ? 92
+        : textWidth(
+            (block.typed ?? []).map((row) => row.cells[name] ?? ""),
+            76,
+          );
     return { name, role: column.role, width, quantity: made?.kind === "quantity" ? made : undefined, text: undefined };
   });
 }
@@ -79,13 +85,21 @@ export function plainText(block: DataBlock, model: GridModel, column: GridColumn
 }
 
 /** A quantity's cell; undefined where the engine has not read the present text yet, and the text itself is to be shown. */
-export function quantityCell(block: DataBlock, model: GridModel, column: GridColumn, index: number, form: UncertaintyForm, amended: ReadonlyMap<string, string>): WrittenCell | undefined {
+export function quantityCell(
+  block: DataBlock,
+  model: GridModel,
+  column: GridColumn,
+  index: number,
+  form: UncertaintyForm,
+  amended: ReadonlyMap<string, string>,
+): WrittenCell | undefined {
   const { quantity } = column;
   const { table } = model;
   if (quantity === undefined || table === undefined) return undefined;
   const row = model.rowIds[index];
+  if (row === undefined) return undefined;
   if (model.typed && (table.rowIds[index] !== row || (quantity.raw[index] ?? "") !== plainText(block, model, column, index))) return undefined;
-  return writeCell(quantity, index, form, amended.get(`${row ?? ""}/${column.name}`) ?? amended.get(`${row ?? ""}/${quantity.header ?? ""}`), table.setAside[index] === 1);
+  return writeCell(quantity, index, form, amended.get(`${row}/${column.name}`) ?? amended.get(`${row}/${quantity.header ?? ""}`), table.setAside[index] === 1);
 }
 
 const OXIDE = /^[A-Z][a-z]?\d?O\d?t?$/;
@@ -96,13 +110,16 @@ const OXIDE = /^[A-Z][a-z]?\d?O\d?t?$/;
  */
 export function rowTotals(table: Table | undefined): Float64Array | null {
   if (table === undefined) return null;
-  const oxides = table.columns.filter((c): c is QuantityColumn => c.kind === "quantity" && c.species !== undefined && OXIDE.test(c.species) && c.unit.dimension === "mass fraction");
+  const oxides = table.columns.filter(
+    (c): c is QuantityColumn => c.kind === "quantity" && c.species !== undefined && OXIDE.test(c.species) && c.unit.dimension === "mass fraction",
+  );
   const has = (species: string) => oxides.some((c) => c.species === species);
   if (!has("SiO2") || !has("MgO") || oxides.length < 5) return null;
   const ironTotal = oxides.find((c) => c.species === "FeOt" || c.species === "Fe2O3t")?.species;
   const counted = oxides.filter((c) => !/^Fe/.test(c.species ?? "") || ironTotal === undefined || c.species === ironTotal);
   const totals = new Float64Array(table.rows);
-  for (const column of counted) for (let i = 0; i < table.rows; i++) totals[i] = (totals[i] ?? 0) + (Number.isFinite(column.value[i] ?? NaN) ? (column.value[i] ?? 0) : 0);
+  for (const column of counted)
+    for (let i = 0; i < table.rows; i++) totals[i] = (totals[i] ?? 0) + (Number.isFinite(column.value[i] ?? NaN) ? (column.value[i] ?? 0) : 0);
   const perUnit = units["wt%"].per;
   for (let i = 0; i < table.rows; i++) {
     const complete = counted.some((c) => c.species === "SiO2" && Number.isFinite(c.value[i] ?? NaN));

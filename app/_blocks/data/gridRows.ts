@@ -6,10 +6,24 @@ import { footnotesOf, lettersByPlace, TOTAL_COLUMN } from "@/app/_page/margin/fo
 import { amendedTexts, plainText, quantityCell, type GridColumn, type GridModel } from "./gridModel";
 import type { DrawnCell } from "./GridRow";
 
-const looks: Record<GridColumn["role"], DrawnCell["look"]> = { sample: "sample", class: "class", text: "words", reference: "words", quantity: "figure", uncertainty: "figure" };
+const looks: Record<GridColumn["role"], DrawnCell["look"]> = {
+  sample: "sample",
+  class: "class",
+  text: "words",
+  reference: "words",
+  quantity: "figure",
+  uncertainty: "figure",
+};
 
 /** Makes the rows of a grid as they are drawn, and remembers them, as scrolling asks for the same row again and again. */
-export function rowDrawer(block: DataBlock, result: DataResult | undefined, model: GridModel, totals: Float64Array | null, form: UncertaintyForm, classIndex: (name: string) => number): (index: number) => readonly DrawnCell[] {
+export function rowDrawer(
+  block: DataBlock,
+  result: DataResult | undefined,
+  model: GridModel,
+  totals: Float64Array | null,
+  form: UncertaintyForm,
+  classIndex: (name: string) => number,
+): (index: number) => readonly DrawnCell[] {
   const amended = amendedTexts(block);
   const letters = lettersByPlace(footnotesOf(block, result));
   const flagged = new Set((result?.screening ?? []).map((f) => `${f.row}/${f.code === "total" ? TOTAL_COLUMN : (f.column ?? "")}`));

@@ -12,7 +12,9 @@ export interface Mapping {
 export function proposedMapping(proposal: FileProposal, known?: readonly Column[]): Mapping {
   if (known === undefined || known.length === 0) return { columns: proposal.columns.map((c) => c.column), reasons: proposal.columns.map((c) => c.reason) };
   // A mapping that was saved before stands for the columns it names; new ones get the proposal's.
-  const columns = proposal.columns.map(({ column }, i) => known.find((k) => k.header === column.header && (k.position === undefined || k.position === i + 1)) ?? column);
+  const columns = proposal.columns.map(
+    ({ column }, i) => known.find((k) => k.header === column.header && (k.position === undefined || k.position === i + 1)) ?? column,
+  );
   return { columns, reasons: columns.map((c, i) => (known.includes(c) ? "as it was saved" : (proposal.columns[i]?.reason ?? ""))) };
 }
 
@@ -41,9 +43,11 @@ export function columnFault(columns: readonly Column[], index: number): string |
   if (columns.some((c, i) => i < index && columnName(c) === name)) return `Two columns are called ${name}. Give one of them another name.`;
   if (column.role === "quantity") {
     if (column.unit !== undefined && parseUnit(column.unit) === undefined) return `The unit ${column.unit} is not known. Choose one from the list.`;
-    if (column.species !== undefined && parseSpecies(column.species) === undefined) return `${column.species} is no species known here. Write it as SiO2, Mg or FeOt, or leave it empty.`;
+    if (column.species !== undefined && parseSpecies(column.species) === undefined)
+      return `${column.species} is no species known here. Write it as SiO2, Mg or FeOt, or leave it empty.`;
   }
-  if (column.role === "uncertainty" && !quantityNames(columns).includes(column.of ?? "")) return "Choose the quantity this is the uncertainty of, or take the column as text.";
+  if (column.role === "uncertainty" && !quantityNames(columns).includes(column.of ?? ""))
+    return "Choose the quantity this is the uncertainty of, or take the column as text.";
   return null;
 }
 

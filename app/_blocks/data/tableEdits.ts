@@ -79,7 +79,8 @@ export function tableEdits(edits: PageEdits, key: string, block: DataBlock): Tab
     },
     pasteCells(at, model, text) {
       const cells = clipboardCells(text);
-      if (at.row + cells.length > MOST_TYPED) throw new Error(`A typed table holds at most 2,000 rows; this would make ${at.row + cells.length}. Upload it as a file instead.`);
+      if (at.row + cells.length > MOST_TYPED)
+        throw new Error(`A typed table holds at most 2,000 rows; this would make ${at.row + cells.length}. Upload it as a file instead.`);
       const rows = cells.map((line, r) => {
         let row = rowAt(at.row + r);
         line.forEach((cell, c) => {
@@ -98,9 +99,15 @@ export function tableEdits(edits: PageEdits, key: string, block: DataBlock): Tab
       const row = block.typed?.[index];
       if (row !== undefined) edits.removeEntry(key, "typed", row);
     },
-    amend: (target, value, reason) => void edits.putEntry(key, "amendments", { row: target.row, sample: sampleOf(target), column: named(target), was: target.raw, value, reason }),
+    amend: (target, value, reason) =>
+      void edits.putEntry(key, "amendments", { row: target.row, sample: sampleOf(target), column: named(target), was: target.raw, value, reason }),
     setAside: (target, whole, reason) =>
-      void edits.putEntry(key, "setAside", { row: target.row, ...(sampleOf(target) === "" ? {} : { sample: sampleOf(target) }), ...(whole ? {} : { column: named(target) }), reason }),
+      void edits.putEntry(key, "setAside", {
+        row: target.row,
+        ...(sampleOf(target) === "" ? {} : { sample: sampleOf(target) }),
+        ...(whole ? {} : { column: named(target) }),
+        reason,
+      }),
     assume: (column, assumed, reason) => void edits.putEntry(key, "assumed", { column, ...assumed, reason }),
     undo: (list, entry) => edits.removeEntry(key, list, entry),
   };

@@ -14,14 +14,21 @@ export function BinDialog({ onClose }: { readonly onClose: () => void }) {
   const people = usePage((s) => s.people);
   const latest = [...bin].sort((a, b) => (b.binned?.at ?? "").localeCompare(a.binned?.at ?? ""));
   return (
-    <Dialog open onClose={onClose} title="The page's bin" says={bin.length === 0 ? "The bin is empty." : "A block comes back whole, where it stood: its text, amendments and reasons with it."}>
+    <Dialog
+      open
+      onClose={onClose}
+      title="The page's bin"
+      says={bin.length === 0 ? "The bin is empty." : "A block comes back whole, where it stood: its text, amendments and reasons with it."}
+    >
       <ul>
         {latest.map(({ key, block, binned }) => (
           <li key={key} className="flex items-center gap-3 border-b border-hairline py-2">
             <KindSwatch kind={block.kind} />
             <span className="font-medium">{block.name ?? kindWords[block.kind].title}</span>
             <span className="font-mono text-[12px] text-second">{block.id}</span>
-            <span className="flex-1 text-margin text-second">{binned === undefined ? "" : [people[binned.by] ?? "", `${dayOf(binned.at)}, ${clockTime(new Date(binned.at))}`].filter(Boolean).join(", ")}</span>
+            <span className="flex-1 text-margin text-second">
+              {binned === undefined ? "" : [people[binned.by] ?? "", `${dayOf(binned.at)}, ${clockTime(new Date(binned.at))}`].filter(Boolean).join(", ")}
+            </span>
             {edits === null ? null : (
               <Button onClick={() => edits.restoreBlock(key)} aria-label={`Bring ${block.name ?? block.id} back`}>
                 Bring back

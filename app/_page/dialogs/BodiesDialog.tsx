@@ -57,16 +57,38 @@ export function BodiesDialog({ onClose }: { readonly onClose: () => void }) {
       <ul className="flex flex-col gap-2">
         {rows.map((row, i) => (
           <li key={i} className="grid grid-cols-[88px_auto_1fr_auto] items-center gap-3">
-            <input aria-label={`Name ${i + 1}`} className={`${controlLook} font-mono`} value={row.alias} maxLength={40} onChange={(event) => set(i, { alias: event.target.value })} />
+            <input
+              aria-label={`Name ${i + 1}`}
+              className={`${controlLook} font-mono`}
+              value={row.alias}
+              maxLength={40}
+              onChange={(event) => set(i, { alias: event.target.value })}
+            />
             <span className="text-second">is</span>
-            <Select aria-label={`Compilation that ${row.alias} means`} value={row.id} options={known.some((k) => k.value === row.id) ? known : [{ value: row.id, label: `${row.id} (not known)` }, ...known]} onChoose={(id) => set(i, { id })} />
+            <Select
+              aria-label={`Compilation that ${row.alias} means`}
+              value={row.id}
+              options={known.some((k) => k.value === row.id) ? known : [{ value: row.id, label: `${row.id} (not known)` }, ...known]}
+              onChoose={(id) => set(i, { id })}
+            />
             <Button look="quiet" aria-label={`Take ${row.alias} off the page`} onClick={() => setRows((old) => old.filter((_, j) => j !== i))}>
               Take off
             </Button>
           </li>
         ))}
       </ul>
-      <Button className="mt-3" onClick={() => setRows((old) => [...old, { alias: old.some((r) => r.alias === "CI") ? (old.some((r) => r.alias === "BSE") ? "" : "BSE") : "CI", id: old.some((r) => r.alias === "CI") ? "BSE_MS95" : "CI_PLJ14" }])}>
+      <Button
+        className="mt-3"
+        onClick={() =>
+          setRows((old) => [
+            ...old,
+            {
+              alias: old.some((r) => r.alias === "CI") ? (old.some((r) => r.alias === "BSE") ? "" : "BSE") : "CI",
+              id: old.some((r) => r.alias === "CI") ? "BSE_MS95" : "CI_PLJ14",
+            },
+          ])
+        }
+      >
         Add a body
       </Button>
       {fault === null ? null : (

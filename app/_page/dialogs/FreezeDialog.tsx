@@ -114,9 +114,20 @@ export function FreezeDialog({ pageId, stateVector, onClose, onFrozen, onReading
       }
     >
       {busy ? <Progress label="Calculating everything anew and hashing it" done={null} /> : null}
-      {problems > 0 ? <p className="mb-3 text-vermilion">{problems === 1 ? "One problem is" : `${problems} problems are`} still open on this page; the snapshot will show {problems === 1 ? "it" : "them"}.</p> : null}
+      {problems > 0 ? (
+        <p className="mb-3 text-vermilion">
+          {problems === 1 ? "One problem is" : `${problems} problems are`} still open on this page; the snapshot will show {problems === 1 ? "it" : "them"}.
+        </p>
+      ) : null}
       {waiting ? <p className="mb-3 text-second">Some edits are still on their way to the database. The snapshot waits for what you see here.</p> : null}
-      <TextArea label="What this snapshot is for" value={note} maxLength={2000} autoFocus onText={setNote} hint="For instance: as submitted, table 2 and figure 3. Left empty, nothing is said." />
+      <TextArea
+        label="What this snapshot is for"
+        value={note}
+        maxLength={2000}
+        autoFocus
+        onText={setNote}
+        hint="For instance: as submitted, table 2 and figure 3. Left empty, nothing is said."
+      />
       {fault === null ? null : (
         <p role="alert" className="mt-3 text-vermilion">
           {fault}

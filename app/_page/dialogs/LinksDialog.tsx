@@ -98,7 +98,12 @@ export function LinksDialog({ pageId, snapshot, onClose }: LinksDialogProps) {
     }
   };
   return (
-    <Dialog open onClose={onClose} title="Reading links" says="A guest with the link reads without an account and changes nothing. Guests see neither each other nor you, and you do not see them.">
+    <Dialog
+      open
+      onClose={onClose}
+      title="Reading links"
+      says="A guest with the link reads without an account and changes nothing. Guests see neither each other nor you, and you do not see them."
+    >
       <form
         className="grid grid-cols-[1fr_1fr] gap-4"
         onSubmit={(event) => {
@@ -109,12 +114,22 @@ export function LinksDialog({ pageId, snapshot, onClose }: LinksDialogProps) {
         <Select
           label="Opens"
           value={to}
-          options={[...(snapshot === null ? [] : [{ value: "snapshot" as const, label: `snapshot ${snapshot.number}` }]), { value: "page" as const, label: "the live page, as it changes" }]}
+          options={[
+            ...(snapshot === null ? [] : [{ value: "snapshot" as const, label: `snapshot ${snapshot.number}` }]),
+            { value: "page" as const, label: "the live page, as it changes" },
+          ]}
           onChoose={setTo}
           hint={snapshot === null ? "Freeze the page first to hand out a snapshot." : undefined}
         />
         <Select label="Good for" value={days} options={lengths} onChoose={setDays} />
-        <TextField label="For whom, as a note to yourselves" value={label} maxLength={120} onText={setLabel} placeholder="referee 2" fieldClassName="col-span-2" />
+        <TextField
+          label="For whom, as a note to yourselves"
+          value={label}
+          maxLength={120}
+          onText={setLabel}
+          placeholder="referee 2"
+          fieldClassName="col-span-2"
+        />
         <div className="col-span-2">
           <Button type="submit" look="main" disabled={busy}>
             Make the link
@@ -125,7 +140,13 @@ export function LinksDialog({ pageId, snapshot, onClose }: LinksDialogProps) {
         <div className="mt-4 border-t border-b border-ink py-3">
           <p className="text-margin text-second">This address is shown once and cannot be looked up again.</p>
           <div className="mt-1 flex items-baseline gap-4">
-            <input readOnly value={made} aria-label="Address of the reading link" className="min-w-0 flex-1 border-0 bg-transparent font-mono text-[12px]" onFocus={(event) => event.target.select()} />
+            <input
+              readOnly
+              value={made}
+              aria-label="Address of the reading link"
+              className="min-w-0 flex-1 border-0 bg-transparent font-mono text-[12px]"
+              onFocus={(event) => event.target.select()}
+            />
             <Button onClick={() => void copy()}>{copied ? "Copied" : "Copy"}</Button>
           </div>
         </div>
@@ -147,7 +168,13 @@ export function LinksDialog({ pageId, snapshot, onClose }: LinksDialogProps) {
               <span className="min-w-0 flex-1 truncate">
                 {link.label === "" ? "without a note" : link.label}, {opens(link)}
               </span>
-              <span className="text-margin text-second">{link.state === "withdrawn" ? "withdrawn" : link.state === "expired" ? `ended ${dayOf(link.expiresAt)}` : `until ${dayOf(link.expiresAt)}${link.lastUsedAt === null ? ", not used yet" : ""}`}</span>
+              <span className="text-margin text-second">
+                {link.state === "withdrawn"
+                  ? "withdrawn"
+                  : link.state === "expired"
+                    ? `ended ${dayOf(link.expiresAt)}`
+                    : `until ${dayOf(link.expiresAt)}${link.lastUsedAt === null ? ", not used yet" : ""}`}
+              </span>
               {link.state === "open" ? (
                 <Button look="danger" disabled={busy} aria-label={`Withdraw the link ${link.label}`} onClick={() => void withdraw(link.id)}>
                   Withdraw

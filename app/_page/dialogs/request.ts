@@ -16,7 +16,11 @@ export class RequestError extends Error {
 export async function request<T>(method: "GET" | "POST" | "DELETE", path: string, body?: unknown): Promise<T> {
   let answer: Response;
   try {
-    answer = await fetch(path, { method, credentials: "same-origin", ...(body === undefined ? {} : { headers: { "content-type": "application/json" }, body: JSON.stringify(body) }) });
+    answer = await fetch(path, {
+      method,
+      credentials: "same-origin",
+      ...(body === undefined ? {} : { headers: { "content-type": "application/json" }, body: JSON.stringify(body) }),
+    });
   } catch {
     throw new RequestError(0, "The server could not be reached. Try again when you are online.", null);
   }

@@ -39,11 +39,7 @@ export function PageHead({ page, role, open, onUncertainty, onProjector }: PageH
           { line: true },
         ] satisfies MenuItem[])),
     ...(isLead
-      ? ([
-          { label: "Freeze", onChoose: () => open("freeze") },
-          { label: "Reading links", onChoose: () => open("links") },
-          { line: true },
-        ] satisfies MenuItem[])
+      ? ([{ label: "Freeze", onChoose: () => open("freeze") }, { label: "Reading links", onChoose: () => open("links") }, { line: true }] satisfies MenuItem[])
       : []),
     { heading: "Uncertainties as" },
     { label: "1.086(12)", checked: settings.uncertainty === "concise", onChoose: onUncertainty },

@@ -22,7 +22,14 @@ export function PageTitle({ lastSnapshot, onBodies }: PageTitleProps) {
   return (
     <div className="span-12">
       <h1 className="font-serif text-title font-medium tracking-[-0.008em] phone:text-title-phone">
-        <EditableText text={title} label="Title of the page" placeholder="A page without a title" maxLength={300} className="w-full" onCommit={edits ? (next) => edits.setTitle(next) : undefined} />
+        <EditableText
+          text={title}
+          label="Title of the page"
+          placeholder="A page without a title"
+          maxLength={300}
+          className="w-full"
+          onCommit={edits ? (next) => edits.setTitle(next) : undefined}
+        />
       </h1>
       <p className="mt-2 text-second">
         {aliases.map(([alias, id], i) => (

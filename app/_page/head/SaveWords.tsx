@@ -9,7 +9,11 @@ export function SaveWords() {
   const calculating = usePage((s) => s.calculating);
   const words = save?.text ?? (mode === "read" ? "Read only" : "");
   return (
-    <span role="status" className={`max-w-[46ch] truncate phone:flex-1 phone:text-right ${save?.kind === "refused" ? "text-vermilion" : "text-second"}`} title={words}>
+    <span
+      role="status"
+      className={`max-w-[46ch] truncate phone:flex-1 phone:text-right ${save?.kind === "refused" ? "text-vermilion" : "text-second"}`}
+      title={words}
+    >
       {words}
       {calculating ? <span className="ml-3 narrow:hidden">calculating</span> : null}
     </span>

@@ -40,8 +40,13 @@ function DataNotes({ block, blockKey, named }: { readonly block: DataBlock; read
         <div key={`${note.letter} ${note.row}`} className="margin-note">
           <span className="margin-letter">{note.letter}</span>
           {named && i === 0 ? <div className="text-axis">{block.name ?? block.id}</div> : null}
-          <button type="button" className="block text-left hover:text-ink" onClick={() => view.show?.({ block: block.id, row: note.row, ...(note.column === undefined ? {} : { column: note.column }) })}>
-            <b>{kindTitles[note.kind]}</b> {note.kind === "amended" ? `${note.sample === "" ? `row ${note.row}` : note.sample}, ${note.column ?? ""}, ${note.title}` : note.title}
+          <button
+            type="button"
+            className="block text-left hover:text-ink"
+            onClick={() => view.show?.({ block: block.id, row: note.row, ...(note.column === undefined ? {} : { column: note.column }) })}
+          >
+            <b>{kindTitles[note.kind]}</b>{" "}
+            {note.kind === "amended" ? `${note.sample === "" ? `row ${note.row}` : note.sample}, ${note.column ?? ""}, ${note.title}` : note.title}
           </button>
           {sentenceOf(note, people)}
         </div>
@@ -104,7 +109,9 @@ export function MarginRow({ blocks, showsPicked }: MarginRowProps) {
   return (
     <aside className="margin" aria-label={`Notes on ${blocks.map((b) => b.block.name ?? b.block.id).join(", ")}`}>
       {traced !== null && blocks.some((b) => b.block.id === traced) ? <TraceView view={view} /> : null}
-      {blocks.map(({ key, block }) => (block.kind === "data" ? <DataNotes key={key} blockKey={key} block={block} named={tables > 1} /> : <OtherNotes key={key} block={block} />))}
+      {blocks.map(({ key, block }) =>
+        block.kind === "data" ? <DataNotes key={key} blockKey={key} block={block} named={tables > 1} /> : <OtherNotes key={key} block={block} />,
+      )}
       {showsPicked ? <Picked /> : null}
     </aside>
   );

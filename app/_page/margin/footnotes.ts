@@ -34,14 +34,29 @@ const said = ({ by, at }: Said): { by?: string; at?: string } => ({ ...(by === u
 export function footnotesOf(block: DataBlock, result: DataResult | undefined): Footnote[] {
   const notes: Omit<Footnote, "letter">[] = [];
   for (const a of block.amendments ?? [])
-    notes.push({ kind: "amended", row: a.row, sample: a.sample, column: a.column, title: `from ${a.was === "" ? "nothing" : a.was} to ${a.value === "" ? "nothing" : a.value}`, reason: a.reason, ...said(a) });
+    notes.push({
+      kind: "amended",
+      row: a.row,
+      sample: a.sample,
+      column: a.column,
+      title: `from ${a.was === "" ? "nothing" : a.was} to ${a.value === "" ? "nothing" : a.value}`,
+      reason: a.reason,
+      ...said(a),
+    });
   for (const s of block.setAside ?? []) {
     const sample = s.sample ?? `row ${s.row}`;
     if (s.column === undefined) notes.push({ kind: "set aside", row: s.row, sample, title: sample, reason: s.reason, ...said(s) });
     else notes.push({ kind: "value set aside", row: s.row, sample, column: s.column, title: `${sample}, ${s.column} only`, reason: s.reason, ...said(s) });
   }
   for (const flag of result?.screening ?? [])
-    notes.push({ kind: "screening", row: flag.row, sample: flag.sample, ...(flag.code === "total" ? { column: TOTAL_COLUMN } : flag.column === undefined ? {} : { column: flag.column }), title: flag.sample, reason: flag.text });
+    notes.push({
+      kind: "screening",
+      row: flag.row,
+      sample: flag.sample,
+      ...(flag.code === "total" ? { column: TOTAL_COLUMN } : flag.column === undefined ? {} : { column: flag.column }),
+      title: flag.sample,
+      reason: flag.text,
+    });
   return notes.map((note, i) => ({ ...note, letter: footnoteLetter(i) }));
 }
 

@@ -96,7 +96,12 @@ export function SectionRail() {
             >
               <path d={outline} fill="var(--paper)" />
               {pattern ? <path d={outline} fill={pattern} /> : null}
-              <path d={edge} fill="none" stroke={layer.problem && layer.last ? "var(--vermilion)" : "var(--ink)"} strokeWidth={layer.problem && layer.last ? 1.6 : 1} />
+              <path
+                d={edge}
+                fill="none"
+                stroke={layer.problem && layer.last ? "var(--vermilion)" : "var(--ink)"}
+                strokeWidth={layer.problem && layer.last ? 1.6 : 1}
+              />
               <path d={`M${layer.x + layer.w} ${layer.y}H${layer.x}V${layer.y + layer.h}`} fill="none" stroke="var(--ink)" />
               {layer.problem && !layer.last ? <path d={edge} fill="none" stroke="var(--vermilion)" strokeWidth={1.6} /> : null}
               {!strip && layer.place < 2 ? (
@@ -124,10 +129,17 @@ export function SectionRail() {
         {layers.length > 0 ? (
           <>
             <path d={`M${x} ${size.height - top}H${x + w}`} stroke="var(--ink)" />
-            <path d={strip ? `M4 ${from.toFixed(1)}H2V${to.toFixed(1)}h2` : `M10.5 ${from.toFixed(1)}H6.5V${to.toFixed(1)}h4`} fill="none" stroke="var(--ink)" pointerEvents="none" />
+            <path
+              d={strip ? `M4 ${from.toFixed(1)}H2V${to.toFixed(1)}h2` : `M10.5 ${from.toFixed(1)}H6.5V${to.toFixed(1)}h4`}
+              fill="none"
+              stroke="var(--ink)"
+              pointerEvents="none"
+            />
           </>
         ) : null}
-        {shownHandle !== undefined && !strip && results !== null ? <RailTies layers={layers} handle={shownHandle} readsFrom={results.readsFrom} right={x + w} /> : null}
+        {shownHandle !== undefined && !strip && results !== null ? (
+          <RailTies layers={layers} handle={shownHandle} readsFrom={results.readsFrom} right={x + w} />
+        ) : null}
       </svg>
     </nav>
   );

@@ -4,9 +4,21 @@ import { initialState } from "@/app/_page/initialState";
 import { createPageStore, type PageActions } from "@/app/_page/pageStore";
 import type { NoteResult, PageResults } from "@/cells";
 
-const actions: PageActions = { pick: () => undefined, trace: () => undefined, enter: () => undefined, undo: () => undefined, redo: () => undefined, show: () => undefined };
+const actions: PageActions = {
+  pick: () => undefined,
+  trace: () => undefined,
+  enter: () => undefined,
+  undo: () => undefined,
+  redo: () => undefined,
+  show: () => undefined,
+};
 const result = (): NoteResult => ({ kind: "note", problems: [], bodiesUsed: {}, values: [] });
-const results = (blocks: [string, NoteResult][], readsFrom: [string, string[]][] = []): PageResults => ({ engine: "1", bodies: {}, blocks: new Map(blocks), readsFrom: new Map(readsFrom) });
+const results = (blocks: [string, NoteResult][], readsFrom: [string, string[]][] = []): PageResults => ({
+  engine: "1",
+  bodies: {},
+  blocks: new Map(blocks),
+  readsFrom: new Map(readsFrom),
+});
 
 function store() {
   return createPageStore(
@@ -34,7 +46,10 @@ describe("a block's view of the page", () => {
     const viewOfB = blockViewOf(page, "b");
     const viewOfA = blockViewOf(page, "a");
     const [b, a] = [viewOfB(), viewOfA()];
-    page.set({ blocks: page.get().blocks.map((one) => (one.key === "a" ? { ...one, block: { id: "a", kind: "note" as const, text: "11" } } : one)), calculating: true });
+    page.set({
+      blocks: page.get().blocks.map((one) => (one.key === "a" ? { ...one, block: { id: "a", kind: "note" as const, text: "11" } } : one)),
+      calculating: true,
+    });
     expect(viewOfB()).toBe(b);
     expect(viewOfA()).not.toBe(a);
   });
@@ -42,12 +57,36 @@ describe("a block's view of the page", () => {
   it("is new when its own result, or that of a block it reads from, is new", () => {
     const page = store();
     const [one, two] = [result(), result()];
-    page.set({ results: results([["a", one], ["b", two]], [["b", ["a"]]]) });
+    page.set({
+      results: results(
+        [
+          ["a", one],
+          ["b", two],
+        ],
+        [["b", ["a"]]],
+      ),
+    });
     const view = blockViewOf(page, "b");
     const before = view();
-    page.set({ results: results([["a", one], ["b", two]], [["b", ["a"]]]) });
+    page.set({
+      results: results(
+        [
+          ["a", one],
+          ["b", two],
+        ],
+        [["b", ["a"]]],
+      ),
+    });
     expect(view()).toBe(before);
-    page.set({ results: results([["a", result()], ["b", two]], [["b", ["a"]]]) });
+    page.set({
+      results: results(
+        [
+          ["a", result()],
+          ["b", two],
+        ],
+        [["b", ["a"]]],
+      ),
+    });
     expect(view()).not.toBe(before);
   });
 

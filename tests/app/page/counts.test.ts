@@ -36,8 +36,18 @@ describe("what is counted on a page", () => {
       { key: "1", order: "1", block },
       { key: "2", order: "2", block: { id: "all", kind: "data" as const, stack: ["th"] } },
     ];
-    const results = { engine: "1", bodies: {}, blocks: new Map([["th", result], ["all", { ...result, problems: [] }]]), readsFrom: new Map() };
-    expect(countsInWords(countPage(blocks, results))).toBe("14 samples, 13 in use. 1 set aside, 1 value set aside, 1 amended, 3 missing, 1 below detection, 12 σ assumed. 1 problem.");
+    const results = {
+      engine: "1",
+      bodies: {},
+      blocks: new Map([
+        ["th", result],
+        ["all", { ...result, problems: [] }],
+      ]),
+      readsFrom: new Map(),
+    };
+    expect(countsInWords(countPage(blocks, results))).toBe(
+      "14 samples, 13 in use. 1 set aside, 1 value set aside, 1 amended, 3 missing, 1 below detection, 12 σ assumed. 1 problem.",
+    );
   });
 
   it("says that there is nothing", () => {
@@ -52,7 +62,12 @@ describe("footnotes", () => {
 
   it("tie amendments, set-asides and flags to their places", () => {
     const notes = footnotesOf(block, result);
-    expect(notes.map((n) => `${n.letter} ${n.kind} ${n.title}`)).toEqual(["a amended from 42.1 to 24.1", "b set aside TH-11", "c value set aside TH-03, CaO only", "d screening TH-09"]);
+    expect(notes.map((n) => `${n.letter} ${n.kind} ${n.title}`)).toEqual([
+      "a amended from 42.1 to 24.1",
+      "b set aside TH-11",
+      "c value set aside TH-03, CaO only",
+      "d screening TH-09",
+    ]);
     expect([...lettersByPlace(notes)]).toEqual([
       ["7/MgO", "a"],
       ["11", "b"],

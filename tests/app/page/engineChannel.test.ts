@@ -14,7 +14,19 @@ function countingEngine() {
   const result = (block: Block): BlockResult => {
     if (block.kind === "data") {
       const isThere = block.source?.sha256 === undefined || sources.has(block.source.sha256);
-      return { kind: "data", problems: isThere ? [] : [{ code: "no-source", severity: "error", text: "The source is not here." }], bodiesUsed: {}, samples: 4, setAside: 1, valuesSetAside: 0, amended: 0, columns: [], screening: [], proposed: false, ...(isThere ? { table: exampleTable() } : {}) };
+      return {
+        kind: "data",
+        problems: isThere ? [] : [{ code: "no-source", severity: "error", text: "The source is not here." }],
+        bodiesUsed: {},
+        samples: 4,
+        setAside: 1,
+        valuesSetAside: 0,
+        amended: 0,
+        columns: [],
+        screening: [],
+        proposed: false,
+        ...(isThere ? { table: exampleTable() } : {}),
+      };
     }
     return { kind: "note", problems: [], bodiesUsed: {}, values: [] };
   };
@@ -38,7 +50,13 @@ function countingEngine() {
     trace: ({ name }) => ({ kind: "result", label: name, value: 1, sigma: null, unit: "1", share: null, notes: [], from: [] }),
     propose(_, fileName) {
       if (fileName === "bad") throw new CellError("no-table", "This file is no table.");
-      return { fileName, headers: ["Sample"], rows: [["TH-1"], ["TH-2"]], columns: [{ column: { header: "Sample", role: "sample" }, reason: "the header says so" }], problems: [] };
+      return {
+        fileName,
+        headers: ["Sample"],
+        rows: [["TH-1"], ["TH-2"]],
+        columns: [{ column: { header: "Sample", role: "sample" }, reason: "the header says so" }],
+        problems: [],
+      };
     },
   };
   return { engine, evaluated };
@@ -48,7 +66,12 @@ function channel(fetchBytes: (url: string) => Promise<Uint8Array> = () => Promis
   const { engine, evaluated } = countingEngine();
   const due: (() => void)[] = [];
   const sent: FromWorker[] = [];
-  const like: WorkerLike = { onmessage: null, onerror: null, terminate: () => undefined, postMessage: (message: ToWorker) => worker.receive(structuredClone(message)) };
+  const like: WorkerLike = {
+    onmessage: null,
+    onerror: null,
+    terminate: () => undefined,
+    postMessage: (message: ToWorker) => worker.receive(structuredClone(message)),
+  };
   const worker = createWorkerEngine({
     createEngine: () => engine,
     fetchBytes,
@@ -60,14 +83,21 @@ function channel(fetchBytes: (url: string) => Promise<Uint8Array> = () => Promis
     },
   });
   const seen: { results: PageResults; loading: ReadonlySet<string>; upToDate: boolean }[] = [];
-  const client: EngineClient = createEngineClient(like, (sha256) => `/sources/${sha256}`, { onResults: (results, loading, upToDate) => seen.push({ results, loading, upToDate }), onFault: () => undefined });
+  const client: EngineClient = createEngineClient(like, (sha256) => `/sources/${sha256}`, {
+    onResults: (results, loading, upToDate) => seen.push({ results, loading, upToDate }),
+    onFault: () => undefined,
+  });
   const settle = () => {
     for (let run = due.shift(); run !== undefined; run = due.shift()) run();
   };
   return { client, seen, sent, settle, evaluated };
 }
 
-const on = (...blocks: Block[]): { title: string; bodies: Record<string, string>; blocks: PageBlock[] } => ({ title: "t", bodies: {}, blocks: blocks.map((block, i) => ({ key: block.id, order: String(i), block })) });
+const on = (...blocks: Block[]): { title: string; bodies: Record<string, string>; blocks: PageBlock[] } => ({
+  title: "t",
+  bodies: {},
+  blocks: blocks.map((block, i) => ({ key: block.id, order: String(i), block })),
+});
 const note: Block = { id: "n", kind: "note", text: "a" };
 const typed: Block = { id: "d", kind: "data", typed: [] };
 

@@ -3,7 +3,16 @@ import { describe, expect, it } from "vitest";
 import { layerPath, layOutRail, railPlace, type RailBlock } from "@/app/_page/rail/railLayout";
 import { seed } from "@/tests/support/seed";
 
-const block = (key: string, top: number, height: number, width = 900): RailBlock => ({ key, handle: key, kind: "note", name: "", top, height, width, problem: false });
+const block = (key: string, top: number, height: number, width = 900): RailBlock => ({
+  key,
+  handle: key,
+  kind: "note",
+  name: "",
+  top,
+  height,
+  width,
+  problem: false,
+});
 const box = { x: 44, y: 16, width: 44, height: 400 };
 
 describe("the section rail", () => {

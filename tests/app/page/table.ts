@@ -23,9 +23,26 @@ export function exampleTable(rows = 4): Table {
     rowIds: index.map((i) => i + 1),
     samples: index.map((i) => `TH-${i + 1}`),
     classes: index.map((i) => (i % 2 === 0 ? "H5" : "L6")),
-    origins: index.map((i) => (i === 1 ? [{ table: "a", row: 7 }, { table: "b", row: "t1" }] : [{ table: "th", row: i + 1 }])),
+    origins: index.map((i) =>
+      i === 1
+        ? [
+            { table: "a", row: 7 },
+            { table: "b", row: "t1" },
+          ]
+        : [{ table: "th", row: i + 1 }],
+    ),
     setAside: Uint8Array.from(index, (i) => (i === 2 ? 1 : 0)),
-    columns: [{ kind: "text", name: "Sample", role: "sample", text: index.map((i) => `TH-${i + 1}`) }, column("SiO2", index.map((i) => (i === 3 ? NaN : 36 + i))), column("MgO", index.map((i) => 23 + i))],
+    columns: [
+      { kind: "text", name: "Sample", role: "sample", text: index.map((i) => `TH-${i + 1}`) },
+      column(
+        "SiO2",
+        index.map((i) => (i === 3 ? NaN : 36 + i)),
+      ),
+      column(
+        "MgO",
+        index.map((i) => 23 + i),
+      ),
+    ],
     correlations: [],
   };
 }

@@ -125,6 +125,19 @@ describe("σ", () => {
   });
 });
 
+describe("where first order cannot be trusted", () => {
+  const table = tableOf({ a: { unit: "1", value: [2, 2, 2], sigma: [0.1, 0.1, 0.1] }, b: { unit: "1", value: [4, 4, null], sigma: [0.3, 0.5, 0.5] } });
+
+  it("says so: a denominator with more than 10 % σ, 0 within 3σ of a logarithm's argument", () => {
+    const ratio = evaluate(table, "a / b");
+    expect([...ratio.nearEdge]).toEqual([0, 1, 0]);
+    expect(ratio.problems.map((problem) => [problem.code, problem.severity])).toEqual([["first-order", "warning"]]);
+    expect(ratio.problems[0]?.text).toContain("In 1 of 3 values the σ of b");
+    expect([...evaluate(table, "ln(b - 3)").nearEdge]).toEqual([0, 1, 0]);
+    expect(evaluate(table, "b / a").problems).toEqual([]);
+  });
+});
+
 describe("correlation", () => {
   it("lies between −1 and 1, is 1 with itself, and is the same both ways", () => {
     fc.assert(

@@ -1,0 +1,26 @@
+import type { Problem } from "../errors";
+import type { AxisInfo, BlockResult } from "./results";
+import type { Block } from "./schema";
+
+const noAxis: AxisInfo = { expression: "", label: "", unit: "1", basis: null };
+
+/** The result of a block that could not be calculated at all: nothing, and the reasons. */
+export function emptyResult(block: Block, problems: readonly Problem[]): BlockResult {
+  const all = { problems, bodiesUsed: {} };
+  switch (block.kind) {
+    case "data":
+      return { kind: "data", samples: 0, setAside: 0, valuesSetAside: 0, amended: 0, columns: [], screening: [], proposed: false, ...all };
+    case "formula":
+      return { kind: "formula", lines: [], correlation: [], ...all };
+    case "trend": {
+      const axis = (expression: string): AxisInfo => ({ ...noAxis, expression, label: expression });
+      return { kind: "trend", method: block.method, ok: false, n: 0, leftOut: {}, x: axis(block.x), y: axis(block.y), points: [], fromBodies: [], ...all };
+    }
+    case "budget":
+      return { kind: "budget", ok: false, roots: [], report: [], path: [], shares: [], byCompilation: [], ...all };
+    case "plot":
+      return { kind: "plot", plot: block.plot, x: noAxis, y: noAxis, layers: [], drawn: 0, notDrawn: {}, ...all };
+    case "note":
+      return { kind: "note", values: [], ...all };
+  }
+}

@@ -35,7 +35,7 @@ export default {
     borderRadius: { none: "0", full: "9999px" },
     boxShadow: { none: "none" },
     fontSize: {
-      axis: ["11px", "16px"],
+      tick: ["11px", "16px"],
       margin: ["12px", "16px"],
       cell: ["12.5px", "24px"],
       ui: ["13px", "20px"],

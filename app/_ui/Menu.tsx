@@ -38,7 +38,7 @@ function content(items: readonly MenuItem[], kit: { Item: typeof RadixMenu.Item;
     if ("line" in item) return <kit.Separator key={i} className="my-1 border-t border-hairline" />;
     if ("heading" in item)
       return (
-        <kit.Label key={i} className="px-3 pt-1 text-axis text-second">
+        <kit.Label key={i} className="px-3 pt-1 text-tick text-second">
           {item.heading}
         </kit.Label>
       );
@@ -46,7 +46,7 @@ function content(items: readonly MenuItem[], kit: { Item: typeof RadixMenu.Item;
       <kit.Item key={i} disabled={item.disabled ?? false} onSelect={item.onChoose} className={classNames(itemLook, item.danger && "text-vermilion")}>
         {ticked ? <span className="w-4">{item.checked ? <IconCheck /> : null}</span> : null}
         <span className="flex-1">{item.label}</span>
-        {item.keys ? <kbd className="font-mono text-axis text-second">{item.keys}</kbd> : null}
+        {item.keys ? <kbd className="font-mono text-tick text-second">{item.keys}</kbd> : null}
       </kit.Item>
     );
   });

@@ -1,8 +1,7 @@
-import { spawn, type ChildProcess } from "node:child_process";
+import { execFileSync, spawn, type ChildProcess } from "node:child_process";
 import { existsSync, readFileSync, rmSync, mkdirSync, createWriteStream } from "node:fs";
 import { createServer } from "node:net";
 import path from "node:path";
-import { execFileSync } from "node:child_process";
 import type { TestProject } from "vitest/node";
 import { testDatabase } from "./database";
 
@@ -24,8 +23,9 @@ export default async function startProduct(project: TestProject): Promise<() => 
   const database = await testDatabase();
   const [port, realtimePort, smtp, http] = await Promise.all([freePort(), freePort(), freePort(), freePort()]);
   const url = `http://localhost:${port}`;
-  const env = {
-    ...withoutNodeEnv(),
+  const env: NodeJS.ProcessEnv = {
+    ...ownEnvironment(),
+    NODE_ENV: "production",
     DATABASE_URL: database.url,
     NEXTAUTH_SECRET: "secret-of-the-tests",
     NEXTAUTH_URL: url,
@@ -48,11 +48,10 @@ export default async function startProduct(project: TestProject): Promise<() => 
   const logs = path.join(root, ".data/logs");
   rmSync(logs, { recursive: true, force: true });
   mkdirSync(logs, { recursive: true });
-  const production = { ...env, NODE_ENV: "production" };
   const children = [
-    start("realtime", ["--import", "tsx", "realtime/server.ts"], production, logs),
-    start("web", ["node_modules/next/dist/bin/next", "start", "-H", "127.0.0.1", "-p", String(port)], production, logs),
-    start("mailbox", ["scripts/mailbox.mjs"], production, logs),
+    start("realtime", ["--import", "tsx", "realtime/server.ts"], env, logs),
+    start("web", ["node_modules/next/dist/bin/next", "start", "-H", "127.0.0.1", "-p", String(port)], env, logs),
+    start("mailbox", ["scripts/mailbox.mjs"], env, logs),
   ];
   await answering(`http://127.0.0.1:${port}/api/health`, logs);
   await answering(`http://127.0.0.1:${realtimePort}/health`, logs);
@@ -67,9 +66,9 @@ export default async function startProduct(project: TestProject): Promise<() => 
   };
 }
 
-function start(name: string, args: string[], env: Record<string, string | undefined>, logs: string): ChildProcess {
+function start(name: string, args: string[], env: NodeJS.ProcessEnv, logs: string): ChildProcess {
   const log = createWriteStream(path.join(logs, `${name}.log`));
-  const child = spawn(process.execPath, args, { cwd: root, env: env as NodeJS.ProcessEnv, stdio: ["ignore", "pipe", "pipe"] });
+  const child = spawn(process.execPath, args, { cwd: root, env, stdio: ["ignore", "pipe", "pipe"] });
   child.stdout.pipe(log);
   child.stderr.pipe(log);
   return child;
@@ -99,8 +98,9 @@ async function answering(url: string, logs: string): Promise<void> {
   throw new Error(`nothing answers on ${url} after a minute:\n${said}`);
 }
 
-function withoutNodeEnv(): Record<string, string | undefined> {
-  return Object.fromEntries(Object.entries(process.env).filter(([name]) => name !== "NODE_ENV" && !name.startsWith("VITEST")));
+/** What the tests were started with, without what makes a process one of the test runner's. */
+function ownEnvironment(): Record<string, string | undefined> {
+  return Object.fromEntries(Object.entries(process.env).filter(([name]) => !name.startsWith("VITEST")));
 }
 
 function freePort(): Promise<number> {

@@ -62,7 +62,7 @@ export function GridHead({ model, view, totals, picked, itemsOf }: GridHeadProps
                 <TickStrip values={quantity.value} hide={table.setAside} classOf={classOf} picked={picked} label={`${column.name}: one tick a sample`} />
               ) : null}
             </div>
-            <div className={classNames("text-axis whitespace-nowrap text-second", words ? "" : "truncate")}>
+            <div className={classNames("text-tick whitespace-nowrap text-second", words ? "" : "truncate")}>
               {quantity !== undefined && table !== undefined ? columnCounts(quantity, table.setAside) : i === firstWords ? "in use, not in use" : "\u00a0"}
             </div>
           </div>
@@ -75,7 +75,7 @@ export function GridHead({ model, view, totals, picked, itemsOf }: GridHeadProps
           <div className="h-7 py-1 pl-4">
             <TickStrip values={totals} hide={table.setAside} classOf={classOf} picked={picked} label="total: one tick a sample" />
           </div>
-          <div className="text-axis text-second">{totals.reduce((n, v, i) => (Number.isFinite(v) && !table.setAside[i] ? n + 1 : n), 0)}</div>
+          <div className="text-tick text-second">{totals.reduce((n, v, i) => (Number.isFinite(v) && !table.setAside[i] ? n + 1 : n), 0)}</div>
         </div>
       )}
     </div>

@@ -39,7 +39,7 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
         <div className="truncate font-mono text-[12.5px]" title={header}>
           {header === "" ? <span className="text-second">no header, column {index + 1}</span> : header}
         </div>
-        <div className="truncate font-mono text-axis text-second" title={sample.join(", ")}>
+        <div className="truncate font-mono text-tick text-second" title={sample.join(", ")}>
           {sample.join("  ")}
         </div>
       </th>

@@ -60,11 +60,11 @@ export function PreviewTable({ preview, problems, rows }: PreviewTableProps) {
             <table className="border-collapse">
               <thead className="sticky top-0 bg-paper">
                 <tr className="text-right">
-                  <th className="pr-3 pb-1 text-left text-axis font-normal text-second">row</th>
+                  <th className="pr-3 pb-1 text-left text-tick font-normal text-second">row</th>
                   {table.columns.map((column) => (
                     <th key={column.name} className={`min-w-20 px-2 pb-1 font-normal ${column.kind === "text" ? "text-left" : ""}`}>
                       <div className="font-semibold">{column.kind === "quantity" ? <Chemical name={column.name} /> : column.name}</div>
-                      <div className="text-axis text-second">{column.kind === "quantity" ? unitWords(column) : column.role}</div>
+                      <div className="text-tick text-second">{column.kind === "quantity" ? unitWords(column) : column.role}</div>
                     </th>
                   ))}
                 </tr>
@@ -72,7 +72,7 @@ export function PreviewTable({ preview, problems, rows }: PreviewTableProps) {
               <tbody className="border-t border-ink">
                 {Array.from({ length: table.rows }, (_, r) => (
                   <tr key={r} className="h-6 border-b border-hairline font-mono text-[12.5px]">
-                    <td className="pr-3 text-axis text-second">{table.rowIds[r]}</td>
+                    <td className="pr-3 text-tick text-second">{table.rowIds[r]}</td>
                     {table.columns.map((column) => {
                       if (column.kind === "text")
                         return (

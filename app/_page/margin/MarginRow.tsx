@@ -39,7 +39,7 @@ function DataNotes({ block, blockKey, named }: { readonly block: DataBlock; read
       {shown.map((note, i) => (
         <div key={`${note.letter} ${note.row}`} className="margin-note">
           <span className="margin-letter">{note.letter}</span>
-          {named && i === 0 ? <div className="text-axis">{block.name ?? block.id}</div> : null}
+          {named && i === 0 ? <div className="text-tick">{block.name ?? block.id}</div> : null}
           <button
             type="button"
             className="block text-left hover:text-ink"

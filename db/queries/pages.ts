@@ -1,6 +1,6 @@
 import { and, asc, desc, eq, gt, isNotNull, isNull, max, sql } from "drizzle-orm";
 import type { Database } from "../client";
-import { pages, pageStates, pageUpdates, snapshots, users, type OutlineBlock } from "../schema";
+import { pageClients, pages, pageStates, pageUpdates, snapshots, users, type OutlineBlock } from "../schema";
 
 export interface PageOfGroup {
   readonly id: string;
@@ -55,6 +55,38 @@ export async function addPage(
     if (!row) throw new Error("the page was not made");
     await tx.insert(pageUpdates).values({ pageId: row.id, epoch: row.epoch, userId: page.by, update: page.update });
     return row.id;
+  });
+}
+
+/**
+ * Adds an edit made on the server to a page's log, under a Yjs client id that is this person's from now on.
+ *
+ * @returns its sequence number, which the realtime server is told; null where the page is archived or of another epoch by now
+ */
+export async function addEdit(
+  db: Database,
+  edit: {
+    readonly pageId: string;
+    readonly epoch: number;
+    readonly by: string;
+    readonly title: string;
+    readonly clientId: number;
+    readonly update: Uint8Array;
+  },
+): Promise<bigint | null> {
+  return db.transaction(async (tx) => {
+    const [page] = await tx
+      .update(pages)
+      .set({ title: edit.title, changedBy: edit.by, changedAt: new Date() })
+      .where(and(eq(pages.id, edit.pageId), eq(pages.epoch, edit.epoch), isNull(pages.archivedAt)))
+      .returning({ id: pages.id });
+    if (!page) return null;
+    await tx.insert(pageClients).values({ pageId: edit.pageId, clientId: BigInt(edit.clientId), userId: edit.by });
+    const [row] = await tx
+      .insert(pageUpdates)
+      .values({ pageId: edit.pageId, epoch: edit.epoch, userId: edit.by, update: edit.update })
+      .returning({ seq: pageUpdates.seq });
+    return row?.seq ?? null;
   });
 }
 

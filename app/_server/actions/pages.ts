@@ -9,20 +9,19 @@ import { setArchived } from "@/db/queries/pages";
 import { formAction } from "../action";
 import { allow } from "../authorise";
 import { database } from "../database";
-import { createPage, loadPage } from "../documents";
+import { createPage, loadPage, retitlePage } from "../documents";
 import { idField } from "../fields";
 import { Refusal } from "../problem";
 
+const titleField = z.string().trim().max(300, "A title has at most 300 characters");
+
 /** Makes an empty page and opens it. */
-export const newPage = formAction(
-  z.object({ groupId: idField, title: z.string().trim().max(300, "A title has at most 300 characters").optional() }),
-  async ({ groupId, title }) => {
-    const { userId } = await allow("group", groupId, "create page");
-    redirect(
-      `/pages/${await createPage(groupId, person(userId), { format: PAGE_FORMAT, title: title || "Untitled page", bodies: { CI: "CI_PLJ14", BSE: "BSE_MS95" }, blocks: [] })}`,
-    );
-  },
-);
+export const newPage = formAction(z.object({ groupId: idField, title: titleField.optional() }), async ({ groupId, title }) => {
+  const { userId } = await allow("group", groupId, "create page");
+  redirect(
+    `/pages/${await createPage(groupId, person(userId), { format: PAGE_FORMAT, title: title || "Untitled page", bodies: { CI: "CI_PLJ14", BSE: "BSE_MS95" }, blocks: [] })}`,
+  );
+});
 
 /** Copies a page, as it is committed at this moment, under a new title. */
 export const duplicatePage = formAction(z.object({ pageId: idField }), async ({ pageId }) => {
@@ -33,6 +32,14 @@ export const duplicatePage = formAction(z.object({ pageId: idField }), async ({ 
   await createPage(object.groupId, person(userId), { ...page, title: `${page.title}, copy`.slice(0, 300) });
   refresh();
   return { done: "Copied." };
+});
+
+/** Gives a page another title from outside it. */
+export const renamePage = formAction(z.object({ pageId: idField, title: titleField.min(1, "Give the page a title") }), async ({ pageId, title }) => {
+  const { userId } = await allow("page", pageId, "rename");
+  await retitlePage(pageId, person(userId), title);
+  refresh();
+  return { done: "Renamed." };
 });
 
 /** Puts a page into the archive, or takes it out. */

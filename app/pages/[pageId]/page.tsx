@@ -4,7 +4,7 @@ import { database } from "@/app/_server/database";
 import { loadPage } from "@/app/_server/documents";
 import { allowOnScreen, realtimeUrl } from "@/app/_server/screen";
 import { currentUser } from "@/app/_server/session";
-import { findGroup, noteSeen } from "@/db/queries/groups";
+import { findGroup, membersOf, noteSeen } from "@/db/queries/groups";
 import { findPage } from "@/db/queries/pages";
 import { lastSnapshotOf } from "@/db/queries/snapshots";
 import { CLIENT_VERSION } from "@/realtime/protocol";
@@ -24,12 +24,13 @@ export default async function PagePage({ params }: Props) {
   const { pageId } = await params;
   const { subject, object, userId } = await allowOnScreen("page", pageId, "read", `/pages/${pageId}`);
   const db = database();
-  const [page, group, user, last, { page: document }] = await Promise.all([
+  const [page, group, user, last, { page: document }, members] = await Promise.all([
     findPage(db, pageId),
     findGroup(db, object.groupId),
     currentUser(),
     lastSnapshotOf(db, pageId),
     loadPage(pageId),
+    subject.role === "guest" ? [] : membersOf(db, object.groupId),
     userId ? noteSeen(db, object.groupId, userId) : null,
   ]);
   return (
@@ -41,6 +42,7 @@ export default async function PagePage({ params }: Props) {
       version={String(CLIENT_VERSION)}
       initialDocument={document}
       lastSnapshot={last ? { id: last.id, number: last.number, hash: last.hash, frozenAt: last.frozenAt.toISOString() } : null}
+      people={Object.fromEntries(members.map((member) => [member.userId, member.name]))}
       guestUntil={subject.role === "guest" ? subject.until.toISOString() : null}
     />
   );

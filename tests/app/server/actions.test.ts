@@ -167,16 +167,22 @@ describe("pages", () => {
     const { to } = await send(pages.newPage, { groupId, title: "Mine" });
     const pageId = to?.split("/").at(-1) ?? "";
     expect((await send(pages.duplicatePage, { pageId })).done).toBe("Copied.");
+    expect((await send(pages.renamePage, { pageId, title: " Ours " })).done).toBe("Renamed.");
     await send(pages.archivePage, { pageId, archived: "yes" });
+    expect((await send(pages.renamePage, { pageId, title: "Too late" })).problem).toMatch(/archive/);
     expect((await pagesOf(db.db, groupId)).map((p) => p.title)).toEqual(["A page", "Mine, copy"]);
-    expect((await pagesOf(db.db, groupId, true)).map((p) => p.title)).toEqual(["Mine"]);
+    // The list and the document agree: a copy takes its title from the document.
+    expect((await pagesOf(db.db, groupId, true)).map((p) => p.title)).toEqual(["Ours"]);
+    expect((await send(pages.duplicatePage, { pageId })).done).toBe("Copied.");
+    expect((await pagesOf(db.db, groupId)).map((p) => p.title)).toContain("Ours, copy");
     await signInAs(db, reader);
     expect((await send(pages.newPage, { groupId })).problem).toMatch(/reader/);
     expect((await send(pages.duplicatePage, { pageId })).problem).toMatch(/reader/);
+    expect((await send(pages.renamePage, { pageId, title: "Mine" })).problem).toMatch(/reader/);
     expect((await send(pages.archivePage, { pageId, archived: "no" })).problem).toMatch(/reader/);
     await signInAs(db, analyst);
     await send(pages.archivePage, { pageId, archived: "no" });
-    expect((await pagesOf(db.db, groupId)).length).toBe(3);
+    expect((await pagesOf(db.db, groupId)).length).toBe(4);
   });
 });
 

@@ -1,11 +1,11 @@
 "use client";
 
-import { useRouter } from "next/navigation";
-import { startTransition, useActionState } from "react";
+import { startTransition, useActionState, useState } from "react";
 import { archivePage, duplicatePage } from "@/app/_server/actions/pages";
 import { IconButton } from "@/app/_ui/IconButton";
 import { IconMore } from "@/app/_ui/icons";
 import { Menu } from "@/app/_ui/Menu";
+import { RenameDialog } from "./RenameDialog";
 
 export interface PageMenuProps {
   readonly pageId: string;
@@ -13,9 +13,9 @@ export interface PageMenuProps {
   readonly archived: boolean;
 }
 
-/** What can be done with a page from outside it. Its title is edited on the page, where everybody sees it change. */
+/** What can be done with a page from outside it. */
 export function PageMenu({ pageId, title, archived }: PageMenuProps) {
-  const router = useRouter();
+  const [renaming, setRenaming] = useState(false);
   const [copied, copy] = useActionState(duplicatePage, {});
   const [put, archive] = useActionState(archivePage, {});
   const form = (fields: Record<string, string>) => {
@@ -28,7 +28,7 @@ export function PageMenu({ pageId, title, archived }: PageMenuProps) {
     <>
       <Menu
         items={[
-          { label: "Rename", onChoose: () => router.push(`/pages/${pageId}`), disabled: archived },
+          { label: "Rename", onChoose: () => setRenaming(true), disabled: archived },
           { label: "Duplicate", onChoose: () => startTransition(() => copy(form({}))) },
           { line: true },
           {
@@ -41,6 +41,7 @@ export function PageMenu({ pageId, title, archived }: PageMenuProps) {
           <IconMore />
         </IconButton>
       </Menu>
+      {renaming ? <RenameDialog pageId={pageId} title={title} onClose={() => setRenaming(false)} /> : null}
       {problem ? (
         <span role="alert" className="text-vermilion">
           {problem}

@@ -160,6 +160,11 @@ class Realtime implements RunningRealtime {
       turnAway(ws, Close.epochChanged);
       return;
     }
+    // Somebody who lost the right to edit while offline is told so, and keeps what they had as a draft (rule A6).
+    if (asked.toEdit && !admission.mayEdit) {
+      turnAway(ws, Close.roleChanged);
+      return;
+    }
     const banned = admission.userId === null ? 0 : this.rooms.bannedFor(asked.pageId, admission.userId);
     if (banned > 0) {
       turnAway(ws, Close.tooFast, `An edit of yours was refused a moment ago. You can connect again in ${Math.ceil(banned / 1000).toString()} s.`);

@@ -7,6 +7,8 @@ export interface Asked {
   readonly is: "asked";
   readonly pageId: string;
   readonly epoch: number;
+  /** The page on the screen was opened to be edited. */
+  readonly toEdit: boolean;
   readonly credentials: Credentials;
 }
 export interface Refused {
@@ -19,7 +21,7 @@ const refused = (code: CloseCode, reason: string = closeSentences[code]): Refuse
 const page = /^(?:\/[A-Za-z0-9_-]+)*\/pages\/([0-9a-fA-F-]{36})\/?$/;
 
 /**
- * Reads an upgrade (rule A1): `/pages/<id>?epoch=…&version=…`, below any path that a proxy puts before it. The cookies say
+ * Reads an upgrade (rule A1): `/pages/<id>?epoch=…&version=…&edit=…`, below any path that a proxy puts before it. The cookies say
  * who it is; no secret is in the address. A browser names the origin its page came from, and only ours may open sockets.
  */
 export function readUpgrade(request: IncomingMessage, origins: readonly string[], secure: boolean): Asked | Refused {
@@ -34,5 +36,11 @@ export function readUpgrade(request: IncomingMessage, origins: readonly string[]
   if (pageId === undefined) return refused(Close.notFound);
   const version = Number(searchParams.get("version"));
   if (!Number.isInteger(version) || version < OLDEST_CLIENT) return refused(Close.reload);
-  return { is: "asked", pageId: pageId.toLowerCase(), epoch: Number(searchParams.get("epoch")), credentials: credentialsFromCookies(cookie, secure) };
+  return {
+    is: "asked",
+    pageId: pageId.toLowerCase(),
+    epoch: Number(searchParams.get("epoch")),
+    toEdit: searchParams.get("edit") === "1",
+    credentials: credentialsFromCookies(cookie, secure),
+  };
 }

@@ -1,4 +1,4 @@
-import * as Y from "yjs";
+import type * as Y from "yjs";
 import { entryKeyFor, naturalKey } from "./entryKeys";
 import { EditError, kindOf, refuse, requireBlock } from "./editing";
 import { placeAt } from "./orderKeys";

@@ -127,6 +127,9 @@ export const blocksOf = (doc: Y.Doc): Y.Map<BlockMap> => doc.getMap<BlockMap>("b
 export const pageOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("page");
 export const bodiesOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("bodies");
 
+/** Whether a document holds a page already; one that does not is still to be loaded, never to be filled (rule D2). */
+export const holdsPage = (doc: Y.Doc): boolean => pageOf(doc).size > 0;
+
 /** The map of one list of a block; `undefined` where the block has none. */
 export function listOf(block: BlockMap, list: ListName): EntryMap | undefined {
   const value = block.get(list);

@@ -102,7 +102,9 @@ const spellings: ReadonlyMap<string, UnitSymbol> = new Map<string, UnitSymbol>([
   ...["at%", "at.%", "atom%", "atomic%", "atom-%"].map((s): [string, UnitSymbol] => [s, "at%"]),
   ["mol/kg", "mol/kg"],
   ["molkg-1", "mol/kg"],
-  ...["atoms/10⁶si", "atoms/10^6si", "atoms/1e6si", "per10^6si", "si=10^6", "si=1e6"].map((s): [string, UnitSymbol] => [s, "atoms/10⁶ Si"]),
+  ...["atoms/10⁶si", "atoms/10^6si", "atoms/1e6si", "per10^6si", "per10⁶si", "atomsper10⁶si", "atomsper10^6si", "si=10^6", "si=1e6"].map(
+    (s): [string, UnitSymbol] => [s, "atoms/10⁶ Si"],
+  ),
   ...["1", "ratio", "dimensionless", "-"].map((s): [string, UnitSymbol] => [s, "1"]),
   ...["‰", "permil", "permille", "permill"].map((s): [string, UnitSymbol] => [s, "‰"]),
   ["ε", "ε"],

@@ -62,6 +62,8 @@ function find(text: string): Species | undefined {
   const iron = ironForms.get(plain) === undefined ? ironSpellings.get(plain.toLowerCase().replace(/[\s_]+/gu, "")) : plain;
   if (iron !== undefined) return ironSpecies(iron);
   const spelt = plain.replace(/[\s_]+/gu, "");
+  // Osmium and holmium in capitals would read as formulas of oxygen.
+  if (spelt === "OS" || spelt === "HO") return upperElement(spelt);
   return chemicalSpecies(spelt) ?? chemicalSpecies(properCase.get(spelt.toLowerCase()) ?? "") ?? upperElement(spelt);
 }
 
@@ -77,7 +79,7 @@ function chemicalSpecies(formula: string): Species | undefined {
   return chemical === undefined || element === undefined ? undefined : (ironSpecies(formula) ?? { name: formula, chemical, element });
 }
 
-/** Headers all in capitals: `MG`, `ZR`. Never where the text reads as a formula already (`CO` in capitals is asked for by the importer). */
+/** Headers all in capitals: `MG`, `ZR`. Never where the text reads as a formula already (of `CO` in capitals the importer decides, and says so). */
 function upperElement(text: string): Species | undefined {
   return /^[A-Z]{2}$/u.test(text) ? chemicalSpecies(text.charAt(0) + text.charAt(1).toLowerCase()) : undefined;
 }

@@ -41,7 +41,7 @@ export function readCell(text: string, decimal: DecimalSign): ReadCell {
       `"${short(trimmed)}" is a spreadsheet's error, not a number. Amend it with the value, or with nothing where there is none.`,
     );
   const plain = trimmed.replace(/[−‒–]/gu, "-").replace(/\u00a0|\u202f|\u2009/gu, " ");
-  const below = /^(?:<|≤|<=|≪|‹|b\.?d\.?l\.?\s*\(?\s*<?)\s*([^)]+?)\)?$/iu.exec(plain);
+  const below = /^(?:<=|<|≤|≪|‹|b\.?d\.?l\.?\s*\(?\s*<?)\s*([^)]+?)\)?$/iu.exec(plain);
   if (below !== null && /^(?:<|≤|‹|≪|b)/iu.test(plain)) return readBelow(below[1] ?? "", trimmed, decimal);
   if (/^(?:>|≥|>=)/u.test(plain))
     return unreadable("cell-above", `"${short(trimmed)}" says only that the value is above a limit. Amend it with a value, or with nothing.`);

@@ -43,15 +43,19 @@ export function readHeader(header: string): ReadHeader {
 }
 
 function tidy(header: string): string {
-  return header
-    .replace(/<\/?(?:sub|sup)>/giu, "")
-    .replace(/[₀-₉]/gu, (digit) => String(digit.charCodeAt(0) - 0x2080))
-    .replace(/_\{?(\d)\}?/gu, (whole, digit: string, at: number, all: string) =>
-      /[A-Za-z]$/u.test(all.slice(0, at)) && parseSpecies(all.replace(/_\{?(\d)\}?/gu, "$1")) !== undefined ? digit : whole,
-    )
-    .replace(/[μ]/gu, "µ")
-    .replace(/\s+/gu, " ")
-    .trim();
+  return (
+    header
+      .replace(/<\/?(?:sub|sup)>/giu, "")
+      .replace(/[₀-₉]/gu, (digit) => String(digit.charCodeAt(0) - 0x2080))
+      .replace(/_\{?(\d)\}?/gu, (whole, digit: string, at: number, all: string) =>
+        /[A-Za-z]$/u.test(all.slice(0, at)) && parseSpecies(all.replace(/_\{?(\d)\}?/gu, "$1")) !== undefined ? digit : whole,
+      )
+      .replace(/[μ]/gu, "µ")
+      // A capital sigma is a sum; in patterns that ignore case it would be a σ.
+      .replace(/Σ/gu, "∑")
+      .replace(/\s+/gu, " ")
+      .trim()
+  );
 }
 
 function squeeze(text: string): string {
@@ -139,7 +143,7 @@ function* withUnits(text: string): Generator<{ readonly rest: string; readonly u
     if (found !== undefined)
       yield { rest: `${text.slice(0, match.index)} ${text.slice(match.index + match[0].length)}`.trim(), unit: found.unit, unitText: found.text };
   }
-  const separators = [...text.matchAll(/[\s,;:_/]+|(?=%)|(?<=%)/gu)].map((m) => [m.index, m.index + m[0].length] as const);
+  const separators = [...text.matchAll(/[\s,;:_/]+|-(?=wt|mass|pp[mb]|[µun]g|%)|(?=%)|(?<=%)/giu)].map((m) => [m.index, m.index + m[0].length] as const);
   for (const [end, start] of separators) {
     const behind = unitOf(text.slice(start));
     if (behind !== undefined && end > 0) yield { rest: text.slice(0, end).trim(), unit: behind.unit, unitText: behind.text };
@@ -151,11 +155,14 @@ function* withUnits(text: string): Generator<{ readonly rest: string; readonly u
 }
 
 function unitOf(text: string, bracketed = false): { readonly unit: Unit; readonly text: string } | undefined {
-  const spelt = text.replace(/^[\s,;([]*(?:in\s+)?|[\s,;)\]]+$/giu, "").replace(/_/gu, "");
+  const opened = text.replace(/^[\s,;([]*(?:in\s+)?/iu, "");
+  const trimmed = opened.replace(/[\s,;)\]]+$/gu, "");
+  const spelt = trimmed.replace(/_/gu, "");
   // A lone K is potassium; in brackets, which were taken off before, it is kelvin. A number is no unit here.
   if (spelt === "" || spelt === "-" || /^\d+$/u.test(spelt) || spelt === "µ" || (spelt === "K" && !bracketed)) return undefined;
   const parts = spelt.split(/\s*[,;]\s*/u);
-  for (const part of [spelt, ...(parts.length > 1 ? parts : [])]) {
+  // `ug_g` is µg/g, and the bracket of `% (m/m)` belongs to the unit.
+  for (const part of [spelt, trimmed.replace(/_/gu, "/"), opened.trim(), ...(parts.length > 1 ? parts : [])]) {
     const unit = parseUnit(part);
     if (unit !== undefined) return { unit, text: part };
   }
@@ -165,6 +172,8 @@ function unitOf(text: string, bracketed = false): { readonly unit: Unit; readonl
 function speciesOf(text: string): string | undefined {
   const words = text.split(/[\s,;:_]+/u).filter((word) => word !== "" && (isElement(word) || !plainWords.has(word.toLowerCase())));
   for (const spelt of [text, words.join(" "), words.join(" ").replace(/[()[\]]/gu, " ")]) {
+    // Exports in capitals mean cobalt; the proposal asks people to check.
+    if (spelt.trim() === "CO") return "Co";
     const species = spelt.trim() === "" ? undefined : parseSpecies(spelt);
     const counted = species !== undefined && species.chemical.atoms.size === 1 && species.chemical.formula !== species.element;
     if (species !== undefined && !counted) return species.name;

@@ -57,7 +57,7 @@ export const uncertaintyPatterns: readonly (readonly [pattern: RegExp, kind: Unc
     true,
   ],
   [
-    /(?:(?<![A-Za-z0-9.])2[\s_-]*(?:rsd|rse)\b\.?\s*%?|(?<![A-Za-z0-9.])2[\s_*×-]*(?:σ|sigma|s|sd|se)[\s_-]*(?:\(?\s*%\s*\)?|\(?\s*rel(?:ative|\.)?\s*%?\s*\)?)(?=$|[\s_)\],;])|rel(?:ative|\.)?[\s_-]*2[\s_-]*(?:σ|sigma|s|sd|se)(?=$|[\s_)\],;(]))/iu,
+    /(?:(?<![A-Za-z0-9.])2[\s_-]*(?:rsd|rse)\b\.?[\s_]*\(?%?\)?|(?<![A-Za-z0-9.])2[\s_*×-]*(?:σ|sigma|s|sd|se)[\s_-]*(?:\(?\s*%\s*\)?|\(?\s*rel(?:ative|\.)?\s*%?\s*\)?)(?=$|[\s_)\],;])|rel(?:ative|\.)?[\s_-]*2[\s_-]*(?:σ|sigma|s|sd|se)(?=$|[\s_)\],;(]))/iu,
     "2 sigma relative %",
     true,
   ],

@@ -48,10 +48,12 @@ export function proposeMapping(raw: RawTable): Proposal {
   if (!guesses.some((guess) => guess.role === "sample")) takeFirstText(guesses, problems);
   const used = new Set<string>();
   for (const guess of guesses) if (guess.role === "quantity") setUnit(guess, raw, problems);
+  for (const guess of guesses) if (guess.role === "quantity" && guess.read.species === "Co") askForCobalt(guess, problems);
   for (const guess of guesses)
     if (guess.role !== "uncertainty")
       guess.name = freeName(guess.role === "quantity" ? (guess.read.species ?? guess.read.name ?? guess.header) : guess.header, used);
   for (const guess of guesses) if (guess.role === "uncertainty") attach(guess, guesses, problems);
+  for (const guess of guesses) if (guess.role !== "uncertainty") guess.name ??= freeName(guess.header, used);
   if (!guesses.some((guess) => guess.role === "quantity"))
     problems.push({
       code: "mapping-no-quantity",
@@ -59,6 +61,12 @@ export function proposeMapping(raw: RawTable): Proposal {
       text: "No column of numbers was recognised. Give the columns that hold quantities their role, species and unit.",
     });
   return { columns: guesses.map((guess) => column(guess, raw)), reasons: guesses.map((guess) => guess.reason), problems };
+}
+
+function askForCobalt({ header }: Guess, problems: Problem[]): void {
+  if (!/(?<![A-Za-z])CO(?![A-Za-z0-9])/u.test(header)) return;
+  const text = `"${header}" may mean cobalt or carbon monoxide; it is read as cobalt. Please check.`;
+  problems.push({ code: "species-assumed", severity: "warning", column: header, text });
 }
 
 interface Look {

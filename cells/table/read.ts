@@ -133,7 +133,9 @@ function unitsLine(row: readonly string[] | undefined, width: number): readonly 
   const cells = Array.from({ length: width }, (_, i) => (row[i] ?? "").trim());
   const filled = cells.filter((cell) => cell !== "" && cell !== "-");
   const unitLike = filled.filter((cell) => parseUnit(cell.replace(/^[([]|[)\]]$/gu, "")) !== undefined && !/^\d/u.test(cell));
-  return unitLike.length >= 1 && unitLike.length >= filled.length - 1 && unitLike.length > filled.length / 2
+  // A first sample may be called K, and have no values.
+  const beyondFirst = width === 1 || cells.slice(1).some((cell) => unitLike.includes(cell));
+  return beyondFirst && unitLike.length >= 1 && unitLike.length >= filled.length - 1 && unitLike.length > filled.length / 2
     ? cells.map((cell) => cell.replace(/^[([]|[)\]]$/gu, ""))
     : undefined;
 }

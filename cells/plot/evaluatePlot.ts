@@ -1,0 +1,134 @@
+import { CellError } from "../errors";
+import { pathOn } from "../budget";
+import type { BlockContext } from "../page/context";
+import type { AxisInfo, PlotLayer, PlotResult } from "../page/results";
+import type { Drawn, PlotBlock } from "../page/schema";
+import { axisOf, axisPlaced, nameOnly, type PlotAxis } from "./axes";
+import { bodiesLayer } from "./bodiesLayer";
+import { radiusOf } from "./contour";
+import { countDrawn } from "./countDrawn";
+import { Drawing } from "./drawing";
+import { extentOf } from "./extent";
+import { evaluatePattern } from "./pattern";
+import { samplesLayer, samplesPlaced } from "./samplesLayer";
+import { ternaryBlock } from "./ternary";
+import { crossingLayer, trendLayer, type DrawnPair } from "./trendLayers";
+
+/**
+ * What a plot draws, layer by layer in the order of its list, and how many samples it does not draw, by state.
+ *
+ * Samples stand with their σ and the correlation of their errors; a trend with its 95 % band; a crossing with the ellipse that
+ * holds 95 %; bodies where the axes' expressions put them. What cannot stand on the axes is an error of its own line, and the
+ * others are drawn. A ternary's x and y are the shares of its first two corners in the sum of the three. Hidden lines are
+ * not calculated.
+ */
+export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResult {
+  const drawing = new Drawing(block, context);
+  if (block.plot === "pattern") return evaluatePattern(drawing);
+  const shown = block.plot === "ternary" ? ternaryBlock(block, drawing) : block;
+  const axes = { x: readAxis(shown, "x", drawing), y: block.plot === "distribution" ? undefined : readAxis(shown, "y", drawing) };
+  const layers = drawLayers(shown, drawing, axes);
+  return finish(
+    drawing,
+    layers,
+    axes.x?.info ?? nameOnly(axisPlaced(shown, "x", drawing)?.text),
+    axes.y?.info ?? nameOnly(axes.x === undefined ? undefined : axisPlaced(shown, "y", drawing)?.text),
+  );
+}
+
+export function finish(drawing: Drawing, layers: readonly PlotLayer[], x: AxisInfo, y: AxisInfo): PlotResult {
+  const { block, problems, bodiesUsed } = drawing;
+  return { kind: "plot", plot: block.plot, x, y, layers, ...countDrawn(layers, block.plot), problems, bodiesUsed };
+}
+
+function readAxis(block: PlotBlock, axis: "x" | "y", drawing: Drawing): PlotAxis | undefined {
+  const placed = axisPlaced(block, axis, drawing);
+  if (placed === undefined) {
+    if (block.drawn.some((drawn) => drawn.hidden !== true && !("annotation" in drawn)))
+      drawing.attempt(axis, () => {
+        throw new CellError("no-axis", `Nothing says what stands ${axis === "x" ? "across" : "upwards"} on this plot. Give an expression such as Mg / Si.`);
+      });
+    return undefined;
+  }
+  // A handle that leads nowhere is said by the page, at the line that has it.
+  if (placed.data !== undefined && drawing.context.block(placed.data)?.kind !== "data") return undefined;
+  return drawing.attempt(placed.field, () => axisOf(placed, drawing));
+}
+
+interface Axes {
+  readonly x: PlotAxis | undefined;
+  readonly y: PlotAxis | undefined;
+}
+
+/** Trends come last, since how far they reach depends on all the rest; the layers keep the list's order. */
+function drawLayers(block: PlotBlock, drawing: Drawing, axes: Axes): PlotLayer[] {
+  const pairs: DrawnPair[] = [];
+  const made = new Map<number, PlotLayer>();
+  const draw = (place: number, work: () => PlotLayer | undefined): void => {
+    const layer = drawing.attempt(`drawn[${place}]`, work);
+    if (layer !== undefined) made.set(place, layer);
+  };
+  block.drawn.forEach((drawn, place) => {
+    if (drawn.hidden !== true && !("trend" in drawn)) draw(place, () => layerOf(drawing, block, drawn, place, axes, pairs));
+  });
+  const extent = extentOf([...made.values()], block.xAxis);
+  block.drawn.forEach((drawn, place) => {
+    if (drawn.hidden === true || !("trend" in drawn)) return;
+    draw(place, () => {
+      const both = scatterAxes(block, drawing, drawn.trend, "trend", axes);
+      return both === undefined ? undefined : trendLayer(drawing, drawn, place, both, pairs, extent);
+    });
+  });
+  return block.drawn.flatMap((_, place) => made.get(place) ?? []);
+}
+
+function layerOf(
+  drawing: Drawing,
+  block: PlotBlock,
+  drawn: Exclude<Drawn, { trend: string }>,
+  place: number,
+  { x, y }: Axes,
+  pairs: DrawnPair[],
+): PlotLayer | undefined {
+  const needsY = block.plot !== "distribution";
+  if ("annotation" in drawn) return { what: "annotation", drawn: place, text: drawn.annotation, x: drawn.x, y: drawn.y };
+  if ("data" in drawn) {
+    if (drawing.context.block(drawn.data)?.kind !== "data") return undefined;
+    const expressions = { x: samplesPlaced(block, drawn, place, "x"), y: needsY ? samplesPlaced(block, drawn, place, "y") : null };
+    if (expressions.y !== null) pairs.push({ x: expressions.x, y: expressions.y });
+    if (x === undefined || (needsY && y === undefined)) return undefined;
+    const radius = block.plot === "scatter" ? radiusOf(drawn.ellipses ?? "1 sigma") : block.plot === "ternary" ? radiusOf(drawn.ellipses ?? "none") : 0;
+    return samplesLayer(drawing, drawn, place, { x, y: y ?? null }, expressions, radius);
+  }
+  if ("bodies" in drawn) {
+    if (x === undefined || (needsY && y === undefined)) return undefined;
+    return bodiesLayer(drawing, drawn, place, x, y ?? null, needsY ? radiusOf(drawn.ellipses ?? "1 sigma") : 0);
+  }
+  if ("crossing" in drawn) {
+    const both = scatterAxes(block, drawing, drawn.crossing, "crossing", { x, y });
+    return both === undefined ? undefined : crossingLayer(drawing, drawn, place, both, pairs);
+  }
+  const both = scatterAxes(block, drawing, drawn.budget, "path", { x, y });
+  return both === undefined ? undefined : pathLayer(drawing, drawn.budget, place, both);
+}
+
+/** Both axes, on a plot that has lines. @throws CellError on one that has none */
+function scatterAxes(block: PlotBlock, drawing: Drawing, handle: string, what: string, { x, y }: Axes): { x: PlotAxis; y: PlotAxis } | undefined {
+  if (block.plot !== "scatter")
+    throw new CellError(
+      "not-drawn-here",
+      `The ${what} of ${handle} can be drawn on a scatter plot only. Take it off this ${block.plot}, or make the plot a scatter plot.`,
+    );
+  return x === undefined || y === undefined ? undefined : { x, y };
+}
+
+function pathLayer(drawing: Drawing, handle: string, place: number, { x, y }: { readonly x: PlotAxis; readonly y: PlotAxis }): PlotLayer | undefined {
+  const { context } = drawing;
+  const budget = context.block(handle);
+  if (budget?.kind !== "budget") return undefined;
+  const result = context.result(handle);
+  if (result?.kind !== "budget") throw new CellError("no-result", `${handle} has no result to draw. See what ${handle} says.`);
+  const { line, ticks, end } = pathOn(budget, context, x.placed.text, y.placed.text, x.placed.data);
+  Object.assign(drawing.bodiesUsed, result.bodiesUsed);
+  return { what: "path", drawn: place, budget: budget.id, line, ticks, ...(end === undefined ? {} : { end }) };
+}

@@ -2,12 +2,12 @@ import type * as decoding from "lib0/decoding";
 import { IndexeddbPersistence } from "y-indexeddb";
 import { Awareness } from "y-protocols/awareness";
 import { WebsocketProvider } from "y-websocket";
-import * as Y from "yjs";
+import type * as Y from "yjs";
 import { countingSocket } from "./browser/countingSocket";
 import { readDrafts, setAsideOthers, type Draft } from "./browser/drafts";
 import { clearMarks, databaseName, keepPage, markUnsent, setAside, unsentIn, unsentMarks, type KeptPage } from "./browser/keptPages";
 import { SaveLedger, type Save } from "./browser/saveLedger";
-import { holdsPage } from "./document";
+import { emptyDoc, holdsPage } from "./document";
 import { Close, CLIENT_VERSION, closeSentences, isFinal, Message, readAnnouncement, readReceipt, type Announcement, type CloseCode } from "./protocol";
 
 export { hasUnsentEdits, purgeUnsentEdits, unsentEdits } from "./browser/keptPages";
@@ -89,7 +89,7 @@ export function connectPage(address: PageAddress, events: PageEvents): LivePage 
 }
 
 class PageConnection implements LivePage {
-  readonly doc = new Y.Doc();
+  readonly doc = emptyDoc();
   readonly awareness = new Awareness(this.doc);
   private readonly kept: KeptPage | null;
   private readonly takenOver: readonly string[];
@@ -145,6 +145,11 @@ class PageConnection implements LivePage {
       const announcement = readAnnouncement(decoder);
       if (announcement !== null) this.events.onAnnouncement?.(announcement);
     };
+    // Only what this browser says of itself; the provider would repeat to the server whatever it hears of others.
+    this.awareness.off("update", provider._awarenessUpdateHandler);
+    this.awareness.on("update", (changes: unknown, origin: unknown) => {
+      if (origin === "local") provider._awarenessUpdateHandler(changes, origin);
+    });
     provider.on("status", ({ status }) => {
       if (status === "connected") this.tell();
     });

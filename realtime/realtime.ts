@@ -9,7 +9,7 @@ import { Listener } from "./access/listener";
 import { AccessWatch } from "./access/watch";
 import { InProcessBus } from "./bus/inProcess";
 import { ConfigError, type RealtimeConfig } from "./config";
-import { Connection } from "./connection/connection";
+import { closeReason, Connection } from "./connection/connection";
 import { Presence } from "./connection/presence";
 import { readUpgrade } from "./connection/upgrade";
 import { PAGES_CHANNEL, readPageNotice } from "./pageNotices";
@@ -128,6 +128,8 @@ class Realtime implements RunningRealtime {
     socket.on("error", () => socket.destroy());
     this.sockets.handleUpgrade(request, socket, head, (ws) => {
       ws.on("error", () => ws.terminate());
+      // Nothing is read, and so nothing has to be kept, before it is known who it is and the page is loaded.
+      ws.pause();
       void this.receive(ws, request).catch((error: unknown) => {
         console.error("A connection could not be opened:", error instanceof Error ? error.message : error);
         turnAway(ws, Close.notDurable, "The server cannot reach its database just now. The page connects again by itself.");
@@ -146,11 +148,6 @@ class Realtime implements RunningRealtime {
       turnAway(ws, Close.restarting);
       return;
     }
-    const early: [Uint8Array, boolean][] = [];
-    const onEarly = (data: Buffer, isBinary: boolean): void => {
-      if (early.length < 50) early.push([data, isBinary]);
-    };
-    ws.on("message", onEarly);
     const admission = await admit(this.database.db, asked.credentials, asked.pageId);
     if (admission.is === "turned away") {
       turnAway(ws, admission.code, admission.reason);
@@ -173,7 +170,6 @@ class Realtime implements RunningRealtime {
     if (ws.readyState !== ws.OPEN) return;
     const connection = new Connection(ws, asked.pageId, asked.credentials, admission, (expired) => void this.watch.lookAt(expired));
     this.connections.add(connection);
-    ws.off("message", onEarly);
     ws.on("message", (data: Buffer, isBinary) => {
       connection.take(data, isBinary);
     });
@@ -186,8 +182,8 @@ class Realtime implements RunningRealtime {
       const room = this.rooms.find(connection.pageId);
       if (room?.members.size === 0) this.rooms.leaveSoon(room);
     });
-    for (const [data, isBinary] of early) connection.take(data, isBinary);
     await this.enter(connection);
+    ws.resume();
   }
 
   private async enter(connection: Connection): Promise<void> {
@@ -239,6 +235,7 @@ class Realtime implements RunningRealtime {
 }
 
 function turnAway(ws: WebSocket, code: CloseCode, reason: string = closeSentences[code]): void {
-  ws.close(code, reason.length > 120 ? `${reason.slice(0, 119)}…` : reason);
+  ws.close(code, closeReason(reason));
+  ws.resume();
   setTimeout(() => ws.terminate(), 3000).unref();
 }

@@ -11,6 +11,7 @@ import {
   Message,
   MESSAGE_RATE,
   MOST_AWARENESS_BYTES,
+  MOST_LIVE_BYTES,
   readAwareness,
   Sync,
   type CloseCode,
@@ -41,11 +42,11 @@ export class Connection implements Member {
   admission: Admission;
   private received = 0;
   private place: Place | null = null;
-  private early: Uint8Array[] = [];
   private expiry: NodeJS.Timeout | null = null;
   private heardSinceBeat = true;
   private readonly rate = new Rate(MESSAGE_RATE.perSecond, MESSAGE_RATE.burst);
-  // Browsers repeat to the server what they heard of others; that many are no offence.
+  private readonly step1Rate = new Rate(1, 20);
+  // Many browsers repeat to the server what they heard of others; that many are no offence.
   private readonly awarenessRate = new Rate(400, 1000);
 
   constructor(
@@ -79,15 +80,12 @@ export class Connection implements Member {
     this.expiry.unref();
   }
 
-  /** The page is loaded: what came early is read now. */
+  /** The page is loaded; the socket is read from now on. */
   enter(place: Place): void {
     this.place = place;
     place.room.join(this);
     place.presence.join(this);
     if (this.admission.mayEdit) place.room.ask(this);
-    const early = this.early;
-    this.early = [];
-    for (const frame of early) this.read(frame, place);
   }
 
   /** A frame from the browser. */
@@ -103,8 +101,7 @@ export class Connection implements Member {
       this.close(Close.tooFast);
       return;
     }
-    if (this.place === null) this.early.push(frame);
-    else this.read(frame, this.place);
+    if (this.place !== null) this.read(frame, this.place);
   }
 
   private read(frame: Uint8Array, place: Place): void {
@@ -132,7 +129,11 @@ export class Connection implements Member {
   private readSync(decoder: decoding.Decoder, room: Room): void {
     const kind = decoding.readVarUint(decoder);
     if (kind === Sync.step1) {
-      room.answer(this, decoding.readVarUint8Array(decoder));
+      const vector = decoding.readVarUint8Array(decoder);
+      if (vector.length > MOST_LIVE_BYTES) this.close(Close.tooLarge);
+      // Each is answered with what may be a whole page; browsers ask once a connection.
+      else if (!this.step1Rate.take()) this.close(Close.tooFast);
+      else room.answer(this, vector);
       return;
     }
     if (kind !== Sync.step2 && kind !== Sync.update) {
@@ -165,7 +166,7 @@ export class Connection implements Member {
 
   close(code: CloseCode, reason: string = closeSentences[code]): void {
     if (!this.isOpen) return;
-    this.socket.close(code, shorten(reason));
+    this.socket.close(code, closeReason(reason));
     this.gone();
     // A browser that does not answer the close is not waited for.
     setTimeout(() => this.socket.terminate(), isFinal(code) ? 5000 : 2000).unref();
@@ -176,7 +177,6 @@ export class Connection implements Member {
     if (!this.isOpen) return;
     this.isOpen = false;
     if (this.expiry !== null) clearTimeout(this.expiry);
-    this.early = [];
     this.place?.presence.leave(this);
     this.place?.room.leave(this);
   }
@@ -200,7 +200,8 @@ export class Connection implements Member {
   }
 }
 
-function shorten(reason: string): string {
+/** A sentence as a close frame can carry it. */
+export function closeReason(reason: string): string {
   const bytes = new TextEncoder();
   let text = reason;
   while (bytes.encode(text).length > MOST_REASON) text = `${text.slice(0, -2).trimEnd()}…`.replace(/…+$/, "…");

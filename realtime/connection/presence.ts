@@ -123,5 +123,6 @@ export class Presence {
     this.viewers.delete(viewer);
     const own = this.clientOf(viewer);
     if (own !== undefined) this.take(own);
+    if (this.viewers.size === 0) this.past.clear();
   }
 }

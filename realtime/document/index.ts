@@ -15,7 +15,7 @@ export { EditError } from "./editing";
 export { isSame } from "./entryEdits";
 export type { EntryEdits, KeyedEntry } from "./entryEdits";
 export { createUndo } from "./undo";
-export { holdsPage, LOCAL, SHAPE_VERSION } from "./shape";
+export { emptyDoc, holdsPage, LOCAL, SHAPE_VERSION } from "./shape";
 export type { ListName } from "./shape";
 
 // The page, checked: what the server asks of every edit

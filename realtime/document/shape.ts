@@ -127,6 +127,16 @@ export const blocksOf = (doc: Y.Doc): Y.Map<BlockMap> => doc.getMap<BlockMap>("b
 export const pageOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("page");
 export const bodiesOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("bodies");
 
+/**
+ * An empty document whose roots are what pages have there. A root that an update brings before anybody asked for it is
+ * another object, and turns into a map later: transactions would name a part that pages do not have.
+ */
+export function emptyDoc(): Y.Doc {
+  const doc = new Y.Doc();
+  for (const root of [pageOf, blocksOf, bodiesOf]) root(doc);
+  return doc;
+}
+
 /** Whether a document holds a page already; one that does not is still to be loaded, never to be filled (rule D2). */
 export const holdsPage = (doc: Y.Doc): boolean => pageOf(doc).size > 0;
 

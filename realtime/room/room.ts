@@ -1,6 +1,6 @@
 import * as Y from "yjs";
 import type { Bus, Flushed } from "../bus/bus";
-import { headingOf } from "../document";
+import { emptyDoc, headingOf } from "../document";
 import { Close, encodeSync, MOST_LIVE_BYTES, MOST_PAGE_BYTES, MOST_STEP2_BYTES, Sync } from "../protocol";
 import type { EditRow, PageStorage, StoredPage } from "../storage/pageStorage";
 import { applyAndWatch, type Applied } from "./capture";
@@ -217,7 +217,10 @@ export class Room implements FlushTarget<RoomPending> {
   /** Takes over edits that were committed elsewhere, by their sequence numbers. */
   takeCommitted(seqs: readonly bigint[]): void {
     this.tasks.run(async () => {
-      this.apply(await this.setting.storage.fetch(this.pageId, seqs));
+      const updates = await this.setting.storage.fetch(this.pageId, seqs);
+      // Some may be in the base by now.
+      if (updates.length < seqs.length) await this.catchUp();
+      else this.apply(updates);
     });
   }
 
@@ -327,7 +330,7 @@ export class Room implements FlushTarget<RoomPending> {
 
 /** A stored page as a document. */
 function open(stored: StoredPage): { doc: Y.Doc; owners: Map<number, string | null>; bytes: number } {
-  const doc = new Y.Doc();
+  const doc = emptyDoc();
   if (stored.base !== null) Y.applyUpdate(doc, stored.base, "database");
   doc.transact(() => {
     for (const update of stored.updates) Y.applyUpdate(doc, update, "database");

@@ -9,6 +9,8 @@ import { Room } from "./room";
 export class Rooms {
   private readonly open = new Map<string, Promise<Room | null>>();
   private readonly present = new Map<string, Room>();
+  /** Pages dropped while something of theirs was on its way: what becomes of it is waited for. */
+  private readonly leaving = new Map<string, Promise<void>>();
   private readonly bans = new Map<string, number>();
   private readonly evictions = new Map<Room, NodeJS.Timeout>();
   private readonly flusher: Flusher;
@@ -46,6 +48,7 @@ export class Rooms {
   }
 
   private async load(pageId: string): Promise<Room | null> {
+    await this.leaving.get(pageId);
     const stored = await this.storage.load(pageId);
     if (stored === null) return null;
     const room = new Room(pageId, stored, {
@@ -59,12 +62,22 @@ export class Rooms {
         if (this.present.get(pageId) === gone) this.present.delete(pageId);
         clearTimeout(this.evictions.get(gone));
         this.evictions.delete(gone);
+        this.awaitLast(gone);
       },
       ban: (page, user) => void this.bans.set(`${page}/${user}`, Date.now() + this.times.banMs),
     });
     this.present.set(pageId, room);
     this.leaveSoon(room);
     return room;
+  }
+
+  /** A page that is loaded again must not miss an edit that is just being committed. */
+  private awaitLast(gone: Room): void {
+    if (!this.flusher.isBusy(gone)) return;
+    const last = this.flusher.idle(gone).finally(() => {
+      if (this.leaving.get(gone.pageId) === last) this.leaving.delete(gone.pageId);
+    });
+    this.leaving.set(gone.pageId, last);
   }
 
   /** Milliseconds for which somebody is kept out of a page; 0 for nearly everybody. */

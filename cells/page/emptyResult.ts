@@ -1,6 +1,6 @@
 import type { Problem } from "../errors";
-import type { AxisInfo, BlockResult } from "./results";
-import type { Block } from "./schema";
+import type { AxisInfo, BlockResult, TrendResult } from "./results";
+import type { Block, TrendBlock } from "./schema";
 
 const noAxis: AxisInfo = { expression: "", label: "", unit: "1", basis: null };
 
@@ -12,10 +12,8 @@ export function emptyResult(block: Block, problems: readonly Problem[]): BlockRe
       return { kind: "data", samples: 0, setAside: 0, valuesSetAside: 0, amended: 0, columns: [], screening: [], proposed: false, ...all };
     case "formula":
       return { kind: "formula", lines: [], correlation: [], ...all };
-    case "trend": {
-      const axis = (expression: string): AxisInfo => ({ ...noAxis, expression, label: expression });
-      return { kind: "trend", method: block.method, ok: false, n: 0, leftOut: {}, x: axis(block.x), y: axis(block.y), points: [], fromBodies: [], ...all };
-    }
+    case "trend":
+      return emptyTrend(block, problems);
     case "budget":
       return { kind: "budget", ok: false, roots: [], report: [], path: [], shares: [], byCompilation: [], ...all };
     case "plot":
@@ -23,4 +21,10 @@ export function emptyResult(block: Block, problems: readonly Problem[]): BlockRe
     case "note":
       return { kind: "note", values: [], ...all };
   }
+}
+
+export function emptyTrend(block: TrendBlock, problems: readonly Problem[]): TrendResult {
+  const axis = (expression: string): AxisInfo => ({ ...noAxis, expression, label: expression });
+  const { method, x, y } = block;
+  return { kind: "trend", method, ok: false, n: 0, leftOut: {}, x: axis(x), y: axis(y), points: [], fromBodies: [], problems, bodiesUsed: {} };
 }

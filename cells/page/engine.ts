@@ -122,15 +122,15 @@ class Evaluation {
   }
 
   private calculate(step: Step): void {
-    const { block } = step;
     if (step.what === "fit") {
-      const { crossWith: _, ...alone } = block;
+      const { crossWith: _, ...alone } = step.block;
       this.fits.set(
-        block.id,
-        this.memory.recall(`fit:${block.id}`, this.inputs(step), () => this.evaluate(alone)),
+        alone.id,
+        this.memory.recall(`fit:${alone.id}`, this.inputs(step), () => this.evaluate(alone)),
       );
       return;
     }
+    const { block } = step;
     const fit = this.fits.get(block.id);
     const result =
       block.kind === "trend" && block.crossWith === undefined && fit !== undefined

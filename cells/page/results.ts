@@ -182,6 +182,8 @@ export interface BodyDistance {
   readonly body: string;
   /** Mahalanobis distance, dimensionless. */
   readonly distance: number;
+  /** Where a σ of the body is unknown, and so not in the distance. */
+  readonly distanceIs?: "upper bound";
   readonly p: number;
 }
 

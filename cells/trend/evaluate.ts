@@ -1,0 +1,351 @@
+import { CellError, type Problem } from "../errors";
+import { evaluateCondition, evaluateExpression, type Evaluated, type Scope } from "../language";
+import type { BlockContext } from "../page/context";
+import { emptyTrend } from "../page/emptyResult";
+import type { AxisInfo, FitParameter, TrendPoint, TrendResult } from "../page/results";
+import type { TrendBlock } from "../page/schema";
+import { formatNumber } from "../quantity/format";
+import type { Table } from "../table/table";
+import { bodyPoint } from "./bodyPoint";
+import { choosePoints, valueAt, type Chosen } from "./choosePoints";
+import { bodyDistance, crossTrends, withRegion } from "./crossTrends";
+import type { LineForms } from "./crossing";
+import { distanceFromLine, type PointForms } from "./distance";
+import { fitLine, type FittedLine, type LineCovariance } from "./fitLine";
+import { covariance, hasUnknown, variance } from "./linearForm";
+import { residuals } from "./outliers";
+import { commonTerms, fitOf, sampleVariables, withFit, type AxisOfFit, type SampleSource, type TrendFit } from "./trendFit";
+
+/**
+ * A line through samples, how well they keep to it, how far the page's bodies lie from it, and where it crosses another.
+ *
+ * σ are 1σ in display units. Samples are weighted by what was measured on each; what is common to them (the body they are
+ * normalised to) is carried through once, afterwards. What cannot be calculated is a problem with its place; the rest stands.
+ */
+export function evaluateTrend(block: TrendBlock, context: BlockContext): TrendResult {
+  const { crossWith, ...alone } = block;
+  if (crossWith === undefined) return evaluateLine(alone, context);
+  // The page calculates the line first and asks for the crossing afterwards; by itself, the line is calculated here.
+  const known = context.result(block.id);
+  const line = known?.kind === "trend" ? known : evaluateLine(alone, context);
+  return evaluateCrossing(block, crossWith, line, context);
+}
+
+function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
+  const problems = aboutData(block, context);
+  const read = readAxes(block, context, problems);
+  if (read === undefined) return emptyTrend(block, problems);
+  const { x, y, table } = read;
+  const weighs = block.method === "york";
+  const chosen = choosePoints(block, table, x, y, read.where, weighs);
+  problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen, x, y));
+  const base: TrendResult = {
+    ...emptyTrend(block, []),
+    n: chosen.rows.length,
+    leftOut: chosen.leftOut,
+    x: axisInfo(block.x, x),
+    y: axisInfo(block.y, y),
+    bodiesUsed: { ...x.bodiesUsed, ...y.bodiesUsed },
+  };
+  try {
+    const line = fitLine(block.method, block.scatter ?? "likelihood", chosen.points);
+    if (!Number.isFinite(line.slope) || !Number.isFinite(line.intercept))
+      throw new CellError(
+        "not-converged",
+        "No line was found: the iteration leads to no number. See whether the σ are in the right unit, or choose another method.",
+      );
+    return lineResult(block, context, base, read, chosen, line, problems);
+  } catch (error) {
+    if (!(error instanceof CellError)) throw error;
+    return { ...base, problems: [...problems, atRow(error, table, chosen).toProblem(block.id)] };
+  }
+}
+
+interface Axes {
+  readonly scope: Scope;
+  readonly table: Table;
+  readonly x: Evaluated;
+  readonly y: Evaluated;
+  readonly where: Uint8Array | undefined;
+}
+
+/** Reads both axes and the condition; every fault is said at its own place. Undefined where one of them has one. */
+function readAxes(block: TrendBlock, context: BlockContext, problems: Problem[]): Axes | undefined {
+  const attempt = <T>(field: string, work: () => T): T | undefined => {
+    try {
+      return work();
+    } catch (error) {
+      if (!(error instanceof CellError)) throw error;
+      problems.push({ field, ...error.toProblem(block.id) });
+      return undefined;
+    }
+  };
+  const scope = attempt("data", () => context.scope(block.data));
+  const table = scope?.table;
+  if (scope === undefined || table == null) return undefined;
+  const axis = (field: "x" | "y"): Evaluated | undefined =>
+    attempt(field, () => {
+      const text = block[field];
+      const evaluated = evaluateExpression(scope, text, { block: block.id, field });
+      requirePerSample(evaluated, table, text, field);
+      return evaluated;
+    });
+  const x = axis("x");
+  const y = axis("y");
+  const condition = block.where ?? "";
+  const where = condition.trim() === "" ? undefined : attempt("where", () => evaluateCondition(scope, condition, { block: block.id, field: "where" }));
+  const whereFailed = condition.trim() !== "" && where === undefined;
+  return x === undefined || y === undefined || whereFailed ? undefined : { scope, table, x, y, where };
+}
+
+function requirePerSample(evaluated: Evaluated, table: Table, text: string, field: "x" | "y"): void {
+  const place = { field, span: [0, text.length] as const };
+  if (evaluated.byClass !== undefined)
+    throw new CellError(
+      "not-per-sample",
+      `${text.trim()} has one value for each class, and a line goes through samples. Put the class means into a data block of their own, with their σ.`,
+      place,
+    );
+  if (!evaluated.perSample)
+    throw new CellError(
+      "not-per-sample",
+      `${text.trim()} has one value for all samples, so no line can be put through it. Use something measured on each sample.`,
+      place,
+    );
+  if (evaluated.table !== table)
+    throw new CellError(
+      "table-mismatch",
+      `${text.trim()} stands over the samples of ${evaluated.table?.handle ?? "another table"}, and this trend over those of ${table.handle}. Join the tables, or choose the other one.`,
+      place,
+    );
+}
+
+/** A trend over data that are themselves faulty says so. */
+function aboutData(block: TrendBlock, context: BlockContext): Problem[] {
+  const faults = context.result(block.data)?.problems.filter((problem) => problem.severity === "error") ?? [];
+  const [first] = faults;
+  if (first === undefined) return [];
+  const more = faults.length === 1 ? "a problem" : `${faults.length} problems`;
+  return [
+    {
+      code: "data-has-problem",
+      severity: "warning",
+      block: block.id,
+      field: "data",
+      text: `${block.data} has ${more} of its own, and this line rests on it as it is: ${first.text}`,
+    },
+  ];
+}
+
+/** What is to be known of the points: σ that lack, are partly known, assumed, or too large for first order. */
+function aboutPoints(block: TrendBlock, { rows, leftOut, partlyKnown, assumed }: Chosen, x: Evaluated, y: Evaluated): Problem[] {
+  const found: Problem[] = [];
+  const say = (code: string, severity: Problem["severity"], text: string): void => void found.push({ code, severity, block: block.id, text });
+  const samples = (count: number): string => `${count} ${count === 1 ? "sample" : "samples"}`;
+  const without = leftOut["without σ"] ?? 0;
+  if (without > 0)
+    say(
+      "without-sigma",
+      "warning",
+      `${samples(without)} ${without === 1 ? "has" : "have"} no σ on x or y and ${without === 1 ? "is" : "are"} left out, since York's fit weighs by σ. Give ${without === 1 ? "its" : "their"} σ, assume one in the table, or use ordinary least squares.`,
+    );
+  if (block.method === "york" && partlyKnown > 0)
+    say(
+      "sigma-partly-known",
+      "warning",
+      `Of ${samples(partlyKnown)} only a part of the σ is known, so ${partlyKnown === 1 ? "it weighs" : "they weigh"} too much. Give the σ that lack.`,
+    );
+  if (block.method === "york" && assumed > 0) say("assumed-sigma", "note", `At least ${samples(assumed)} ${assumed === 1 ? "leans" : "lean"} on an assumed σ.`);
+  let rough = 0;
+  for (const row of rows) if (valueOf(x.nearEdge, row) === 1 || valueOf(y.nearEdge, row) === 1) rough++;
+  if (block.method === "york" && rough > 0)
+    say(
+      "first-order",
+      "warning",
+      `In ${samples(rough)} the σ of a denominator is over 10 % of its value, or a function's edge lies within 3σ; ${rough === 1 ? "its" : "their"} errors on the axes are of first order and rough.`,
+    );
+  return found;
+}
+
+function valueOf(flags: Uint8Array, row: number): number {
+  return (flags.length === 1 ? flags[0] : flags[row]) ?? 0;
+}
+
+function atRow(error: CellError, table: Table, { rows }: Chosen): CellError {
+  const place = error.place.row;
+  if (typeof place !== "number") return error;
+  const row = rows[place] ?? 0;
+  const name = table.samples[row] ?? "";
+  return new CellError(error.code, name === "" ? error.message : `${name}: ${error.message}`, { ...error.place, row: table.rowIds[row] ?? place });
+}
+
+function axisInfo(expression: string, { unit, basis }: Evaluated): AxisInfo {
+  return { expression, label: expression, unit: unit.symbol, basis };
+}
+
+function lineResult(
+  block: TrendBlock,
+  context: BlockContext,
+  base: TrendResult,
+  { scope, table, x, y }: Axes,
+  chosen: Chosen,
+  line: FittedLine,
+  problems: Problem[],
+): TrendResult {
+  const axes = { x: axisOfFit(block.x, block, context, x), y: axisOfFit(block.y, block, context, y) };
+  const commons = commonTerms(chosen.rows, line.ofChanges, x, y);
+  const sourceOf = (of: LineCovariance): SampleSource => ({
+    handle: block.id,
+    table,
+    x,
+    y,
+    yMeaning: axes.y.meaning,
+    rows: chosen.rows,
+    influence: line.ofErrors,
+    errors: line.errors,
+    covariance: of,
+  });
+  const formsOf = (source: SampleSource): LineForms => {
+    const [slope, intercept] = sampleVariables(source, line.slope, line.intercept);
+    return {
+      slope: { value: line.slope, terms: [{ variable: slope, partial: 1 }, ...commons.slope] },
+      intercept: { value: line.intercept, terms: [{ variable: intercept, partial: 1 }, ...commons.intercept] },
+    };
+  };
+  const plainSource = sourceOf(line.plain);
+  const plain = formsOf(plainSource);
+  const wideSource = line.withScatter === undefined ? undefined : sourceOf(line.withScatter);
+  const wide = wideSource === undefined ? undefined : formsOf(wideSource);
+  const inUse = line.usesScatter && wide !== undefined && wideSource !== undefined ? { line: wide, source: wideSource } : { line: plain, source: plainSource };
+  problems.push(...aboutFit(block, line));
+
+  const at = { block: block.id };
+  const points: { body: string; point: PointForms }[] = context.aliases.flatMap((body) => {
+    const point = bodyPoint(scope, axes, block.x, block.y, body, at);
+    return point === undefined ? [] : [{ body, point }];
+  });
+  const bodiesUsed = { ...base.bodiesUsed };
+  for (const { body } of points) {
+    const id = context.bodies(body)?.id;
+    if (id !== undefined) bodiesUsed[body] = id;
+  }
+  const partlyKnown = chosen.partlyKnown > 0 && block.method === "york";
+  const parameter = (which: "slope" | "intercept"): FitParameter => ({
+    value: line[which],
+    sigma: sigmaOf(plain[which]),
+    sigmaWithScatter: wide === undefined ? null : sigmaOf(wide[which]),
+    ...(partlyKnown || hasUnknown(plain[which]) ? { sigmaIs: "lower bound" as const } : {}),
+  });
+  const fit: TrendFit = { handle: block.id, ...axes, ...inUse, quantile: line.quantile, partlyKnown };
+  const result: TrendResult = {
+    ...base,
+    ok: true,
+    slope: parameter("slope"),
+    intercept: parameter("intercept"),
+    covariance: covariance(plain.slope, plain.intercept),
+    ...(wide === undefined ? {} : { covarianceWithScatter: covariance(wide.slope, wide.intercept) }),
+    ...line.goodness,
+    ...(line.scatter === undefined || !Number.isFinite(line.scatter) ? {} : { scatter: line.scatter }),
+    usesScatter: line.usesScatter,
+    converged: line.converged,
+    points: pointsOf(block, table, chosen, line, x, y),
+    fromBodies: points.flatMap(({ body, point }) => bodyDistance(body, distanceFromLine(point, inUse.line))),
+    problems,
+    bodiesUsed,
+  };
+  return withFit(result, fit);
+}
+
+function axisOfFit(expression: string, block: TrendBlock, context: BlockContext, { unit, basis, remark }: Evaluated): AxisOfFit {
+  return { unit, basis, remark, meaning: withoutBrackets(context.expand(expression, block.data)) };
+}
+
+/** Text without spaces, and without brackets round the whole of it, to be compared with another. */
+function withoutBrackets(text: string): string {
+  let bare = text.replace(/\s+/gu, "");
+  for (;;) {
+    if (!bare.startsWith("(") || !bare.endsWith(")")) return bare;
+    let depth = 0;
+    for (let i = 0; i < bare.length - 1; i++) {
+      if (bare[i] === "(") depth++;
+      if (bare[i] === ")") depth--;
+      if (depth === 0) return bare;
+    }
+    bare = bare.slice(1, -1);
+  }
+}
+
+function sigmaOf(form: LineForms["slope"]): number | null {
+  const sigma = Math.sqrt(Math.max(0, variance(form)));
+  return Number.isFinite(sigma) ? sigma : null;
+}
+
+function aboutFit(block: TrendBlock, line: FittedLine): Problem[] {
+  const found: Problem[] = [];
+  const say = (code: string, severity: Problem["severity"], text: string): void => void found.push({ code, severity, block: block.id, text });
+  if (!line.converged)
+    say(
+      "not-converged",
+      "warning",
+      "The iteration did not settle on one slope; the line given is the last it came to. See whether single σ are far too large or too small.",
+    );
+  const { goodness } = line;
+  if (goodness !== undefined && goodness.p < 0.05 && !line.usesScatter)
+    say(
+      "scatter-ignored",
+      "warning",
+      `The points scatter more than their errors explain (MSWD ${formatNumber(goodness.mswd, 3)}, p ${formatNumber(goodness.p, 2)}), and this trend is set to leave that out: its σ are too small.`,
+    );
+  if (line.usesScatter && line.scatter === 0)
+    say(
+      "scatter-not-common",
+      "warning",
+      "The points scatter more than their errors explain, but no scatter common to all of them does it: single points or their σ are at fault. Look at the outliers.",
+    );
+  if (block.method === "theil-sen") say("intercept-convention", "note", "The intercept is the median of y − slope · x over the samples.");
+  return found;
+}
+
+function pointsOf(block: TrendBlock, table: Table, { rows, points }: Chosen, line: FittedLine, x: Evaluated, y: Evaluated): TrendPoint[] {
+  const found = residuals(block.method, points, line);
+  const correlation = x.correlation(y);
+  return Array.from(rows, (row, i) => ({
+    index: row,
+    row: table.rowIds[row] ?? row,
+    sample: table.samples[row] ?? "",
+    class: table.classes[row] ?? "",
+    x: points.x[i] ?? Number.NaN,
+    y: points.y[i] ?? Number.NaN,
+    sigmaX: valueAt(x.sigma, row),
+    sigmaY: valueAt(y.sigma, row),
+    correlation: valueAt(correlation, row),
+    residual: found[i]?.residual ?? Number.NaN,
+    outlier: found[i]?.outlier ?? false,
+  }));
+}
+
+function evaluateCrossing(block: TrendBlock, crossWith: string, line: TrendResult, context: BlockContext): TrendResult {
+  const add = (problem: Problem): TrendResult => ({ ...line, problems: [...line.problems, problem] });
+  const at = { severity: "error" as const, block: block.id, field: "crossWith" };
+  const other = context.result(crossWith);
+  // A handle that means no trend is said by the page itself.
+  if (other?.kind !== "trend") return line;
+  const first = fitOf(line);
+  if (first === undefined) return line;
+  const second = fitOf(other);
+  if (second === undefined) return add({ code: "no-line", ...at, text: `${crossWith} has no line, so there is nothing to cross. See what ${crossWith} says.` });
+  const bodies = context.aliases.flatMap((body) => {
+    const point = bodyPoint(context.scope(block.data), first, block.x, block.y, body, { block: block.id });
+    return point === undefined ? [] : [{ body, point }];
+  });
+  const { crossing, region, problems } = crossTrends(block.id, first, second, bodies);
+  return withRegion(
+    {
+      ...line,
+      ...(crossing === undefined ? {} : { crossing }),
+      problems: [...line.problems, ...problems],
+      bodiesUsed: { ...line.bodiesUsed, ...other.bodiesUsed },
+    },
+    region,
+  );
+}

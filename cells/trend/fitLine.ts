@@ -1,0 +1,144 @@
+import { chiSquareQuantile, chiSquareSurvival, studentTwoSidedQuantile, Z_95 } from "../numeric";
+import type { TrendBlock } from "../page/schema";
+import { propagate, yorkInfluence } from "./influence";
+import { intrinsicScatter } from "./intrinsicScatter";
+import type { FitPoints, Influence, LineFit } from "./lineFit";
+import { ordinaryLeastSquares, type ScatterLine } from "./ordinaryLeastSquares";
+import { reducedMajorAxis } from "./reducedMajorAxis";
+import { theilSen } from "./theilSen";
+import { york } from "./york";
+
+export type LineCovariance = Pick<LineFit, "slopeVariance" | "interceptVariance" | "covariance">;
+
+/** How the errors of a line's points are made up, for what two lines over the same samples have in common. */
+export interface ErrorModel {
+  /** `errors`: those given with the points; `residuals`: the spread of the points in y; `unknown`: no linear answer to them. */
+  readonly from: "errors" | "residuals" | "unknown";
+  /** 1σ in y beside the errors of the points. */
+  readonly extraY: number;
+  /** All of it times this: √MSWD where that is chosen. */
+  readonly factor: number;
+}
+
+/** How well the points keep to a line for their errors. */
+export interface Goodness {
+  readonly S: number;
+  readonly mswd: number;
+  readonly mswdExpected: readonly [number, number];
+  readonly p: number;
+}
+
+/** A line through points by any of the methods, its covariances from the points alone, nothing common to them in it. */
+export interface FittedLine {
+  readonly slope: number;
+  readonly intercept: number;
+  readonly converged: boolean;
+  readonly goodness?: Goodness;
+  /** Maximum-likelihood scatter beyond the errors, 1σ in y; left out where it was not asked for. */
+  readonly scatter?: number;
+  readonly usesScatter: boolean;
+  readonly plain: LineCovariance;
+  /** Undefined where no scatter is to enter. */
+  readonly withScatter?: LineCovariance;
+  /** Error of each point in y about the line, 1σ, as the line in use takes it. */
+  readonly pointSigma: Float64Array;
+  /** Share that each point has in the line's height at its own x. */
+  readonly leverage: Float64Array;
+  readonly ofErrors: Influence;
+  readonly ofChanges: Influence;
+  readonly errors: ErrorModel;
+  /** Half-width of a 95 % band over its 1σ. */
+  readonly quantile: number;
+}
+
+/** Below this the points scatter more than their errors say. */
+const SIGNIFICANT = 0.05;
+
+/** @throws CellError where no line can be put through the points by this method */
+export function fitLine(method: TrendBlock["method"], scatter: NonNullable<TrendBlock["scatter"]>, points: FitPoints): FittedLine {
+  switch (method) {
+    case "york":
+      return yorkLine(points, scatter);
+    case "ordinary least squares":
+      return residualLine(points, ordinaryLeastSquares(points), "residuals");
+    case "reduced major axis":
+      return residualLine(points, reducedMajorAxis(points), "unknown");
+    case "theil-sen":
+      return residualLine(points, theilSen(points), "unknown");
+  }
+}
+
+/**
+ * The line is York's, whatever its points scatter; the scatter widens its σ. With scatter s its variance is that of York's
+ * estimator when each y has the variance σy² + s², so both σ belong to the one slope that is shown.
+ */
+function yorkLine(points: FitPoints, rule: NonNullable<TrendBlock["scatter"]>): FittedLine {
+  const fit = york(points);
+  const n = points.x.length;
+  const degrees = n - 2;
+  const goodness: Goodness = {
+    S: fit.S,
+    mswd: fit.S / degrees,
+    mswdExpected: [chiSquareQuantile(0.025, degrees) / degrees, chiSquareQuantile(0.975, degrees) / degrees],
+    p: chiSquareSurvival(fit.S, degrees),
+  };
+  const { ofErrors, ofChanges } = yorkInfluence(points, fit);
+  const plain: LineCovariance = { slopeVariance: fit.slopeVariance, interceptVariance: fit.interceptVariance, covariance: fit.covariance };
+  const usesScatter = rule !== "none" && goodness.p < SIGNIFICANT;
+  const scatter = rule === "likelihood" && fit.converged ? intrinsicScatter(points, fit).scatter : undefined;
+  const factor = rule === "root mswd" ? Math.sqrt(Math.max(1, goodness.mswd)) : 1;
+  const withScatter =
+    rule === "none" ? undefined : rule === "root mswd" ? scaled(plain, factor * factor) : scatter === 0 ? plain : propagate(ofErrors, points, square(scatter));
+  const extraY = usesScatter ? (scatter ?? 0) : 0;
+  const inUse = usesScatter ? factor : 1;
+  const leverage = new Float64Array(n);
+  for (let i = 0; i < n; i++) leverage[i] = leverageOf(ofErrors, points, i);
+  return {
+    slope: fit.slope,
+    intercept: fit.intercept,
+    converged: fit.converged,
+    goodness,
+    ...(scatter === undefined ? {} : { scatter }),
+    usesScatter,
+    plain,
+    ...(withScatter === undefined ? {} : { withScatter }),
+    pointSigma: fit.weight.map((w) => inUse * Math.sqrt(1 / w + extraY * extraY)),
+    leverage,
+    ofErrors,
+    ofChanges,
+    errors: { from: "errors", extraY, factor: inUse },
+    quantile: Z_95,
+  };
+}
+
+function square(scatter: number | undefined): number {
+  return scatter === undefined ? Number.NaN : scatter * scatter;
+}
+
+function scaled({ slopeVariance, interceptVariance, covariance }: LineCovariance, by: number): LineCovariance {
+  return { slopeVariance: slopeVariance * by, interceptVariance: interceptVariance * by, covariance: covariance * by };
+}
+
+/** A line whose σ come from the points' own distances to it: the σ of each point are not in it. */
+function residualLine(points: FitPoints, line: ScatterLine, from: ErrorModel["from"]): FittedLine {
+  const n = points.x.length;
+  const leverage = new Float64Array(n);
+  if (from === "residuals") for (let i = 0; i < n; i++) leverage[i] = leverageOf(line.influence, points, i);
+  return {
+    slope: line.slope,
+    intercept: line.intercept,
+    converged: true,
+    usesScatter: false,
+    plain: { slopeVariance: line.slopeVariance, interceptVariance: line.interceptVariance, covariance: line.covariance },
+    pointSigma: new Float64Array(n).fill(line.residualSd),
+    leverage,
+    ofErrors: line.influence,
+    ofChanges: line.influence,
+    errors: { from, extraY: line.residualSd, factor: 1 },
+    quantile: studentTwoSidedQuantile(0.95, n - 2),
+  };
+}
+
+function leverageOf(influence: Influence, points: FitPoints, i: number): number {
+  return (influence.interceptY[i] ?? 0) + (points.x[i] ?? 0) * (influence.slopeY[i] ?? 0);
+}

@@ -115,7 +115,7 @@ export const oxides = [
 const properCase: ReadonlyMap<string, string> = new Map([...oxides, "FeS"].map((oxide) => [oxide.toLowerCase(), oxide]));
 
 /**
- * Mass of `to` per mass of `from`, both standing for the same element: MgO → Mg is 0.603036. Where `to` is an element that
+ * Mass of `to` per mass of `from`, both standing for the same element: MgO → Mg is 0.603042. Where `to` is an element that
  * `from` holds beside others (Fe of Mg2SiO4's kin, S of FeS), its mass in it. Undefined where the two share no element.
  */
 export function massFactor(from: string, to: string): number | undefined {

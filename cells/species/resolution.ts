@@ -29,7 +29,7 @@ export interface Candidate {
   readonly terms: readonly Term[];
   /** True where this is one column taken as it stands. */
   readonly asItStands: boolean;
-  /** Names the conversion: "Mg = MgO × 0.603036"; for a column as it stands, its name alone. */
+  /** Names the conversion: "Mg = MgO × 0.603042"; for a column as it stands, its name alone. */
   readonly sentence: string;
 }
 

@@ -1,12 +1,12 @@
 import { CellError } from "../errors";
-import { evaluateExpression, type Evaluated } from "../language";
+import type { Evaluated } from "../language";
 import type { PlotLayer } from "../page/results";
 import type { Drawn } from "../page/schema";
-import { bodyPoint, formOf, nameInFormula, valueOnBody } from "../trend/bodyPoint";
 import { covariance, hasUnknown, variance, type LinearForm } from "../trend/linearForm";
 import { conversion, requireOnAxis, type PlotAxis } from "./axes";
 import { contour } from "./contour";
 import type { Drawing } from "./drawing";
+import { valueOnBody } from "./valueOnBody";
 
 export type BodiesDrawn = Extract<Drawn, { bodies: readonly string[] }>;
 type BodyDrawn = Extract<PlotLayer, { what: "bodies" }>["bodies"][number];
@@ -28,13 +28,11 @@ function bodyDrawn(drawing: Drawing, name: string, field: string, x: PlotAxis, y
     throw new CellError("unknown-body", `There is no body ${name}. Give the page an alias of this name, or write the id of a compilation, such as CI_PLJ14.`, {
       field,
     });
-  const scope = context.scope(x.placed.data);
   const at = { block: block.id, field };
-  const whole = y !== null && x.placed.data === y.placed.data ? bodyPoint(scope, x.placed.text, y.placed.text, name, at) : undefined;
-  const onX = whole?.xEvaluated ?? valueOnBody(scope, x.placed.text, name, at);
-  const onY = y === null ? null : (whole?.yEvaluated ?? valueOnBody(context.scope(y.placed.data), y.placed.text, name, at));
-  if (onX === undefined || onY === undefined) {
-    drawing.warn("not-on-body", field, `${name} is not drawn: ${whyNot(drawing, name, onX === undefined ? x : (y ?? x), field)}`);
+  const onX = valueOnBody(context.scope(x.placed.data), x.placed.text, name, at);
+  const onY = y === null ? null : valueOnBody(context.scope(y.placed.data), y.placed.text, name, at);
+  if (onX instanceof CellError || onY instanceof CellError) {
+    drawing.warn("not-on-body", field, `${name} is not drawn: ${onX instanceof CellError ? onX.message : onY instanceof CellError ? onY.message : ""}`);
     return undefined;
   }
   requireOnAxis(x, `${x.placed.text} on ${name}`, onX, field);
@@ -67,23 +65,14 @@ function bodyDrawn(drawing: Drawing, name: string, field: string, x: PlotAxis, y
 
 /** The value on an axis as a form of what the body's source gives, in the axis' unit. */
 function inUnitOf(axis: PlotAxis, evaluated: Evaluated): LinearForm {
-  const { value, terms } = formOf(evaluated);
   const to = conversion(evaluated.unit, axis.unit);
-  return { value: to.value(value), terms: terms.map(({ variable, partial }) => ({ variable, partial: partial * to.factor })) };
+  return {
+    value: to.value(evaluated.value[0] ?? Number.NaN),
+    terms: evaluated.common.map(({ variable, partial }) => ({ variable, partial: (partial[0] ?? 0) * to.factor })),
+  };
 }
 
 /** 1σ of a form; null where a σ that belongs in it is unknown. */
 function sigmaOf(form: LinearForm): number | null {
   return hasUnknown(form) ? null : Math.sqrt(Math.max(0, variance(form)));
-}
-
-/** The language's own sentence for why an expression has no value on a body. */
-function whyNot(drawing: Drawing, name: string, { placed }: PlotAxis, field: string): string {
-  try {
-    evaluateExpression(drawing.context.scope(placed.data), `at((${placed.text}), ${nameInFormula(name)})`, { block: drawing.block.id, field });
-    return `${placed.text} has no value there.`;
-  } catch (error) {
-    if (error instanceof CellError) return error.message;
-    throw error;
-  }
 }

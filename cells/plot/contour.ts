@@ -1,6 +1,7 @@
 import { CHI2_95_TWO } from "../numeric";
 import type { Curve } from "../page/results";
 import type { Ellipses } from "../page/schema";
+import { ellipseCurve } from "../trend/region";
 
 /** Mahalanobis radius of an ellipse as it is asked for; 0 for none. In two dimensions 1σ holds 39 %, 2σ 86 %; 95 % is √5.9915. */
 export function radiusOf(ellipses: Ellipses): number {
@@ -16,29 +17,18 @@ export function radiusOf(ellipses: Ellipses): number {
   }
 }
 
-const CORNERS = 64;
-/** Cosine and sine of 2π/64. */
-const COS_STEP = 0.9951847266721969;
-const SIN_STEP = 0.0980171403295606;
-
 /**
- * Contour of a bivariate normal at a Mahalanobis radius, as a closed run of 65 points: x = r·σx·cos θ,
- * y = r·σy·(ρ·cos θ + √(1−ρ²)·sin θ), the Cholesky factor of the covariance applied to a circle.
+ * Contour of a bivariate normal at a Mahalanobis radius, as a run of points that ends where it began.
  *
  * @returns undefined where a σ is unknown, or both are 0
  */
 export function contour(x: number, y: number, sigmaX: number, sigmaY: number, correlation: number, radius: number): Curve | undefined {
   if (!(sigmaX >= 0 && sigmaY >= 0) || (sigmaX === 0 && sigmaY === 0) || !(radius > 0)) return undefined;
   const rho = Number.isFinite(correlation) ? Math.max(-1, Math.min(1, correlation)) : 0;
-  const rest = Math.sqrt(1 - rho * rho);
-  const curve = { x: new Float64Array(CORNERS + 1), y: new Float64Array(CORNERS + 1) };
-  let [cos, sin] = [1, 0];
-  for (let i = 0; i < CORNERS; i++) {
-    curve.x[i] = x + radius * sigmaX * cos;
-    curve.y[i] = y + radius * sigmaY * (rho * cos + rest * sin);
-    [cos, sin] = [cos * COS_STEP - sin * SIN_STEP, sin * COS_STEP + cos * SIN_STEP];
-  }
-  curve.x[CORNERS] = curve.x[0] ?? x;
-  curve.y[CORNERS] = curve.y[0] ?? y;
-  return curve;
+  return closed(ellipseCurve(x, y, { xx: sigmaX * sigmaX, xy: rho * sigmaX * sigmaY, yy: sigmaY * sigmaY }, radius));
+}
+
+/** A curve with its first point again at the end. */
+export function closed({ x, y }: Curve): Curve {
+  return { x: Float64Array.from([...x, x[0] ?? Number.NaN]), y: Float64Array.from([...y, y[0] ?? Number.NaN]) };
 }

@@ -42,7 +42,9 @@ export class Drawing {
       return work();
     } catch (error) {
       if (!(error instanceof CellError)) throw error;
-      this.note({ field, ...error.toProblem(this.block.id) });
+      const { span, ...problem } = error.toProblem(this.block.id);
+      // The expressions of a ternary are put together from those people wrote, so places in them mean nothing to people.
+      this.note({ field, ...problem, ...(span === undefined || this.block.plot === "ternary" ? {} : { span }) });
       return undefined;
     }
   }

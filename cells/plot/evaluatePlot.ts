@@ -1,7 +1,7 @@
 import { CellError } from "../errors";
 import { pathOn } from "../budget";
 import type { BlockContext } from "../page/context";
-import type { AxisInfo, PlotLayer, PlotResult } from "../page/results";
+import type { PlotLayer, PlotResult } from "../page/results";
 import type { Drawn, PlotBlock } from "../page/schema";
 import { axisOf, axisPlaced, nameOnly, type PlotAxis } from "./axes";
 import { bodiesLayer } from "./bodiesLayer";
@@ -28,17 +28,16 @@ export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResul
   const shown = block.plot === "ternary" ? ternaryBlock(block, drawing) : block;
   const axes = { x: readAxis(shown, "x", drawing), y: block.plot === "distribution" ? undefined : readAxis(shown, "y", drawing) };
   const layers = drawLayers(shown, drawing, axes);
-  return finish(
-    drawing,
+  return {
+    kind: "plot",
+    plot: block.plot,
+    x: axes.x?.info ?? nameOnly(axisPlaced(shown, "x", drawing)?.text),
+    y: axes.y?.info ?? nameOnly(block.plot === "distribution" ? undefined : axisPlaced(shown, "y", drawing)?.text),
     layers,
-    axes.x?.info ?? nameOnly(axisPlaced(shown, "x", drawing)?.text),
-    axes.y?.info ?? nameOnly(axes.x === undefined ? undefined : axisPlaced(shown, "y", drawing)?.text),
-  );
-}
-
-export function finish(drawing: Drawing, layers: readonly PlotLayer[], x: AxisInfo, y: AxisInfo): PlotResult {
-  const { block, problems, bodiesUsed } = drawing;
-  return { kind: "plot", plot: block.plot, x, y, layers, ...countDrawn(layers, block.plot), problems, bodiesUsed };
+    ...countDrawn(layers, block.plot),
+    problems: drawing.problems,
+    bodiesUsed: drawing.bodiesUsed,
+  };
 }
 
 function readAxis(block: PlotBlock, axis: "x" | "y", drawing: Drawing): PlotAxis | undefined {

@@ -1,10 +1,10 @@
 import { CellError } from "../errors";
-import { isPlainName, writeName, type Evaluated } from "../language";
+import { writeName, type Evaluated } from "../language";
 import type { AxisInfo, PlotLayer, PlotPoints, PlotResult } from "../page/results";
 import type { Drawn } from "../page/schema";
 import { State } from "../quantity/state";
 import { condensationTemperature, elementsByCondensation, parseSpecies, resolveSpecies } from "../species";
-import { nameInFormula, valueOnBody } from "../trend/bodyPoint";
+import { valueOnBody } from "./valueOnBody";
 import type { Drawing } from "./drawing";
 import { countDrawn } from "./countDrawn";
 import { at, chosenRows, emptyPoints, requireValuePerSample, samplesOf, tableOf, type SamplesDrawn } from "./samplesLayer";
@@ -64,7 +64,7 @@ function samplesLayers(drawing: Drawing, drawn: SamplesDrawn, place: number, nor
   const chosen = chosenRows(drawing, drawn, place);
   return columnsOf(drawing, drawn, place, byTemperature, named).flatMap((column): PlotLayer[] => {
     const layer = drawing.attempt(column.field, () => {
-      const placed = { text: `norm((${column.text}), ${nameInFormula(normaliser)})`, data: drawn.data, field: column.field };
+      const placed = { text: `norm((${column.text}), ${writeName(normaliser)})`, data: drawn.data, field: column.field };
       const evaluated = drawing.evaluate(placed);
       requireValuePerSample(evaluated, table, { ...placed, text: column.text });
       return samplesOf(table, drawn, place, 0, pointsAt(evaluated, column.place, table.rows, table.setAside, chosen, drawing.block.yAxis?.scale === "log"));
@@ -100,7 +100,7 @@ function columnsOf(drawing: Drawing, drawn: SamplesDrawn, place: number, byTempe
   return sorted.flatMap((text): Column[] => {
     const field = drawn.values === undefined ? `drawn[${place}]` : `drawn[${place}].values[${drawn.values.indexOf(text)}]`;
     const column = drawing.attempt(field, () => ({
-      text: isPlainName(text) ? writeName(text) : text,
+      text,
       place: placeOf(text, byTemperature, named, order),
       field,
     }));
@@ -161,8 +161,8 @@ function bodiesOf(drawing: Drawing, names: readonly string[], place: number, nor
     return texts.flatMap((text) => {
       const element = elementOf(text);
       if (element === undefined || (byTemperature && condensationTemperature(element) === undefined)) return [];
-      const evaluated = valueOnBody(scope, `norm(${element}, ${nameInFormula(normaliser)})`, name, { block: block.id, field });
-      if (evaluated === undefined) return [];
+      const evaluated = valueOnBody(scope, `norm(${element}, ${writeName(normaliser)})`, name, { block: block.id, field });
+      if (evaluated instanceof CellError) return [];
       drawing.bodiesUsed[name] = body.id;
       const sigma = evaluated.sigma[0] ?? Number.NaN;
       const known = Number.isFinite(sigma) && evaluated.lowerBound[0] !== 1;

@@ -1,8 +1,8 @@
 import { CellError } from "../errors";
-import { exp, log, Z_95 } from "../numeric";
-import type { Band, Curve, PlotLayer, TrendResult } from "../page/results";
+import { exp, log } from "../numeric";
+import type { Band, PlotLayer, TrendResult } from "../page/results";
 import type { Drawn, TrendBlock } from "../page/schema";
-import { covariance, variance } from "../trend/linearForm";
+import { bandOf, lineAt } from "../trend/band";
 import { fitOf } from "../trend/trendFit";
 import { compact, type PlotAxis } from "./axes";
 import { contour, radiusOf } from "./contour";
@@ -47,12 +47,11 @@ export function trendLayer(
     drawing.warn("no-line", field, `${drawn.trend} has no line to draw. See what ${drawn.trend} says.`);
     return undefined;
   }
-  Object.assign(drawing.bodiesUsed, fit.x.bodiesUsed, fit.y.bodiesUsed);
+  Object.assign(drawing.bodiesUsed, fit.source.x.bodiesUsed, fit.source.y.bodiesUsed);
   const range = rangeOf(found.result);
   const places = placesBetween(Math.min(range[0], extent.from), Math.max(range[1], extent.to), drawing.block.xAxis?.scale === "log");
-  const { slope, intercept } = fit.line;
-  const line: Curve = { x: places, y: places.map((x) => intercept.value + slope.value * x) };
-  const band = drawn.band === false ? undefined : bandOf(line, [variance(intercept), covariance(intercept, slope), variance(slope)]);
+  const line = lineAt(fit, places);
+  const band = drawn.band === false ? undefined : knownBand(bandOf(fit, places));
   return {
     what: "trend",
     drawn: place,
@@ -83,7 +82,7 @@ export function crossingLayer(
     return undefined;
   }
   const fit = fitOf(found.result);
-  Object.assign(drawing.bodiesUsed, fit?.x.bodiesUsed, fit?.y.bodiesUsed);
+  Object.assign(drawing.bodiesUsed, fit?.source.x.bodiesUsed, fit?.source.y.bodiesUsed);
   const [sigmaX, sigmaY] = [crossing.x.sigma ?? Number.NaN, crossing.y.sigma ?? Number.NaN];
   const correlation = sigmaX > 0 && sigmaY > 0 ? crossing.covariance / (sigmaX * sigmaY) : 0;
   if (crossing.region === "simulated")
@@ -194,9 +193,7 @@ function placesBetween(from: number, to: number, isLog: boolean): Float64Array {
   return places;
 }
 
-/** Where the line itself lies with 95 %: ± 1.96 √(var a + 2x cov(a, b) + x² var b). */
-function bandOf({ x, y }: Curve, [aa, ab, bb]: readonly [number, number, number]): Band | undefined {
-  const half = x.map((place) => Z_95 * Math.sqrt(Math.max(0, aa + 2 * place * ab + place * place * bb)));
-  if (!half.every((value) => Number.isFinite(value)) || half.every((value) => value === 0)) return undefined;
-  return { x, lower: y.map((value, i) => value - (half[i] ?? 0)), upper: y.map((value, i) => value + (half[i] ?? 0)) };
+/** A band of no width, or one that is not known, is none. */
+function knownBand(band: Band): Band | undefined {
+  return band.lower.every((low, i) => low < (band.upper[i] ?? Number.NaN)) ? band : undefined;
 }

@@ -4,7 +4,7 @@ const config: NextConfig = {
   reactStrictMode: true,
   poweredByHeader: false,
   // Native and worker-loading packages stay what they are on the server.
-  serverExternalPackages: ["@node-rs/argon2", "pg", "nodemailer"],
+  serverExternalPackages: ["@node-rs/argon2", "pg", "nodemailer", "yjs", "y-protocols", "lib0"],
   typedRoutes: false,
   // Types are checked by `npm test`, once, and not again in every build.
   typescript: { ignoreBuildErrors: true },

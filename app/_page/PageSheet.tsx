@@ -3,6 +3,7 @@
 import type { ReactNode } from "react";
 import { BlockFrame } from "@/app/_blocks/BlockFrame";
 import { packRows } from "./arrangement";
+import { DraftNotice } from "./DraftNotice";
 import { countPage, countsInWords } from "./counts";
 import { MarginRow } from "./margin/MarginRow";
 import { usePage } from "./pageContext";
@@ -49,6 +50,7 @@ export function PageSheet({ title, beside, empty, foot }: PageSheetProps) {
           {fault}
         </p>
       )}
+      <DraftNotice />
       {rows.map((row) => (
         <div key={row[0]?.key} className="page-row">
           <div className="page-columns">

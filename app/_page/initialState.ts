@@ -36,6 +36,7 @@ export function initialState({ pageId, mode, title, document, me, people }: Init
     people: people ?? {},
     services: null,
     live: null,
+    drafts: [],
     classes: new Map(),
   };
 }

@@ -1,5 +1,6 @@
 import type { Awareness } from "y-protocols/awareness";
 import * as Y from "yjs";
+import type { Draft } from "@/realtime/client";
 import { createEdits, createUndo, readPage } from "@/realtime/document";
 import type { PickedRow, SaveState } from "./contract";
 import { goToPlace } from "./goTo";
@@ -26,6 +27,8 @@ export interface ConnectionEvents {
   readonly onReady: () => void;
   /** The server says that one may only read now, with a sentence. */
   readonly onEnded: (sentence: string) => void;
+  /** This browser keeps unsent work on this page that must not merge by itself (rule A6). */
+  readonly onDrafts: (drafts: readonly Draft[]) => void;
 }
 
 export type Connect = (props: LivePageProps, events: ConnectionEvents) => PageConnection;
@@ -106,6 +109,7 @@ export function createLiveSession(props: LivePageProps, connect: Connect): LiveS
       onEnded(sentence) {
         store.set({ mode: "read", edits: null, live: null, save: { kind: "refused", text: sentence, waiting: store.get().save?.waiting ?? 0 } });
       },
+      onDrafts: (drafts) => store.set({ drafts }),
     });
     const { doc, awareness } = connection;
     const undo = mayEdit ? createUndo(doc) : null;

@@ -1,4 +1,5 @@
 import type { PageResults, TraceNode, TraceRequest } from "@/cells";
+import type { Draft } from "@/realtime/client";
 import type { PageBlock, PageEdits } from "@/realtime/document";
 import type { LiveText, PageMode, PagePlace, PickedRow, Presence, SaveState, Settings } from "./contract";
 import type { PageServices } from "./services";
@@ -28,6 +29,8 @@ export interface PageState {
   readonly people: Readonly<Record<string, string>>;
   readonly services: PageServices | null;
   readonly live: LiveText | null;
+  /** Work of one's own that this browser keeps and that was never stored. */
+  readonly drafts: readonly Draft[];
   /** Place of each class in the page's sequence. */
   readonly classes: ReadonlyMap<string, number>;
 }

@@ -46,8 +46,8 @@ export default async function AccountPage() {
           </Section>
           <Section id="sessions" title="Signed in">
             <div className="flex flex-wrap gap-x-8 gap-y-2 pt-1">
-              <SignOut action={signOut} label="Sign out here" />
-              <SignOut action={signOutEverywhere} label="Sign out everywhere" />
+              <SignOut action={signOut} label="Sign out here" userId={user.id} />
+              <SignOut action={signOutEverywhere} label="Sign out everywhere" userId={user.id} />
             </div>
           </Section>
         </div>

@@ -1,0 +1,67 @@
+import { CellError } from "../errors";
+import type { BlockContext } from "../page/context";
+import type { BudgetResult } from "../page/results";
+import type { BudgetBlock } from "../page/schema";
+import { listBodies, type Body } from "../species";
+import { spreadOf } from "./algebra";
+import { readBudget, type Budget } from "./budget";
+import { solve } from "./solve";
+
+/** More combinations than this are not tried. */
+const MAX_COMBINATIONS = 60;
+
+/**
+ * The solved amount for every combination of the compilations at hand: each name of a body that the budget uses, put for
+ * every compilation of the same kind of body.
+ *
+ * @param fixed names that stand for the same body throughout, since a trend was fitted with them
+ */
+export function byCompilation(
+  block: BudgetBlock,
+  context: BlockContext,
+  budget: Budget,
+  step: number,
+  fixed: ReadonlySet<string>,
+): BudgetResult["byCompilation"] {
+  const names = Object.entries(budget.bodiesUsed).flatMap(([name, id]) => {
+    const body = listBodies().find((known) => known.id === id);
+    const alike = body === undefined || fixed.has(name) ? [] : compilationsLike(body);
+    return alike.length > 1 ? [{ name, ids: alike.map((other) => other.id) }] : [];
+  });
+  if (names.length === 0) return [];
+  let combinations: Record<string, string>[] = [{}];
+  for (const { name, ids } of names) {
+    if (combinations.length * ids.length > MAX_COMBINATIONS) break;
+    combinations = combinations.flatMap((known) => ids.map((id) => ({ ...known, [name]: id })));
+  }
+  return combinations.map((bodies) => ({ bodies, ...answer(block, context, bodies, step) }));
+}
+
+function answer(
+  block: BudgetBlock,
+  context: BlockContext,
+  bodies: Readonly<Record<string, string>>,
+  step: number,
+): { readonly solved: number | null; readonly sigma: number | null } {
+  try {
+    const { plan, aim } = readBudget(block, context, bodies);
+    if (aim === undefined) return { solved: null, sigma: null };
+    const { amount } = solve(plan, step, aim);
+    return { solved: amount.value, sigma: spreadOf(amount).sigma };
+  } catch (error) {
+    // With this compilation there is no answer: it lacks an element, or no possible amount reaches the target.
+    if (error instanceof CellError) return { solved: null, sigma: null };
+    throw error;
+  }
+}
+
+/** Compilations of the same kind of body: those of CI chondrites, those of the bulk silicate Earth … in the tables' order. */
+export function compilationsLike(body: Body): readonly Body[] {
+  if (body.kind === "phase") return [];
+  return listBodies().filter((other) => other.kind === body.kind && kindOf(other) === kindOf(body));
+}
+
+/** "CI chondrite" and "CI chondrites, group mean" are compilations of one kind of body. */
+function kindOf({ what }: Body): string {
+  return what.replace(/ chondrites?(?:, group mean)?$/u, " chondrite");
+}

@@ -1,0 +1,135 @@
+import { CellError, type Problem } from "../errors";
+import type { BlockContext } from "../page/context";
+import { emptyResult } from "../page/emptyResult";
+import type { BudgetPathPoint, BudgetResult } from "../page/results";
+import type { BudgetBlock } from "../page/schema";
+import { exact, significantTerms, spreadOf, type LinearForm } from "./algebra";
+import { balanceOf, closureOf, leftOf } from "./balance";
+import { readBudget, type Budget } from "./budget";
+import { byCompilation } from "./compilations";
+import { withForms } from "./forms";
+import { follow } from "./plan";
+import { reportRow } from "./report";
+import { solve, type Solution } from "./solve";
+import { shareOf } from "./shares";
+import type { Stand } from "./state";
+import { amountsOf, requireRange, standsAlong, sweepOf } from "./sweep";
+
+/**
+ * A budget: the composition that its steps lead to, the amount that reaches the target with its 1σ from all inputs, every
+ * reported expression beside its target, what was left, and the answer for each compilation at hand. What cannot be said is
+ * null with a sentence; what is wrong is a problem in the field concerned.
+ */
+export function evaluateBudget(block: BudgetBlock, context: BlockContext): BudgetResult {
+  const problems: Problem[] = [];
+  const nothing = (): BudgetResult => emptyResult(block, problems) as BudgetResult;
+  let budget: Budget;
+  try {
+    budget = readBudget(block, context);
+  } catch (error) {
+    if (!(error instanceof CellError)) throw error;
+    problems.push(error.toProblem(block.id));
+    return nothing();
+  }
+  problems.push(...budget.problems);
+  const { plan, bodiesUsed } = budget;
+  const attempt = endOf(budget);
+  if ("error" in attempt) {
+    problems.push(attempt.error.toProblem(block.id));
+    const report = budget.report.map(({ text, measure }) => reportRow(text, measure, plan.start, undefined, budget.aim));
+    return { ...nothing(), problems, bodiesUsed, report };
+  }
+  const { end, solution } = attempt;
+  problems.push(...warningsOf(block, attempt));
+  const report = budget.report.map(({ text, measure }) => reportRow(text, measure, plan.start, end, budget.aim));
+  const step = plan.varying.how === "solve" ? plan.varying.step : undefined;
+  const [left, closure, balance] = [leftOf(end), closureOf(end), balanceOf(end, elementsOf(budget))];
+  return withForms(
+    {
+      kind: "budget",
+      ok: true,
+      ...(solution === undefined || step === undefined ? {} : { solved: solvedOf(budget, step, solution) }),
+      roots: solution?.roots ?? [],
+      report,
+      ...(left === undefined ? {} : { left }),
+      path: pathOf(budget, solution),
+      ...(balance === undefined ? {} : { balance }),
+      shares: solution === undefined ? [] : shareOf(solution.amount),
+      byCompilation: step === undefined ? [] : byCompilation(block, context, budget, step, fixedNames(block, context)),
+      ...(closure === undefined ? {} : { closure }),
+      problems,
+      bodiesUsed,
+    },
+    { ...(solution === undefined ? {} : { solved: solution.amount }), report: budget.report.map(({ measure }) => measure?.on(end)) },
+  );
+}
+
+interface End {
+  readonly end: Stand;
+  readonly solution: Solution | undefined;
+}
+
+function endOf({ plan, aim }: Budget): End | { readonly error: CellError } {
+  try {
+    requireRange(plan);
+    const { varying } = plan;
+    const solution = varying.how === "solve" && aim !== undefined ? solve(plan, varying.step, aim) : undefined;
+    const amount: LinearForm = solution?.amount ?? exact(varying.how === "sweep" ? varying.to : 0);
+    return { end: follow(plan, amount), solution };
+  } catch (error) {
+    if (error instanceof CellError) return { error };
+    throw error;
+  }
+}
+
+function solvedOf({ plan }: Budget, step: number, { amount }: Solution): NonNullable<BudgetResult["solved"]> {
+  const deed = plan.steps[step]?.deed;
+  const { sigma, isLowerBound } = spreadOf(amount);
+  return { value: amount.value, sigma, ...(isLowerBound ? { sigmaIs: "lower bound" as const } : {}), unit: deed?.unit ?? "1", of: deed?.of ?? "" };
+}
+
+function pathOf({ plan, report }: Budget, solution: Solution | undefined): BudgetPathPoint[] {
+  const sweep = sweepOf(plan, solution?.amount.value);
+  if (sweep === undefined) return [];
+  const along = standsAlong(plan, sweep);
+  return amountsOf(sweep).map((amount) => {
+    const stand = along(amount);
+    const values = report.map(({ measure }) => {
+      const known = stand === undefined ? undefined : measure?.on(stand);
+      return known === undefined || typeof known === "string" || !Number.isFinite(known.value) ? null : known.value;
+    });
+    return { amount, values };
+  });
+}
+
+/** Elements of the reported and aimed-at expressions, in order of first appearance. */
+function elementsOf({ report, aim }: Budget): string[] {
+  return [...new Set([...(aim?.measures ?? []), ...report.flatMap(({ measure }) => measure ?? [])].flatMap(({ species }) => species))];
+}
+
+/** Names of bodies that the trend aimed at was fitted with. */
+function fixedNames({ target }: BudgetBlock, context: BlockContext): ReadonlySet<string> {
+  if (target === undefined || !("trend" in target)) return new Set();
+  return new Set(Object.keys(context.result(target.trend)?.bodiesUsed ?? {}));
+}
+
+function warningsOf(block: BudgetBlock, { solution }: End): Problem[] {
+  if (solution === undefined) return [];
+  const warn = (code: string, text: string): Problem => ({ code, severity: "warning", block: block.id, text });
+  const found: Problem[] = [];
+  if (solution.isTurning)
+    found.push(warn("turning-point", "The path turns close to the target, within 1σ of the answer, so the amount's σ to first order is not to be trusted."));
+  const unknown = significantTerms(solution.amount).filter(({ variable }) => !(variable.sigma >= 0));
+  if (unknown.length > 0) {
+    const named = unknown.slice(0, 4).map(({ variable }) => variable.label);
+    const more = unknown.length > 4 ? ` and ${unknown.length - 4} more` : "";
+    found.push({
+      ...warn(
+        "unknown-sigma",
+        `The σ of ${named.join(", ")}${more} is unknown, so that of the amount is ${spreadOf(solution.amount).sigma === null ? "unknown" : "a lower bound"}.`,
+      ),
+      severity: "note",
+    });
+  }
+  return found;
+}

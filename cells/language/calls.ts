@@ -1,6 +1,6 @@
 import { CellError } from "../errors";
 import { State } from "../quantity/state";
-import { units } from "../quantity/unit";
+import { parseUnit, units } from "../quantity/unit";
 import type { Body } from "../species";
 import { aggregate } from "./aggregate";
 import type { Compiler } from "./compiler";
@@ -8,11 +8,12 @@ import { NEAR_DOMAIN_EDGE } from "./edges";
 import { sourceOf, type Frame } from "./frame";
 import type { Compiled, CompiledValue } from "./compiled";
 import { dimensionOf, dimensionless, isDimensionless, sameDimension, type Counting } from "./dimension";
-import { aggregateNames, functionNamed, otherSpellings, unitSuffixes, type AggregateName } from "./functions";
+import { aggregateNames, functionNamed, functionNames, otherSpellings, unitSuffixes, type AggregateName } from "./functions";
 import { inWords, plainNumber, powerMeaning, quantityIn, requireAlike, type Meaning } from "./meaning";
 import { joinOver } from "./split";
 import { countSpecies } from "./amounts";
 import { run } from "./execute";
+import { nearestName } from "./nearest";
 import { lower } from "./program";
 import type { CallTree, Tree } from "./tree";
 
@@ -85,9 +86,17 @@ function counted(least: number, most: number): string {
 
 function unknownFunction(tree: CallTree): CellError {
   const instead = otherSpellings.get(tree.name.toLowerCase());
-  const near = functionNamed(tree.name.toLowerCase());
-  const hint = near !== undefined ? ` Write ${near.form}.` : instead !== undefined ? ` Write ${instead}.` : ` To multiply, write *.`;
+  const near = functionNamed(tree.name.toLowerCase()) ?? functionNamed(unitFunction(tree.name) ?? nearestName(tree.name, functionNames) ?? "");
+  const hint = instead !== undefined ? ` Write ${instead}.` : near !== undefined ? ` Did you mean ${near.form}?` : ` To multiply, write *.`;
   return new CellError("unknown-function", `There is no function ${tree.name}.${hint}`, { span: tree.at });
+}
+
+/** The function that a unit's other spellings mean: `percent(20)` is wtpct(20), `as_pct(x)` as_wtpct(x). */
+function unitFunction(name: string): string | undefined {
+  const shown = name.startsWith("as_");
+  const unit = parseUnit(shown ? name.slice(3) : name);
+  const suffix = [...unitSuffixes].find(([, of]) => of === unit)?.[0];
+  return suffix === undefined ? undefined : `${shown ? "as_" : ""}${suffix}`;
 }
 
 /** `wtpct(20)`: a plain number becomes 20 wt%. */

@@ -51,7 +51,7 @@ export class Evaluated implements EvaluatedMeaning {
   readonly problems: readonly Problem[];
   /** Alias or id as written → id of the compilation. */
   readonly bodiesUsed: Readonly<Record<string, string>>;
-  /** Sentences of the conversions made: "Mg = MgO × 0.603036". */
+  /** Sentences of the conversions made: "Mg = MgO × 0.603042". */
   readonly conversions: readonly string[];
   /** Lines of formula blocks that the expression went through. */
   readonly lines: readonly { readonly block: string; readonly name: string }[];

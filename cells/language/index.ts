@@ -12,7 +12,7 @@ export type { FunctionInfo } from "./functions";
 export { parseLines } from "./lines";
 export type { FormulaLine, FormulaLines } from "./lines";
 export { namesUsed, renameInText } from "./nameUses";
-export type { NameUse } from "./nameUses";
+export type { NameUse, Renamed } from "./nameUses";
 export { parse } from "./parse";
 export type { CommonVariable, ExpressionPlace, Named, NamedLine, Scope, ScopeOffer } from "./scope";
 export { isPlainName, writeName } from "./tokens";

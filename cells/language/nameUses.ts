@@ -1,6 +1,6 @@
 import { CellError, type Span } from "../errors";
 import { lex } from "./lexer";
-import { reservedWords, writeName, type Token } from "./tokens";
+import { writeName, type Token } from "./tokens";
 
 /** A name that an expression uses. Names of functions that are called are not among them. */
 export interface NameUse {
@@ -61,21 +61,25 @@ function shifted(tokens: readonly Token[], by: number): Token[] {
   return tokens.map((token) => ({ ...token, start: token.start + by, end: token.end + by }));
 }
 
-const reference = /^(?:[\p{L}_][\p{L}\p{M}\p{N}_]*|`[^`\n]+`)(?:\.(?:[\p{L}_][\p{L}\p{M}\p{N}_]*|`[^`\n]+`))?$/u;
+/** A name as it is to be after a renaming; `member` is what stands after the point. */
+export interface Renamed {
+  readonly name: string;
+  readonly member?: string;
+}
 
 /**
  * Rewrites the names an expression uses.
  *
- * @param rename what stands in a name's place (`Mg2`, `cz.mg_si`), or undefined to leave it; a name with other characters than
- *   letters, digits and `_` is put in backticks
+ * @param rename what a name becomes, its member too, or undefined to leave it; names with other characters than letters,
+ *   digits and `_` are put in backticks
  */
-export function renameInText(text: string, rename: (name: string, member?: string) => string | undefined): string {
+export function renameInText(text: string, rename: (name: string, member?: string) => Renamed | undefined): string {
   let renamed = "";
   let from = 0;
   for (const use of namesUsed(text)) {
     const by = rename(use.name, use.member);
     if (by === undefined) continue;
-    renamed += text.slice(from, use.span[0]) + (reference.test(by) && !reservedWords.has(by) ? by : writeName(by));
+    renamed += text.slice(from, use.span[0]) + writeName(by.name) + (by.member === undefined ? "" : `.${writeName(by.member)}`);
     from = use.span[1];
   }
   return renamed + text.slice(from);

@@ -11,6 +11,7 @@ import { dimensionOf, type Counting } from "./dimension";
 import { plainNumber, quantityIn, type Meaning } from "./meaning";
 import type { CommonVariable, Named } from "./scope";
 import { functionNames, otherSpellings } from "./functions";
+import { nearestName } from "./nearest";
 import type { NameTree } from "./tree";
 import { writeName } from "./tokens";
 
@@ -243,9 +244,9 @@ function unknown(tree: NameTree, name: string, frame: Frame): never {
   else if (body !== undefined) hint = `${name} is a body: write at(expression, ${name}) or norm(expression, ${name}).`;
   else if (table === null) hint = "There is no table here: name a body with at( ), or set the data block.";
   else {
-    const near = table.columns.find((column) => column.name.toLowerCase() === name.toLowerCase());
-    hint =
-      near === undefined ? `The table ${table.handle} has ${listed(table.columns.map((column) => column.name))}.` : `Did you mean ${writeName(near.name)}?`;
+    const names = table.columns.map((column) => column.name);
+    const near = names.find((other) => other.toLowerCase() === name.toLowerCase()) ?? nearestName(name, names);
+    hint = near === undefined ? `The table ${table.handle} has ${listed(names)}.` : `Did you mean ${writeName(near)}?`;
   }
   throw new CellError("unknown-name", `There is no column, species or line ${name} here. ${hint}`, { span: tree.span });
 }

@@ -45,7 +45,7 @@ export function renameHandle(doc: Y.Doc, key: string, handle: string): void {
   const parsed = handleSchema.safeParse(handle);
   if (!parsed.success) throw new EditError(`“${handle}” cannot be a handle: ${parsed.error.issues[0]?.message ?? "choose another"}.`);
   if (known(doc).some((b) => b !== block && b.get("id") === handle)) throw new EditError(`Another block is called ${handle} already. Choose another handle.`);
-  const rewrite: Rewrite = (text) => renameInText(text, (name, member) => (name === old && member !== undefined ? handle : undefined));
+  const rewrite: Rewrite = (text) => renameInText(text, (name, member) => (name === old && member !== undefined ? { name: handle, member } : undefined));
   doc.transact(() => {
     const formerly = block.get("formerly");
     const past = Array.isArray(formerly) ? formerly.filter((h: unknown): h is string => typeof h === "string" && h !== handle && h !== old) : [];
@@ -118,14 +118,17 @@ export function renameColumn(doc: Y.Doc, key: string, from: string, to: string):
   const table = requireBlock(doc, key);
   if (kindOf(table) !== "data") throw new EditError("Only a table has columns.");
   if (to.length < 1 || to.length > 80) throw new EditError("A column's name has 1 to 80 characters.");
+  if (/[`\n\r]/u.test(to)) throw new EditError("A column's name holds no backtick and no line break, since formulas could not write it. Choose another name.");
   const columns = listOf(table, "columns");
   if (columns !== undefined && from !== to && entriesOf(columns).some(({ entry }) => (entry.name ?? entry.header) === to)) {
     throw new EditError(`The table has a column called ${to} already. Choose another name.`);
   }
   const handle = String(table.get("id"));
-  const qualified: Rewrite = (text) => renameInText(text, (name, member) => (name === handle && member === from ? `${handle}.${to}` : undefined));
+  const qualified: Rewrite = (text) => renameInText(text, (name, member) => (name === handle && member === from ? { name: handle, member: to } : undefined));
   const bare: Rewrite = (text) =>
-    renameInText(text, (name, member) => (member === undefined && name === from ? to : name === handle && member === from ? `${handle}.${to}` : undefined));
+    renameInText(text, (name, member) =>
+      member === undefined && name === from ? { name: to } : name === handle && member === from ? { name: handle, member: to } : undefined,
+    );
   doc.transact(() => {
     renameInTable(table, from, to);
     for (const block of known(doc)) {

@@ -110,7 +110,7 @@ describe("names of objects mean nothing", () => {
     expect(lines.errors).toEqual([]);
     expect(lines.lines.map((line) => line.name)).toEqual(inherited);
     const text = inherited.join(" + ");
-    expect(renameInText(text, (name) => (name === "__proto__" ? "constructor" : undefined))).toContain("constructor + constructor");
+    expect(renameInText(text, (name) => (name === "__proto__" ? { name: "constructor" } : undefined))).toContain("constructor + constructor");
     expect(namesUsed(text).length).toBe(inherited.length);
     for (const name of inherited) {
       expect(errorOf(() => compileOnComposition(name, { block: "b" }, bodyLookup({}))).code).toBe("unknown-name");

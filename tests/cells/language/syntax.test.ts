@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { namesUsed, parse, parseLines, renameInText, type Tree } from "../../../cells/language";
+import { namesUsed, parse, parseLines, renameInText, type Renamed, type Tree } from "../../../cells/language";
 import { seed } from "../../support/seed";
 import { errorOf } from "./scopes";
 
@@ -192,7 +192,8 @@ describe("names in use", () => {
   });
 
   it("renames with backticks where they are needed and leaves everything else", () => {
-    const rename = (name: string, member?: string): string | undefined => (name === "ch" ? `cz.${member ?? ""}` : name === "Mg" ? "Mg total" : undefined);
+    const rename = (name: string, member?: string): Renamed | undefined =>
+      name === "ch" && member !== undefined ? { name: "cz", member } : name === "Mg" ? { name: "Mg total" } : undefined;
     expect(renameInText("a = Mg/ch.al  # Mg\nMg = mean( Mg )", rename)).toBe("a = `Mg total`/cz.al  # Mg\nMg = mean( `Mg total` )");
   });
 

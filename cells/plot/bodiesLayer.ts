@@ -2,7 +2,7 @@ import { CellError } from "../errors";
 import type { Evaluated } from "../language";
 import type { PlotLayer } from "../page/results";
 import type { Drawn } from "../page/schema";
-import { covariance, hasUnknown, variance, type LinearForm } from "../trend/linearForm";
+import { covariance, hasUnknown, variance, type LinearForm } from "../trend";
 import { conversion, requireOnAxis, type PlotAxis } from "./axes";
 import { contour } from "./contour";
 import type { Drawing } from "./drawing";

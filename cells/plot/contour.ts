@@ -1,7 +1,7 @@
 import { CHI2_95_TWO } from "../numeric";
 import type { Curve } from "../page/results";
 import type { Ellipses } from "../page/schema";
-import { ellipseCurve } from "../trend/region";
+import { ellipseCurve } from "../trend";
 
 /** Mahalanobis radius of an ellipse as it is asked for; 0 for none. In two dimensions 1σ holds 39 %, 2σ 86 %; 95 % is √5.9915. */
 export function radiusOf(ellipses: Ellipses): number {
@@ -28,7 +28,10 @@ export function contour(x: number, y: number, sigmaX: number, sigmaY: number, co
   return closed(ellipseCurve(x, y, { xx: sigmaX * sigmaX, xy: rho * sigmaX * sigmaY, yy: sigmaY * sigmaY }, radius));
 }
 
-/** A curve with its first point again at the end. */
-export function closed({ x, y }: Curve): Curve {
+/** A curve with its first point again at the end, where it is not there already. */
+export function closed(curve: Curve): Curve {
+  const { x, y } = curve;
+  const last = x.length - 1;
+  if (last > 0 && x[0] === x[last] && y[0] === y[last]) return curve;
   return { x: Float64Array.from([...x, x[0] ?? Number.NaN]), y: Float64Array.from([...y, y[0] ?? Number.NaN]) };
 }

@@ -3,7 +3,8 @@ import { pathOn } from "../budget";
 import type { BlockContext } from "../page/context";
 import type { PlotLayer, PlotResult } from "../page/results";
 import type { Drawn, PlotBlock } from "../page/schema";
-import { axisOf, axisPlaced, nameOnly, type PlotAxis } from "./axes";
+import { parseUnit } from "../quantity/unit";
+import { axisOf, axisPlaced, conversion, nameOnly, type Conversion, type PlotAxis } from "./axes";
 import { bodiesLayer } from "./bodiesLayer";
 import { radiusOf } from "./contour";
 import { countDrawn } from "./countDrawn";
@@ -127,7 +128,25 @@ function pathLayer(drawing: Drawing, handle: string, place: number, { x, y }: { 
   if (budget?.kind !== "budget") return undefined;
   const result = context.result(handle);
   if (result?.kind !== "budget") throw new CellError("no-result", `${handle} has no result to draw. See what ${handle} says.`);
-  const { line, ticks, end } = pathOn(budget, context, x.placed.text, y.placed.text, x.placed.data);
+  const { line, ticks, end, units } = pathOn(budget, context, x.placed.text, y.placed.text, x.placed.data);
+  const [toX, toY] = [onAxisUnit(x, units.x, handle), onAxisUnit(y, units.y, handle)];
+  const moved = <P extends { readonly x: number; readonly y: number }>(point: P): P => ({ ...point, x: toX.value(point.x), y: toY.value(point.y) });
   Object.assign(drawing.bodiesUsed, result.bodiesUsed);
-  return { what: "path", drawn: place, budget: budget.id, line, ticks, ...(end === undefined ? {} : { end }) };
+  return {
+    what: "path",
+    drawn: place,
+    budget: budget.id,
+    line: { x: line.x.map((value) => toX.value(value)), y: line.y.map((value) => toY.value(value)) },
+    ticks: ticks.map(moved),
+    ...(end === undefined ? {} : { end: moved(end) }),
+  };
+}
+
+/** From the unit of a budget's numbers to that of an axis. @throws CellError where they do not convert */
+function onAxisUnit(axis: PlotAxis, symbol: string, handle: string): Conversion {
+  const unit = parseUnit(symbol);
+  if (symbol === axis.info.unit) return conversion(axis.unit, axis.unit);
+  if (unit === undefined || unit.dimension !== axis.unit.dimension || parseUnit(axis.info.unit) === undefined)
+    throw new CellError("unit-mismatch", `${axis.placed.text} comes out in ${symbol} along the path of ${handle}, and the axis is in ${axis.info.unit}.`);
+  return conversion(unit, axis.unit);
 }

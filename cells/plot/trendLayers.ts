@@ -2,10 +2,9 @@ import { CellError } from "../errors";
 import { exp, log } from "../numeric";
 import type { Band, PlotLayer, TrendResult } from "../page/results";
 import type { Drawn, TrendBlock } from "../page/schema";
-import { bandOf, lineAt } from "../trend/band";
-import { fitOf } from "../trend/trendFit";
+import { bandOf, crossingRegionOf, fitOf, lineAt } from "../trend";
 import { compact, type PlotAxis } from "./axes";
-import { contour, radiusOf } from "./contour";
+import { closed, contour, radiusOf } from "./contour";
 import type { Drawing } from "./drawing";
 import { sameExpression, type Standing } from "./sameExpression";
 
@@ -63,7 +62,7 @@ export function trendLayer(
   };
 }
 
-/** Where two trends cross, with the ellipse that holds 95 %. */
+/** Where two trends cross, with the curve that holds 95 %: an ellipse, or the simulated region where an ellipse would not do. */
 export function crossingLayer(
   drawing: Drawing,
   drawn: Extract<Drawn, { crossing: string }>,
@@ -85,14 +84,7 @@ export function crossingLayer(
   Object.assign(drawing.bodiesUsed, fit?.source.x.bodiesUsed, fit?.source.y.bodiesUsed);
   const [sigmaX, sigmaY] = [crossing.x.sigma ?? Number.NaN, crossing.y.sigma ?? Number.NaN];
   const correlation = sigmaX > 0 && sigmaY > 0 ? crossing.covariance / (sigmaX * sigmaY) : 0;
-  if (crossing.region === "simulated")
-    drawing.note({
-      code: "region-simulated",
-      severity: "note",
-      block: drawing.block.id,
-      field,
-      text: `The slopes of ${found.block.id} and ${crossing.with} differ little against their σ, so the true region of the crossing is longer on one side than the ellipse drawn.`,
-    });
+  const region = crossingRegionOf(found.result) ?? contour(crossing.x.value, crossing.y.value, sigmaX, sigmaY, correlation, radiusOf("95 %"));
   return {
     what: "crossing",
     drawn: place,
@@ -101,7 +93,7 @@ export function crossingLayer(
     y: crossing.y.value,
     sigmaX,
     sigmaY,
-    ellipse: contour(crossing.x.value, crossing.y.value, sigmaX, sigmaY, correlation, radiusOf("95 %")) ?? { x: new Float64Array(0), y: new Float64Array(0) },
+    ellipse: region === undefined ? { x: new Float64Array(0), y: new Float64Array(0) } : closed(region),
   };
 }
 

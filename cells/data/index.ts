@@ -1,0 +1,1 @@
+export { evaluateData } from "./evaluate";

@@ -22,6 +22,7 @@ import {
 
 /** Largest value of a field that this release does not know; it is kept for the release that does. */
 const MOST_UNKNOWN = 65_536;
+const MOST_DEPTH = 30;
 const MOST_BODIES = 200;
 const MOST_KEY = 600;
 const rootNames: ReadonlySet<string> = new Set(["page", "blocks", "bodies"]);
@@ -36,9 +37,16 @@ const first = <T>(things: Iterable<T>, faultOf: (thing: T) => Fault): Fault => {
   return null;
 };
 
-/** A value of no known field: plain JSON of bounded size. */
+/** Whether plain values lie in one another deeper than any page needs; whoever walks over them could not come back. */
+function isTooDeep(value: unknown, left = MOST_DEPTH): boolean {
+  if (typeof value !== "object" || value === null) return false;
+  return left === 0 || Object.values(value).some((inner) => isTooDeep(inner, left - 1));
+}
+
+/** A value of no known field: plain JSON of bounded size and depth. */
 function unknownFault(field: string, value: unknown): Fault {
   try {
+    if (isTooDeep(value)) return `The field ${field.slice(0, 40)} holds values inside values, more than ${MOST_DEPTH.toString()} deep.`;
     const text = JSON.stringify(value) as string | undefined;
     if (text !== undefined && text.length <= MOST_UNKNOWN && field.length <= 40) return null;
   } catch {

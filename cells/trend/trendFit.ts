@@ -91,7 +91,7 @@ function covarianceOfParts(source: SampleSource, which: 0 | 1, other: CommonVari
   return sharedCovariance(source, other.of)[which][other.which];
 }
 
-function isSampleVariable(variable: CommonVariable): variable is SampleVariable {
+export function isSampleVariable(variable: CommonVariable): variable is SampleVariable {
   return "of" in variable && "which" in variable;
 }
 

@@ -41,13 +41,22 @@ function finish(compiler: Compiler, value: CompiledValue, at: ExpressionPlace): 
     ...(at.field === undefined ? {} : { field: at.field }),
     text,
   }));
+  if (measured.nearEdgeCount > 0)
+    problems.push({
+      code: "first-order",
+      severity: "warning",
+      block: at.block,
+      ...(at.field === undefined ? {} : { field: at.field }),
+      text: nearEdgeSentence(compiler, measured),
+    });
   const { over } = value;
   const meaning = { unit, basis: statedBasis(value.meaning.counting), remark: value.meaning.remark ?? null };
   return new Evaluated(meaning, measured, { table: over?.table ?? null, ...(over?.split == null ? {} : { byClass: over.split.classes }), problems, uses });
 }
 
 function nearEdgeSentence(compiler: Compiler, { nearEdgeCount, length }: Measurement): string {
-  const sources = [...new Set([...compiler.edges.values()].map((edge) => edge.source))].slice(0, 4).join(", ");
+  const watched = [...new Set([...compiler.edges.values()].map((edge) => edge.source))];
+  const sources = `${watched.length > 1 ? "one of " : ""}${watched.slice(0, 4).join(", ")}`;
   const where = length === 1 ? "Here" : `In ${nearEdgeCount} of ${length} values`;
   return `${where} the σ of ${sources} is large against the value itself (over 10 % in a denominator, or 0 within 3σ in a logarithm or root), so the σ given, which is of first order, is a rough one.`;
 }

@@ -11,6 +11,11 @@ export function saveInWords(save: Save, savedAt: Date | null): SaveState {
   return save.kind === "saved" && savedAt !== null ? { ...save, text: `Saved ${clockTime(savedAt)}` } : save;
 }
 
+/** A port alone is one of the host that the browser has the page from. */
+function onOwnHost(url: string): string {
+  return url.startsWith(":") ? `${location.protocol === "https:" ? "wss" : "ws"}://${location.hostname}${url}` : url;
+}
+
 /** Connects a live page to the realtime server. */
 export const connectLive: Connect = ({ page, me, role, realtimeUrl, version }, events) => {
   let waiting = 0;

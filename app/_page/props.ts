@@ -18,7 +18,7 @@ export interface LivePageProps {
   /** null for guests. */
   readonly me: { readonly id: string; readonly name: string } | null;
   readonly role: PageRole;
-  /** ws:// or wss:// address of the realtime server; a path alone ("/live") stands for the page's own host. */
+  /** ws:// or wss:// address of the realtime server; a path ("/live") or a port (":3001") alone is one of the page's own host. */
   readonly realtimeUrl: string;
   /** Version of the client, told to the realtime server at the upgrade. */
   readonly version: string;

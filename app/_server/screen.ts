@@ -1,11 +1,9 @@
 import "server-only";
-import { headers } from "next/headers";
 import { notFound, redirect } from "next/navigation";
 import type { Action, ObjectKind } from "@/db/access";
 import type { SignedIn } from "@/db/queries/sessions";
 import { allow, type Allowed } from "./authorise";
 import { Refusal } from "./problem";
-import { realtimeAddress } from "./realtimeAddress";
 import { currentUser, who } from "./session";
 
 /** The person signed in; whoever is not is sent to sign in and comes back to `path` afterwards. */
@@ -33,9 +31,4 @@ export async function allowOnScreen<K extends ObjectKind>(kind: K, id: string, a
     if (kind !== "group" && (await who()).readingHashes.length > 0) redirect("/read/none/ended");
     redirect(signInPath(path));
   }
-}
-
-/** Address of the realtime server as this browser reaches it. */
-export async function realtimeUrl(): Promise<string> {
-  return realtimeAddress((await headers()).get("host"));
 }

@@ -2,7 +2,8 @@ import type { Metadata } from "next";
 import { LivePage } from "@/app/_page/LivePage";
 import { database } from "@/app/_server/database";
 import { loadPage } from "@/app/_server/documents";
-import { allowOnScreen, realtimeUrl } from "@/app/_server/screen";
+import { realtimeAddressOnPage } from "@/app/_server/realtimeAddress";
+import { allowOnScreen } from "@/app/_server/screen";
 import { currentUser } from "@/app/_server/session";
 import { findGroup, membersOf, noteSeen } from "@/db/queries/groups";
 import { findPage } from "@/db/queries/pages";
@@ -38,7 +39,7 @@ export default async function PagePage({ params }: Props) {
       page={{ id: pageId, groupId: object.groupId, groupName: group?.name ?? "", epoch: page?.epoch ?? 1, title: document.title }}
       me={userId && user ? { id: userId, name: user.name } : null}
       role={object.archived && subject.role !== "guest" ? "reader" : subject.role}
-      realtimeUrl={await realtimeUrl()}
+      realtimeUrl={realtimeAddressOnPage()}
       version={String(CLIENT_VERSION)}
       initialDocument={document}
       lastSnapshot={last ? { id: last.id, number: last.number, hash: last.hash, frozenAt: last.frozenAt.toISOString() } : null}

@@ -1,3 +1,5 @@
+import { createRequire } from "node:module";
+import { pathToFileURL } from "node:url";
 import { Worker } from "node:worker_threads";
 
 export interface CompactRequest {
@@ -9,6 +11,12 @@ export type CompactAnswer = { readonly id: number; readonly covered: number } | 
 interface Waiting {
   resolve(covered: number): void;
   reject(error: Error): void;
+}
+
+/** A thread takes over no loader from the process that starts it: it registers the one for TypeScript itself, then reads its file. */
+function boot(file: URL): string {
+  const loader = pathToFileURL(createRequire(import.meta.url).resolve("tsx/esm/api"));
+  return `import(${JSON.stringify(loader.href)}).then(({ register }) => { register(); return import(${JSON.stringify(file.href)}); });`;
 }
 
 /** Folds pages in a worker thread, so that opening and typing never wait for it. The thread is started when first needed. */
@@ -30,11 +38,7 @@ export class Compactor {
   }
 
   private start(): Worker {
-    // TypeScript is read by tsx in the thread as in the process itself.
-    const worker = new Worker(new URL("./compact.worker.ts", import.meta.url), {
-      workerData: { databaseUrl: this.databaseUrl },
-      execArgv: ["--import", "tsx"],
-    });
+    const worker = new Worker(boot(new URL("./compact.worker.ts", import.meta.url)), { eval: true, workerData: { databaseUrl: this.databaseUrl } });
     worker.unref();
     worker.on("message", (answer: CompactAnswer) => {
       const waiting = this.waiting.get(answer.id);

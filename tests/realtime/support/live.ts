@@ -1,4 +1,4 @@
-import pg from "pg";
+import type pg from "pg";
 import { addPage } from "@/db/queries/pages";
 import { createSession } from "@/db/queries/sessions";
 import type { PageDocument } from "@/cells";

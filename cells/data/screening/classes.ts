@@ -52,7 +52,7 @@ function screenClass(column: QuantityColumn, name: string, rows: readonly number
       "far from class",
       places[i] ?? 0,
       column.name,
-      `${column.name} ${value} is far from the ${n} of ${name}, median ${shown(middle, column.unit)} (modified z ${z.toFixed(1)})`,
+      `${column.name} ${value} is far from the ${n} of ${name}, median ${shown(middle, column.unit)} (modified z ${z.toFixed(1).replace("-", "−")})`,
     );
   }
 }

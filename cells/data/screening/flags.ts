@@ -46,5 +46,5 @@ export class Flags {
 
 /** A canonical value as people read it in its unit, with so many significant digits. */
 export function shown(canonical: number, unit: { readonly per: number; readonly offset: number; readonly symbol: string }, digits = 3): string {
-  return `${Number(((canonical - unit.offset) * unit.per).toPrecision(digits))}${unit.symbol === "1" ? "" : ` ${unit.symbol}`}`;
+  return `${String(Number(((canonical - unit.offset) * unit.per).toPrecision(digits))).replace(/^-/u, "−")}${unit.symbol === "1" ? "" : ` ${unit.symbol}`}`;
 }

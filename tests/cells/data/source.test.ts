@@ -307,13 +307,14 @@ describe("a large source", () => {
       { header: "Group", role: "class" } as const,
       ...species.flatMap((name) => [wtpct(name), { header: `2s ${name}`, role: "uncertainty", of: name, as: "2 sigma" } as const]),
     ];
-    const started = performance.now();
+    const before = process.cpuUsage();
     const result = new DataPage().add({ id: "big", kind: "data", source: { file: "big.csv" }, columns }, bytes);
-    const took = performance.now() - started;
+    const spent = process.cpuUsage(before);
+    const took = (spent.user + spent.system) / 1000;
     expect(tableOf(result).rows).toBe(20_000);
     expect(errorsOf(result)).toEqual([]);
-    // Generous for a busy machine; it takes about a quarter of this.
-    expect(took).toBeLessThan(2000);
+    // Processor time, since the machine may be busy; generous by a factor of three.
+    expect(took).toBeLessThan(1800);
     console.log(`20,000 × 22 cells in ${took.toFixed(0)} ms`);
   });
 });

@@ -165,12 +165,11 @@ function plotJson(result: PlotResult): object {
 function layerJson(layer: PlotLayer): object {
   switch (layer.what) {
     case "samples": {
-      let n = 0;
-      for (const code of layer.points.state) if (code === State.present) n++;
+      const n = layer.points.x.reduce((count, x) => (Number.isFinite(x) ? count + 1 : count), 0);
       return { what: layer.what, data: layer.data, n, ellipses: layer.ellipses };
     }
     case "trend":
-      return { what: layer.what, trend: layer.trend, range: layer.range, usesScatter: layer.usesScatter };
+      return { what: layer.what, trend: layer.trend, range: layer.range.map(orNull), usesScatter: layer.usesScatter };
     case "crossing":
       return { what: layer.what, trends: layer.trends, x: layer.x, y: layer.y, sigmaX: orNull(layer.sigmaX), sigmaY: orNull(layer.sigmaY) };
     case "path":

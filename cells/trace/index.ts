@@ -1,0 +1,7 @@
+/** Where numbers come from, down to the cells of sources, with each input's share of the variance. */
+export { budgetNode } from "./budget";
+export { cellNodes } from "./cells";
+export type { Tracing } from "./commons";
+export { expressionNode } from "./expression";
+export { inUnit } from "./node";
+export { trendNode } from "./trend";

@@ -190,7 +190,9 @@ class PageConnection implements LivePage {
   }
 
   private readonly onUpdate = (_update: Uint8Array, origin: unknown): void => {
-    if (origin === this.provider || origin === this.persistence || !this.address.mayEdit) return;
+    // An edit that names no origin is this person's too.
+    const isTheirs = origin === this.provider || (origin !== null && origin === this.persistence);
+    if (isTheirs || !this.address.mayEdit) return;
     this.ledger.edited();
     this.tell();
   };

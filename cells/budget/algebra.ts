@@ -57,7 +57,7 @@ export function significantTerms(form: LinearForm): readonly Term[] {
   let largest = 0;
   for (const term of form.terms) largest = Math.max(largest, weight(term));
   const least = ROUNDING * Math.max(largest, Math.abs(form.value));
-  return form.terms.filter((term) => term.partial !== 0 && (weight(term) > least || (term.variable.value === 0 && term.partial !== 0)));
+  return form.terms.filter((term) => term.partial !== 0 && (weight(term) > least || term.variable.value === 0));
 }
 
 /** A 1σ as results give it. */

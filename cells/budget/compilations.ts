@@ -3,7 +3,7 @@ import type { BlockContext } from "../page/context";
 import type { BudgetResult } from "../page/results";
 import type { BudgetBlock } from "../page/schema";
 import { listBodies, type Body } from "../species";
-import { spreadOf } from "./algebra";
+import { spreadOf, type LinearForm } from "./algebra";
 import { readBudget, type Budget } from "./budget";
 import { solve } from "./solve";
 
@@ -14,6 +14,7 @@ const MAX_COMBINATIONS = 60;
  * The solved amount for every combination of the compilations at hand: each name of a body that the budget uses, put for
  * every compilation of the same kind of body.
  *
+ * @param own the amount with the page's own compilations
  * @param fixed names that stand for the same body throughout, since a trend was fitted with them
  */
 export function byCompilation(
@@ -21,6 +22,7 @@ export function byCompilation(
   context: BlockContext,
   budget: Budget,
   step: number,
+  own: LinearForm,
   fixed: ReadonlySet<string>,
 ): BudgetResult["byCompilation"] {
   const names = Object.entries(budget.bodiesUsed).flatMap(([name, id]) => {
@@ -34,7 +36,11 @@ export function byCompilation(
     if (combinations.length * ids.length > MAX_COMBINATIONS) break;
     combinations = combinations.flatMap((known) => ids.map((id) => ({ ...known, [name]: id })));
   }
-  return combinations.map((bodies) => ({ bodies, ...answer(block, context, bodies, step) }));
+  const isOwn = (bodies: Readonly<Record<string, string>>): boolean => Object.entries(bodies).every(([name, id]) => budget.bodiesUsed[name] === id);
+  return combinations.map((bodies) => ({
+    bodies,
+    ...(isOwn(bodies) ? { solved: own.value, sigma: spreadOf(own).sigma } : answer(block, context, bodies, step)),
+  }));
 }
 
 function answer(

@@ -55,7 +55,8 @@ export function evaluateBudget(block: BudgetBlock, context: BlockContext): Budge
       path: pathOf(budget, solution),
       ...(balance === undefined ? {} : { balance }),
       shares: solution === undefined ? [] : shareOf(solution.amount),
-      byCompilation: step === undefined ? [] : byCompilation(block, context, budget, step, fixedNames(block, context)),
+      byCompilation:
+        step === undefined || solution === undefined ? [] : byCompilation(block, context, budget, step, solution.amount, fixedNames(block, context)),
       ...(closure === undefined ? {} : { closure }),
       problems,
       bodiesUsed,

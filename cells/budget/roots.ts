@@ -1,5 +1,5 @@
 /** Points a range is looked over at; two roots closer than 1/GRID of it are still found where |f| dips between points. */
-const GRID = 400;
+const GRID = 200;
 
 /** What looking for roots found. */
 export interface Found {

@@ -1,6 +1,6 @@
 import { CellError } from "../errors";
 import type { Evaluated } from "../language";
-import { plotAxis, plotTable } from "../page/references";
+import { plotTable } from "../page/references";
 import type { AxisInfo } from "../page/results";
 import type { PlotBlock } from "../page/schema";
 import { units, type Unit } from "../quantity/unit";
@@ -14,21 +14,26 @@ export interface PlotAxis {
   readonly placed: Placed;
 }
 
-/** The expression of an axis: the plot's own, else that of the first samples that have one, else that of the first trend. */
-export function axisPlaced(block: PlotBlock, axis: "x" | "y", drawing: Drawing): Placed | undefined {
-  const text = plotAxis(block, axis);
-  if (text !== undefined && text.trim() !== "") {
-    if (block[axis] !== undefined) return { text, data: plotTable(block), field: axis };
-    const place = block.drawn.findIndex((drawn) => "data" in drawn && drawn[axis] !== undefined);
-    const drawn = block.drawn[place];
-    return { text, data: drawn !== undefined && "data" in drawn ? drawn.data : undefined, field: `drawn[${place}].${axis}` };
-  }
-  for (const [place, drawn] of block.drawn.entries()) {
+/**
+ * What may stand on an axis, best first: the plot's own expression alone where it has one, else those of its samples in the
+ * list's order, those that are drawn first, else those of its trends. The first that can be calculated is the axis.
+ */
+export function axisCandidates(block: PlotBlock, axis: "x" | "y", drawing: Drawing): Placed[] {
+  const own = block[axis];
+  if (own !== undefined && own.trim() !== "") return [{ text: own, data: plotTable(block), field: axis }];
+  const lines = block.drawn.map((drawn, place) => ({ drawn, place }));
+  const inOrder = [...lines.filter(({ drawn }) => drawn.hidden !== true), ...lines.filter(({ drawn }) => drawn.hidden === true)];
+  const ofSamples = inOrder.flatMap(({ drawn, place }): Placed[] => {
+    const text = "data" in drawn ? drawn[axis] : undefined;
+    if (!("data" in drawn) || text === undefined || text.trim() === "") return [];
+    return [{ text, data: drawn.data, field: `drawn[${place}].${axis}` }];
+  });
+  const ofTrends = inOrder.flatMap(({ drawn, place }): Placed[] => {
     const handle = "trend" in drawn ? drawn.trend : "crossing" in drawn ? drawn.crossing : undefined;
     const trend = handle === undefined ? undefined : drawing.context.block(handle);
-    if (trend?.kind === "trend") return { text: trend[axis], data: trend.data, field: `drawn[${place}]` };
-  }
-  return undefined;
+    return trend?.kind === "trend" ? [{ text: trend[axis], data: trend.data, field: `drawn[${place}]` }] : [];
+  });
+  return ofSamples.length > 0 ? ofSamples : ofTrends;
 }
 
 /** The meaning of an axis. @throws CellError where its expression has none */

@@ -4,7 +4,7 @@ import type { BlockContext } from "../page/context";
 import type { PlotLayer, PlotResult } from "../page/results";
 import type { Drawn, PlotBlock } from "../page/schema";
 import { parseUnit } from "../quantity/unit";
-import { axisOf, axisPlaced, conversion, nameOnly, type Conversion, type PlotAxis } from "./axes";
+import { axisOf, axisCandidates, conversion, nameOnly, type Conversion, type PlotAxis } from "./axes";
 import { bodiesLayer } from "./bodiesLayer";
 import { radiusOf } from "./contour";
 import { countDrawn } from "./countDrawn";
@@ -32,8 +32,8 @@ export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResul
   return {
     kind: "plot",
     plot: block.plot,
-    x: axes.x?.info ?? nameOnly(axisPlaced(shown, "x", drawing)?.text),
-    y: axes.y?.info ?? nameOnly(block.plot === "distribution" ? undefined : axisPlaced(shown, "y", drawing)?.text),
+    x: axes.x?.info ?? nameOnly(axisCandidates(shown, "x", drawing)[0]?.text),
+    y: axes.y?.info ?? nameOnly(block.plot === "distribution" ? undefined : axisCandidates(shown, "y", drawing)[0]?.text),
     layers,
     ...countDrawn(layers, block.plot),
     problems: drawing.problems,
@@ -42,17 +42,18 @@ export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResul
 }
 
 function readAxis(block: PlotBlock, axis: "x" | "y", drawing: Drawing): PlotAxis | undefined {
-  const placed = axisPlaced(block, axis, drawing);
-  if (placed === undefined) {
-    if (block.drawn.some((drawn) => drawn.hidden !== true && !("annotation" in drawn)))
-      drawing.attempt(axis, () => {
-        throw new CellError("no-axis", `Nothing says what stands ${axis === "x" ? "across" : "upwards"} on this plot. Give an expression such as Mg / Si.`);
-      });
-    return undefined;
+  const candidates = axisCandidates(block, axis, drawing);
+  if (candidates.length === 0 && block.drawn.some((drawn) => drawn.hidden !== true && !("annotation" in drawn)))
+    drawing.attempt(axis, () => {
+      throw new CellError("no-axis", `Nothing says what stands ${axis === "x" ? "across" : "upwards"} on this plot. Give an expression such as Mg / Si.`);
+    });
+  for (const placed of candidates) {
+    // A handle that leads nowhere is said by the page, at the line that has it.
+    if (placed.data !== undefined && drawing.context.block(placed.data)?.kind !== "data") continue;
+    const found = drawing.attempt(placed.field, () => axisOf(placed, drawing));
+    if (found !== undefined) return found;
   }
-  // A handle that leads nowhere is said by the page, at the line that has it.
-  if (placed.data !== undefined && drawing.context.block(placed.data)?.kind !== "data") return undefined;
-  return drawing.attempt(placed.field, () => axisOf(placed, drawing));
+  return undefined;
 }
 
 interface Axes {
@@ -95,10 +96,11 @@ function layerOf(
   if ("data" in drawn) {
     if (drawing.context.block(drawn.data)?.kind !== "data") return undefined;
     const expressions = { x: samplesPlaced(block, drawn, place, "x"), y: needsY ? samplesPlaced(block, drawn, place, "y") : null };
-    if (expressions.y !== null) pairs.push({ x: expressions.x, y: expressions.y });
     if (x === undefined || (needsY && y === undefined)) return undefined;
     const radius = block.plot === "scatter" ? radiusOf(drawn.ellipses ?? "1 sigma") : block.plot === "ternary" ? radiusOf(drawn.ellipses ?? "none") : 0;
-    return samplesLayer(drawing, drawn, place, { x, y: y ?? null }, expressions, radius);
+    const layer = samplesLayer(drawing, drawn, place, { x, y: y ?? null }, expressions, radius);
+    if (expressions.y !== null) pairs.push({ x: expressions.x, y: expressions.y });
+    return layer;
   }
   if ("bodies" in drawn) {
     if (x === undefined || (needsY && y === undefined)) return undefined;

@@ -1,5 +1,5 @@
 import type { TraceNode } from "../page/results";
-import { byShare, listed } from "./node";
+import { byShare, listed, scaled } from "./node";
 
 /** One input of a number, and what it has in common with the others. */
 export interface Branch<Input> {
@@ -46,7 +46,7 @@ function together<Input>(parts: readonly Branch<Input>[]): Branch<Input> {
     unit: "",
     share: parts.reduce((sum, { node }) => sum + (node.share ?? 0), 0),
     notes: ["Their errors are correlated and partly cancel, so their share is given for all of them together."],
-    from: inside.map((part) => ({ ...part, share: null })),
+    from: scaled(inside, null),
   };
   return { node, inputs: parts.flatMap(({ inputs }) => inputs) };
 }

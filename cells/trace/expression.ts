@@ -49,7 +49,7 @@ export function expressionNode(tracing: Tracing, scope: Scope, text: string, lab
     unit: evaluated.unit.symbol,
     basis: evaluated.basis,
     share: isPresent && known ? 1 : null,
-    notes: [...rootNotes(evaluated, leaves, traced.inputs, traced.bodies, index, state), ...joined.notes],
+    notes: [...rootNotes(evaluated, leaves, traced.inputs, traced.bodies, index, state), ...(isPresent && known ? joined.notes : [])],
     from: [...joined.from, ...unique(constants)],
   };
 }
@@ -64,7 +64,7 @@ function rootNotes(
 ): string[] {
   const notes: string[] = [];
   if (state !== State.present) notes.push(`It has no value: it is ${stateName(state)}.`);
-  if (evaluated.remark !== null) notes.push(`It is ${evaluated.remark.startsWith("normalised") ? "" : "a "}${evaluated.remark}.`);
+  if (evaluated.remark !== null) notes.push(`${evaluated.remark.charAt(0).toUpperCase()}${evaluated.remark.slice(1)}.`);
   for (const { block, name, text } of leaves.lines) notes.push(`By way of ${name} = ${text} (${block}).`);
   for (const [written, id] of Object.entries(bodies)) if (written !== id) notes.push(`${written} is ${id} on this page.`);
   if (evaluated.lowerBound[index] === 1) {

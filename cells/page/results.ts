@@ -112,6 +112,7 @@ export interface Uncertain {
   readonly sigmaIs?: "lower bound";
 }
 
+/** Slope or intercept of the line in use. `sigma` is from the errors of its points alone. */
 export interface FitParameter extends Uncertain {
   readonly sigmaWithScatter: number | null;
 }

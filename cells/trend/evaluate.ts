@@ -38,7 +38,7 @@ function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
   const { x, y, table } = read;
   const weighs = block.method === "york";
   const chosen = choosePoints(block, table, x, y, read.where, weighs);
-  problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen, x, y));
+  problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen));
   const base: TrendResult = {
     ...emptyTrend(block, []),
     n: chosen.rows.length,
@@ -137,8 +137,8 @@ function aboutData(block: TrendBlock, context: BlockContext): Problem[] {
   ];
 }
 
-/** What is to be known of the points: σ that lack, are partly known, assumed, or too large for first order. */
-function aboutPoints(block: TrendBlock, { rows, leftOut, partlyKnown, assumed }: Chosen, x: Evaluated, y: Evaluated): Problem[] {
+/** What is to be known of the points: σ that lack, are partly known, or are assumed. */
+function aboutPoints(block: TrendBlock, { leftOut, partlyKnown, assumed }: Chosen): Problem[] {
   const found: Problem[] = [];
   const say = (code: string, severity: Problem["severity"], text: string): void => void found.push({ code, severity, block: block.id, text });
   const samples = (count: number): string => `${count} ${count === 1 ? "sample" : "samples"}`;
@@ -156,19 +156,7 @@ function aboutPoints(block: TrendBlock, { rows, leftOut, partlyKnown, assumed }:
       `Of ${samples(partlyKnown)} only a part of the σ is known, so ${partlyKnown === 1 ? "it weighs" : "they weigh"} too much. Give the σ that lack.`,
     );
   if (block.method === "york" && assumed > 0) say("assumed-sigma", "note", `At least ${samples(assumed)} ${assumed === 1 ? "leans" : "lean"} on an assumed σ.`);
-  let rough = 0;
-  for (const row of rows) if (valueOf(x.nearEdge, row) === 1 || valueOf(y.nearEdge, row) === 1) rough++;
-  if (block.method === "york" && rough > 0)
-    say(
-      "first-order",
-      "warning",
-      `In ${samples(rough)} the σ of a denominator is over 10 % of its value, or a function's edge lies within 3σ; ${rough === 1 ? "its" : "their"} errors on the axes are of first order and rough.`,
-    );
   return found;
-}
-
-function valueOf(flags: Uint8Array, row: number): number {
-  return (flags.length === 1 ? flags[0] : flags[row]) ?? 0;
 }
 
 function atRow(error: CellError, table: Table, { rows }: Chosen): CellError {
@@ -295,6 +283,12 @@ function aboutFit(block: TrendBlock, line: FittedLine): Problem[] {
       "scatter-ignored",
       "warning",
       `The points scatter more than their errors explain (MSWD ${formatNumber(goodness.mswd, 3)}, p ${formatNumber(goodness.p, 2)}), and this trend is set to leave that out: its σ are too small.`,
+    );
+  if (line.byErrorsAlone !== undefined)
+    say(
+      "line-with-scatter",
+      "note",
+      `The line is fitted with a scatter of ${formatNumber(line.scatter ?? Number.NaN, 3)} in y added to the errors. By the errors alone its slope would be ${formatNumber(line.byErrorsAlone.slope, 4)} and its intercept ${formatNumber(line.byErrorsAlone.intercept, 4)}.`,
     );
   if (line.usesScatter && line.scatter === 0)
     say(

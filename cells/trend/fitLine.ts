@@ -1,7 +1,7 @@
 import { chiSquareQuantile, chiSquareSurvival, studentTwoSidedQuantile, Z_95 } from "../numeric";
 import type { TrendBlock } from "../page/schema";
 import { propagate, yorkInfluence } from "./influence";
-import { intrinsicScatter } from "./intrinsicScatter";
+import { intrinsicScatter, widenedPoints } from "./intrinsicScatter";
 import type { FitPoints, Influence, LineFit } from "./lineFit";
 import { ordinaryLeastSquares, type ScatterLine } from "./ordinaryLeastSquares";
 import { reducedMajorAxis } from "./reducedMajorAxis";
@@ -34,6 +34,8 @@ export interface FittedLine {
   readonly intercept: number;
   readonly converged: boolean;
   readonly goodness?: Goodness;
+  /** The line without scatter in its errors, where that is another one. */
+  readonly byErrorsAlone?: { readonly slope: number; readonly intercept: number };
   /** Maximum-likelihood scatter beyond the errors, 1σ in y; left out where it was not asked for. */
   readonly scatter?: number;
   readonly usesScatter: boolean;
@@ -69,27 +71,36 @@ export function fitLine(method: TrendBlock["method"], scatter: NonNullable<Trend
 }
 
 /**
- * The line is York's, whatever its points scatter; the scatter widens its σ. With scatter s its variance is that of York's
- * estimator when each y has the variance σy² + s², so both σ belong to the one slope that is shown.
+ * York's line. S, MSWD and p are those of the errors alone. Where they say that the points scatter more, and the scatter is
+ * estimated, the line is fitted again with it in the errors: without, it would lean to where x and y err together. Both σ
+ * belong to the one line that is given: from the errors of its points alone, and with the scatter.
  */
 function yorkLine(points: FitPoints, rule: NonNullable<TrendBlock["scatter"]>): FittedLine {
-  const fit = york(points);
+  const alone = york(points);
   const n = points.x.length;
   const degrees = n - 2;
   const goodness: Goodness = {
-    S: fit.S,
-    mswd: fit.S / degrees,
+    S: alone.S,
+    mswd: alone.S / degrees,
     mswdExpected: [chiSquareQuantile(0.025, degrees) / degrees, chiSquareQuantile(0.975, degrees) / degrees],
-    p: chiSquareSurvival(fit.S, degrees),
+    p: chiSquareSurvival(alone.S, degrees),
   };
-  const { ofErrors, ofChanges } = yorkInfluence(points, fit);
-  const plain: LineCovariance = { slopeVariance: fit.slopeVariance, interceptVariance: fit.interceptVariance, covariance: fit.covariance };
   const usesScatter = rule !== "none" && goodness.p < SIGNIFICANT;
-  const scatter = rule === "likelihood" && fit.converged ? intrinsicScatter(points, fit).scatter : undefined;
+  const found = rule === "likelihood" && alone.converged ? intrinsicScatter(points, alone) : undefined;
+  const scatter = found?.scatter;
+  const refitted = usesScatter && found !== undefined && found.scatter > 0;
+  const fit = refitted ? found.fit : alone;
+  const extraY = refitted ? found.scatter : 0;
+  const { ofErrors, ofChanges } = yorkInfluence(widenedPoints(points, extraY * extraY), fit);
+  const own: LineCovariance = { slopeVariance: fit.slopeVariance, interceptVariance: fit.interceptVariance, covariance: fit.covariance };
+  const plain = refitted ? propagate(ofErrors, points, 0) : own;
   const factor = rule === "root mswd" ? Math.sqrt(Math.max(1, goodness.mswd)) : 1;
-  const withScatter =
-    rule === "none" ? undefined : rule === "root mswd" ? scaled(plain, factor * factor) : scatter === 0 ? plain : propagate(ofErrors, points, square(scatter));
-  const extraY = usesScatter ? (scatter ?? 0) : 0;
+  const withScatter = ((): LineCovariance | undefined => {
+    if (rule === "none") return undefined;
+    if (rule === "root mswd") return scaled(own, factor * factor);
+    if (refitted || scatter === 0) return own;
+    return propagate(ofErrors, points, scatter === undefined ? Number.NaN : scatter * scatter);
+  })();
   const inUse = usesScatter ? factor : 1;
   const leverage = new Float64Array(n);
   for (let i = 0; i < n; i++) leverage[i] = leverageOf(ofErrors, points, i);
@@ -98,21 +109,18 @@ function yorkLine(points: FitPoints, rule: NonNullable<TrendBlock["scatter"]>): 
     intercept: fit.intercept,
     converged: fit.converged,
     goodness,
+    ...(refitted ? { byErrorsAlone: { slope: alone.slope, intercept: alone.intercept } } : {}),
     ...(scatter === undefined ? {} : { scatter }),
     usesScatter,
     plain,
     ...(withScatter === undefined ? {} : { withScatter }),
-    pointSigma: fit.weight.map((w) => inUse * Math.sqrt(1 / w + extraY * extraY)),
+    pointSigma: fit.weight.map((w) => inUse / Math.sqrt(w)),
     leverage,
     ofErrors,
     ofChanges,
     errors: { from: "errors", extraY, factor: inUse },
     quantile: Z_95,
   };
-}
-
-function square(scatter: number | undefined): number {
-  return scatter === undefined ? Number.NaN : scatter * scatter;
 }
 
 function scaled({ slopeVariance, interceptVariance, covariance }: LineCovariance, by: number): LineCovariance {

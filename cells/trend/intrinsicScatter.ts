@@ -76,8 +76,12 @@ function residualVariance({ x, y }: FitPoints, { slope, intercept }: YorkFit): n
   return sum / x.length;
 }
 
-/** The York fit with a variance added to every σy; the error covariance of x and y stays what it was. */
-export function widened(points: FitPoints, variance: number, start: number): YorkFit {
+function widened(points: FitPoints, variance: number, start: number): YorkFit {
+  return york(widenedPoints(points, variance), start);
+}
+
+/** The points with a variance added to every σy²; the error covariance of x and y stays what it was. */
+export function widenedPoints(points: FitPoints, variance: number): FitPoints {
   const n = points.x.length;
   const sigmaY = new Float64Array(n);
   const correlation = new Float64Array(n);
@@ -85,7 +89,7 @@ export function widened(points: FitPoints, variance: number, start: number): Yor
     const q = points.sigmaY[i] ?? 0;
     const wide = Math.sqrt(q * q + variance);
     sigmaY[i] = wide;
-    correlation[i] = ((points.correlation[i] ?? 0) * q) / wide;
+    correlation[i] = wide > 0 ? ((points.correlation[i] ?? 0) * q) / wide : 0;
   }
-  return york({ ...points, sigmaY, correlation }, start);
+  return { ...points, sigmaY, correlation };
 }

@@ -328,7 +328,9 @@ describe("trends that share samples", () => {
 
 /** The same line over variables that know nothing of others but each other. */
 function alone({ slope, intercept }: { readonly slope: LinearForm; readonly intercept: LinearForm }): { slope: LinearForm; intercept: LinearForm } {
-  const originals = new Map<string, CommonVariable>([slope, intercept].flatMap((form) => form.terms.map(({ variable }) => [`alone:${variable.key}`, variable] as const)));
+  const originals = new Map<string, CommonVariable>(
+    [slope, intercept].flatMap((form) => form.terms.map(({ variable }) => [`alone:${variable.key}`, variable] as const)),
+  );
   const bare = (form: LinearForm): LinearForm => ({
     value: form.value,
     terms: form.terms.map(({ variable, partial }) => ({

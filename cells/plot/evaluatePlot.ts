@@ -61,36 +61,41 @@ interface Axes {
   readonly y: PlotAxis | undefined;
 }
 
-/** Trends come last, since how far they reach depends on all the rest; the layers keep the list's order. */
+/**
+ * Lines wait for what they lean on: a crossing for the samples, whose axes it may share, and a trend for all the rest, which
+ * says how far it reaches. The layers keep the list's order.
+ */
 function drawLayers(block: PlotBlock, drawing: Drawing, axes: Axes): PlotLayer[] {
   const pairs: DrawnPair[] = [];
   const made = new Map<number, PlotLayer>();
-  const draw = (place: number, work: () => PlotLayer | undefined): void => {
-    const layer = drawing.attempt(`drawn[${place}]`, work);
-    if (layer !== undefined) made.set(place, layer);
-  };
-  block.drawn.forEach((drawn, place) => {
-    if (drawn.hidden !== true && !("trend" in drawn)) draw(place, () => layerOf(drawing, block, drawn, place, axes, pairs));
-  });
-  const extent = extentOf([...made.values()], block.xAxis);
-  block.drawn.forEach((drawn, place) => {
-    if (drawn.hidden === true || !("trend" in drawn)) return;
-    draw(place, () => {
-      const both = scatterAxes(block, drawing, drawn.trend, "trend", axes);
-      return both === undefined ? undefined : trendLayer(drawing, drawn, place, both, pairs, extent);
+  const draw = (takes: (drawn: Drawn) => boolean, work: (drawn: Drawn, place: number) => PlotLayer | undefined): void =>
+    block.drawn.forEach((drawn, place) => {
+      if (drawn.hidden === true || !takes(drawn)) return;
+      const layer = drawing.attempt(`drawn[${place}]`, () => work(drawn, place));
+      if (layer !== undefined) made.set(place, layer);
     });
-  });
+  const waits = (drawn: Drawn): boolean => "trend" in drawn || "crossing" in drawn;
+  draw(
+    (drawn) => !waits(drawn),
+    (drawn, place) => layerOf(drawing, block, drawn, place, axes, pairs),
+  );
+  draw(
+    (drawn) => "crossing" in drawn,
+    (drawn, place) => layerOf(drawing, block, drawn, place, axes, pairs),
+  );
+  const extent = extentOf([...made.values()], block.xAxis);
+  draw(
+    (drawn) => "trend" in drawn,
+    (drawn, place) => {
+      if (!("trend" in drawn)) return undefined;
+      const both = scatterAxes(block, drawing, drawn.trend, "line", axes);
+      return both === undefined ? undefined : trendLayer(drawing, drawn, place, both, pairs, extent);
+    },
+  );
   return block.drawn.flatMap((_, place) => made.get(place) ?? []);
 }
 
-function layerOf(
-  drawing: Drawing,
-  block: PlotBlock,
-  drawn: Exclude<Drawn, { trend: string }>,
-  place: number,
-  { x, y }: Axes,
-  pairs: DrawnPair[],
-): PlotLayer | undefined {
+function layerOf(drawing: Drawing, block: PlotBlock, drawn: Drawn, place: number, { x, y }: Axes, pairs: DrawnPair[]): PlotLayer | undefined {
   const needsY = block.plot !== "distribution";
   if ("annotation" in drawn) return { what: "annotation", drawn: place, text: drawn.annotation, x: drawn.x, y: drawn.y };
   if ("data" in drawn) {
@@ -106,6 +111,7 @@ function layerOf(
     if (x === undefined || (needsY && y === undefined)) return undefined;
     return bodiesLayer(drawing, drawn, place, x, y ?? null, needsY ? radiusOf(drawn.ellipses ?? "1 sigma") : 0);
   }
+  if ("trend" in drawn) return undefined;
   if ("crossing" in drawn) {
     const both = scatterAxes(block, drawing, drawn.crossing, "crossing", { x, y });
     return both === undefined ? undefined : crossingLayer(drawing, drawn, place, both, pairs);

@@ -95,7 +95,8 @@ function makeOfTables(block: DataBlock, context: BlockContext, problems: Problem
       `${block.id} is made of other tables, so its values are amended where they are read; the amendments here are not applied. Amend them in the tables themselves.`,
       { field: "amendments" },
     );
-  const made = block.stack === undefined ? joined(block, context, problems) : stackTables(block.id, membersOf(block.stack, "stack", context), problems);
+  const made =
+    block.stack === undefined ? joined(block, context, problems) : stackTables(block.id, membersOf(block.stack, "stack", context, problems), problems);
   setAside(block, made, [], problems);
   const table = declare(block, made, problems);
   return { table, proposed: false, amended: amendedCells(table) };
@@ -104,7 +105,7 @@ function makeOfTables(block: DataBlock, context: BlockContext, problems: Problem
 /** Replicates of a join are merged in each of its tables, before the samples are matched. */
 function joined(block: DataBlock, context: BlockContext, problems: Problems): Table {
   const { replicates } = block;
-  const members = membersOf(block.join ?? [], "join", context);
+  const members = membersOf(block.join ?? [], "join", context, problems);
   return joinTables(
     block.id,
     replicates === undefined ? members : members.map((member) => ({ ...member, table: mergeReplicates(member.table, replicates, problems) })),

@@ -15,8 +15,8 @@ export interface Member {
  *
  * @throws CellError where one is not there: a table without one of its parts would be a smaller table that looks whole
  */
-export function membersOf(handles: readonly string[], field: string, context: BlockContext): readonly Member[] {
-  return handles.map((handle, index) => {
+export function membersOf(handles: readonly string[], field: string, context: BlockContext, problems: Problems): readonly Member[] {
+  const members = handles.map((handle, index): Member => {
     const place = { field: `${field}[${index}]` };
     const block = context.block(handle);
     const result = context.result(handle);
@@ -31,6 +31,18 @@ export function membersOf(handles: readonly string[], field: string, context: Bl
         place,
       );
     return { handle: block.id, table: result.table };
+  });
+  return members.filter(({ handle }, index) => {
+    const first = members.findIndex((other) => other.handle === handle);
+    if (first !== index)
+      problems.error(
+        "table-twice",
+        `${handle} stands in the list twice, which would count each of its samples twice; it is taken once. Take it out of the list once.`,
+        {
+          field: `${field}[${index}]`,
+        },
+      );
+    return first === index;
   });
 }
 

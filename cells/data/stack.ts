@@ -3,7 +3,7 @@ import { State } from "../quantity/state";
 import type { ColumnCorrelation, QuantityColumn, Table, TableColumn, TextColumn } from "../table/table";
 import { copyCell, draftColumn, type DraftColumn } from "./draft";
 import { freeName, rowIdsOf, sayRenamed, substitutionOf, type Member } from "./members";
-import type { Problems } from "./problems";
+import { counted, listed, type Problems } from "./problems";
 
 /** Name of the column that says which table a row came from. */
 const TABLE_COLUMN = "table";
@@ -40,6 +40,7 @@ export function stackTables(handle: string, members: readonly Member[], problems
     ...stacked,
   ];
   warnOfIron(members, quantities, problems);
+  warnOfRowsTwice(origins, problems);
   const substitution = substitutionOf(members);
   return {
     handle,
@@ -161,6 +162,23 @@ function stackCorrelations(
     }
   });
   return [...found.values()];
+}
+
+/** A row that comes in by two ways would count twice in every mean and every fit. */
+function warnOfRowsTwice(origins: Table["origins"], problems: Problems): void {
+  const seen = new Set<string>();
+  const twice = new Map<string, number>();
+  for (const { table, row } of origins.flat()) {
+    const key = JSON.stringify([table, row]);
+    if (seen.has(key)) twice.set(table, (twice.get(table) ?? 0) + 1);
+    seen.add(key);
+  }
+  if (twice.size > 0)
+    problems.warning(
+      "rows-twice",
+      `${listed([...twice].map(([table, count]) => `${counted(count, "row")} of ${table}`))} come in by more than one of the tables stacked here, and count more than once. Stack each table by one way only.`,
+      { field: "stack" },
+    );
 }
 
 /**

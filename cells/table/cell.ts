@@ -40,7 +40,9 @@ export function readCell(text: string, decimal: DecimalSign): ReadCell {
       "cell-spreadsheet-error",
       `"${short(trimmed)}" is a spreadsheet's error, not a number. Amend it with the value, or with nothing where there is none.`,
     );
-  const plain = trimmed.replace(/[−‒–]/gu, "-").replace(/\u00a0|\u202f|\u2009/gu, " ");
+  const plain = raisedPower(trimmed)
+    .replace(/[−‒–]/gu, "-")
+    .replace(/\u00a0|\u202f|\u2009/gu, " ");
   const below = /^(?:<=|<|≤|≪|‹|b\.?d\.?l\.?\s*\(?\s*<?)\s*([^)]+?)\)?$/iu.exec(plain);
   if (below !== null && /^(?:<|≤|‹|≪|b)/iu.test(plain)) return readBelow(below[1] ?? "", trimmed, decimal);
   if (/^(?:>|≥|>=)/u.test(plain))
@@ -48,10 +50,20 @@ export function readCell(text: string, decimal: DecimalSign): ReadCell {
   return readValue(plain, trimmed, decimal);
 }
 
+const raisedDigits = "⁰¹²³⁴⁵⁶⁷⁸⁹";
+
+/** `1.5×10⁻³` as `1.5×10^-3`, before the raised digits could be taken for footnotes. */
+function raisedPower(text: string): string {
+  return text.replace(/([x×·*]\s*10)([⁺⁻]?)([⁰¹²³⁴⁵⁶⁷⁸⁹]+)/gu, (_, ten: string, sign: string, digits: string) => {
+    const power = [...digits].map((digit) => raisedDigits.indexOf(digit)).join("");
+    return `${ten}^${sign === "⁻" ? "-" : ""}${power}`;
+  });
+}
+
 function readBelow(limitText: string, whole: string, decimal: DecimalSign): ReadCell {
   const limit = readValue(limitText.trim(), whole, decimal);
   if (limit.kind === "unreadable") return limit;
-  if (limit.kind !== "value" || limit.value < 0)
+  if (limit.kind !== "value" || limit.value <= 0)
     return unreadable("cell-limit", `"${short(whole)}" gives a detection limit that is not a number above zero. Amend it with the limit, such as <0.05.`);
   return { kind: "below", limit: limit.value, ...(limit.unit === undefined ? {} : { unit: limit.unit }) };
 }
@@ -59,7 +71,8 @@ function readBelow(limitText: string, whole: string, decimal: DecimalSign): Read
 /** Number, then in any of its forms the uncertainty, a unit, and footnote marks. */
 const valuePattern =
   /^(?<number>[+-]?[\d.,'’ ]*\d[.,]?)(?:\s*\((?<digits>\d+(?:[.,]\d+)?)\))?(?<exponent>(?:[eE]|\s*[x×·*]\s*10\^?)[+-]?\d+)?(?:\s*(?:±|\+\/-|\+-|\+\/−)\s*(?<sigma>[\d.,]+(?:[eE][+-]?\d+)?)\s*(?<percent>%(?!\S))?)?(?<rest>.*)$/u;
-const markPattern = /(?:\s*(?:[*†‡§¶#‖⁺ᵃᵇᶜᵈᵉᶠᵍ¹²³⁴⁵⁶⁷⁸⁹]|\^[a-z0-9]|\[[a-z0-9]{1,2}\]|\(\s*[a-z]\s*\)))+$/u;
+/** Footnotes; the power of ten in `1.5 × 10^3` is none. */
+const markPattern = /(?:\s*(?:[*†‡§¶#‖⁺ᵃᵇᶜᵈᵉᶠᵍ¹²³⁴⁵⁶⁷⁸⁹]|(?<![x×·*]\s*10)\^[a-z0-9]|\[[a-z0-9]{1,2}\]|\(\s*[a-z]\s*\)))+$/u;
 
 function readValue(text: string, whole: string, decimal: DecimalSign): ReadCell {
   const mark = markPattern.exec(text)?.[0] ?? "";

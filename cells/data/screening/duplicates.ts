@@ -16,7 +16,7 @@ export function screenDuplicates(table: Table, flags: Flags): void {
     if (same.length < 2) continue;
     for (const row of same.slice(1)) {
       const others = same.filter((other) => other !== row).map((other) => String(table.rowIds[other] ?? other + 1));
-      flags.flag("duplicate", row, undefined, `also in row ${listed(others, 3)}`);
+      flags.flag("duplicate", row, undefined, `also in ${others.length === 1 ? "row" : "rows"} ${listed(others, 3)}`);
     }
   }
 }

@@ -68,8 +68,8 @@ describe("duplicates", () => {
     const csv = "Sample,MgO\nTH-1,1\nth-1,2\nTH-2,3\nTH-1,4\n,5\n,6\n";
     const found = flags(read(csv, { columns: [sample, wtpct("MgO")] }).screening, "duplicate");
     expect(found.map((flag) => [flag.row, flag.text])).toEqual([
-      [2, "also in row 1 and 4"],
-      [4, "also in row 1 and 2"],
+      [2, "also in rows 1 and 4"],
+      [4, "also in rows 1 and 2"],
     ]);
     const aside = read(csv, { columns: [sample, wtpct("MgO")], setAside: [1, 4].map((row) => ({ row, reason: "x" })) });
     expect(flags(aside.screening, "duplicate")).toEqual([]);

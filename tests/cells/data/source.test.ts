@@ -228,6 +228,12 @@ describe("cells", () => {
     expect(problemOf(result, "cell-unit").row).toBe(2);
   });
 
+  it("with a power of ten are read, however it is written, and a limit of 0 is none", () => {
+    const result = read("Sample,MgO\nA,1.5×10³\nB,1.5 x 10^3\nC,1.5·10⁻³\nD,45.0²\nE,<0\n", { columns: [sample, { ...wtpct("MgO"), unit: "µg/g" }] });
+    expect(valuesOf(result, "MgO").map((value) => value?.toPrecision(6))).toEqual(["1500.00", "1500.00", "0.00150000", "45.0000", undefined]);
+    expect(problemOf(result, "cell-limit").row).toBe(5);
+  });
+
   it("below absolute zero are out of domain", () => {
     const result = read("Sample,T\nA,-300\nB,20\n", { columns: [sample, { header: "T", role: "quantity", unit: "°C" }] });
     expect(statesOf(result, "T")).toEqual(["out of domain", "present"]);

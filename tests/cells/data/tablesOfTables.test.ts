@@ -89,6 +89,13 @@ describe("a stack", () => {
     expect(words(result, "table")).toEqual(["ch", "ch", "ro", "ro", "ch", "ch"]);
     expect(tableOf(result).rowIds).toEqual(["ch.1", "ch.2", "ro.1", "ro.2", "ch.1#2", "ch.2#2"]);
     expect(tableOf(result).origins[4]).toEqual([{ table: "ch", row: 1 }]);
+    expect(problemOf(result, "rows-twice").text).toContain("2 rows of ch come in by more than one");
+  });
+
+  it("takes a table that is listed twice once, and says so", () => {
+    const result = twoPapers().add({ id: "all", kind: "data", stack: ["ch", "ro", "ch"] });
+    expect(problemOf(result, "table-twice")).toMatchObject({ severity: "error", field: "stack[2]" });
+    expect(tableOf(result).rowIds).toEqual(["ch.1", "ch.2", "ro.1", "ro.2"]);
   });
 
   it("does not put mass and atomic ratios, or what has no common unit, under one another", () => {

@@ -2,13 +2,16 @@ import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 
 import {
+  bilinear,
   chiSquareQuantile,
   chiSquareSurvival,
   createRandom,
+  determinant2,
   erf,
   erfc,
   incompleteBeta,
   incompleteGamma,
+  inverseForm2,
   logGamma,
   normalCdf,
   normalQuantile,
@@ -18,6 +21,12 @@ import {
   studentTwoSidedQuantile,
 } from "../../../cells/numeric";
 import { seed } from "../../support/seed";
+
+function hex(x: number): string {
+  const view = new DataView(new ArrayBuffer(8));
+  view.setFloat64(0, x);
+  return view.getBigUint64(0).toString(16);
+}
 
 function expectRelative(got: number, expected: number, tolerance: number, label: string): void {
   expect(Math.abs(got - expected), `${label}: got ${got}, expected ${expected}`).toBeLessThanOrEqual(tolerance * Math.abs(expected));
@@ -140,6 +149,37 @@ describe("distributions", () => {
   });
 });
 
+describe("bits that do not change", () => {
+  // Recorded from this implementation; a change of any bit changes published results and must be a new engine version.
+  it("of error, gamma, normal and Student functions", () => {
+    expect([erf(0.37), erf(1.9), erfc(3.3), erfc(7.7)].map(hex)).toEqual(["3fd98c974175426e", "3fefc4f06f2b1c89", "3ec9a661bcdec4ae", "3a59a2bfb70121a1"]);
+    expect([logGamma(0.3), logGamma(17.5), incompleteGamma(2.5, 1.7)[0], incompleteGamma(40, 61)[1], chiSquareQuantile(0.975, 9)].map(hex)).toEqual([
+      "3ff188637a6c4190",
+      "40400a61f910a7f9",
+      "3fd721ab9e03d67a",
+      "3f5c8cbe44bcf5d3",
+      "403305d41c469156",
+    ]);
+    expect([normalCdf(-1.3), normalQuantile(0.7), studentTwoSided(2.1, 7), studentTwoSidedQuantile(0.95, 11), incompleteBeta(2.5, 0.5, 0.4)].map(hex)).toEqual([
+      "3fb8c7eaa3883ae0",
+      "3fe0c7e39582c5fa",
+      "3fb2e93903d9d4b0",
+      "40019b9e1b8c9966",
+      "3fa4eb86169e950c",
+    ]);
+  });
+});
+
+describe("small matrices", () => {
+  it("inverse form of (2 1; 1 3) at (1, 2) is 7/5 (by hand), and nothing where the matrix is no covariance", () => {
+    expect(determinant2({ xx: 2, xy: 1, yy: 3 })).toBe(5);
+    expect(inverseForm2({ xx: 2, xy: 1, yy: 3 }, 1, 2)).toBeCloseTo(7 / 5, 15);
+    expect(inverseForm2({ xx: 1, xy: 1, yy: 1 }, 1, 2)).toBeNaN();
+    expect(inverseForm2({ xx: -1, xy: 0, yy: 1 }, 1, 2)).toBeNaN();
+    expect(bilinear([Float64Array.of(2, 1), Float64Array.of(1, 3)], [1, 2], [3, -1])).toBe(2 * 3 - 1 + 2 * (3 - 3));
+  });
+});
+
 describe("chance", () => {
   it("repeats with its seed, differs between seeds", () => {
     const first = createRandom(7);
@@ -148,6 +188,38 @@ describe("chance", () => {
     const values = Array.from({ length: 50 }, () => first.normal());
     expect(Array.from({ length: 50 }, () => again.normal())).toEqual(values);
     expect(Array.from({ length: 50 }, () => other.normal())).not.toEqual(values);
+  });
+
+  it("is sfc32, seeded and warmed up as written, with 53 bits a number", () => {
+    // The generator written out again from Doty-Humphrey's description (PractRand), with unsigned arithmetic.
+    const uint = (value: number): number => value >>> 0;
+    let [a, b, c, counter] = [0, 2026, 0x9e3779b9, 1];
+    const next = (): number => {
+      const out = uint(uint(a + b) + counter);
+      counter = uint(counter + 1);
+      a = uint(b ^ (b >>> 9));
+      b = uint(c + uint(c << 3));
+      c = uint(uint((c << 21) | (c >>> 11)) + out);
+      return out;
+    };
+    for (let round = 0; round < 15; round++) next();
+    const random = createRandom(2026);
+    for (let k = 0; k < 100; k++) expect(random.uniform()).toBe(((next() >>> 5) * 2 ** 26 + (next() >>> 6)) / 2 ** 53);
+  });
+
+  it("keeps the recorded bits", () => {
+    // Recorded from this implementation: a simulation that anyone published comes out the same again.
+    const small = createRandom(2026);
+    const large = createRandom(5e12 + 3);
+    expect([small.uniform(), small.uniform(), small.normal(), small.normal(), small.normal(), large.uniform(), large.normal()].map(hex)).toEqual([
+      "3fe08809986094cd",
+      "3fb22f8dd34ad448",
+      "3feb714f57607829",
+      "3fc2119e4fc307de",
+      "3fdf948d43712cf1",
+      "3fc81590797ff62c",
+      "bfd7da6e3ab73b16",
+    ]);
   });
 
   it("has the moments of its distributions", () => {

@@ -218,9 +218,8 @@ class PageConnection implements LivePage {
   private end(code: CloseCode, reason: string): void {
     if (this.isEnded || this.isClosed) return;
     this.isEnded = true;
-    const sentence = reason === "" ? (closeSentences[code] ?? "The server ended the connection. Reload the page.") : reason;
+    const sentence = this.ledger.ended(reason === "" ? (closeSentences[code] ?? "The server ended the connection. Reload the page.") : reason);
     if (this.kept !== null && setsAside.has(code) && this.ledger.waiting > 0) setAside(this.kept, `These edits were not stored: ${sentence}`);
-    this.ledger.ended(sentence);
     this.tell();
     this.events.onEnded(sentence, code);
   }

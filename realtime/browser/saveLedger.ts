@@ -72,10 +72,10 @@ export class SaveLedger {
     }
   }
 
-  /** The connection is over for good, with this sentence. */
-  ended(reason: string): void {
+  /** The connection is over for good. Gives the sentence that says why: a receipt's, where it was a refusal, is not cut short. */
+  ended(reason: string): string {
     this.isOpen = false;
-    this.refusal = reason;
+    return (this.refusal ??= reason);
   }
 
   get waiting(): number {

@@ -8,6 +8,8 @@ export type ReadCell =
   | { readonly kind: "below"; readonly limit: number | null; readonly unit?: Unit }
   | { readonly kind: "unreadable"; readonly code: string; readonly text: string };
 
+/** Characters that a number with its uncertainty, unit and marks may have. */
+const MAX_CHARACTERS = 200;
 const missing: ReadCell = { kind: "missing" };
 
 /** Texts that mean "no number here", lower-cased without spaces. */
@@ -32,6 +34,12 @@ export function readCell(text: string, decimal: DecimalSign): ReadCell {
   if (decimal === "." && /^-?\d+(?:\.\d+)?$/u.test(text)) return { kind: "value", value: Number(text), sigma: null, relative: false, mark: "" };
   const trimmed = text.trim();
   if (trimmed === "") return missing;
+  // No number is as long, and patterns take their time over a page of text.
+  if (trimmed.length > MAX_CHARACTERS)
+    return unreadable(
+      "cell-not-a-number",
+      `"${short(trimmed)}" is not a number: it has ${trimmed.length} characters. Amend it, or give the column the role text.`,
+    );
   const lower = trimmed.toLowerCase().replace(/\s+/gu, "");
   if (missingTexts.has(lower)) return missing;
   if (belowTexts.has(lower)) return { kind: "below", limit: null };

@@ -69,6 +69,13 @@ export interface QuantityColumn {
   readonly rawSigma: readonly string[];
   /** 1 where an amendment replaced the source's value. */
   readonly amended: Uint8Array;
+  /** In a table made of tables: the column's name in each of the tables that its rows' origins name. */
+  readonly sources?: readonly ColumnOrigin[];
+}
+
+export interface ColumnOrigin {
+  readonly table: string;
+  readonly column: string;
 }
 
 export interface ColumnCorrelation {

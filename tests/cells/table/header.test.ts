@@ -1,5 +1,7 @@
+import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { readHeader } from "../../../cells/table";
+import { seed } from "../../support/seed";
 import { knownHeaders } from "./headers";
 
 describe("headers as laboratories write them", () => {
@@ -43,5 +45,49 @@ describe("headers as laboratories write them", () => {
 
   it("gives every header a reason in words", () => {
     for (const { header } of knownHeaders) expect(readHeader(header).reason.length).toBeGreaterThan(2);
+  });
+
+  it("end in something said, whatever is written, and soon", () => {
+    const piece = fc.constantFrom(
+      "2s",
+      "2 σ",
+      "rel. ",
+      "(",
+      "[",
+      "±",
+      "95 %",
+      "Mg",
+      "SiO2",
+      "wt%",
+      "_",
+      " ",
+      "/",
+      "-",
+      "δ",
+      "Δ",
+      "{",
+      "in ",
+      "µg",
+      "%",
+      "FeO*",
+      "__proto__",
+      "é",
+    );
+    fc.assert(
+      fc.property(
+        fc.oneof(
+          fc.string({ unit: "grapheme", maxLength: 200 }),
+          fc.array(piece, { maxLength: 60 }).map((pieces) => pieces.join("")),
+        ),
+        (header) => {
+          const start = performance.now();
+          const read = readHeader(header);
+          expect(performance.now() - start).toBeLessThan(1000);
+          if (read.role === "uncertainty") expect(read.kind).toBeDefined();
+          if (read.role === "quantity") expect(read.species ?? read.name).toBeDefined();
+        },
+      ),
+      { seed, numRuns: 600 },
+    );
   });
 });

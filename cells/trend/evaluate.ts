@@ -49,11 +49,7 @@ function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
   };
   try {
     const line = fitLine(block.method, block.scatter ?? "likelihood", chosen.points);
-    if (!Number.isFinite(line.slope) || !Number.isFinite(line.intercept))
-      throw new CellError(
-        "not-converged",
-        "No line was found: the iteration leads to no number. See whether the σ are in the right unit, or choose another method.",
-      );
+    if (!Number.isFinite(line.slope) || !Number.isFinite(line.intercept)) throw new CellError("not-converged", whyNoLine(chosen));
     return lineResult(block, context, base, read, chosen, line, problems);
   } catch (error) {
     if (!(error instanceof CellError)) throw error;
@@ -157,6 +153,15 @@ function aboutPoints(block: TrendBlock, { leftOut, partlyKnown, assumed }: Chose
     );
   if (block.method === "york" && assumed > 0) say("assumed-sigma", "note", `At least ${samples(assumed)} ${assumed === 1 ? "leans" : "lean"} on an assumed σ.`);
   return found;
+}
+
+/** What may be at fault where York's iteration leads to no number. */
+function whyNoLine({ points: { y, correlation } }: Chosen): string {
+  if (correlation.every((r) => Math.abs(r) > 1 - 1e-9))
+    return "The errors of x and y are one and the same for every sample (correlation ±1), as where y is calculated from x alone, so they say nothing about a line. Choose another quantity for y, or use ordinary least squares.";
+  if (y.every((value) => value === y[0]))
+    return `All ${y.length} points have the same y (${y[0]}), so there is no trend to fit by errors. Choose another quantity for y, or use ordinary least squares.`;
+  return "No line was found: the iteration leads to no number. See whether the σ are in the right unit, or choose another method.";
 }
 
 function atRow(error: CellError, table: Table, { rows }: Chosen): CellError {

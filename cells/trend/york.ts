@@ -15,6 +15,8 @@ const MAX_STEPS = 200;
 const TOLERANCE = 1e-15;
 /** Error correlations beyond this make several minima of S likely, so several starts are tried. */
 const STRONG_CORRELATION = 0.7;
+/** With more points than this, only the more promising of several starts are followed. */
+const MANY = 1000;
 
 /**
  * The line with errors on both axes, correlated point by point.
@@ -30,13 +32,35 @@ export function york(points: FitPoints, start?: number): YorkFit {
   checkPoints(points, { needsErrors: true });
   const strong = points.correlation.some((r) => Math.abs(r) > STRONG_CORRELATION);
   let best: YorkFit | undefined;
-  const starts = startingSlopes(points);
+  const starts = strong && points.x.length > MANY ? promising(points, startingSlopes(points)) : startingSlopes(points);
   for (const slope of start === undefined ? starts : [start, ...starts]) {
     const fit = yorkFrom(points, slope);
     if (fit !== undefined && better(fit, best)) best = fit;
     if (best?.converged && !strong) break;
   }
   return best ?? failed(points);
+}
+
+/** The slopes among these from which S falls to neither side, least S first. */
+function promising(points: FitPoints, slopes: readonly number[]): number[] {
+  const weight = new Float64Array(points.x.length);
+  const tried = [...slopes].sort((p, q) => p - q).map((slope) => ({ slope, S: distancesAt(points, slope, weight) }));
+  return tried
+    .filter(({ S }, i) => S <= (tried[i - 1]?.S ?? Infinity) && S <= (tried[i + 1]?.S ?? Infinity))
+    .sort((p, q) => p.S - q.S)
+    .map(({ slope }) => slope);
+}
+
+/** S at a slope, the intercept at its best. */
+function distancesAt(points: FitPoints, slope: number, weight: Float64Array): number {
+  const { x, y } = points;
+  const [xMean, yMean] = weigh(points, slope, weight);
+  let S = 0;
+  for (let i = 0; i < x.length; i++) {
+    const r = (y[i] ?? 0) - yMean - slope * ((x[i] ?? 0) - xMean);
+    S += (weight[i] ?? 0) * r * r;
+  }
+  return S;
 }
 
 function better(fit: YorkFit, than: YorkFit | undefined): boolean {

@@ -286,6 +286,14 @@ describe("what cannot be fitted says so, at its place", () => {
     expect(codes(fitPoints({ x: good.x, y: good.y }))).toEqual(expect.arrayContaining(["without-sigma", "too-few-points"]));
   });
 
+  it("an axis against itself, or a y without any spread: why there is no line", () => {
+    const itself = evaluateTrend(trend({ y: "2 * X" }), contextOf(pointsTable(good)));
+    expect(itself.ok).toBe(false);
+    expect(itself.problems[0]?.text).toContain("y is calculated from x alone");
+    expect(fitPoints({ ...good, y: [2, 2, 2, 2], sigmaY: [0, 0, 0, 0] }).problems[0]?.text).toContain("All 4 points have the same y (2)");
+    expect(fitPoints({ ...good, y: [2, 2, 2, 2] }).slope?.value).toBe(0);
+  });
+
   it("no number leaves as NaN: what has no line has no slope", () => {
     const result = fitPoints({ ...good, x: [2, 2, 2, 2] });
     expect(result.slope).toBeUndefined();

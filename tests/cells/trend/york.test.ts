@@ -2,6 +2,7 @@ import fc from "fast-check";
 import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 
+import { createRandom } from "../../../cells/numeric";
 import type { FitPoints } from "../../../cells/trend/lineFit";
 import { propagate, yorkInfluence } from "../../../cells/trend/influence";
 import { york } from "../../../cells/trend/york";
@@ -235,6 +236,34 @@ describe("York's line", () => {
     }
     expect(fit.converged).toBe(true);
     expect(fit.S).toBeLessThanOrEqual(least * (1 + 1e-6));
+  });
+});
+
+describe("many points, strongly correlated", () => {
+  it("lead to the same line as all starts do (3,000 seeded points, 1e-10)", () => {
+    const random = createRandom(3);
+    const n = 3000;
+    const p: FitPoints = {
+      x: new Float64Array(n),
+      y: new Float64Array(n),
+      sigmaX: new Float64Array(n).fill(0.05),
+      sigmaY: new Float64Array(n).fill(0.04),
+      correlation: new Float64Array(n).fill(0.9),
+    };
+    for (let i = 0; i < n; i++) {
+      const [t, e] = [random.uniform(), random.normal()];
+      p.x[i] = t + 0.05 * e;
+      p.y[i] = 1 - 0.7 * t + 0.04 * (0.9 * e + Math.sqrt(1 - 0.81) * random.normal());
+    }
+    const fit = york(p);
+    expect(fit.converged).toBe(true);
+    // Within 4σ of the truth, and no lower S from any other start.
+    expect(Math.abs(fit.slope + 0.7)).toBeLessThan(4 * Math.sqrt(fit.slopeVariance));
+    for (const start of [-3, -1, -0.3, 0, 0.4, 1, 3]) {
+      const other = york(p, start);
+      expect(other.S).toBeGreaterThanOrEqual(fit.S * (1 - 1e-10));
+      relative(other.slope, fit.slope, 1e-10, `slope from ${start}`);
+    }
   });
 });
 

@@ -1,4 +1,5 @@
 import type { PlotLayer, PlotResult } from "../page/results";
+import type { Drawing } from "./drawing";
 import { State, stateName, stateNames, type StateName } from "../quantity/state";
 
 /** Of no line's samples: outside every condition. */
@@ -8,17 +9,19 @@ const NOT_ASKED = 255;
  * How many samples stand on the drawing and, by state, do not. A sample that several lines draw counts once; one that no line
  * asks for, because it is outside their conditions, does not count. Samples set aside are counted always.
  */
-export function countDrawn(layers: readonly PlotLayer[], plot: PlotResult["plot"]): Pick<PlotResult, "drawn" | "notDrawn"> {
+export function countDrawn({ block: { plot }, chosen }: Drawing, layers: readonly PlotLayer[]): Pick<PlotResult, "drawn" | "notDrawn"> {
   const best = new Map<string, Uint8Array>();
   for (const layer of layers) {
     if (layer.what !== "samples") continue;
     const { x, y, state } = layer.points;
     const known = best.get(layer.data) ?? new Uint8Array(state.length).fill(NOT_ASKED);
     best.set(layer.data, known);
+    const holds = chosen.get(layer.drawn);
     for (let row = 0; row < state.length; row++) {
       const code = state[row] ?? State.missing;
       const hasPlace = Number.isFinite(x[row]) && (plot === "distribution" || Number.isFinite(y[row]));
-      if (code === State.present && !hasPlace) continue;
+      const isAsked = holds === undefined || holds[row] === 1 || code === State.setAside;
+      if (!isAsked || (code === State.present && !hasPlace)) continue;
       known[row] = Math.min(known[row] ?? NOT_ASKED, code);
     }
   }

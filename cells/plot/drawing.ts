@@ -16,6 +16,8 @@ export interface Placed {
 export class Drawing {
   readonly problems: Problem[] = [];
   readonly bodiesUsed: Record<string, string> = {};
+  /** By place in the list: the rows whose condition holds, where a line of samples has one. */
+  readonly chosen = new Map<number, Uint8Array>();
   readonly #known = new Map<string, Evaluated>();
 
   constructor(

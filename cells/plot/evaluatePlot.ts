@@ -35,7 +35,7 @@ export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResul
     x: axes.x?.info ?? nameOnly(axisCandidates(shown, "x", drawing)[0]?.text),
     y: axes.y?.info ?? nameOnly(block.plot === "distribution" ? undefined : axisCandidates(shown, "y", drawing)[0]?.text),
     layers,
-    ...countDrawn(layers, block.plot),
+    ...countDrawn(drawing, layers),
     problems: drawing.problems,
     bodiesUsed: drawing.bodiesUsed,
   };

@@ -48,7 +48,7 @@ export function evaluatePattern(drawing: Drawing): PlotResult {
     ? { expression: "", label: "50 % condensation temperature", unit: "K", basis: null }
     : { expression: "", label: named.join(", "), unit: "1", basis: null };
   const y: AxisInfo = { expression: "", label: `normalised to ${by}`, unit: "1", basis: null };
-  return { kind: "plot", plot: "pattern", x, y, layers, ...countDrawn(layers, "pattern"), problems: drawing.problems, bodiesUsed: drawing.bodiesUsed };
+  return { kind: "plot", plot: "pattern", x, y, layers, ...countDrawn(drawing, layers), problems: drawing.problems, bodiesUsed: drawing.bodiesUsed };
 }
 
 function layersOf(drawing: Drawing, drawn: Drawn, place: number, normaliser: string, byTemperature: boolean, named: string[]): PlotLayer[] {

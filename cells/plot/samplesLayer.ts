@@ -27,7 +27,9 @@ export function samplesPlaced(block: PlotBlock, drawn: SamplesDrawn, place: numb
 /** The rows that a line of samples draws: all, or those where its condition holds. */
 export function chosenRows(drawing: Drawing, drawn: SamplesDrawn, place: number): Uint8Array | undefined {
   if (drawn.where === undefined || drawn.where.trim() === "") return undefined;
-  return evaluateCondition(drawing.context.scope(drawn.data), drawn.where, { block: drawing.block.id, field: `drawn[${place}].where` });
+  const holds = evaluateCondition(drawing.context.scope(drawn.data), drawn.where, { block: drawing.block.id, field: `drawn[${place}].where` });
+  drawing.chosen.set(place, holds);
+  return holds;
 }
 
 export function tableOf(drawing: Drawing, drawn: SamplesDrawn, place: number): Table {

@@ -1,7 +1,7 @@
 import type { Basis } from "../page/schema";
 import { State } from "../quantity/state";
 import type { Unit } from "../quantity/unit";
-import type { QuantityColumn } from "../table/table";
+import type { ColumnOrigin, QuantityColumn } from "../table/table";
 
 /** A quantity's column while it is made; nobody else has seen it yet. */
 export interface DraftColumn extends QuantityColumn {
@@ -16,11 +16,12 @@ export interface ColumnMeaning {
   readonly species?: string;
   readonly unit: Unit;
   readonly basis?: Basis;
+  readonly sources?: readonly ColumnOrigin[];
 }
 
 /** A column of that many rows in which every value is missing and every σ unknown. */
 export function draftColumn(meaning: ColumnMeaning, rows: number): DraftColumn {
-  const { name, header, sigmaHeader, species, unit, basis } = meaning;
+  const { name, header, sigmaHeader, species, unit, basis, sources } = meaning;
   return {
     kind: "quantity",
     name,
@@ -29,6 +30,7 @@ export function draftColumn(meaning: ColumnMeaning, rows: number): DraftColumn {
     ...(species === undefined ? {} : { species }),
     unit,
     ...(basis === undefined ? {} : { basis }),
+    ...(sources === undefined ? {} : { sources }),
     value: new Float64Array(rows).fill(Number.NaN),
     sigma: new Float64Array(rows).fill(Number.NaN),
     state: new Uint8Array(rows).fill(State.missing),

@@ -2,7 +2,7 @@ import { CellError } from "../errors";
 import { State } from "../quantity/state";
 import type { ColumnCorrelation, QuantityColumn, Table, TableColumn, TextColumn } from "../table/table";
 import { copyCell, draftColumn } from "./draft";
-import { freeName, rowIdsOf, sayRenamed, substitutionOf, type Member } from "./members";
+import { columnOrigins, freeName, rowIdsOf, sayRenamed, substitutionOf, type Member } from "./members";
 import { counted, listed, type Problems } from "./problems";
 
 /** A row of the joined table: the row that each member has for its sample. */
@@ -108,7 +108,7 @@ function joinWords(column: TextColumn, name: string, member: number, members: re
 }
 
 function joinQuantity(column: QuantityColumn, name: string, member: number, table: Table, joined: readonly Joined[], setAside: Uint8Array): QuantityColumn {
-  const made = draftColumn({ ...column, name }, joined.length);
+  const made = draftColumn({ ...column, name, sources: columnOrigins(table.handle, column) }, joined.length);
   joined.forEach(({ rows }, at) => {
     const row = rows[member];
     if (row === undefined) return;

@@ -1,7 +1,7 @@
 import { CellError } from "../errors";
 import type { BlockContext } from "../page/context";
 import type { RowId } from "../page/schema";
-import type { RowOrigin, Table } from "../table/table";
+import type { ColumnOrigin, QuantityColumn, RowOrigin, Table } from "../table/table";
 import type { Problems } from "./problems";
 
 /** A table that another is made of, by the handle it has now. */
@@ -80,4 +80,9 @@ export function freeName(wanted: string, handle: string, used: Set<string>): str
 /** Says that a column had to be called otherwise than in its own table. */
 export function sayRenamed(from: string, to: string, member: string, why: string, problems: Problems): void {
   problems.note("column-renamed", `The column ${from} of ${member} is called ${to} here, since ${why}.`, { column: to });
+}
+
+/** Where a column's values stand in the tables that its rows' origins name. */
+export function columnOrigins(handle: string, column: QuantityColumn): readonly ColumnOrigin[] {
+  return column.sources ?? [{ table: handle, column: column.name }];
 }

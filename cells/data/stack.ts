@@ -2,7 +2,7 @@ import { parseSpecies } from "../species";
 import { State } from "../quantity/state";
 import type { ColumnCorrelation, QuantityColumn, Table, TableColumn, TextColumn } from "../table/table";
 import { copyCell, draftColumn, type DraftColumn } from "./draft";
-import { freeName, rowIdsOf, sayRenamed, substitutionOf, type Member } from "./members";
+import { columnOrigins, freeName, rowIdsOf, sayRenamed, substitutionOf, type Member } from "./members";
 import { counted, listed, type Problems } from "./problems";
 
 /** Name of the column that says which table a row came from. */
@@ -132,7 +132,11 @@ function whyApart(column: QuantityColumn, targets: readonly Target<QuantityColum
 }
 
 function stackQuantity(target: Target<QuantityColumn>, members: readonly Member[], starts: readonly number[], rows: number): DraftColumn {
-  const made = draftColumn({ ...target.first, name: target.name }, rows);
+  const sources = members.flatMap(({ handle }, member) => {
+    const from = target.from[member];
+    return from === undefined ? [] : columnOrigins(handle, from);
+  });
+  const made = draftColumn({ ...target.first, name: target.name, sources }, rows);
   members.forEach(({ table }, member) => {
     const from = target.from[member];
     const start = starts[member] ?? 0;

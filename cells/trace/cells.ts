@@ -36,6 +36,11 @@ function originOf(context: BlockContext, handle: string, id: RowId, column: Quan
   if (table === undefined) return undefined;
   const row = table.rowIds.indexOf(id);
   const quantities = table.columns.filter((each): each is QuantityColumn => each.kind === "quantity");
+  if (column.sources !== undefined) {
+    const name = column.sources.find((source) => source.table === handle)?.column;
+    const named = quantities.find((each) => each.name === name);
+    return row < 0 || named === undefined ? undefined : { table, column: named, row };
+  }
   const alike = (each: QuantityColumn): boolean => each.species === column.species && each.unit.dimension === column.unit.dimension;
   const found =
     quantities.find((each) => each.name === column.name && alike(each)) ??

@@ -87,6 +87,11 @@ describe("a stack", () => {
     page.add({ id: "all", kind: "data", stack: ["ch", "ro"] });
     const result = page.add({ id: "more", kind: "data", stack: ["all", "ch"] });
     expect(words(result, "table")).toEqual(["ch", "ch", "ro", "ro", "ch", "ch"]);
+    expect(quantity(result, "MgO").sources).toEqual([
+      { table: "ch", column: "MgO" },
+      { table: "ro", column: "magnesia" },
+      { table: "ch", column: "MgO" },
+    ]);
     expect(tableOf(result).rowIds).toEqual(["ch.1", "ch.2", "ro.1", "ro.2", "ch.1#2", "ch.2#2"]);
     expect(tableOf(result).origins[4]).toEqual([{ table: "ch", row: 1 }]);
     expect(problemOf(result, "rows-twice").text).toContain("2 rows of ch come in by more than one");
@@ -217,6 +222,7 @@ describe("a join", () => {
     expect(valuesOf(result, "MgO")).toEqual([37, 38, null]);
     expect(valuesOf(result, "MgO_b")).toEqual([null, 39, 40]);
     expect(valuesOf(result, "Ir").map((value) => value?.toFixed(6))).toEqual([undefined, "600.000000", "700.000000"]);
+    expect(quantity(result, "MgO_b").sources).toEqual([{ table: "b", column: "MgO" }]);
     expect(problemsOf(result, "join-unmatched")).toHaveLength(2);
     expect(problemOf(result, "class-differs").text).toContain("B (CV or CK)");
     expect(table.classes).toEqual(["CV", "CV", "CK"]);

@@ -25,15 +25,24 @@ export type Swap = Readonly<Record<string, string>>;
  * Reads a budget.
  *
  * @param more expressions whose elements are needed too: the axes of a plot
+ * @param memo expressions that name no body, kept from one reading with other compilations to the next
  * @throws CellError where the start, a step or the target cannot be read; a reported expression that cannot is a problem of its own
  */
-export function readBudget(block: BudgetBlock, context: BlockContext, swap: Swap = {}, more: readonly Measure[] = []): Budget {
+export function readBudget(
+  block: BudgetBlock,
+  context: BlockContext,
+  swap: Swap = {},
+  more: readonly Measure[] = [],
+  memo = new Map<string, Measure>(),
+): Budget {
   const bodiesUsed: Record<string, string> = {};
   const problems: Problem[] = [];
   const lookup = bodiesWith(context, swap);
   const measure = (text: string, field: string, data?: string): Measure => {
-    const made = measureOf(text, { block: block.id, field }, lookup, (written) => context.expand(written, data));
+    const key = JSON.stringify([text, data]);
+    const made = memo.get(key) ?? measureOf(text, { block: block.id, field }, lookup, (written) => context.expand(written, data));
     Object.assign(bodiesUsed, made.bodiesUsed);
+    if (Object.keys(made.bodiesUsed).length === 0) memo.set(key, made);
     return made;
   };
   const report = (block.report ?? []).map((text, i) => {

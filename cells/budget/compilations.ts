@@ -5,6 +5,7 @@ import type { BudgetBlock } from "../page/schema";
 import { listBodies, type Body } from "../species";
 import { spreadOf, type LinearForm } from "./algebra";
 import { readBudget, type Budget } from "./budget";
+import type { Measure } from "./measure";
 import { solve } from "./solve";
 
 /** More combinations than this are not tried. */
@@ -37,9 +38,10 @@ export function byCompilation(
     combinations = combinations.flatMap((known) => ids.map((id) => ({ ...known, [name]: id })));
   }
   const isOwn = (bodies: Readonly<Record<string, string>>): boolean => Object.entries(bodies).every(([name, id]) => budget.bodiesUsed[name] === id);
+  const memo = new Map<string, Measure>();
   return combinations.map((bodies) => ({
     bodies,
-    ...(isOwn(bodies) ? { solved: own.value, sigma: spreadOf(own).sigma } : answer(block, context, bodies, step)),
+    ...(isOwn(bodies) ? { solved: own.value, sigma: spreadOf(own).sigma } : answer(block, context, bodies, step, memo)),
   }));
 }
 
@@ -48,9 +50,10 @@ function answer(
   context: BlockContext,
   bodies: Readonly<Record<string, string>>,
   step: number,
+  memo: Map<string, Measure>,
 ): { readonly solved: number | null; readonly sigma: number | null } {
   try {
-    const { plan, aim } = readBudget(block, context, bodies);
+    const { plan, aim } = readBudget(block, context, bodies, [], memo);
     if (aim === undefined) return { solved: null, sigma: null };
     const { amount } = solve(plan, step, aim);
     return { solved: amount.value, sigma: spreadOf(amount).sigma };

@@ -158,7 +158,7 @@ function readKey(key: string): readonly [species: NonNullable<ReturnType<typeof 
   return [species, unit];
 }
 
-/** A number that is `factor` times one input. */
+/** A number that is `factor` times one input. Exact inputs (σ = 0) stay inputs too: a trace names them. */
 export function input(variable: CommonVariable, factor = 1): LinearForm {
-  return variable.sigma === 0 ? exact(variable.value * factor) : { value: variable.value * factor, terms: [{ variable, partial: factor }] };
+  return { value: variable.value * factor, terms: [{ variable, partial: factor }] };
 }

@@ -113,8 +113,11 @@ export interface Uncertain {
 }
 
 /** Slope or intercept of the line in use. `sigma` is from the errors of its points alone. */
+/** `value` is that of the line in use. `sigma` belongs to the line by the errors alone, `sigmaWithScatter` to the one with scatter. */
 export interface FitParameter extends Uncertain {
   readonly sigmaWithScatter: number | null;
+  /** Value by the errors alone, where the line in use is fitted with scatter and therefore another one. */
+  readonly byErrorsAlone?: number;
 }
 
 /** One sample in a fit. */

@@ -118,6 +118,7 @@ function trendJson(result: TrendResult): object {
     covarianceWithScatter: orNull(result.covarianceWithScatter),
     S: orNull(result.S),
     mswd: orNull(result.mswd),
+    mswdExpected: result.mswdExpected ?? null,
     p: orNull(result.p),
     scatter: orNull(result.scatter),
     usesScatter: result.usesScatter ?? null,
@@ -218,8 +219,15 @@ function problemJson(problem: Problem): object {
   };
 }
 
+/** Value and σ by the errors alone, and both with scatter where there is some: each σ beside the value it belongs to. */
 function parameter(of: FitParameter | undefined): object | null {
-  return of === undefined ? null : { value: orNull(of.value), sigma: orNull(of.sigma), sigmaWithScatter: orNull(of.sigmaWithScatter) };
+  if (of === undefined) return null;
+  return {
+    value: orNull(of.byErrorsAlone ?? of.value),
+    sigma: orNull(of.sigma),
+    ...(of.byErrorsAlone === undefined ? {} : { valueWithScatter: orNull(of.value) }),
+    sigmaWithScatter: orNull(of.sigmaWithScatter),
+  };
 }
 
 function orNull(value: number | null | undefined): number | null {

@@ -227,6 +227,7 @@ function lineResult(
     value: line[which],
     sigma: sigmaOf(plain[which]),
     sigmaWithScatter: wide === undefined ? null : sigmaOf(wide[which]),
+    ...(line.byErrorsAlone === undefined ? {} : { byErrorsAlone: line.byErrorsAlone[which] }),
     ...(partlyKnown || hasUnknown(plain[which]) ? { sigmaIs: "lower bound" as const } : {}),
   });
   const fit: TrendFit = { handle: block.id, ...axes, ...inUse, quantile: line.quantile, partlyKnown };

@@ -110,7 +110,7 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
             {samplesOfFit(result) === "" ? "" : `, ${samplesOfFit(result)}`}
           </Row>
           {result.usesScatter && result.slope !== undefined && (
-            <Row head="errors alone">{`slope ${formatValue(result.slope.value, result.slope.sigma, { form })}`}</Row>
+            <Row head="errors alone">{`slope ${formatValue(result.slope.byErrorsAlone ?? result.slope.value, result.slope.sigma, { form })}`}</Row>
           )}
           {result.covariance !== undefined && (
             <Row head="covariance">

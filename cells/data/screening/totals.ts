@@ -11,11 +11,14 @@ const majors = ["SiO2", "Al2O3", "MgO", "CaO"] as const;
 const known: ReadonlySet<string> = new Set(oxides);
 const volatileOxides: ReadonlySet<string> = new Set(["H2O", "CO2", "SO2", "SO3"]);
 
-/** The columns whose sum is the total of a row, iron counted once. */
+/** The columns whose sum is the total of a row. */
 interface Counted {
+  /** Everything but the iron. */
   readonly columns: readonly QuantityColumn[];
-  /** Those that a row must have for its total to mean anything: the majors and the iron. */
+  /** The majors, which a row must have for its total to mean anything. */
   readonly needed: readonly QuantityColumn[];
+  /** Ways in which the table gives all the iron; a row counts the first that it has whole. */
+  readonly iron: readonly (readonly QuantityColumn[])[];
 }
 
 /**
@@ -27,11 +30,15 @@ export function screenTotals(table: Table, flags: Flags, problems: Problems, ran
   const counted = countedColumns(table, problems);
   if (counted === undefined) return;
   for (let row = 0; row < table.rows; row++) {
-    if (table.setAside[row] === 1 || !counted.needed.every((column) => column.state[row] === State.present)) continue;
+    const given = (column: QuantityColumn): boolean => column.state[row] === State.present;
+    if (table.setAside[row] === 1 || !counted.needed.every(given)) continue;
+    const iron = counted.iron.find((way) => way.every(given));
+    if (iron === undefined) continue;
     let total = 0;
-    for (const column of counted.columns) if (column.state[row] === State.present) total += 100 * (column.value[row] ?? Number.NaN);
+    for (const column of counted.columns) if (given(column)) total += 100 * (column.value[row] ?? Number.NaN);
+    for (const column of iron) total += 100 * (column.value[row] ?? Number.NaN);
     if (total >= range.from && total <= range.to) continue;
-    const missing = counted.columns.filter((column) => column.state[row] !== State.present).map((column) => column.name);
+    const missing = counted.columns.filter((column) => !given(column)).map((column) => column.name);
     const without = missing.length === 0 ? "" : `, without ${missing.slice(0, 4).join(", ")}${missing.length > 4 ? " …" : ""}`;
     const side = total < range.from ? `below ${range.from.toFixed(1)}` : `above ${range.to.toFixed(1)}`;
     flags.flag("total", row, undefined, `total ${total.toFixed(1)} wt%, ${side}${without}`);
@@ -43,8 +50,7 @@ function countedColumns(table: Table, problems: Problems): Counted | undefined {
   const byName = (name: string): QuantityColumn | undefined => measured.find(({ species }) => species?.name === name)?.column;
   const needed = majors.map(byName);
   if (!needed.every((column) => column !== undefined)) return undefined;
-  const iron = ironOnce(measured);
-  if (iron === undefined) return undefined;
+  const iron = waysOfIron(measured);
   if (iron === "untold") {
     problems.note(
       "totals-iron",
@@ -52,11 +58,11 @@ function countedColumns(table: Table, problems: Problems): Counted | undefined {
     );
     return undefined;
   }
+  if (iron.length === 0) return undefined;
   const ignition = table.columns.find(
     (column): column is QuantityColumn => column.kind === "quantity" && column.name === "LOI" && column.unit.dimension === "mass fraction",
   );
-  const columns = [...oxidesOf(measured, ignition !== undefined), ...iron, ...(ignition === undefined ? [] : [ignition])];
-  return { columns, needed: [...needed, ...iron] };
+  return { columns: [...oxidesOf(measured, ignition !== undefined), ...(ignition === undefined ? [] : [ignition])], needed, iron };
 }
 
 /** Every oxide once, and elements of which no oxide is there; never iron. */
@@ -76,22 +82,19 @@ function oxidesOf(measured: readonly Measured[], hasIgnition: boolean): readonly
   return found;
 }
 
-/** The iron's columns by mass, each form once; "untold" where nobody says how much of it a lone column is. */
-function ironOnce(measured: readonly Measured[]): readonly QuantityColumn[] | "untold" | undefined {
+/** Totals first, then all the parts together; "untold" where nobody says how much of the iron a lone column is. */
+function waysOfIron(measured: readonly Measured[]): readonly (readonly QuantityColumn[])[] | "untold" {
   const iron = measured.filter(({ species }) => species?.element === "Fe");
-  if (iron.length === 0) return undefined;
-  const oxideTotal = iron.find(({ species }) => species?.name === "FeOt") ?? iron.find(({ species }) => species?.name === "Fe2O3t");
-  if (oxideTotal !== undefined) return [oxideTotal.column];
+  // Iron as the element has its oxygen nowhere, so an oxide total alone says what the iron adds.
+  const totals = ["FeOt", "Fe2O3t"].flatMap((name) => iron.filter(({ species }) => species?.name === name)).map(({ column }) => [column]);
+  const parts = iron.filter(({ species }) => species?.iron !== "total");
+  const bare = parts.some(({ species }) => species?.name === "Fe");
   const forms = new Map<string, QuantityColumn>();
-  for (const { column, species } of iron) {
-    if (species?.iron === "total") continue;
+  for (const { column, species } of parts) {
     const form = species?.name.replace(/_ferr(?:ous|ic)$/u, "") ?? "";
     if (!forms.has(form)) forms.set(form, column);
   }
-  // All of it as the element: how much oxygen goes with it is not known, so no total follows.
-  if (forms.size === 0) return undefined;
-  if (forms.has("Fe")) return "untold";
-  const [only] = iron;
-  if (forms.size === 1 && only?.species?.iron === "untold") return "untold";
-  return forms.size === 1 ? undefined : [...forms.values()];
+  if (forms.size > 1 && !bare) return [...totals, [...forms.values()]];
+  if (totals.length > 0 || forms.size === 0) return totals;
+  return bare || parts.every(({ species }) => species?.iron === "untold") ? "untold" : [];
 }

@@ -58,6 +58,18 @@ describe("totals", () => {
     expect(totals({ FeOt: "8", Ni: "2000" }, {}, nickel)).toEqual(["total 98.2 wt%, below 98.5"]);
   });
 
+  it("take each row's own iron, where tables that give it differently are stacked", () => {
+    const page = new DataPage();
+    for (const [id, iron] of [
+      ["a", "FeOt"],
+      ["b", "Fe2O3t"],
+    ] as const)
+      page.source(id, `Sample,SiO2,Al2O3,MgO,CaO,${iron}\n${id}1,45,4,38,3,9\n${id}2,45,4,38,3,5.8\n`, {
+        columns: [sample, ...major, iron].map((name) => (typeof name === "string" ? wtpct(name) : name)),
+      });
+    expect(flags(page.add({ id: "all", kind: "data", stack: ["a", "b"] }).screening, "total").map((flag) => flag.row)).toEqual(["a.2", "b.2"]);
+  });
+
   it("never change a value", () => {
     expect(valuesOf(rock({ FeOt: "5.8" }), "SiO2")).toEqual([45]);
   });

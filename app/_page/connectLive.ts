@@ -22,7 +22,7 @@ export const connectLive: Connect = ({ page, me, role, realtimeUrl, version }, e
   let savedAt: Date | null = null;
   return connectPage(
     {
-      url: realtimeUrl,
+      url: onOwnHost(realtimeUrl),
       pageId: page.id,
       epoch: page.epoch,
       user: me,

@@ -41,25 +41,26 @@ export function byCompilation(
   const memo = new Map<string, Measure>();
   return combinations.map((bodies) => ({
     bodies,
-    ...(isOwn(bodies) ? { solved: own.value, sigma: spreadOf(own).sigma } : answer(block, context, bodies, step, memo)),
+    ...(isOwn(bodies) ? answerOf(own) : answer(block, context, bodies, step, memo)),
   }));
 }
 
-function answer(
-  block: BudgetBlock,
-  context: BlockContext,
-  bodies: Readonly<Record<string, string>>,
-  step: number,
-  memo: Map<string, Measure>,
-): { readonly solved: number | null; readonly sigma: number | null } {
+type Answer = Omit<BudgetResult["byCompilation"][number], "bodies">;
+
+const none: Answer = { solved: null, sigma: null };
+
+function answerOf(amount: LinearForm): Answer {
+  const { sigma, isLowerBound } = spreadOf(amount);
+  return { solved: amount.value, sigma, ...(isLowerBound ? { sigmaIs: "lower bound" as const } : {}) };
+}
+
+function answer(block: BudgetBlock, context: BlockContext, bodies: Readonly<Record<string, string>>, step: number, memo: Map<string, Measure>): Answer {
   try {
     const { plan, aim } = readBudget(block, context, bodies, [], memo);
-    if (aim === undefined) return { solved: null, sigma: null };
-    const { amount } = solve(plan, step, aim);
-    return { solved: amount.value, sigma: spreadOf(amount).sigma };
+    return aim === undefined ? none : answerOf(solve(plan, step, aim).amount);
   } catch (error) {
     // With this compilation there is no answer: it lacks an element, or no possible amount reaches the target.
-    if (error instanceof CellError) return { solved: null, sigma: null };
+    if (error instanceof CellError) return none;
     throw error;
   }
 }

@@ -14,19 +14,20 @@ export function reportRow(text: string, measure: Measure | undefined, start: Sub
   if (measure === undefined) return { ...emptyRow(text), note: "This expression cannot be read." };
   const [atStart, atEnd, atTarget] = [measure.on(start), end === undefined ? undefined : measure.on(end), aim?.of(measure)];
   const [begun, ended, wanted] = [numbers(atStart), numbers(atEnd), numbers(atTarget)];
-  const why = [atEnd, atStart, atTarget].find((known) => typeof known === "string");
+  const miss = atEnd !== undefined && isKnown(atEnd) && atTarget !== undefined && isKnown(atTarget) ? missOf(atEnd, atTarget) : { miss: null, isMost: false };
+  const why = [atEnd, atStart, atTarget].find((known) => typeof known === "string") ?? (miss.isMost ? AT_MOST : undefined);
   return {
     expression: text,
     basis: measure.basis,
     unit: measure.unit,
     start: begun.value,
-    startSigma: begun.sigma,
+    startSigma: begun.isLowerBound ? null : begun.sigma,
     end: ended.value,
     sigma: ended.sigma,
     ...(ended.isLowerBound ? { sigmaIs: "lower bound" as const } : {}),
     target: wanted.value,
-    targetSigma: wanted.sigma,
-    miss: atEnd !== undefined && isKnown(atEnd) && atTarget !== undefined && isKnown(atTarget) ? missOf(atEnd, atTarget) : null,
+    targetSigma: wanted.isLowerBound ? null : wanted.sigma,
+    miss: miss.miss,
     ...(why === undefined ? {} : { note: why }),
   };
 }
@@ -44,9 +45,12 @@ function numbers(known: Known | undefined): { readonly value: number | null; rea
 /** Differences below this part of the value are rounding: the end is at the target. */
 const ROUNDING = 1e-10;
 
-function missOf(end: LinearForm, target: LinearForm): number | null {
+const AT_MOST = "The σ of an input is unknown, so it misses by this many σ at most.";
+
+/** `isMost` where the σ of the difference is a lower bound. */
+function missOf(end: LinearForm, target: LinearForm): { readonly miss: number | null; readonly isMost: boolean } {
   const difference = minus(end, target);
-  if (Math.abs(difference.value) <= ROUNDING * Math.max(Math.abs(end.value), Math.abs(target.value))) return 0;
-  const { sigma } = spreadOf(difference);
-  return sigma === null || !(sigma > 0) ? null : difference.value / sigma;
+  if (Math.abs(difference.value) <= ROUNDING * Math.max(Math.abs(end.value), Math.abs(target.value))) return { miss: 0, isMost: false };
+  const { sigma, isLowerBound } = spreadOf(difference);
+  return sigma === null || !(sigma > 0) ? { miss: null, isMost: false } : { miss: difference.value / sigma, isMost: isLowerBound };
 }

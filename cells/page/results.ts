@@ -204,7 +204,12 @@ export interface BudgetResult extends AnyResult {
   /** Each input's share of the solved amount's variance, largest first, summing to 1. */
   readonly shares: readonly { readonly input: string; readonly share: number }[];
   /** Solved amount for each pair of compilations at hand. */
-  readonly byCompilation: readonly { readonly bodies: Readonly<Record<string, string>>; readonly solved: number | null; readonly sigma: number | null }[];
+  readonly byCompilation: readonly {
+    readonly bodies: Readonly<Record<string, string>>;
+    readonly solved: number | null;
+    readonly sigma: number | null;
+    readonly sigmaIs?: "lower bound";
+  }[];
   /** Mass at start and end, kg per kg of the start, and the difference that must be zero where closure can hold. */
   readonly closure?: { readonly start: number; readonly end: number; readonly error: number };
 }
@@ -224,15 +229,17 @@ export interface BudgetReport {
   readonly basis: Basis | "formula units" | null;
   readonly unit: string;
   readonly start: number | null;
+  /** null where unknown, and where it would be a lower bound only. */
   readonly startSigma: number | null;
   readonly end: number | null;
   readonly sigma: number | null;
   readonly sigmaIs?: "lower bound";
   readonly target: number | null;
+  /** null where unknown, and where it would be a lower bound only. */
   readonly targetSigma: number | null;
-  /** (end − target) over its σ; null where there is no target or no σ. */
+  /** (end − target) over its σ; null where there is no target or no σ. Where that σ is a lower bound, `note` says that the miss is at most this. */
   readonly miss: number | null;
-  /** Why a value is null. */
+  /** Why a value is null, or what is to be known of the miss. */
   readonly note?: string;
 }
 

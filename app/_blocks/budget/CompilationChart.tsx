@@ -73,6 +73,7 @@ export function CompilationChart({
               </td>
               <td className="w-px pl-4 text-right font-mono whitespace-nowrap text-second">
                 {row.solved === null ? "no answer" : formatValue(row.solved, row.sigma, { form, unknown: "" })}
+                {row.sigmaIs !== undefined && ", 1σ at least"}
               </td>
             </tr>
           );

@@ -50,7 +50,20 @@ describe("what makes a scientist reject a tool like this", () => {
     expect(unknown.shares).toEqual([]);
     const partly = evaluate(siliconInMetal);
     expect(partly.solved?.sigmaIs).toBe("lower bound");
+    // Each compilation says so for itself, and a miss over such a σ says that it is the most.
+    expect(partly.byCompilation.map(({ sigma, sigmaIs }) => (sigma === null ? "unknown" : (sigmaIs ?? "known")))).toEqual([
+      ...["unknown", "lower bound", "lower bound", "unknown"],
+      ...["lower bound", "known", "known", "lower bound"],
+    ]);
+    expect(partly.report[1]?.note).toBe("The σ of an input is unknown, so it misses by this many σ at most.");
     expect(partly.problems.map(({ text }) => text)).toContain("The σ of Mg of BSE_MS95, Si of BSE_MS95 is unknown, so that of the amount is a lower bound.");
+  });
+
+  it("gives no σ of start or target that is a lower bound without saying so", () => {
+    const start = { composition: { "Mg wt%": { value: 20, sigma: 0.4 }, "Si wt%": 16 } };
+    const result = evaluate({ start, steps: [], report: ["Mg / Si", "Mg"] });
+    expect(result.report[0]).toMatchObject({ startSigma: null, sigma: 1.25 * 0.02, sigmaIs: "lower bound" });
+    expect(result.report[1]?.startSigma).toBeCloseTo(0.4, 14);
   });
 
   it("takes a typed number without σ for one of unknown σ, and one of σ 0 for exact", () => {

@@ -47,17 +47,16 @@ function quotedIn(readme: string): Quoted[] {
   return [...readme.matchAll(/^\|[^|]+\|\s*`([^|]+)`\s*\|\s*([^|]+?)\s*\|$/gmu)].map(([, where = "", text = ""]) => ({ where, text }));
 }
 
-/** A number as a README may write it: to as many places as are quoted, or with its 1σ in concise form; one value of a formula's line has its own. */
+/** A number as a README may write it: to as many places as are quoted, or with its 1σ in concise form; of a trend, the value and the 1σ that go with its scatter. */
 function asQuoted(value: unknown, text: string): string {
   const number = /^−?[\d.]+(?:\([\d.]+\))?/u.exec(text)?.[0] ?? "";
   const unit = text.slice(number.length);
   if (typeof value === "string") return value;
   if (typeof value === "number") return value.toFixed(number.split(".")[1]?.length ?? 0).replace("-", "−") + unit;
-  const { value: middle, sigma, sigmaWithScatter, shown } = value as Readonly<Record<"value" | "sigma" | "sigmaWithScatter" | "shown", unknown>>;
-  if (typeof shown === "string") return shown + unit;
-  const errors = [sigmaWithScatter, Array.isArray(sigma) ? sigma[0] : sigma];
-  const width = errors.find((each) => typeof each === "number") ?? null;
-  return formatUncertain(Number(Array.isArray(middle) ? middle[0] : middle), width) + unit;
+  const one = (each: unknown): unknown => (Array.isArray(each) ? each[0] : each);
+  const { value: middle, sigma, valueWithScatter, sigmaWithScatter } = value as Readonly<Record<string, unknown>>;
+  const pair = typeof sigmaWithScatter === "number" ? [valueWithScatter, sigmaWithScatter] : [one(middle), one(sigma)];
+  return formatUncertain(Number(pair[0]), typeof pair[1] === "number" ? pair[1] : null) + unit;
 }
 
 it("has the three worked pages", () => {

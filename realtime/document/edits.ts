@@ -1,6 +1,6 @@
 import type { Block } from "@/cells";
 import * as Y from "yjs";
-import { createEntryEdits, type EntryEdits } from "./entryEdits";
+import { canonical, createEntryEdits, type EntryEdits } from "./entryEdits";
 import { EditError, kindOf, refuse, requireBlock } from "./editing";
 import { editText } from "./editText";
 import { freshKey } from "./entryKeys";
@@ -9,7 +9,24 @@ import { placeAt } from "./orderKeys";
 import { freeHandle } from "./pageBlock";
 import { readPage } from "./readPage";
 import { renameColumn, renameHandle } from "./rename";
-import { attributedLists, blocksOf, bodiesOf, fieldFault, hasText, isListOf, listsOf, LOCAL, MOST_TITLE, pageOf, plainCopy } from "./shape";
+import {
+  attributedLists,
+  blocksOf,
+  bodiesOf,
+  entriesOf,
+  fieldFault,
+  hasText,
+  isListOf,
+  listOf,
+  listsOf,
+  LOCAL,
+  MOST_TITLE,
+  pageOf,
+  plainCopy,
+  plainEntry,
+  type BlockMap,
+  type ListName,
+} from "./shape";
 
 /** Everything a person can do to a page. Each call is one transaction of the document, and one step of undo. */
 export interface PageEdits extends EntryEdits {
@@ -38,15 +55,25 @@ export interface PageEdits extends EntryEdits {
   duplicateBlock(key: string): string;
 }
 
-/** Amendments, set-asides and the like say who made them; those that say nobody are this person's. */
-function attributed(block: Block, me: string): Block {
+/**
+ * Amendments, set-asides and the like say who made them. Those that stand on this page already stay their author's; whatever
+ * else a block brings, from a file or from another page, is this person's word from now on (rule D6).
+ */
+function attributed(doc: Y.Doc, block: Block, me: string): Block {
   const at = new Date().toISOString();
   const fields: Record<string, unknown> = { ...fieldsOf(block) };
   for (const list of listsOf[block.kind]) {
     const entries = fields[list];
-    if (attributedLists.has(list) && Array.isArray(entries)) fields[list] = entries.map((e: object) => ("by" in e ? e : { ...e, by: me, at }));
+    if (!attributedLists.has(list) || !Array.isArray(entries) || entries.length === 0) continue;
+    const here = new Set([...blocksOf(doc).values()].flatMap((other) => (other instanceof Y.Map ? entriesHere(other, list) : [])));
+    fields[list] = entries.map((entry: object) => (here.has(canonical(plainEntry(entry))) ? entry : { ...entry, by: me, at }));
   }
   return fields as Block;
+}
+
+function entriesHere(block: BlockMap, list: ListName): string[] {
+  const map = listOf(block, list);
+  return map === undefined ? [] : entriesOf(map).map(({ entry }) => canonical(entry));
 }
 
 const contents = ["source", "stack", "join"];
@@ -86,7 +113,7 @@ export function createEdits(doc: Y.Doc, me: { readonly id: string }): PageEdits 
     const key = freshKey();
     const id = freeHandle(block.id, handleTaken);
     for (const [field, value] of Object.entries(fieldsOf(block))) if (value !== undefined) refuse(fieldFault(block.kind, field, value));
-    change(() => blocksOf(doc).set(key, createBlock({ ...attributed(block, me.id), id }, placeBehind(afterKey, null))));
+    change(() => blocksOf(doc).set(key, createBlock({ ...attributed(doc, block, me.id), id }, placeBehind(afterKey, null))));
     return key;
   }
 

@@ -43,6 +43,17 @@ export function isSame(a: unknown, b: unknown): boolean {
   return keys.every((k) => isSame(one[k], other[k]));
 }
 
+/** One text for all plain values that say the same, for looking up one among many. */
+export function canonical(value: unknown): string {
+  if (Array.isArray(value)) return `[${value.map(canonical).join(",")}]`;
+  if (typeof value !== "object" || value === null) return JSON.stringify(value) ?? "";
+  const said = Object.entries(value).filter(([, v]) => v !== undefined);
+  return `{${said
+    .map(([key, v]) => `${JSON.stringify(key)}:${canonical(v)}`)
+    .sort()
+    .join(",")}}`;
+}
+
 const withoutAuthor = ({ by: _by, at: _at, ...rest }: Entry): Entry => rest;
 
 export function createEntryEdits(doc: Y.Doc, me: { readonly id: string }): EntryEdits {

@@ -1,5 +1,5 @@
 import * as Y from "yjs";
-import { isSame } from "./entryEdits";
+import { canonical, isSame } from "./entryEdits";
 import { isNew, newItems, partOf } from "./roles";
 import { attributedLists, blocksOf, isBlockKind, listOf, listsOf, storedEntry, type BlockMap, type EntryMap, type ListName } from "./shape";
 
@@ -58,6 +58,10 @@ export function recordOf(transaction: Y.Transaction): readonly RecordLine[] {
 
 /** Names that columns were given in this transaction, back to what they were: only so far may a foreign entry's column differ. */
 function renamedColumns(transaction: Y.Transaction, block: BlockMap): ReadonlyMap<unknown, unknown> {
+  return new Map([...renamedInRows(transaction, block), ...renamedInColumns(transaction, block)]);
+}
+
+function renamedInColumns(transaction: Y.Transaction, block: BlockMap): ReadonlyMap<unknown, unknown> {
   const columns = listOf(block, "columns");
   const names = new Map<unknown, unknown>();
   if (columns === undefined) return names;
@@ -71,6 +75,24 @@ function renamedColumns(transaction: Y.Transaction, block: BlockMap): ReadonlyMa
   for (const value of columns.values()) {
     const stored = storedEntry(value);
     if (stored !== undefined && before.has(stored.place)) names.set(nameOf(stored.entry), before.get(stored.place));
+  }
+  return names;
+}
+
+const cellsOf = (entry: Entry | null): Readonly<Record<string, unknown>> =>
+  typeof entry?.cells === "object" && entry.cells !== null ? (entry.cells as Readonly<Record<string, unknown>>) : {};
+
+/** A typed table that declares no columns has them from its rows: a row in which one cell changed its name, and nothing else, renames it. */
+function renamedInRows(transaction: Y.Transaction, block: BlockMap): ReadonlyMap<unknown, unknown> {
+  const names = new Map<unknown, unknown>();
+  const typed = listOf(block, "typed");
+  if (typed === undefined || !transaction.changed.has(typed as Y.AbstractType<unknown> as never)) return names;
+  for (const [key, value] of typed.entries()) {
+    const [was, is] = [cellsOf(entryIn(standingBefore(transaction, typed, key))), cellsOf(storedEntry(value)?.entry ?? null)];
+    const gone = Object.keys(was).filter((name) => !(name in is));
+    const come = Object.keys(is).filter((name) => !(name in was));
+    const [from, to] = [gone[0], come[0]];
+    if (gone.length === 1 && come.length === 1 && from !== undefined && to !== undefined && was[from] === is[to]) names.set(to, from);
   }
   return names;
 }
@@ -102,14 +124,18 @@ export interface ForeignEntry {
  */
 export function foreignEntries(transaction: Y.Transaction, sender: string): readonly ForeignEntry[] {
   const foreign: ForeignEntry[] = [];
+  const standingIn = new Map<ListName, ReadonlySet<string>>();
+  const renamedIn = new Map<string, ReadonlyMap<unknown, unknown>>();
   for (const line of recordOf(transaction)) {
     if (line.after === null || line.after.by === sender) continue;
-    const block = blocksOf(transaction.doc).get(line.blockKey);
-    const names: ReadonlyMap<unknown, unknown> = block instanceof Y.Map ? renamedColumns(transaction, block) : new Map();
-    const entry = line.after;
+    const { blockKey, list, after: entry } = line;
+    const block = blocksOf(transaction.doc).get(blockKey);
+    const names = renamedIn.get(blockKey) ?? (block instanceof Y.Map ? renamedColumns(transaction, block) : new Map<unknown, unknown>());
+    renamedIn.set(blockKey, names);
+    const there = standingIn.get(list) ?? new Set([...standing(transaction, list)].map(canonical));
+    standingIn.set(list, there);
     const versions = names.has(entry.column) ? [entry, { ...entry, column: names.get(entry.column) }] : [entry];
-    const isThere = [...standing(transaction, line.list)].some((other) => versions.some((version) => isSame(other, version)));
-    if (!isThere) foreign.push({ list: line.list, entry });
+    if (!versions.some((version) => there.has(canonical(version)))) foreign.push({ list, entry });
   }
   return foreign;
 }

@@ -120,7 +120,12 @@ export function renameColumn(doc: Y.Doc, key: string, from: string, to: string):
   if (to.length < 1 || to.length > 80) throw new EditError("A column's name has 1 to 80 characters.");
   if (/[`\n\r]/u.test(to)) throw new EditError("A column's name holds no backtick and no line break, since formulas could not write it. Choose another name.");
   const columns = listOf(table, "columns");
-  if (columns !== undefined && from !== to && entriesOf(columns).some(({ entry }) => (entry.name ?? entry.header) === to)) {
+  const typed = listOf(table, "typed");
+  const has = (name: string): boolean =>
+    (columns !== undefined && entriesOf(columns).some(({ entry }) => (entry.name ?? entry.header) === name)) ||
+    (typed !== undefined && entriesOf(typed).some(({ entry }) => typeof entry.cells === "object" && entry.cells !== null && name in entry.cells));
+  if (!has(from)) throw new EditError(`The table has no column of its own called ${from}, so there is nothing to rename.`);
+  if (from !== to && has(to)) {
     throw new EditError(`The table has a column called ${to} already. Choose another name.`);
   }
   const handle = String(table.get("id"));

@@ -8,9 +8,12 @@ const row = fc.oneof(fc.integer({ min: 1, max: 5000 }), fc.stringMatching(/^[a-z
 const number = fc.double({ noNaN: true, noDefaultInfinity: true }).map((v) => (Object.is(v, -0) ? 0 : v));
 const by = { by: fc.constantFrom("p1", "p2"), at: fc.constantFrom("2026-01-02T03:04:05.000Z", "2026-02-03T04:05:06.000Z") };
 
+/** Objects as JSON makes them. */
+const plain = { noNullPrototype: true } as const;
+
 /** A record whose optional keys are sometimes left out and never `undefined`. */
 function some<R extends object, O extends object>(required: { [K in keyof R]: fc.Arbitrary<R[K]> }, optional: { [K in keyof O]: fc.Arbitrary<O[K]> }) {
-  return fc.tuple(fc.record(required), fc.record(optional, { requiredKeys: [] })).map(([a, b]) => ({ ...a, ...b }));
+  return fc.tuple(fc.record(required, plain), fc.record(optional, { requiredKeys: [], ...plain })).map(([a, b]) => ({ ...a, ...b }));
 }
 const list = <T>(entry: fc.Arbitrary<T>) => fc.array(entry, { maxLength: 4 });
 const title = { formerly: list(handle), name: word, width: fc.constantFrom(4, 6, 8, 12) };
@@ -24,7 +27,7 @@ const column = some(
 );
 const typedRow = fc.record({
   id: fc.stringMatching(/^[a-z]{1,2}$/),
-  cells: fc.dictionary(fc.stringMatching(/^[A-Z][a-z0-9]{0,4}$/), word, { maxKeys: 3 }),
+  cells: fc.dictionary(fc.stringMatching(/^[A-Z][a-z0-9]{0,4}$/), word, { maxKeys: 3, ...plain }),
 });
 const source = some({ file: word }, { sha256: fc.stringMatching(/^[0-9a-f]{64}$/) });
 const content = fc.oneof(
@@ -67,7 +70,7 @@ const trend = some(
 const substance = fc.oneof(
   fc.record({ body: word }),
   fc.record({ data: handle, row }),
-  fc.record({ composition: fc.dictionary(fc.stringMatching(/^[A-Z][a-z]? wt%$/), number, { maxKeys: 2 }) }),
+  fc.record({ composition: fc.dictionary(fc.stringMatching(/^[A-Z][a-z]? wt%$/), number, { maxKeys: 2, ...plain }) }),
 );
 const step = fc.oneof(
   fc.record({ do: fc.constantFrom("add", "remove", "mix"), what: substance, amount: fc.oneof(fc.constant("solve"), fc.record({ value: number })) }),
@@ -97,5 +100,5 @@ export const arbitraryBlock = fc.oneof(data, formula, note, trend, budget, plot)
 
 export const arbitraryPage: fc.Arbitrary<PageDocument> = some(
   { format: fc.constant("cotectic-page/1" as const), title: word, blocks: fc.uniqueArray(arbitraryBlock, { maxLength: 6, selector: (b) => b.id }) },
-  { bodies: fc.dictionary(handle, word, { maxKeys: 3 }) },
+  { bodies: fc.dictionary(handle, word, { maxKeys: 3, ...plain }) },
 ).map((page) => JSON.parse(JSON.stringify(page)) as PageDocument);

@@ -19,11 +19,11 @@ afterAll(async () => {
   await s.drop();
 });
 
-async function connected<T>(use: (client: pg.Client) => Promise<T>): Promise<T> {
+async function connected<T>(work: (client: pg.Client) => Promise<T>): Promise<T> {
   const client = new pg.Client({ connectionString: s.database.url });
   await client.connect();
   try {
-    return await use(client);
+    return await work(client);
   } finally {
     await client.end();
   }

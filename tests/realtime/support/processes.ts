@@ -25,7 +25,7 @@ export function serverProcess(databaseUrl: string, environment: Readonly<Record<
       REALTIME_PORT: "0",
       APP_ORIGIN: ORIGIN,
       ...environment,
-    } as NodeJS.ProcessEnv,
+    } as unknown as NodeJS.ProcessEnv,
     stdio: ["ignore", "pipe", "pipe"],
   });
   const gone = new Promise<number | null>((resolve) => child.once("exit", (code) => resolve(code)));

@@ -203,11 +203,12 @@ function documentText(block: Block): string {
   return JSON.stringify(rest);
 }
 
+/** A result with what the page has to say of its block; where both say the same, the page does it in more words. */
 function withProblems(result: BlockResult, problems: readonly Problem[]): BlockResult {
-  const more = problems.filter(
-    (problem) => !result.problems.some((known) => known.code === problem.code && known.field === problem.field && known.span?.[0] === problem.span?.[0]),
-  );
-  return more.length === 0 ? result : { ...result, problems: [...more, ...result.problems] };
+  if (problems.length === 0) return result;
+  const isSaid = (known: Problem): boolean =>
+    problems.some((problem) => known.code === problem.code && known.field === problem.field && known.span?.[0] === problem.span?.[0]);
+  return { ...result, problems: [...problems, ...result.problems.filter((known) => !isSaid(known))] };
 }
 
 /** What stands on the two axes of trends and plots, where it is a name alone. */

@@ -4,7 +4,9 @@ import { plotTable } from "../page/references";
 import type { AxisInfo } from "../page/results";
 import type { PlotBlock } from "../page/schema";
 import { units, type Unit } from "../quantity/unit";
+import { listBodies } from "../species";
 import type { Drawing, Placed } from "./drawing";
+import { valueOnBody } from "./valueOnBody";
 
 /** What stands on one axis. */
 export interface PlotAxis {
@@ -38,9 +40,28 @@ export function axisCandidates(block: PlotBlock, axis: "x" | "y", drawing: Drawi
 
 /** The meaning of an axis. @throws CellError where its expression has none */
 export function axisOf(placed: Placed, drawing: Drawing): PlotAxis {
-  const { unit, basis, remark } = drawing.evaluate(placed);
+  const { unit, basis, remark } = meaningOf(placed, drawing);
   const label = compact(placed.text) + (remark === null ? "" : `, ${remark}`);
   return { info: { expression: placed.text, label, unit: unit.symbol, basis }, unit, remark, placed };
+}
+
+/**
+ * What an expression is: over its table or, on a plot of nothing but bodies and budgets, over the first body that has it. Only
+ * unit and basis are asked for, and those are the same on every body.
+ */
+function meaningOf(placed: Placed, drawing: Drawing): Pick<Evaluated, "unit" | "basis" | "remark"> {
+  if (placed.data !== undefined) return drawing.evaluate(placed);
+  try {
+    return drawing.evaluate(placed);
+  } catch (error) {
+    const { block, context } = drawing;
+    const drawn = block.drawn.flatMap((line) => ("bodies" in line ? line.bodies : []));
+    for (const body of [...drawn, ...context.aliases, ...listBodies().map(({ id }) => id)]) {
+      const found = valueOnBody(context.scope(undefined), placed.text, body, { block: block.id, field: placed.field });
+      if (!(found instanceof CellError)) return found;
+    }
+    throw error;
+  }
 }
 
 /** An axis whose expression could not be calculated still has its name. */

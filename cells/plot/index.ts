@@ -1,3 +1,2 @@
 /** Plots: what a plot block draws, as numbers ready to be put on paper. */
 export { evaluatePlot } from "./evaluatePlot";
-export { contour, radiusOf } from "./contour";

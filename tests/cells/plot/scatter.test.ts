@@ -280,3 +280,27 @@ describe("bodies and paths on a plot", () => {
     expect(result.drawn).toBe(9);
   });
 });
+
+describe("a plot without samples", () => {
+  const budget = {
+    id: "b",
+    kind: "budget",
+    start: { body: "BSE" },
+    steps: [{ do: "share with metal", species: "Si", metalFraction: { value: 0.323, sigma: 0 }, amount: "solve" }],
+    target: { expression: "Mg / Si", equals: { body: "CI" } },
+  };
+  const plot = (x: string): object => ({ id: "p", kind: "plot", plot: "scatter", x, y: "Al / Si", drawn: [{ budget: "b" }, { bodies: ["CI", "BSE"] }] });
+
+  it("stands on what its bodies are made of", () => {
+    const results = evaluate(budget, plot("Mg / Si"));
+    const result = resultOf(results, "p", "plot");
+    expect(errorsOf(results, "p")).toEqual([]);
+    expect(result.x).toMatchObject({ label: "Mg/Si", unit: "1", basis: "mass" });
+    expect(result.layers.map(({ what }) => what)).toEqual(["path", "bodies"]);
+  });
+
+  it("still says at the character what nothing has", () => {
+    const results = evaluate(budget, plot("Mg / Unobtainium"));
+    expect(errorsOf(results, "p")[0]).toMatchObject({ field: "x" });
+  });
+});

@@ -51,8 +51,8 @@ export function blockMenuItems(view: PageView, key: string, actions: BlockMenuAc
   const width: BlockWidth = block?.width ?? 12;
   const { run } = actions;
   return [
-    { label: "Rename", onChoose: actions.onRename },
-    { label: "Change its handle", onChoose: actions.onRenameHandle },
+    { label: "Rename", opens: true, onChoose: actions.onRename },
+    { label: "Change its handle", opens: true, onChoose: actions.onRenameHandle },
     { line: true },
     { label: "Move up", keys: "Alt ↑", disabled: at <= 0, onChoose: () => run(() => moveByStep(view, key, -1)) },
     { label: "Move down", keys: "Alt ↓", disabled: at === view.blocks.length - 1, onChoose: () => run(() => moveByStep(view, key, 1)) },

@@ -14,7 +14,7 @@ export interface ButtonProps extends ButtonHTMLAttributes<HTMLButtonElement> {
 
 const looks: Record<ButtonLook, string> = {
   act: "text-indigo font-medium hover:underline",
-  main: "text-indigo font-semibold border-b-2 border-indigo leading-[22px]",
+  main: "text-indigo font-semibold border-b-2 border-indigo leading-[22px] disabled:border-axis",
   quiet: "text-second hover:text-ink",
   danger: "text-vermilion font-medium hover:underline",
   plain: "text-ink",

@@ -33,7 +33,7 @@ export function Select<T extends string = string>({ value, options, onChoose, la
           if (chosen !== undefined) onChoose(chosen.value);
         }}
         className={classNames(
-          "w-full appearance-none truncate border-0 border-b border-axis bg-transparent py-1 pr-5 pl-0 text-ui text-ink focus:border-indigo disabled:text-second",
+          "w-full appearance-none truncate border-0 border-b border-axis bg-transparent py-1 pr-5 pl-0 text-ui text-ink focus:border-indigo focus-visible:shadow-[inset_0_-1px_0_var(--indigo)] focus-visible:outline-none disabled:text-second",
           mono && "font-mono text-cell",
         )}
       >

@@ -6,7 +6,7 @@ import { Field } from "./Field";
 
 /** The line that all text controls stand on. */
 export const controlLook =
-  "w-full border-0 border-b border-axis bg-transparent px-0 py-1 text-ui text-ink placeholder:text-second focus:border-indigo aria-[invalid]:border-vermilion disabled:text-second";
+  "w-full border-0 border-b border-axis bg-transparent px-0 py-1 text-ui text-ink placeholder:text-second focus:border-indigo focus-visible:shadow-[inset_0_-1px_0_var(--indigo)] focus-visible:outline-none aria-[invalid]:border-vermilion disabled:text-second";
 
 export interface TextFieldProps extends Omit<InputHTMLAttributes<HTMLInputElement>, "onChange"> {
   readonly label: ReactNode;

@@ -68,7 +68,7 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
   const mayAlsoSolve = !block.steps.some((s) => s.amount === "solve" || (typeof s.amount === "object" && "from" in s.amount));
   return (
     <div className="text-margin leading-5">
-      <ul className="flex flex-wrap gap-x-5">
+      <ul className="flex flex-wrap items-baseline gap-x-5">
         <li>
           <Popover
             label="Start"
@@ -91,7 +91,7 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
           const phrase = phrases[index] ?? [];
           const said = phraseText(phrase);
           return (
-            <li key={index} className="group inline-flex items-start gap-1">
+            <li key={index}>
               <Popover
                 label={said}
                 open={open === index}
@@ -159,11 +159,12 @@ export function BudgetSteps({ blockKey, block, result, view }: BudgetStepsProps)
           </Popover>
         </li>
       </ul>
-      <div className="flex flex-wrap gap-x-5">
+      <div className="mt-1 mb-2 flex flex-wrap gap-x-5">
         <Menu
           align="start"
           items={stepKinds.map(({ kind, label }) => ({
             label,
+            opens: true,
             disabled: kind === "share with metal" && block.steps.some((s) => s.do === kind),
             onChoose: () => {
               if (run(() => edits.putEntry(blockKey, "steps", newStep(kind, mayAlsoSolve && block.target !== undefined)))) setOpen(block.steps.length);

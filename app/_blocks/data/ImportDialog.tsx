@@ -129,8 +129,8 @@ export function ImportDialog({ bytes, fileName, services, known, kept, onSave, o
       {mapping === null || proposal === null ? null : (
         <>
           <div className="overflow-x-auto">
-            <table className="w-full min-w-[860px] border-collapse">
-              <thead>
+            <table className="w-full min-w-[860px] border-collapse phone:block phone:min-w-0">
+              <thead className="phone:sr-only">
                 <tr className="border-b border-ink text-left text-margin text-second">
                   <th className="pb-1 font-normal">in the file</th>
                   <th className="pb-1 font-normal">is taken as</th>
@@ -139,7 +139,7 @@ export function ImportDialog({ bytes, fileName, services, known, kept, onSave, o
                   <th className="pb-1 font-normal">because</th>
                 </tr>
               </thead>
-              <tbody>
+              <tbody className="phone:block phone:border-t phone:border-ink">
                 {mapping.columns.map((column, i) => (
                   <MappingRow
                     key={i}

@@ -34,8 +34,8 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
   const units = unitOptions.some((o) => o.value === unit) ? unitOptions : [{ value: unit, label: `${unit} (not known)` }, ...unitOptions];
   const of = column.of ?? "";
   return (
-    <tr className="border-b border-hairline align-top">
-      <th scope="row" className="max-w-48 py-1.5 pr-4 text-left font-normal">
+    <tr className="border-b border-hairline align-top phone:grid phone:grid-cols-[minmax(0,1fr)_136px] phone:gap-x-4 phone:pb-2">
+      <th scope="row" className="max-w-48 py-1.5 pr-4 phone:max-w-none phone:pr-0 text-left font-normal">
         <div className="truncate font-mono text-[12.5px]" title={header}>
           {header === "" ? <span className="text-second">no header, column {index + 1}</span> : header}
         </div>
@@ -43,7 +43,7 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
           {sample.join("  ")}
         </div>
       </th>
-      <td className="w-36 py-1 pr-4">
+      <td className="w-36 py-1 pr-4 phone:w-auto phone:pr-0">
         <Select
           aria-label={`Role of ${header}`}
           value={column.role}
@@ -59,7 +59,7 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
           }
         />
       </td>
-      <td className="py-1 pr-4">
+      <td className="py-1 pr-4 phone:col-span-2 phone:pr-0 phone:empty:hidden">
         {column.role === "quantity" ? (
           <div className="grid grid-cols-[84px_108px_96px] gap-3">
             <input
@@ -103,7 +103,7 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
           </div>
         ) : null}
       </td>
-      <td className="w-24 py-1 pr-4">
+      <td className="w-24 py-1 pr-4 phone:w-auto phone:pr-0">
         <input
           aria-label={`Name of ${header} in formulas`}
           className={`${controlLook} font-mono text-cell`}
@@ -112,7 +112,7 @@ export const MappingRow = memo(function MappingRow({ index, column, header, reas
           onChange={(event) => set({ ...column, name: event.target.value })}
         />
       </td>
-      <td className={`py-1.5 text-margin ${problem === null ? "text-second" : "text-vermilion"}`}>{problem ?? reason}</td>
+      <td className={`py-1.5 text-margin phone:py-2 ${problem === null ? "text-second" : "text-vermilion"}`}>{problem ?? reason}</td>
     </tr>
   );
 });

@@ -126,6 +126,7 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
               Object.keys(view.bodies),
             ).map(({ label, drawn }) => ({
               label,
+              opens: true,
               onChoose: () => {
                 if (run(() => edits.putEntry(blockKey, "drawn", drawn))) setOpen(block.drawn.length);
               },

@@ -10,7 +10,7 @@ import { TextArea } from "@/app/_ui/TextField";
 import { countPage } from "../counts";
 import { usePage } from "../pageContext";
 import { groupedHash } from "../times";
-import { request, RequestError } from "./request";
+import { request } from "./request";
 
 interface Frozen {
   readonly snapshotId: string;
@@ -26,6 +26,12 @@ interface MemoryValue {
   readonly source: string;
 }
 
+/** Nothing was frozen yet: these values must be taken knowingly first. */
+interface Question {
+  readonly detail: string;
+  readonly fromMemory: readonly MemoryValue[];
+}
+
 export interface FreezeDialogProps {
   readonly pageId: string;
   /** Yjs state vector of what is on the screen, base64. */
@@ -33,11 +39,6 @@ export interface FreezeDialogProps {
   readonly onClose: () => void;
   readonly onFrozen: (frozen: Frozen) => void;
   readonly onReadingLink: () => void;
-}
-
-function memoryOf(error: RequestError): readonly MemoryValue[] {
-  const { fromMemory } = (error.body ?? {}) as { fromMemory?: readonly MemoryValue[] };
-  return error.status === 409 && Array.isArray(fromMemory) ? fromMemory : [];
 }
 
 /** Freezes the page as it is on the screen. Values from memory go in only when a lead ticks each of them knowingly. */
@@ -58,19 +59,21 @@ export function FreezeDialog({ pageId, stateVector, onClose, onFrozen, onReading
     setBusy(true);
     setFault(null);
     try {
-      const made = await request<Frozen>("POST", `/api/pages/${pageId}/freeze`, {
+      const made = await request<Frozen | Question>("POST", `/api/pages/${pageId}/freeze`, {
         stateVector: stateVector(),
+        asks: true,
         ...(note.trim() === "" ? {} : { note: note.trim() }),
         ...(memory.length > 0 && allTicked ? { acceptFromMemory: true } : {}),
       });
+      if ("fromMemory" in made) {
+        setMemory(made.fromMemory);
+        setTicked(new Set());
+        setFault(made.detail);
+        return;
+      }
       setFrozen(made);
       onFrozen(made);
     } catch (error) {
-      const found = error instanceof RequestError ? memoryOf(error) : [];
-      if (found.length > 0) {
-        setMemory(found);
-        setTicked(new Set());
-      }
       setFault(error instanceof Error ? error.message : "The page could not be frozen.");
     } finally {
       setBusy(false);

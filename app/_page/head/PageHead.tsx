@@ -62,12 +62,10 @@ export function PageHead({ page, role, open, onUncertainty, onProjector }: PageH
         </Link>
       )}
       <SaveWords />
-      <span className="flex-1 phone:hidden" />
+      <span className="flex-1 phone:h-0 phone:basis-full" />
       <People />
-      <nav aria-label="This page" className="flex items-center gap-6 phone:ml-auto phone:gap-3">
-        <span className="phone:hidden">
-          <LightMenu />
-        </span>
+      <nav aria-label="This page" className="flex items-baseline gap-6 phone:ml-auto phone:gap-4">
+        <LightMenu />
         {isLead ? (
           <Button className="phone:hidden" onClick={() => open("links")}>
             Reading link

@@ -11,7 +11,7 @@ export function SaveWords() {
   return (
     <span
       role="status"
-      className={`max-w-[46ch] truncate phone:flex-1 phone:text-right ${save?.kind === "refused" ? "text-vermilion" : "text-second"}`}
+      className={`max-w-[46ch] truncate phone:ml-auto phone:max-w-[60%] phone:text-right ${save?.kind === "refused" ? "text-vermilion" : "text-second"}`}
       title={words}
     >
       {words}

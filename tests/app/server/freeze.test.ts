@@ -169,6 +169,8 @@ describe("freezing is refused", () => {
     expect(refused).toMatchObject({ status: 409, detail: expect.stringMatching(/from memory/) });
     expect(refused.fromMemory?.map((v) => `${v.body} ${v.species}`)).toEqual(expect.arrayContaining(["CI_LPG09 Mg", "CI_LPG09 Si"]));
     expect(refused.fromMemory?.map((v) => v.species)).not.toContain("Na");
+    // A person who can be asked gets the same list as an answer.
+    expect(await freeze(of, { asks: true })).toEqual({ status: 200, detail: refused.detail, fromMemory: refused.fromMemory });
     expect(await snapshots()).toBe(before);
     const taken = await freeze(of, { acceptFromMemory: true });
     expect(taken.status).toBe(201);

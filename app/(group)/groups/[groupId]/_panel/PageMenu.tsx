@@ -28,7 +28,7 @@ export function PageMenu({ pageId, title, archived }: PageMenuProps) {
     <>
       <Menu
         items={[
-          { label: "Rename", onChoose: () => setRenaming(true), disabled: archived },
+          { label: "Rename", opens: true, onChoose: () => setRenaming(true), disabled: archived },
           { label: "Duplicate", onChoose: () => startTransition(() => copy(form({}))) },
           { line: true },
           {

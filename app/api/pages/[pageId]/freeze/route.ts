@@ -9,15 +9,17 @@ const body = z.strictObject({
   stateVector: z.base64().max(1_000_000),
   note: z.string().trim().max(2000).optional(),
   acceptFromMemory: z.boolean().optional(),
+  /** True for a person who can be shown a list and asked: values from memory are then an answer, and no refusal. */
+  asks: z.boolean().optional(),
 });
 
 /** Freezes the page as the person sees it. */
 export const POST = route<{ pageId: string }>(async (request, { pageId }) => {
   const { object, userId } = await allow("page", pageId, "freeze");
   if (userId === null) throw new Refusal(403, "Not yours to do", "A guest cannot freeze a page.");
-  const { stateVector, note, acceptFromMemory } = await readJson(request, body);
+  const { stateVector, note, acceptFromMemory, asks } = await readJson(request, body);
   await countTry("freeze", object.groupId);
-  const frozen = await freeze({
+  const frozen = freeze({
     pageId,
     groupId: object.groupId,
     by: userId,
@@ -25,5 +27,10 @@ export const POST = route<{ pageId: string }>(async (request, { pageId }) => {
     note: note || null,
     acceptFromMemory: acceptFromMemory ?? false,
   });
-  return json(frozen, 201);
+  try {
+    return json(await frozen, 201);
+  } catch (error) {
+    if (asks && error instanceof Refusal && error.more.fromMemory !== undefined) return json({ detail: error.detail, fromMemory: error.more.fromMemory });
+    throw error;
+  }
 });

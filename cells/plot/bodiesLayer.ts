@@ -40,7 +40,7 @@ function bodyDrawn(drawing: Drawing, name: string, field: string, x: PlotAxis, y
   Object.assign(drawing.bodiesUsed, onX.bodiesUsed, onY?.bodiesUsed);
   const [formX, formY] = [inUnitOf(x, onX), y === null || onY === null ? null : inUnitOf(y, onY)];
   const [sigmaX, sigmaY] = [sigmaOf(formX), formY === null ? null : sigmaOf(formY)];
-  if (sigmaX === null || (formY !== null && sigmaY === null))
+  if (radius > 0 && (sigmaX === null || (formY !== null && sigmaY === null)))
     drawing.note({
       code: "sigma-unknown",
       severity: "note",

@@ -1,7 +1,7 @@
 import { expect, test } from "vitest";
 import * as Y from "yjs";
 import { Close } from "@/realtime/protocol";
-import { changed, textOf } from "../support/rawSocket";
+import { changed, keyOf, textOf } from "../support/rawSocket";
 import { house, soon, TestMember } from "./house";
 
 const sortedRows = (batch: readonly string[] | undefined) => [...(batch ?? [])].sort();
@@ -206,4 +206,26 @@ test("S6 a page that cannot be folded goes on all the same", async () => {
     await soon(2);
   }
   expect(ada.storedUpTo).toBe(5);
+});
+
+test("H1 a page holds at most 10 MiB; what would pass that is refused with a sentence, and the page goes on", async () => {
+  const { addPage } = house();
+  const room = await addPage("p");
+  const [ada, ben] = [new TestMember("ada", room), new TestMember("ben", room)];
+  const block = (doc: Y.Doc) => doc.getMap<Y.Map<unknown>>("blocks").get(keyOf(doc, "remark"));
+  let number = 0;
+  // A field of a later release may hold 64 kB each.
+  for (; ada.closedWith === null && number < 200; number++)
+    room.receive(
+      ada,
+      number + 1,
+      changed(ada.doc, (doc) => block(doc)?.set(`later${number.toString()}`, "x".repeat(64_000))),
+      false,
+    );
+  expect(number).toBe(Math.ceil((10 << 20) / 64_020));
+  expect(ada.refusals).toMatchObject([{ number, code: Close.tooLarge, reason: expect.stringMatching(/at most 10.0 MiB/) as string }]);
+  await soon(100);
+  const mine = ben.type(" Small.");
+  await soon(50);
+  expect([ben.storedUpTo, ben.closedWith, ben.text]).toStrictEqual([mine, null, "A note. Small."]);
 });

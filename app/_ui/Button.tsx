@@ -26,7 +26,11 @@ export function Button({ look = "act", type = "button", className, ref, ...rest 
     <button
       ref={ref}
       type={type}
-      className={classNames("inline-flex items-center gap-1.5 text-left disabled:text-second disabled:no-underline", looks[look], className)}
+      className={classNames(
+        "inline-flex items-baseline gap-1.5 text-left [&>svg]:self-center disabled:text-second disabled:no-underline",
+        looks[look],
+        className,
+      )}
       {...rest}
     />
   );

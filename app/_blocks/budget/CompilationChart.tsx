@@ -35,7 +35,7 @@ export function CompilationChart({
               <span>{formatNumber(to, 2)}</span>
             </span>
           </th>
-          <td />
+          <td className="pl-4 text-right whitespace-nowrap">{rows.some((row) => row.sigmaIs !== undefined) ? "† 1σ at least" : ""}</td>
         </tr>
       </thead>
       <tbody>
@@ -73,7 +73,7 @@ export function CompilationChart({
               </td>
               <td className="w-px pl-4 text-right font-mono whitespace-nowrap text-second">
                 {row.solved === null ? "no answer" : formatValue(row.solved, row.sigma, { form, unknown: "" })}
-                {row.sigmaIs !== undefined && ", 1σ at least"}
+                {row.sigmaIs !== undefined && "†"}
               </td>
             </tr>
           );

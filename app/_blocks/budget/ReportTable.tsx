@@ -1,3 +1,4 @@
+import { Fragment } from "react";
 import { classNames } from "@/app/_ui/classNames";
 import type { UncertaintyForm } from "@/app/_ui/concise";
 import { Value } from "@/app/_ui/Value";
@@ -37,8 +38,9 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
   const basis = sharedBasis(result.report);
   const hasTarget = result.report.some((r) => r.target !== null);
   const isWhole = block.steps.some((s) => s.do === "share with metal");
-  const head = "border-b border-ink pb-1 pl-3 text-right text-margin font-normal text-second max-[719px]:pl-0.5";
-  const cell = "h-7 border-b border-hairline pl-3 text-right text-cell leading-[23px] max-[719px]:pl-0.5 max-[719px]:text-[11.5px]";
+  const head = "border-b border-ink pb-1 pl-3 text-right text-margin font-normal text-second max-[719px]:pl-2";
+  const plain = "h-7 pl-3 text-right text-cell leading-[23px] max-[719px]:pl-2 max-[719px]:text-[11.5px]";
+  const columns = hasTarget ? 6 : 3;
   return (
     <table className="mt-3 w-full border-collapse">
       <thead>
@@ -68,50 +70,62 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
         </tr>
       </thead>
       <tbody>
-        {result.report.map((r) => (
-          <tr key={r.expression}>
-            <th scope="row" className={classNames(cell, "!pl-0 !text-left font-sans !text-ui font-normal")}>
-              {compactExpression(r.expression)}
-              {basis === "" && r.basis !== null && <span className="ml-2 text-margin text-second">{basisInWords(r.basis)}</span>}
-              {r.note !== undefined && <span className="block max-w-72 text-margin text-second">{r.note}</span>}
-            </th>
-            <td className={cell}>
-              <Value value={r.start} sigma={r.startSigma} form={form} unknown="" />
-            </td>
-            <td className={cell}>
-              <button
-                type="button"
-                className="border-b border-transparent hover:border-indigo focus-visible:border-indigo"
-                onClick={() => onTrace(r.expression)}
-                title="Where this number comes from"
-              >
-                <Value value={r.end} sigma={r.sigma} form={form} unknown="" />
-              </button>
-            </td>
-            {hasTarget && (
-              <>
+        {result.report.map((r) => {
+          // What is said of a ratio stands under it, over the whole width, and the line under both.
+          const cell = r.note === undefined ? classNames(plain, "border-b border-hairline") : plain;
+          return (
+            <Fragment key={r.expression}>
+              <tr>
+                <th scope="row" className={classNames(cell, "!pl-0 !text-left font-sans !text-ui font-normal")}>
+                  {compactExpression(r.expression)}
+                  {basis === "" && r.basis !== null && <span className="ml-2 text-margin text-second">{basisInWords(r.basis)}</span>}
+                </th>
                 <td className={cell}>
-                  <Value value={r.target} sigma={r.targetSigma} form={form} unknown="" />
+                  <Value value={r.start} sigma={r.startSigma} form={form} unknown="" />
                 </td>
-                <td className={classNames(cell, "max-[719px]:hidden")}>
-                  {(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}
+                <td className={cell}>
+                  <button
+                    type="button"
+                    className="border-b border-transparent hover:border-indigo focus-visible:border-indigo"
+                    onClick={() => onTrace(r.expression)}
+                    title="Where this number comes from"
+                  >
+                    <Value value={r.end} sigma={r.sigma} form={form} unknown="" />
+                  </button>
                 </td>
-                <td className={classNames(cell, "font-mono whitespace-nowrap")}>
-                  {isSolvedFor(r, block.target) && result.solved !== undefined ? (
-                    <span className="text-second">solved for</span>
-                  ) : r.miss === null ? (
-                    <span className="text-second">–</span>
-                  ) : (
-                    <span className={Math.abs(r.miss) > 2 ? "text-vermilion" : "text-second"}>
-                      {r.miss < 0 ? "−" : "+"}
-                      {Math.abs(r.miss).toFixed(1)}σ
-                    </span>
-                  )}
-                </td>
-              </>
-            )}
-          </tr>
-        ))}
+                {hasTarget && (
+                  <>
+                    <td className={cell}>
+                      <Value value={r.target} sigma={r.targetSigma} form={form} unknown="" />
+                    </td>
+                    <td className={classNames(cell, "max-[719px]:hidden")}>
+                      {(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}
+                    </td>
+                    <td className={classNames(cell, "font-mono whitespace-nowrap")}>
+                      {isSolvedFor(r, block.target) && result.solved !== undefined ? (
+                        <span className="text-second">solved for</span>
+                      ) : r.miss === null ? (
+                        <span className="text-second">–</span>
+                      ) : (
+                        <span className={Math.abs(r.miss) > 2 ? "text-vermilion" : "text-second"}>
+                          {r.miss < 0 ? "−" : "+"}
+                          {Math.abs(r.miss).toFixed(1)}σ
+                        </span>
+                      )}
+                    </td>
+                  </>
+                )}
+              </tr>
+              {r.note === undefined ? null : (
+                <tr>
+                  <td colSpan={columns} className="border-b border-hairline pb-1.5 text-margin text-second">
+                    {r.note}
+                  </td>
+                </tr>
+              )}
+            </Fragment>
+          );
+        })}
       </tbody>
     </table>
   );

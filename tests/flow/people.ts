@@ -86,3 +86,10 @@ export async function saved(page: Page): Promise<void> {
     .first()
     .waitFor();
 }
+
+/** Keeps what everybody saw when a test failed, beside the logs. */
+export async function shoot(test: string, people: readonly Person[]): Promise<void> {
+  const stem = test.replace(/\W+/gu, "-").slice(0, 60);
+  for (const { page, name } of people)
+    await page.screenshot({ path: path.resolve(import.meta.dirname, `../../.data/logs/${stem}-${name.replace(/\W+/gu, "-")}.png`) }).catch(() => undefined);
+}

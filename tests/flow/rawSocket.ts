@@ -13,8 +13,8 @@ export interface RawSocket {
   close(): void;
 }
 
-export async function rawSocket(pageId: string, cookie: string): Promise<RawSocket> {
-  const address = `ws://127.0.0.1:${inject("realtimePort")}/pages/${pageId}?epoch=0&version=${CLIENT_VERSION}`;
+export async function rawSocket(pageId: string, epoch: number, cookie: string): Promise<RawSocket> {
+  const address = `ws://127.0.0.1:${inject("realtimePort")}/pages/${pageId}?epoch=${epoch}&edit=0&version=${CLIENT_VERSION}`;
   const socket = new WebSocket(address, { headers: { cookie, origin: inject("url") } });
   socket.binaryType = "arraybuffer";
   await new Promise((resolve, reject) => {

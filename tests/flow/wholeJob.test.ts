@@ -1,9 +1,9 @@
 import type { Browser } from "playwright-core";
-import { afterAll, beforeAll, describe, expect, inject, test } from "vitest";
+import { afterAll, afterEach, beforeAll, describe, expect, inject, test } from "vitest";
 import * as Y from "yjs";
 import { launchBrowser } from "../support/browser";
 import { keyboard } from "./hands";
-import { analyses, block, invite, join, open, saved, signUp, type Person } from "./people";
+import { analyses, block, invite, join, open, saved, shoot, signUp, type Person } from "./people";
 import { rawSocket } from "./rawSocket";
 
 /**
@@ -22,6 +22,9 @@ describe("a group takes a table of compositions to a frozen, shared result", () 
   beforeAll(async () => {
     browser = await launchBrowser();
     [lead, analyst, reader] = await Promise.all([open(browser, "Runa Haavik", keyboard), open(browser, "Desmond Achebe"), open(browser, "Lotte Brandsma")]);
+  });
+  afterEach(async ({ task }) => {
+    if (task.result?.state === "fail") await shoot(task.name, [lead, analyst, reader]);
   });
   afterAll(async () => {
     await browser.close();
@@ -158,14 +161,14 @@ describe("a group takes a table of compositions to a frozen, shared result", () 
     await block(reader.page, "d").getByText("PN-01").first().waitFor();
     expect(await reader.page.getByRole("button", { name: "Add below" }).count()).toBe(0);
     const cookies = await reader.context.cookies();
-    const socket = await rawSocket(pageId, cookies.map(({ name, value }) => `${name}=${value}`).join("; "));
+    const socket = await rawSocket(pageId, 1, cookies.map(({ name, value }) => `${name}=${value}`).join("; "));
     const doc = await socket.sync();
     const title = (d: Y.Doc) => JSON.stringify(d.getMap("page").toJSON());
     const before = title(doc);
     const change = await socket.edit(doc, (d) => d.getMap("page").set("title", "Taken over"));
     expect(change.refused).toBe(true);
     socket.close();
-    const again = await rawSocket(pageId, cookies.map(({ name, value }) => `${name}=${value}`).join("; "));
+    const again = await rawSocket(pageId, 1, cookies.map(({ name, value }) => `${name}=${value}`).join("; "));
     expect(title(await again.sync())).toBe(before);
     again.close();
     expect(await lead.page.getByLabel("Title of the page").inputValue()).toBe("Where two trends meet");

@@ -1,3 +1,4 @@
+import { colorOf } from "@/realtime/personColor";
 import type { PickedRow, Presence } from "./contract";
 
 /** What a tab says of itself over awareness; name, colour and user are stamped by the server (rule A4). */
@@ -19,8 +20,6 @@ export function spokenPicks(rows: readonly PickedRow[]): readonly PickedRow[] {
   return rows.slice(0, MOST_PICKED / 4);
 }
 
-const fallbackColors = ["var(--magenta)", "var(--green)", "var(--blue)", "var(--straw)", "var(--vermilion)", "var(--indigo)"];
-
 /**
  * Who is on the page, read from awareness states. States come over the wire, so nothing in them is taken for granted.
  *
@@ -38,10 +37,7 @@ export function readPresence(
     const userId = typeof user.id === "string" ? user.id : isMe ? (me?.id ?? "") : "";
     const name = typeof user.name === "string" ? user.name : isMe ? (me?.name ?? "") : "";
     if (userId === "" || name === "") continue;
-    const color =
-      typeof user.color === "string" && /^(#[0-9a-f]{3,8}|var\(--[a-z0-9-]+\)|[a-z]+)$/i.test(user.color)
-        ? user.color
-        : (fallbackColors[clientId % fallbackColors.length] ?? "var(--blue)");
+    const color = typeof user.color === "string" && /^(#[0-9a-f]{3,8}|var\(--[a-z0-9-]+\)|[a-z]+)$/i.test(user.color) ? user.color : colorOf(userId);
     const picked = Array.isArray(state.picked) ? state.picked.filter(isPicked).slice(0, MOST_PICKED) : [];
     found.push({ clientId, userId, name, color, block: typeof state.block === "string" ? state.block : null, isMe, picked });
   }

@@ -1,4 +1,5 @@
 import { AWARENESS_PER_SECOND, encodeAwareness, type AwarenessEntry } from "../protocol";
+import { colorOf } from "../personColor";
 
 /** Somebody who can be seen on a page. */
 export interface Visible {
@@ -15,16 +16,6 @@ interface Seen {
   state: AwarenessEntry["state"];
   lastTold: number;
   timer: NodeJS.Timeout | null;
-}
-
-/** Colours of people: interference colours of the page's look, without the two that mean something. */
-const colors = ["var(--magenta)", "var(--green)", "var(--blue)"];
-
-/** The same person has the same colour everywhere. */
-export function colorOf(userId: string): string {
-  let hash = 0;
-  for (const letter of userId) hash = (hash * 31 + letter.charCodeAt(0)) >>> 0;
-  return colors[hash % colors.length] ?? "var(--blue)";
 }
 
 /**

@@ -1,5 +1,6 @@
-import { autocompletion, type Completion, type CompletionContext, type CompletionResult } from "@codemirror/autocomplete";
-import type { Extension } from "@codemirror/state";
+import { autocompletion, closeCompletion, selectedCompletion, type Completion, type CompletionContext, type CompletionResult } from "@codemirror/autocomplete";
+import { Prec, type Extension } from "@codemirror/state";
+import { keymap } from "@codemirror/view";
 import type { Suggestion } from "./suggestions";
 
 const word = /[\p{L}_][\p{L}\p{N}_.]*$/u;
@@ -25,5 +26,21 @@ export function formulaCompletion(offered: () => readonly Suggestion[]): Extensi
     if (upToHere.includes("#") || (!context.explicit && !upToHere.includes("="))) return null;
     return { from: before?.from ?? context.pos, options: offered().map(option), validFor: /^[\p{L}\p{N}_.]*$/u };
   };
-  return autocompletion({ override: [source], icons: false });
+  return [enterAfterWholeName, autocompletion({ override: [source], icons: false })];
 }
+
+/** Where the chosen completion is what stands there already, Enter means a new line and not the completion. */
+const enterAfterWholeName = Prec.highest(
+  keymap.of([
+    {
+      key: "Enter",
+      run(view) {
+        const chosen = selectedCompletion(view.state);
+        if (chosen === null) return false;
+        const { head } = view.state.selection.main;
+        if (view.state.sliceDoc(Math.max(0, head - chosen.label.length), head) === chosen.label) closeCompletion(view);
+        return false;
+      },
+    },
+  ]),
+);

@@ -5,26 +5,14 @@ import { TraceView } from "@/app/_blocks/trace/TraceView";
 import { Button } from "@/app/_ui/Button";
 import type { Block, DataBlock } from "@/cells";
 import { useWholeView, usePage } from "../pageContext";
-import { dayOf } from "../times";
 import { footnotesOf, type Footnote } from "./footnotes";
 import { remarksOn } from "./remarksOn";
+import { signedReason } from "./signedReason";
 
 /** How many notes of one block stand open; the others wait behind a line. */
 const OPEN_NOTES = 8;
 
 const kindTitles: Record<Footnote["kind"], string> = { amended: "Amended", "set aside": "Set aside", "value set aside": "Set aside", screening: "Screening" };
-
-function who(by: string | undefined, people: Readonly<Record<string, string>>): string {
-  if (by === undefined) return "";
-  // Snapshots carry opaque ids; an id without a name says nothing.
-  return people[by] ?? (/^[0-9a-f]{8}-/.test(by) ? "" : by);
-}
-
-function sentenceOf(note: Footnote, people: Readonly<Record<string, string>>): string {
-  const signed = [who(note.by, people), note.at === undefined ? "" : dayOf(note.at)].filter(Boolean).join(", ");
-  const reason = /[.!?]$/.test(note.reason) ? note.reason : `${note.reason}.`;
-  return signed === "" ? reason : `${reason} ${signed}`;
-}
 
 function DataNotes({ block, blockKey, named }: { readonly block: DataBlock; readonly blockKey: string; readonly named: boolean }) {
   const result = usePage((s) => s.results?.blocks.get(block.id));
@@ -48,7 +36,7 @@ function DataNotes({ block, blockKey, named }: { readonly block: DataBlock; read
             <b>{kindTitles[note.kind]}</b>{" "}
             {note.kind === "amended" ? `${note.sample === "" ? `row ${note.row}` : note.sample}, ${note.column ?? ""}, ${note.title}` : note.title}
           </button>
-          {sentenceOf(note, people)}
+          {signedReason(note, people)}
         </div>
       ))}
       {notes.length > shown.length ? (

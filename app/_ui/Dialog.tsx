@@ -1,11 +1,11 @@
 "use client";
 
 import { Dialog as RadixDialog } from "radix-ui";
-import { useEffect, type ReactNode } from "react";
+import type { ReactNode } from "react";
 import { classNames } from "./classNames";
 import { IconButton } from "./IconButton";
 import { IconClose } from "./icons";
-import { allowLibraryStyles } from "./nonce";
+import "./nonce";
 
 export interface DialogProps {
   readonly open: boolean;
@@ -24,7 +24,6 @@ const sizes = { narrow: "max-w-[520px]", wide: "max-w-[936px]", full: "max-w-[12
 
 /** A sheet over the page: keyboard stays inside, Escape closes, focus returns to where it was. */
 export function Dialog({ open, onClose, title, says, size = "narrow", children, actions }: DialogProps) {
-  useEffect(allowLibraryStyles, []);
   return (
     <RadixDialog.Root open={open} onOpenChange={(next) => (next ? undefined : onClose())}>
       <RadixDialog.Portal>

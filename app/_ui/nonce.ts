@@ -8,8 +8,6 @@ export function pageNonce(): string {
   return document.querySelector<HTMLMetaElement>('meta[name="csp-nonce"]')?.content ?? "";
 }
 
-/** Hands the nonce to the scroll lock that dialogs use. Called once, before the first dialog opens. */
-export function allowLibraryStyles(): void {
-  const nonce = pageNonce();
-  if (nonce !== "") setNonce(nonce);
-}
+// The scroll lock of dialogs asks for the nonce when it mounts, before any effect of ours could hand it over.
+const nonce = pageNonce();
+if (nonce !== "") setNonce(nonce);

@@ -48,7 +48,7 @@ describe("bad input", () => {
 
   test("a file that is no table", async () => {
     const picture = Buffer.from([0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a, 0, 0, 0, 13, 0x49, 0x48, 0x44, 0x52, 0, 0, 1, 0, 0, 0, 1, 0, 8, 6, 0, 0, 0]);
-    await refusedFile("picture.csv", picture, /not a table|no table|not text|bytes that no table/iu);
+    await refusedFile("picture.csv", picture, /PNG image/u);
   });
 
   test("a header without rows", () => refusedFile("header.csv", Buffer.from("Sample,MgO (wt%),SiO2 (wt%)\n"), /no rows|without rows|rows/iu));
@@ -103,7 +103,7 @@ describe("bad input", () => {
     ["a cycle", "a = b + 1\nb = a + 1", /circle|itself|round/iu],
     ["an unknown unit", "c = as_furlong(MgO)", /as_furlong/u],
     ["a name that is not there", "c = Unobtainium / Si", /Unobtainium/u],
-    ["a formula of 5,000 characters", `c = ${"MgO + ".repeat(833)}MgO`, /4,000/u],
+    ["a formula of 5,000 characters", `c = ${"MgO + ".repeat(833)}MgO`, /at most 4000/u],
   ])("%s gets its sentence under the line", async (_, text, sentence) => {
     const { page } = ana;
     if ((await block(page, "f").count()) === 0) {
@@ -117,7 +117,7 @@ describe("bad input", () => {
   test("a table in the bin that is still in use: its readers say so, and get it back", async () => {
     const { page } = ana;
     await write("ratio = Mg / Si");
-    await expect.poll(() => block(page, "f").innerText(), { timeout: 15_000 }).not.toMatch(/4,000/u);
+    await expect.poll(() => block(page, "f").innerText(), { timeout: 15_000 }).not.toMatch(/at most 4000/u);
     await block(page, "d")
       .getByRole("button", { name: /^More for/u })
       .click();
@@ -126,7 +126,7 @@ describe("bad input", () => {
     await page.getByRole("button", { name: /^Bin/u }).first().click();
     await page
       .getByRole("dialog")
-      .getByRole("button", { name: /Put back|Bring back|Restore/u })
+      .getByRole("button", { name: /^Bring .* back$/u })
       .first()
       .click();
     await page.keyboard.press("Escape");

@@ -18,6 +18,8 @@ function option(suggestion: Suggestion): Completion {
 /** Completion of columns, species, bodies, lines and functions, each with its unit or what it does; `offered` is asked anew each time. */
 export function formulaCompletion(offered: () => readonly Suggestion[]): Extension {
   const source = (context: CompletionContext): CompletionResult | null => {
+    // Asked for while typing and answered after the person went elsewhere: the list must not open over what they went to.
+    if (!context.explicit && context.view?.hasFocus === false) return null;
     const before = context.matchBefore(word);
     if (before === null && !context.explicit) return null;
     const line = context.state.doc.lineAt(context.pos);

@@ -71,7 +71,7 @@ export function BodiesDialog({ onClose }: { readonly onClose: () => void }) {
               options={known.some((k) => k.value === row.id) ? known : [{ value: row.id, label: `${row.id} (not known)` }, ...known]}
               onChoose={(id) => set(i, { id })}
             />
-            <Button look="quiet" aria-label={`Take ${row.alias} off the page`} onClick={() => setRows((old) => old.filter((_, j) => j !== i))}>
+            <Button look="quiet" aria-label={`Take off ${row.alias}`} onClick={() => setRows((old) => old.filter((_, j) => j !== i))}>
               Take off
             </Button>
           </li>

@@ -105,7 +105,7 @@ export function SectionRail() {
               <path d={`M${layer.x + layer.w} ${layer.y}H${layer.x}V${layer.y + layer.h}`} fill="none" stroke="var(--ink)" />
               {layer.problem && !layer.last ? <path d={edge} fill="none" stroke="var(--vermilion)" strokeWidth={1.6} /> : null}
               {!strip && layer.place < 2 ? (
-                <text x={x - 14} y={layer.y + 13 + layer.place * 12} textAnchor="end" className="rail-handle">
+                <text x={x - 14} y={layer.y + 13 + layer.place * 12} textAnchor="end" className="rail-handle" aria-hidden="true">
                   {layer.handle.length > 6 ? `${layer.handle.slice(0, 5)}…` : layer.handle}
                 </text>
               ) : null}
@@ -115,7 +115,14 @@ export function SectionRail() {
                     <g key={person.clientId} fill={person.color}>
                       <rect x={x - (strip ? 4 : 8) - i * 5} y={layer.y + 4} width={3} height={Math.max(6, Math.min(14, layer.h - 8))} />
                       {!strip && i === 0 && !person.isMe && layer.h >= 44 ? (
-                        <text x={x - 14} y={layer.y + 30 + (layer.last ? 0 : 12)} textAnchor="end" className="rail-initials" style={{ fill: person.color }}>
+                        <text
+                          x={x - 14}
+                          y={layer.y + 30 + (layer.last ? 0 : 12)}
+                          textAnchor="end"
+                          className="rail-initials"
+                          aria-hidden="true"
+                          style={{ fill: person.color }}
+                        >
                           {initials(person.name)}
                         </text>
                       ) : null}

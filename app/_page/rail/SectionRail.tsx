@@ -79,58 +79,67 @@ export function SectionRail() {
           const title = layer.name === "" ? kindWords[layer.kind].one : layer.name;
           const here = people.length > 0 ? `, here: ${people.map((p) => (p.isMe ? "you" : p.name)).join(", ")}` : "";
           return (
-            <a
-              key={layer.key}
-              href={`#${layer.handle}`}
-              data-layer={layer.key}
-              tabIndex={layer.key === tabStop ? 0 : -1}
-              aria-label={`${title}, ${kindWords[layer.kind].one} ${layer.handle}${layer.problem ? ", has a problem" : ""}${here}`}
-              onClick={(event) => {
-                event.preventDefault();
-                goToBlock(layer.key);
-              }}
-              onFocus={() => setFocused(layer.key)}
-              onBlur={() => setFocused(null)}
-              onMouseEnter={() => setHovered(layer.key)}
-              className="rail-layer"
-            >
-              <path d={outline} fill="var(--paper)" />
-              {pattern ? <path d={outline} fill={pattern} /> : null}
-              <path
-                d={edge}
-                fill="none"
-                stroke={layer.problem && layer.last ? "var(--vermilion)" : "var(--ink)"}
-                strokeWidth={layer.problem && layer.last ? 1.6 : 1}
-              />
-              <path d={`M${layer.x + layer.w} ${layer.y}H${layer.x}V${layer.y + layer.h}`} fill="none" stroke="var(--ink)" />
-              {layer.problem && !layer.last ? <path d={edge} fill="none" stroke="var(--vermilion)" strokeWidth={1.6} /> : null}
+            <g key={layer.key}>
+              <a
+                href={`#${layer.handle}`}
+                data-layer={layer.key}
+                tabIndex={layer.key === tabStop ? 0 : -1}
+                aria-label={`${title}, ${kindWords[layer.kind].one} ${layer.handle}${layer.problem ? ", has a problem" : ""}${here}`}
+                onClick={(event) => {
+                  event.preventDefault();
+                  goToBlock(layer.key);
+                }}
+                onFocus={() => setFocused(layer.key)}
+                onBlur={() => setFocused(null)}
+                onMouseEnter={() => setHovered(layer.key)}
+                className="rail-layer"
+              >
+                <path d={outline} fill="var(--paper)" />
+                {pattern ? <path d={outline} fill={pattern} /> : null}
+                <path
+                  d={edge}
+                  fill="none"
+                  stroke={layer.problem && layer.last ? "var(--vermilion)" : "var(--ink)"}
+                  strokeWidth={layer.problem && layer.last ? 1.6 : 1}
+                />
+                <path d={`M${layer.x + layer.w} ${layer.y}H${layer.x}V${layer.y + layer.h}`} fill="none" stroke="var(--ink)" />
+                {layer.problem && !layer.last ? <path d={edge} fill="none" stroke="var(--vermilion)" strokeWidth={1.6} /> : null}
+                {frozen
+                  ? null
+                  : people.slice(0, 4).map((person, i) => (
+                      <g key={person.clientId} fill={person.color}>
+                        <rect x={x - (strip ? 4 : 8) - i * 5} y={layer.y + 4} width={3} height={Math.max(6, Math.min(14, layer.h - 8))} />
+                        {!strip && i === 0 && !person.isMe && layer.h >= 44 ? (
+                          <text
+                            x={x - 14}
+                            y={layer.y + 30 + (layer.last ? 0 : 12)}
+                            textAnchor="end"
+                            className="rail-initials"
+                            aria-hidden="true"
+                            style={{ fill: person.color }}
+                          >
+                            {initials(person.name)}
+                          </text>
+                        ) : null}
+                        <title>{person.isMe ? "you" : person.name}</title>
+                      </g>
+                    ))}
+                <path d={outline} className="rail-focus" fill="none" />
+              </a>
+              {/* Outside the link: what is read out is the whole name, and a shortened handle is no word of it. */}
               {!strip && layer.place < 2 ? (
-                <text x={x - 14} y={layer.y + 13 + layer.place * 12} textAnchor="end" className="rail-handle" aria-hidden="true">
+                <text
+                  x={x - 14}
+                  y={layer.y + 13 + layer.place * 12}
+                  textAnchor="end"
+                  className="rail-handle cursor-pointer"
+                  aria-hidden="true"
+                  onClick={() => goToBlock(layer.key)}
+                >
                   {layer.handle.length > 6 ? `${layer.handle.slice(0, 5)}…` : layer.handle}
                 </text>
               ) : null}
-              {frozen
-                ? null
-                : people.slice(0, 4).map((person, i) => (
-                    <g key={person.clientId} fill={person.color}>
-                      <rect x={x - (strip ? 4 : 8) - i * 5} y={layer.y + 4} width={3} height={Math.max(6, Math.min(14, layer.h - 8))} />
-                      {!strip && i === 0 && !person.isMe && layer.h >= 44 ? (
-                        <text
-                          x={x - 14}
-                          y={layer.y + 30 + (layer.last ? 0 : 12)}
-                          textAnchor="end"
-                          className="rail-initials"
-                          aria-hidden="true"
-                          style={{ fill: person.color }}
-                        >
-                          {initials(person.name)}
-                        </text>
-                      ) : null}
-                      <title>{person.isMe ? "you" : person.name}</title>
-                    </g>
-                  ))}
-              <path d={outline} className="rail-focus" fill="none" />
-            </a>
+            </g>
           );
         })}
         {layers.length > 0 ? (

@@ -39,7 +39,7 @@ export function SectionRail() {
   const [focused, setFocused] = useState<string | null>(null);
 
   const strip = size.width < STRIP_BELOW;
-  const x = strip ? 5 : 44;
+  const x = strip ? 5 : Math.min(60, size.width - 56);
   const w = strip ? 14 : 44;
   const top = strip ? 8 : 16;
   const layers = useMemo(() => {
@@ -136,7 +136,7 @@ export function SectionRail() {
                   aria-hidden="true"
                   onClick={() => goToBlock(layer.key)}
                 >
-                  {layer.handle.length > 6 ? `${layer.handle.slice(0, 5)}…` : layer.handle}
+                  {layer.handle.length > 5 ? `${layer.handle.slice(0, 4)}…` : layer.handle}
                 </text>
               ) : null}
             </g>

@@ -5,7 +5,7 @@ import { BudgetView, stateInWords as budgetState } from "./budget/BudgetView";
 import { DataView, stateInWords as dataState } from "./data/DataView";
 import { FormulaView, stateInWords as formulaState } from "./formula/FormulaView";
 import { plainState, type StateWords } from "./headWords";
-import { NoteView } from "./note/NoteView";
+import { NoteView, stateInWords as noteState } from "./note/NoteView";
 import { PlotView, stateInWords as plotState } from "./plot/PlotView";
 import { stateInWords as trendState, TrendView } from "./trend/TrendView";
 
@@ -38,6 +38,7 @@ export function stateOf(result: BlockResult | undefined): StateWords {
     case "budget":
       return budgetState(result);
     case "note":
+      return noteState(result);
     case undefined:
       return plainState(result);
   }

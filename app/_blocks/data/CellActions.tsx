@@ -15,7 +15,7 @@ export interface CellActionsProps {
   readonly onAmend: (target: CellTarget) => void;
   readonly onSetAside: (target: CellTarget, whole: boolean) => void;
   readonly onUndo: (list: "amendments" | "setAside", entry: object) => void;
-  readonly onDelete: ((place: CellPlace) => void) | undefined;
+  readonly onDelete: ((row: RowId) => void) | undefined;
 }
 
 /** The cell that an action is about, by what it stays in the document: row, sample, column and the source's text. */
@@ -92,7 +92,7 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
             <Button onClick={() => onUndo("setAside", rowAside)}>Bring the sample back</Button>
           )}
           {onDelete === undefined ? null : (
-            <Button look="danger" onClick={() => onDelete(place)}>
+            <Button look="danger" onClick={() => onDelete(row)}>
               Delete the row
             </Button>
           )}

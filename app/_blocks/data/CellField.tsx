@@ -20,9 +20,12 @@ export function CellField({ initial, label, onDone }: CellFieldProps) {
   }, []);
   const finish = (value: string | null, move: "down" | "right" | "left" | null) => {
     if (done.current) return;
+    // Moving on takes the focus from here at once, and leaving the field must not count as a second answer.
+    done.current = true;
     const refused = onDone(value, move);
-    if (refused === null) done.current = true;
-    else setFault(refused);
+    if (refused === null) return;
+    done.current = false;
+    setFault(refused);
   };
   const onKeyDown = (event: KeyboardEvent) => {
     event.stopPropagation();

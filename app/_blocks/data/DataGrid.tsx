@@ -6,13 +6,14 @@ import { FRAME_ATTRIBUTE } from "@/app/_page/rail/useRailBlocks";
 import { SHOW_ROW_EVENT, type ShowRow } from "@/app/_page/goTo";
 import type { PageView } from "@/app/_page/contract";
 import type { MenuItem } from "@/app/_ui/Menu";
-import type { DataBlock, DataResult } from "@/cells";
+import type { DataBlock, DataResult, RowId } from "@/cells";
 import { CellField } from "./CellField";
 import { GridHead } from "./GridHead";
 import { between, movedBy, type CellPlace } from "./gridKeys";
-import { gridModel, rowTotals, type GridColumn, type GridModel } from "./gridModel";
+import { rowTotals, type GridColumn, type GridModel } from "./gridModel";
 import { GridRow } from "./GridRow";
 import { othersPicks, rowDrawer } from "./gridRows";
+import type { ActiveCell } from "./useActiveCell";
 import { ROW_HEIGHT, useRowWindow } from "./useRowWindow";
 import "./data.css";
 
@@ -24,13 +25,12 @@ const MOST_SEEN = 20;
 /** What is done at a cell, decided by the block: typed cells are edited, values of a source amended. */
 export interface GridActions {
   /** Enter, F2 or a double click at a cell of a source. */
-  readonly onOpen?: ((place: CellPlace, model: GridModel) => void) | undefined;
+  readonly onOpen?: ((place: CellPlace) => void) | undefined;
   /** The new text of a typed cell; a sentence where it is refused. */
-  readonly onType?: ((place: CellPlace, model: GridModel, text: string) => string | null) | undefined;
-  readonly onPasteTable?: ((place: CellPlace, model: GridModel, text: string) => void) | undefined;
-  readonly onDelete?: ((place: CellPlace, model: GridModel) => void) | undefined;
+  readonly onType?: ((row: RowId, column: string, text: string) => string | null) | undefined;
+  readonly onPasteTable?: ((place: CellPlace, text: string) => void) | undefined;
+  readonly onDelete?: ((place: CellPlace) => void) | undefined;
   readonly itemsOf?: ((column: GridColumn) => readonly MenuItem[]) | undefined;
-  readonly onActive?: (place: CellPlace | null, model: GridModel) => void;
 }
 
 export interface DataGridProps extends GridActions {
@@ -38,35 +38,38 @@ export interface DataGridProps extends GridActions {
   readonly blockKey: string;
   readonly result: DataResult | undefined;
   readonly view: PageView;
-  /** Empty rows at the end, for typing. */
-  readonly spare: number;
+  readonly model: GridModel;
+  readonly cell: ActiveCell;
 }
 
 /** The table itself: virtual rows, one active cell, picked rows, typing where the table is typed. */
-export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType, onPasteTable, onDelete, itemsOf, onActive }: DataGridProps) {
+export function DataGrid({ block, blockKey, result, view, model, cell, onOpen, onType, onPasteTable, onDelete, itemsOf }: DataGridProps) {
   const id = useId();
   const form = view.settings.uncertainty;
   const table = result?.table;
-  const model = useMemo(() => gridModel(block, table, form), [block, table, form]);
   const totals = useMemo(() => (model.typed ? null : rowTotals(table)), [model, table]);
   const draw = useMemo(() => rowDrawer(block, result, model, totals, form, view.classIndex), [block, result, model, totals, form, view]);
   const picked = useMemo(() => pickedIndices(table, view.picked), [table, view.picked]);
   const pickedSet = useMemo(() => new Set(picked), [picked]);
   const others = othersPicks(view, model);
-  const rows = model.rows + spare;
+  const { place: active, rowIds, go: activate, tookRow } = cell;
+  const rows = rowIds.length;
   const columns = model.columns.length + (totals === null ? 0 : 1);
   const seen = Math.min(rows, MOST_SEEN);
   const shown = useRowWindow(rows, seen, HEAD_HEIGHT);
-  const [active, setActive] = useState<CellPlace | null>(null);
   const [typing, setTyping] = useState<string | null>(null);
   const anchor = useRef<number | null>(null);
   const { reveal, scroller } = shown;
 
   const go = (place: CellPlace) => {
-    setActive(place);
+    activate(place);
     setTyping(null);
-    onActive?.(place, model);
     reveal(place.row);
+  };
+  /** Begins a cell's text; what is typed stays with this row, wherever others move it meanwhile. */
+  const begin = (place: CellPlace, text: string) => {
+    activate(place);
+    setTyping(text);
   };
 
   useEffect(() => {
@@ -76,13 +79,13 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
       const at = model.rowIds.indexOf(row);
       if (at < 0) return;
       const c = model.columns.findIndex((one) => one.name === column);
-      setActive({ row: at, column: Math.max(0, c) });
+      activate({ row: at, column: Math.max(0, c) });
       reveal(at);
       scroller.current?.focus({ preventScroll: true });
     };
     frame?.addEventListener(SHOW_ROW_EVENT, show);
     return () => frame?.removeEventListener(SHOW_ROW_EVENT, show);
-  }, [blockKey, model, reveal, scroller]);
+  }, [blockKey, model, activate, reveal, scroller]);
 
   const pick = (row: number, way: "only" | "toggle" | "range") => {
     if (table === undefined || row >= table.rows || view.mode === "frozen") return;
@@ -121,8 +124,8 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
   const onDoubleClick = (event: MouseEvent) => {
     const place = placeOf(event);
     if (place === null) return;
-    if (editable(place)) setTyping("");
-    else onOpen?.(place, model);
+    if (editable(place)) begin(place, "");
+    else onOpen?.(place);
   };
   const onKeyDown = (event: KeyboardEvent<HTMLElement>) => {
     if (typing !== null || event.altKey || event.target !== event.currentTarget) return;
@@ -143,31 +146,35 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
     if (event.key === "Enter" || event.key === "F2") {
       event.preventDefault();
       if (active === null) return go(at);
-      if (editable(at)) return setTyping("");
-      return onOpen?.(at, model);
+      if (editable(at)) return begin(at, "");
+      return onOpen?.(at);
     }
     if (event.key === "Escape") return view.pick([]);
-    if ((event.key === "Delete" || event.key === "Backspace") && onDelete !== undefined) return onDelete(at, model);
+    if ((event.key === "Delete" || event.key === "Backspace") && onDelete !== undefined) return onDelete(at);
     if (event.key.length === 1 && !event.ctrlKey && !event.metaKey && editable(at) && active !== null) {
       event.preventDefault();
-      setTyping(event.key);
+      begin(at, event.key);
     }
   };
 
   const field = (place: CellPlace) => {
     const column = model.columns[place.column];
-    if (typing === null || column === undefined || onType === undefined) return null;
+    const row = rowIds[place.row];
+    if (typing === null || column === undefined || row === undefined || onType === undefined) return null;
     const before = block.typed?.[place.row]?.cells[column.name] ?? "";
     return (
       <CellField
         initial={typing === "" ? before : typing}
         label={`${column.name}, row ${place.row + 1}`}
         onDone={(text, move) => {
-          const fault = text === null || text === before ? null : onType(place, model, text);
+          const isNew = text !== null && text !== before;
+          const fault = isNew ? onType(row, column.name, text) : null;
           if (fault !== null) return fault;
+          if (isNew) tookRow(row);
           const next =
             move === "down"
-              ? { row: Math.min(rows - 1, place.row + 1), column: place.column }
+              ? // Below a row that was free until now stands another one before long.
+                { row: Math.min(isNew ? rows : rows - 1, place.row + 1), column: place.column }
               : move === "right"
                 ? { row: place.row, column: Math.min(model.columns.length - 1, place.column + 1) }
                 : move === "left"
@@ -187,6 +194,8 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
   const least = model.columns.reduce((sum, c) => sum + c.width, totals === null ? 0 : TOTAL_WIDTH);
   const drawn: number[] = [];
   for (let r = shown.first; r < shown.end; r++) drawn.push(r);
+  // A cell that is being typed in keeps its field when the table is scrolled away from it.
+  if (typing !== null && active !== null && (active.row < shown.first || active.row >= shown.end)) drawn.push(active.row);
   return (
     <div
       ref={scroller}
@@ -206,7 +215,7 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
       onPaste={(event) => {
         if (typing !== null || active === null || onPasteTable === undefined) return;
         event.preventDefault();
-        onPasteTable(active, model, event.clipboardData.getData("text/plain"));
+        onPasteTable(active, event.clipboardData.getData("text/plain"));
       }}
     >
       <div role="presentation" style={{ ["--columns" as string]: template, minWidth: least }}>
@@ -214,7 +223,7 @@ export function DataGrid({ block, blockKey, result, view, spare, onOpen, onType,
         <div role="rowgroup" className="relative" style={{ height: rows * ROW_HEIGHT }}>
           {drawn.map((r) => (
             <GridRow
-              key={r}
+              key={rowIds[r] ?? r}
               id={id}
               index={r}
               top={r * ROW_HEIGHT}

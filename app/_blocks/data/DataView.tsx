@@ -1,6 +1,6 @@
 "use client";
 
-import { useState } from "react";
+import { useMemo, useState } from "react";
 import type { BlockViewProps } from "@/app/_page/contract";
 import { usePage } from "@/app/_page/pageContext";
 import { useRefusal } from "@/app/_blocks/shared/useRefusal";
@@ -13,14 +13,16 @@ import { DataGrid } from "./DataGrid";
 import { DataProblems } from "./DataProblems";
 import { EmptyTable } from "./EmptyTable";
 import { FoldedTable } from "./FoldedTable";
-import type { CellPlace } from "./gridKeys";
-import type { GridColumn, GridModel } from "./gridModel";
+import { gridModel, type GridColumn } from "./gridModel";
 import { GridLegend } from "./GridLegend";
 import { ImportDialog } from "./ImportDialog";
 import { AmendDialog, AssumeDialog, SetAsideDialog } from "./ReasonDialogs";
 import { StackDialog } from "./StackDialog";
 import { AddColumnDialog } from "./AddColumnDialog";
 import { tableEdits } from "./tableEdits";
+import { useActiveCell } from "./useActiveCell";
+
+const MOST_TYPED = 2000;
 
 export { stateInWords } from "./stateInWords";
 
@@ -38,10 +40,12 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
   const services = usePage((s) => s.services);
   const loading = usePage((s) => s.loading.has(block.id));
   const [asking, setAsking] = useState<Asking>(null);
-  const [active, setActive] = useState<{ readonly place: CellPlace; readonly model: GridModel } | null>(null);
   const [run, refusal] = useRefusal();
   const result = resultOf(view.results, block.id, "data");
   const { edits } = view;
+  const form = view.settings.uncertainty;
+  const model = useMemo(() => gridModel(block, result?.table, form), [block, result?.table, form]);
+  const cell = useActiveCell(model.rowIds, edits !== null && block.typed !== undefined && block.typed.length < MOST_TYPED);
   const isMade = block.stack !== undefined || block.join !== undefined;
   // A third of the page has no room for a table; what is folded is each person's own choice.
   const [folded, setFolded] = useState<boolean | null>(null);
@@ -94,36 +98,35 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
               blockKey={blockKey}
               result={result}
               view={view}
-              spare={made !== null && block.typed !== undefined && block.typed.length < 2000 ? 1 : 0}
-              onActive={(place, model) => setActive(place === null ? null : { place, model })}
+              model={model}
+              cell={cell}
               itemsOf={itemsOf}
-              onOpen={(place, model) => {
+              onOpen={(place) => {
                 const target = made === null ? undefined : targetAt(block, model, place);
                 if (block.source !== undefined && target?.column !== undefined) setAsking({ what: "amend", target });
               }}
-              onType={
-                made === null || block.typed === undefined
-                  ? undefined
-                  : (place, model, text) => made.typeCell(place.row, model.columns[place.column]?.name ?? "", text)
-              }
-              onPasteTable={made === null || block.typed === undefined ? undefined : (place, model, text) => run(() => made.pasteCells(place, model, text))}
-              onDelete={
-                made === null || block.typed === undefined
-                  ? undefined
-                  : (place, model) => run(() => made.clearCell(place.row, model.columns[place.column]?.name ?? ""))
-              }
+              {...(made === null || block.typed === undefined
+                ? {}
+                : {
+                    onType: (row, column, text) => made.typeCell(row, !model.rowIds.includes(row), column, text),
+                    onPasteTable: (place, text) => run(() => made.pasteCells(place, cell.rowIds, model, text)),
+                    onDelete: (place) => {
+                      const row = model.rowIds[place.row];
+                      if (row !== undefined) run(() => made.clearCell(row, model.columns[place.column]?.name ?? ""));
+                    },
+                  })}
             />
           )}
-          {active === null || isFolded ? null : (
+          {cell.place === null || isFolded ? null : (
             <CellActions
               block={block}
-              model={active.model}
-              place={active.place}
+              model={model}
+              place={cell.place}
               view={view}
               onAmend={(target) => setAsking({ what: "amend", target })}
               onSetAside={(target, whole) => setAsking({ what: "aside", target, whole })}
               onUndo={(list, entry) => made !== null && run(() => made.undo(list, entry))}
-              onDelete={made === null || block.typed === undefined ? undefined : (place) => run(() => made.deleteRow(place.row))}
+              onDelete={made === null || block.typed === undefined ? undefined : (row) => run(() => made.deleteRow(row))}
             />
           )}
           <GridLegend block={block} result={result} short={isFolded}>

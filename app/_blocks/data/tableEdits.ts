@@ -1,5 +1,5 @@
 import type { Uploaded } from "@/app/_page/services";
-import type { Column, DataBlock, TypedRow } from "@/cells";
+import type { Column, DataBlock, RowId, TypedRow } from "@/cells";
 import type { PageEdits } from "@/realtime/document";
 import type { CellTarget } from "./CellActions";
 import { clipboardCells } from "./clipboardTable";
@@ -24,10 +24,12 @@ export interface TableEdits {
   startTyped(columns: readonly Column[]): void;
   addColumn(column: Column): void;
   removeColumn(name: string): void;
-  typeCell(index: number, column: string, text: string): string | null;
-  clearCell(index: number, column: string): void;
-  pasteCells(at: CellPlace, model: GridModel, text: string): void;
-  deleteRow(index: number): void;
+  /** Puts a text into a cell; a sentence where it is refused. `isNew` where the row is not in the table yet. */
+  typeCell(row: RowId, isNew: boolean, column: string, text: string): string | null;
+  clearCell(row: RowId, column: string): void;
+  /** @param rowIds the rows as they stand on the screen, the free one last */
+  pasteCells(at: CellPlace, rowIds: readonly RowId[], model: GridModel, text: string): void;
+  deleteRow(row: RowId): void;
   amend(target: CellTarget, value: string, reason: string): void;
   setAside(target: CellTarget, whole: boolean, reason: string): void;
   assume(column: string, assumed: { readonly relative: number } | { readonly absolute: number }, reason: string): void;
@@ -38,7 +40,9 @@ export interface TableEdits {
 export function tableEdits(edits: PageEdits, key: string, block: DataBlock): TableEdits {
   const columns = block.columns ?? [];
   const isQuantity = (name: string) => columns.some((c) => columnName(c) === name && (c.role === "quantity" || c.role === "uncertainty"));
-  const rowAt = (index: number): TypedRow => block.typed?.[index] ?? { id: freshRowId(), cells: {} };
+  // Asked of the document itself: what is on the screen may be a moment older, and would take back what was typed since.
+  const rowOf = (id: RowId | undefined): TypedRow | undefined =>
+    edits.entries(key, "typed").find(({ entry }) => entry.id === id)?.entry as unknown as TypedRow | undefined;
   const withCell = (row: TypedRow, column: string, text: string): TypedRow => {
     const { [column]: _, ...others } = row.cells;
     return { id: row.id, cells: text === "" ? others : { ...others, [column]: text } };
@@ -67,22 +71,30 @@ export function tableEdits(edits: PageEdits, key: string, block: DataBlock): Tab
       const column = columns.find((c) => columnName(c) === name);
       if (column !== undefined) edits.removeEntry(key, "columns", column);
     },
-    typeCell(index, column, text) {
+    typeCell(id, isNew, column, text) {
       const quantity = isQuantity(column);
       const fault = typedFault(text, quantity);
       if (fault !== null) return fault;
-      return this.attempt(() => putRow(withCell(rowAt(index), column, typedStored(text, quantity))));
+      const stored = typedStored(text, quantity);
+      if (isNew && stored === "") return null;
+      return this.attempt(() => {
+        const row = rowOf(id) ?? (isNew ? { id: String(id), cells: {} } : undefined);
+        if (row === undefined) throw new Error("This row was deleted meanwhile. Press Escape, and type in another row.");
+        putRow(withCell(row, column, stored));
+      });
     },
-    clearCell(index, column) {
-      const row = block.typed?.[index];
+    clearCell(id, column) {
+      const row = rowOf(id);
       if (row !== undefined && column in row.cells) putRow(withCell(row, column, ""));
     },
-    pasteCells(at, model, text) {
+    pasteCells(at, rowIds, model, text) {
       const cells = clipboardCells(text);
       if (at.row + cells.length > MOST_TYPED)
         throw new Error(`A typed table holds at most 2,000 rows; this would make ${at.row + cells.length}. Upload it as a file instead.`);
+      const present = new Map(edits.entries(key, "typed").map(({ entry }) => [entry.id, entry as unknown as TypedRow]));
       const rows = cells.map((line, r) => {
-        let row = rowAt(at.row + r);
+        const id = String(rowIds[at.row + r] ?? freshRowId());
+        let row = present.get(id) ?? { id, cells: {} };
         line.forEach((cell, c) => {
           const column = model.columns[at.column + c]?.name;
           if (column === undefined) return;
@@ -95,8 +107,8 @@ export function tableEdits(edits: PageEdits, key: string, block: DataBlock): Tab
       });
       for (const row of rows) putRow(row);
     },
-    deleteRow(index) {
-      const row = block.typed?.[index];
+    deleteRow(id) {
+      const row = rowOf(id);
       if (row !== undefined) edits.removeEntry(key, "typed", row);
     },
     amend: (target, value, reason) =>

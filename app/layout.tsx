@@ -10,7 +10,7 @@ export const dynamic = "force-dynamic";
 export const metadata: Metadata = {
   title: { default: "Cotectic", template: "%s · Cotectic" },
   description: "Bulk compositions on one live page: ratios with honest uncertainties, trends, crossings and mass balances.",
-  referrer: "no-referrer",
+  referrer: "same-origin",
   icons: { icon: "/mark.svg" },
 };
 
@@ -23,6 +23,12 @@ export const viewport: Viewport = {
   ],
 };
 
+/**
+ * Keeps the nonce that this document's policy was sent with. A later answer of the server renders this layout anew with a nonce
+ * of its own, which the browser does not take.
+ */
+const keepNonce = "window.cotecticNonce=document.currentScript.nonce;";
+
 /** Chooses the light before the first paint, so that nobody in a dark room sees a white flash. */
 const chooseLight = `try{var l=localStorage.getItem("cotectic-light")||"system";if(l==="polars"||(l==="system"&&matchMedia("(prefers-color-scheme: dark)").matches))document.documentElement.classList.add("polars")}catch(e){}`;
 
@@ -31,8 +37,7 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
   return (
     <html lang="en" suppressHydrationWarning>
       <head>
-        <meta name="csp-nonce" content={nonce} suppressHydrationWarning />
-        <script nonce={nonce} suppressHydrationWarning dangerouslySetInnerHTML={{ __html: chooseLight }} />
+        <script nonce={nonce} suppressHydrationWarning dangerouslySetInnerHTML={{ __html: keepNonce + chooseLight }} />
       </head>
       <body>{children}</body>
     </html>

@@ -33,7 +33,8 @@ export const BlockFrame = memo(function BlockFrame({ blockKey }: { readonly bloc
   const onKeyDown = (event: KeyboardEvent) => {
     if (edits === null || !event.altKey || event.ctrlKey || event.metaKey) return;
     const step = event.key === "ArrowUp" ? -1 : event.key === "ArrowDown" ? 1 : undefined;
-    if (step === undefined) return;
+    // Dialogs of the block stand elsewhere on the screen, and a list opens by these keys.
+    if (step === undefined || !event.currentTarget.contains(event.target as Node) || event.target instanceof HTMLSelectElement) return;
     event.preventDefault();
     run(() => moveByStep(view, blockKey, step));
     // Moving may remount the frame; the focus stays with the block.

@@ -1,10 +1,9 @@
 import type { Browser } from "playwright-core";
 import { afterAll, afterEach, beforeAll, describe, expect, inject, test } from "vitest";
-import type * as Y from "yjs";
+import { RawSocket } from "../realtime/support/rawSocket";
 import { launchBrowser } from "../support/browser";
 import { keyboard } from "./hands";
 import { analyses, block, invite, join, open, saved, shoot, signUp, type Person } from "./people";
-import { rawSocket } from "./rawSocket";
 
 /**
  * The whole job, by a lead who uses nothing but the keyboard and an analyst with a pointer, each in a browser of their own and
@@ -164,16 +163,22 @@ describe("a group takes a table of compositions to a frozen, shared result", () 
     await block(reader.page, "d").getByText("PN-01").first().waitFor();
     expect(await reader.page.getByRole("button", { name: "Add below" }).count()).toBe(0);
     const cookies = await reader.context.cookies();
-    const socket = await rawSocket(pageId, 1, cookies.map(({ name, value }) => `${name}=${value}`).join("; "));
-    const doc = await socket.sync();
-    const title = (d: Y.Doc) => JSON.stringify(d.getMap("page").toJSON());
-    const before = title(doc);
-    const change = await socket.edit(doc, (d) => d.getMap("page").set("title", "Taken over"));
-    expect(change.refused).toBe(true);
-    socket.close();
-    const again = await rawSocket(pageId, 1, cookies.map(({ name, value }) => `${name}=${value}`).join("; "));
-    expect(title(await again.sync())).toBe(before);
-    again.close();
+    const ask = {
+      port: inject("realtimePort"),
+      pageId,
+      cookie: cookies.map(({ name, value }) => `${name}=${value}`).join("; "),
+      origin: inject("url"),
+    };
+    const socket = await RawSocket.synced(ask);
+    const before = socket.textOf("f");
+    const number = socket.type("f", "\nmine = Mg");
+    await socket.until(() => socket.refusals.length > 0);
+    expect(socket.refusals[0]).toMatchObject({ number, code: 4403 });
+    await socket.close();
+    const again = await RawSocket.synced(ask);
+    expect(again.textOf("f")).toBe(before);
+    await again.close();
+    expect(await block(lead.page, "f").innerText()).not.toContain("mine");
     expect(await lead.page.getByLabel("Title of the page").inputValue()).toBe("Where two trends meet");
   });
 

@@ -1,13 +1,13 @@
 import { spawnSync } from "node:child_process";
-import { existsSync } from "node:fs";
+import { existsSync, writeFileSync } from "node:fs";
 import path from "node:path";
 import { aptInstall, unpackDebian, unpackedLibraries, unpackedRoot } from "./debian.mjs";
-import { fail, isRoot } from "./shared.mjs";
+import { fail, home, isRoot } from "./shared.mjs";
 
 /**
  * Debian's Chromium, for the browser tests: installed as root, unpacked beside the data as anybody else.
  *
- * @returns {{ CHROMIUM: string, CHROMIUM_LIBRARIES?: string }}
+ * @returns {{ CHROMIUM: string, CHROMIUM_LIBRARIES?: string, CHROMIUM_FONTS?: string }}
  */
 export function ensureBrowser() {
   const given = process.env.CHROMIUM;
@@ -22,10 +22,21 @@ export function ensureBrowser() {
         "The browser tests need Chromium, which could not be unpacked: as root, `apt-get install chromium`; or name one with CHROMIUM=/path.",
       );
   }
-  const found = existsSync(installed) ? { CHROMIUM: installed } : { CHROMIUM: unpacked, CHROMIUM_LIBRARIES: unpackedLibraries() };
-  const libraries = found.CHROMIUM_LIBRARIES ? { LD_LIBRARY_PATH: found.CHROMIUM_LIBRARIES } : {};
-  const probe = spawnSync(found.CHROMIUM, ["--version"], { env: { ...process.env, ...libraries }, encoding: "utf8" });
+  const found = existsSync(installed)
+    ? { CHROMIUM: installed }
+    : { CHROMIUM: unpacked, CHROMIUM_LIBRARIES: unpackedLibraries(), CHROMIUM_FONTS: unpackedFonts() };
+  const beside = found.CHROMIUM_LIBRARIES ? { LD_LIBRARY_PATH: found.CHROMIUM_LIBRARIES, FONTCONFIG_FILE: found.CHROMIUM_FONTS } : {};
+  const probe = spawnSync(found.CHROMIUM, ["--version"], { env: { ...process.env, ...beside }, encoding: "utf8" });
   if (probe.status !== 0)
     fail(`${found.CHROMIUM} does not start: ${(probe.stderr || "").trim().split("\n")[0]}. Install Chromium with \`apt-get install chromium\` as root.`);
   return found;
+}
+
+/** A font configuration for the unpacked browser, which ends at the first letter where it finds no font at all. */
+function unpackedFonts() {
+  const file = path.join(home(), "fonts.conf");
+  const folders = [path.join(unpackedRoot(), "usr/share/fonts"), "/usr/share/fonts"].map((folder) => `<dir>${folder}</dir>`).join("");
+  const cache = `<cachedir>${path.join(home(), "fontcache")}</cachedir>`;
+  writeFileSync(file, `<?xml version="1.0"?>\n<!DOCTYPE fontconfig SYSTEM "urn:fontconfig:fonts.dtd">\n<fontconfig>${folders}${cache}</fontconfig>\n`);
+  return file;
 }

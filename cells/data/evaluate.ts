@@ -37,7 +37,7 @@ export function evaluateData(block: DataBlock, context: BlockContext, source: Ui
   try {
     const { table: whole, proposed, amended } = make(block, context, source, problems);
     const table = block.replicates === undefined || block.join !== undefined ? whole : mergeReplicates(whole, block.replicates, problems);
-    const screening = screen(block, table, problems);
+    const { flags: screening, totals } = screen(block, table, problems);
     const aside = sum(table.setAside);
     return {
       kind: "data",
@@ -47,6 +47,7 @@ export function evaluateData(block: DataBlock, context: BlockContext, source: Ui
       amended,
       columns: summarise(table),
       screening,
+      ...(totals === undefined ? {} : { totals }),
       proposed,
       problems: problems.list(),
       bodiesUsed: {},

@@ -35,6 +35,8 @@ export interface DataResult extends AnyResult {
   readonly amended: number;
   readonly columns: readonly ColumnSummary[];
   readonly screening: readonly ScreeningFlag[];
+  /** Total of each row's oxides, wt%; NaN where a row has none that means anything, left out where the table has none. */
+  readonly totals?: Float64Array;
   /** True where `columns` was left out and the importer's proposal was used. */
   readonly proposed: boolean;
   /** Undefined when the table could not be read. */

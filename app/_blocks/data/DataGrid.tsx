@@ -10,7 +10,7 @@ import type { DataBlock, DataResult, RowId } from "@/cells";
 import { CellField } from "./CellField";
 import { GridHead } from "./GridHead";
 import { between, movedBy, type CellPlace } from "./gridKeys";
-import { rowTotals, type GridColumn, type GridModel } from "./gridModel";
+import type { GridColumn, GridModel } from "./gridModel";
 import { GridRow } from "./GridRow";
 import { othersPicks, rowDrawer } from "./gridRows";
 import type { ActiveCell } from "./useActiveCell";
@@ -47,7 +47,7 @@ export function DataGrid({ block, blockKey, result, view, model, cell, onOpen, o
   const id = useId();
   const form = view.settings.uncertainty;
   const table = result?.table;
-  const totals = useMemo(() => (model.typed ? null : rowTotals(table)), [model, table]);
+  const totals = model.typed ? null : (result?.totals ?? null);
   const draw = useMemo(() => rowDrawer(block, result, model, totals, form, view.classIndex), [block, result, model, totals, form, view]);
   const picked = useMemo(() => pickedIndices(table, view.picked), [table, view.picked]);
   const pickedSet = useMemo(() => new Set(picked), [picked]);

@@ -1,4 +1,4 @@
-import { units, type DataBlock, type QuantityColumn, type RowId, type Table } from "@/cells";
+import type { DataBlock, QuantityColumn, RowId, Table } from "@/cells";
 import type { UncertaintyForm } from "@/app/_ui/concise";
 import { writeCell, type WrittenCell } from "./cellWords";
 
@@ -100,30 +100,4 @@ export function quantityCell(
   if (row === undefined) return undefined;
   if (model.typed && (table.rowIds[index] !== row || (quantity.raw[index] ?? "") !== plainText(block, model, column, index))) return undefined;
   return writeCell(quantity, index, form, amended.get(`${row}/${column.name}`) ?? amended.get(`${row}/${quantity.header ?? ""}`), table.setAside[index] === 1);
-}
-
-const OXIDE = /^[A-Z][a-z]?\d?O\d?t?$/;
-
-/**
- * Sum of a row's oxides in wt%, for the column at the right; null where the table has too few of them for a sum to mean
- * anything. Iron counts once: a total before its parts.
- */
-export function rowTotals(table: Table | undefined): Float64Array | null {
-  if (table === undefined) return null;
-  const oxides = table.columns.filter(
-    (c): c is QuantityColumn => c.kind === "quantity" && c.species !== undefined && OXIDE.test(c.species) && c.unit.dimension === "mass fraction",
-  );
-  const has = (species: string) => oxides.some((c) => c.species === species);
-  if (!has("SiO2") || !has("MgO") || oxides.length < 5) return null;
-  const ironTotal = oxides.find((c) => c.species === "FeOt" || c.species === "Fe2O3t")?.species;
-  const counted = oxides.filter((c) => !/^Fe/.test(c.species ?? "") || ironTotal === undefined || c.species === ironTotal);
-  const totals = new Float64Array(table.rows);
-  for (const column of counted)
-    for (let i = 0; i < table.rows; i++) totals[i] = (totals[i] ?? 0) + (Number.isFinite(column.value[i] ?? NaN) ? (column.value[i] ?? 0) : 0);
-  const perUnit = units["wt%"].per;
-  for (let i = 0; i < table.rows; i++) {
-    const complete = counted.some((c) => c.species === "SiO2" && Number.isFinite(c.value[i] ?? NaN));
-    totals[i] = complete ? (totals[i] ?? 0) * perUnit : NaN;
-  }
-  return totals;
 }

@@ -8,16 +8,17 @@ import { Flags } from "./flags";
 import { screenMagnitudes } from "./magnitudes";
 import { screenReferenceMaterials } from "./referenceMaterials";
 import { screenSpecies } from "./species";
-import { screenTotals } from "./totals";
+import { oxideTotals, screenTotals } from "./totals";
 
 /** Everything that screening notices in the samples in use. It only flags: people set aside. */
-export function screen(block: DataBlock, table: Table, problems: Problems): readonly ScreeningFlag[] {
+export function screen(block: DataBlock, table: Table, problems: Problems): { readonly flags: readonly ScreeningFlag[]; readonly totals?: Float64Array } {
   const flags = new Flags(table, problems);
-  screenTotals(table, flags, problems, block.totals);
+  const totals = oxideTotals(table, problems);
+  if (totals !== undefined) screenTotals(table, totals, flags, block.totals);
   screenMagnitudes(table, flags);
   screenDuplicates(table, flags);
   screenClasses(table, flags);
   screenReferenceMaterials(table, flags);
   screenSpecies(table, flags);
-  return flags.list();
+  return { flags: flags.list(), ...(totals === undefined ? {} : { totals: totals.total }) };
 }

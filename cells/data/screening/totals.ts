@@ -11,6 +11,12 @@ const majors = ["SiO2", "Al2O3", "MgO", "CaO"] as const;
 const known: ReadonlySet<string> = new Set(oxides);
 const volatileOxides: ReadonlySet<string> = new Set(["H2O", "CO2", "SO2", "SO3"]);
 
+/** Totals of a table's rows, and the columns in them beside the iron. */
+export interface Totals {
+  readonly total: Float64Array;
+  readonly columns: readonly QuantityColumn[];
+}
+
 /** The columns whose sum is the total of a row. */
 interface Counted {
   /** Everything but the iron. */
@@ -22,27 +28,36 @@ interface Counted {
 }
 
 /**
- * Totals of oxides against a range, only for rows that have the major oxides and all their iron. Iron counts once: a total as
- * it is given (FeOt or Fe2O3t), else every part the table has, metal and troilite by their own mass. Where the table leaves
- * open whether its iron is all of it, no total is checked.
+ * Totals of oxides in wt%, row by row; NaN where a row lacks a major oxide or a part of its iron, undefined where the table has
+ * too few oxides for a total to mean anything. Iron counts once: a total as it is given (FeOt or Fe2O3t), else every part the
+ * table has, metal and troilite by their own mass. Where the table leaves open whether its iron is all of it, there is no total.
  */
-export function screenTotals(table: Table, flags: Flags, problems: Problems, range: { readonly from: number; readonly to: number } = COMMON): void {
+export function oxideTotals(table: Table, problems: Problems): Totals | undefined {
   const counted = countedColumns(table, problems);
-  if (counted === undefined) return;
+  if (counted === undefined) return undefined;
+  const total = new Float64Array(table.rows).fill(Number.NaN);
   for (let row = 0; row < table.rows; row++) {
     const given = (column: QuantityColumn): boolean => column.state[row] === State.present;
-    if (table.setAside[row] === 1 || !counted.needed.every(given)) continue;
+    if (!counted.needed.every(given)) continue;
     const iron = counted.iron.find((way) => way.every(given));
     if (iron === undefined) continue;
-    let total = 0;
-    for (const column of counted.columns) if (given(column)) total += 100 * (column.value[row] ?? Number.NaN);
-    for (const column of iron) total += 100 * (column.value[row] ?? Number.NaN);
-    if (total >= range.from && total <= range.to) continue;
-    const missing = counted.columns.filter((column) => !given(column)).map((column) => column.name);
+    let sum = 0;
+    for (const column of counted.columns) if (given(column)) sum += 100 * (column.value[row] ?? Number.NaN);
+    for (const column of iron) sum += 100 * (column.value[row] ?? Number.NaN);
+    total[row] = sum;
+  }
+  return { total, columns: counted.columns };
+}
+
+/** Flags totals outside a range, for rows in use. */
+export function screenTotals(table: Table, totals: Totals, flags: Flags, range: { readonly from: number; readonly to: number } = COMMON): void {
+  totals.total.forEach((total, row) => {
+    if (table.setAside[row] === 1 || Number.isNaN(total) || (total >= range.from && total <= range.to)) return;
+    const missing = totals.columns.filter((column) => column.state[row] !== State.present).map((column) => column.name);
     const without = missing.length === 0 ? "" : `, without ${missing.slice(0, 4).join(", ")}${missing.length > 4 ? " …" : ""}`;
     const side = total < range.from ? `below ${range.from.toFixed(1)}` : `above ${range.to.toFixed(1)}`;
     flags.flag("total", row, undefined, `total ${total.toFixed(1)} wt%, ${side}${without}`);
-  }
+  });
 }
 
 function countedColumns(table: Table, problems: Problems): Counted | undefined {

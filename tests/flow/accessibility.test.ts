@@ -3,7 +3,7 @@ import type { Browser, Page } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, test } from "vitest";
 import { demoPassword, demoPeople } from "@/db/seed/people";
 import { launchBrowser } from "../support/browser";
-import { open, signIn, type Person } from "./people";
+import { analyses, freeze, open, readingLink, signIn, type Person } from "./people";
 
 /** Serious and critical faults that axe finds, each as a short line. */
 async function faults(page: Page): Promise<string[]> {
@@ -102,4 +102,46 @@ describe("axe finds nothing serious or critical", () => {
       await page.getByRole("dialog").waitFor({ state: "detached" });
     });
   }
+
+  test("an import dialog", async () => {
+    const { page } = lead;
+    await page.goto(groupPath);
+    await page.getByRole("button", { name: "New page" }).click();
+    await page.waitForURL(/\/pages\//u);
+    await page.getByRole("region", { name: "The first block" }).getByRole("button", { name: /Data/u }).click();
+    await page.getByLabel("Choose a table to upload").setInputFiles(analyses);
+    await page.getByRole("dialog").getByText("28 rows, 8 columns").waitFor();
+    expect(await faults(page)).toEqual([]);
+  });
+
+  test("a snapshot, a reading link's door, and what is read behind it", async () => {
+    const { page } = lead;
+    await page.goto(pagePath);
+    await page
+      .getByText(/^Saved/u)
+      .first()
+      .waitFor();
+    const frozen = await freeze(lead, "To be looked at");
+    const snapshot = (await frozen.getByRole("link", { name: /^Open snapshot/u }).getAttribute("href")) ?? "";
+    const address = await readingLink(lead, frozen);
+    const guest = await open(browser, "Guest");
+    const found: Record<string, string[]> = {};
+    for (const [who, path] of [
+      [lead, snapshot],
+      [guest, address],
+    ] as const) {
+      await who.page.goto(path);
+      if (who === guest) {
+        found["door"] = await faults(guest.page);
+        await guest.page.getByRole("button", { name: "Read it" }).click();
+      }
+      for (const width of [1440, 390]) {
+        await who.page.setViewportSize({ width, height: 1000 });
+        await who.page.locator(".js-plotly-plot").first().waitFor();
+        found[`${who.name} ${width}`] = await faults(who.page);
+      }
+    }
+    expect(Object.values(found).flat(), JSON.stringify(found)).toEqual([]);
+    await guest.context.close();
+  });
 });

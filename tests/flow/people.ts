@@ -1,5 +1,5 @@
 import path from "node:path";
-import type { Browser, BrowserContext, Page } from "playwright-core";
+import type { Browser, BrowserContext, Locator, Page } from "playwright-core";
 import { inject } from "vitest";
 import { pointer, type Hand } from "./hands";
 
@@ -93,4 +93,29 @@ export async function shoot(test: string, people: readonly Person[]): Promise<vo
   const stem = test.replace(/\W+/gu, "-").slice(0, 60);
   for (const { page, name } of people)
     await page.screenshot({ path: path.resolve(import.meta.dirname, `../../.data/logs/${stem}-${name.replace(/\W+/gu, "-")}.png`) }).catch(() => undefined);
+}
+
+/** Freezes the page that is open, taking every value from memory knowingly; gives the dialog that says so. */
+export async function freeze({ page, hand }: Person, note: string): Promise<Locator> {
+  await hand.press(page.getByRole("navigation", { name: "This page" }).getByRole("button", { name: "Freeze" }));
+  const dialog = page.getByRole("dialog");
+  await hand.fill(dialog.getByLabel("What this snapshot is for"), note);
+  await hand.press(dialog.getByRole("button", { name: "Freeze", exact: true }));
+  const frozen = page.getByRole("dialog", { name: /Frozen as no\. \d/u });
+  const asked = dialog.getByRole("checkbox").first();
+  await Promise.race([frozen.waitFor({ timeout: 60_000 }), asked.waitFor({ timeout: 60_000 })]);
+  if (await asked.isVisible().catch(() => false)) {
+    for (const box of await dialog.getByRole("checkbox").all()) await hand.tick(box);
+    await hand.press(dialog.getByRole("button", { name: "Freeze", exact: true }));
+    await frozen.waitFor({ timeout: 60_000 });
+  }
+  return frozen;
+}
+
+/** Makes a reading link to what was just frozen; gives its address and leaves the dialog open. */
+export async function readingLink({ page, hand }: Person, frozen: Locator): Promise<string> {
+  await hand.press(frozen.getByRole("button", { name: "Hand out a reading link" }));
+  const links = page.getByRole("dialog", { name: "Reading links" });
+  await hand.press(links.getByRole("button", { name: "Make the link" }));
+  return links.getByLabel("Address of the reading link").inputValue();
 }

@@ -3,7 +3,7 @@ import { afterAll, afterEach, beforeAll, describe, expect, inject, test } from "
 import { RawSocket } from "../realtime/support/rawSocket";
 import { launchBrowser } from "../support/browser";
 import { keyboard } from "./hands";
-import { analyses, block, invite, join, open, saved, shoot, signUp, type Person } from "./people";
+import { analyses, block, freeze, invite, join, open, readingLink, saved, shoot, signUp, type Person } from "./people";
 
 /**
  * The whole job, by a lead who uses nothing but the keyboard and an analyst with a pointer, each in a browser of their own and
@@ -185,22 +185,8 @@ describe("a group takes a table of compositions to a frozen, shared result", () 
   test("the lead freezes the page and hands out a reading link, which opens signed out", async () => {
     const { page, hand } = lead;
     await saved(page);
-    await hand.press(page.getByRole("navigation", { name: "This page" }).getByRole("button", { name: "Freeze" }));
-    const dialog = page.getByRole("dialog");
-    await hand.fill(dialog.getByLabel("What this snapshot is for"), "As discussed by the two of us");
-    await hand.press(dialog.getByRole("button", { name: "Freeze", exact: true }));
-    const frozen = page.getByRole("dialog", { name: /Frozen as no\. 1/u });
-    const asked = dialog.getByRole("checkbox").first();
-    await Promise.race([frozen.waitFor({ timeout: 60_000 }), asked.waitFor({ timeout: 60_000 })]);
-    if (await asked.isVisible().catch(() => false)) {
-      for (const box of await dialog.getByRole("checkbox").all()) await hand.tick(box);
-      await hand.press(dialog.getByRole("button", { name: "Freeze", exact: true }));
-      await frozen.waitFor({ timeout: 60_000 });
-    }
-    await hand.press(frozen.getByRole("button", { name: "Hand out a reading link" }));
-    const links = page.getByRole("dialog", { name: "Reading links" });
-    await hand.press(links.getByRole("button", { name: "Make the link" }));
-    const address = await links.getByLabel("Address of the reading link").inputValue();
+    const frozen = await freeze(lead, "As discussed by the two of us");
+    const address = await readingLink(lead, frozen);
 
     const guest = await open(browser, "Guest");
     await guest.page.goto(address);
@@ -211,6 +197,7 @@ describe("a group takes a table of compositions to a frozen, shared result", () 
     expect(await guest.page.getByRole("button", { name: /Freeze|Add below|Add a block/u }).count()).toBe(0);
     expect(guest.complaints).toEqual([]);
 
+    const links = page.getByRole("dialog", { name: "Reading links" });
     await hand.press(links.getByRole("button", { name: /^Withdraw/u }).first());
     await links.getByText("withdrawn").waitFor();
     await guest.page.goto(address);

@@ -32,11 +32,18 @@ export function ensureBrowser() {
   return found;
 }
 
-/** A font configuration for the unpacked browser, which ends at the first letter where it finds no font at all. */
+/**
+ * A font configuration for the unpacked browser. It ends at the first letter where it finds no font at all, and refuses some of
+ * the fonts that a page brings where nothing says which of the machine's is sans and which is serif.
+ */
 function unpackedFonts() {
   const file = path.join(home(), "fonts.conf");
-  const folders = [path.join(unpackedRoot(), "usr/share/fonts"), "/usr/share/fonts"].map((folder) => `<dir>${folder}</dir>`).join("");
-  const cache = `<cachedir>${path.join(home(), "fontcache")}</cachedir>`;
-  writeFileSync(file, `<?xml version="1.0"?>\n<!DOCTYPE fontconfig SYSTEM "urn:fontconfig:fonts.dtd">\n<fontconfig>${folders}${cache}</fontconfig>\n`);
+  const rules = path.join(unpackedRoot(), "usr/share/fontconfig/conf.avail");
+  const lines = [
+    ...[path.join(unpackedRoot(), "usr/share/fonts"), "/usr/share/fonts"].map((folder) => `<dir>${folder}</dir>`),
+    ...["45-latin", "49-sansserif", "60-latin"].map((rule) => `<include ignore_missing="yes">${path.join(rules, `${rule}.conf`)}</include>`),
+    `<cachedir>${path.join(home(), "fontcache")}</cachedir>`,
+  ];
+  writeFileSync(file, `<?xml version="1.0"?>\n<!DOCTYPE fontconfig SYSTEM "urn:fontconfig:fonts.dtd">\n<fontconfig>\n  ${lines.join("\n  ")}\n</fontconfig>\n`);
   return file;
 }

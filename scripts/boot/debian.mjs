@@ -54,7 +54,7 @@ function missingDependencies(name) {
   const listed = spawnSync("apt-cache", ["depends", ...options, name], { encoding: "utf8", maxBuffer: 1 << 26 });
   const wanted = (listed.stdout ?? "")
     .split("\n")
-    .filter((line) => /^[a-z0-9]\S*$/.test(line) && (/^lib|fonts-|-common$/.test(line) || line.startsWith(`${name}-`)));
+    .filter((line) => /^[a-z0-9]\S*$/.test(line) && (/^lib|fonts-|-common$|^fontconfig-config$/.test(line) || line.startsWith(`${name}-`)));
   return [...new Set(wanted)].filter((candidate) => candidate !== name && spawnSync("dpkg", ["-s", candidate], { stdio: "ignore" }).status !== 0);
 }
 

@@ -1,3 +1,4 @@
+import type { BlockResult } from "@/cells";
 import type { PageView } from "./contract";
 import type { PageState, PageStore } from "./pageStore";
 import { sameEntries } from "./structure";
@@ -13,7 +14,8 @@ function lookedAt(state: PageState, key: string): readonly unknown[] {
   return [
     own?.block,
     state.results?.blocks.get(handle),
-    ...from.flatMap((f) => [f, state.results?.blocks.get(f)]),
+    // What a block reads of formulas stands in its own result; their lines change with every letter that is typed in them.
+    ...from.flatMap((f) => [f, ...changesShown(state.results?.blocks.get(f))]),
     // Others by name only: lists to choose from need handles, kinds and titles, not contents.
     state.blocks.map((b) => `${b.key} ${b.block.id} ${b.block.kind} ${b.block.name ?? ""}`).join("\n"),
     state.results === null,
@@ -28,6 +30,10 @@ function lookedAt(state: PageState, key: string): readonly unknown[] {
     state.classes,
     state.present.map((p) => (p.block === key || p.picked.length > 0 ? `${p.clientId} ${p.block === key} ${JSON.stringify(p.picked)}` : "")).join("\n"),
   ];
+}
+
+function changesShown(result: BlockResult | undefined): readonly unknown[] {
+  return result === undefined || result.kind === "formula" ? [result === undefined] : [result];
 }
 
 /** A view whose fields always tell the newest state; a new object only when what its block looks at changed. */

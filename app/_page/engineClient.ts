@@ -1,6 +1,7 @@
 import type { BlockResult, Column, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock } from "@/realtime/document";
 import type { FileProposal, FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
+import { keepSameLines } from "./sameLines";
 import { unpackTable } from "./tablePacking";
 
 /** As much of a Worker as is used; tests give their own. */
@@ -59,7 +60,7 @@ export function createEngineClient(
     const next = new Map<string, BlockResult>();
     for (const handle of message.order) {
       const fresh = changed.get(handle);
-      const result = fresh === undefined ? results.get(handle) : arrived(fresh);
+      const result = fresh === undefined ? results.get(handle) : keepSameLines(results.get(handle), arrived(fresh));
       if (result !== undefined) next.set(handle, result);
     }
     results = next;

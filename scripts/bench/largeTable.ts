@@ -59,21 +59,14 @@ function reference(page: Page): Promise<number> {
   });
 }
 
-/** Resolves when the plot's first coordinate is another number than before and drawn. */
-function plotChanges(page: Page, before: number | null): Promise<number> {
-  return page.evaluate(
-    (old) =>
-      new Promise<number>((resolve) => {
-        const look = (): void => {
-          const drawn = document.querySelector(".js-plotly-plot") as unknown as { data?: { x?: ArrayLike<number> }[] } | null;
-          const first = drawn?.data?.find((trace) => (trace.x?.length ?? 0) > 100)?.x?.[0];
-          if (first !== undefined && first !== old) requestAnimationFrame(() => resolve(first));
-          else requestAnimationFrame(look);
-        };
-        look();
-      }),
-    before,
-  );
+/** Waits, frame by frame, until the plot's first coordinate is another number than before, and gives it. */
+async function plotChanges(page: Page, before: number | null): Promise<number> {
+  const changed = await page.waitForFunction((old) => {
+    const drawn = document.querySelector(".js-plotly-plot") as unknown as { data?: { x?: ArrayLike<number> }[] } | null;
+    const first = drawn?.data?.find((trace) => (trace.x?.length ?? 0) > 100)?.x?.[0];
+    return first !== undefined && first !== old ? { first } : null;
+  }, before);
+  return (await changed.evaluate((found) => found?.first)) ?? Number.NaN;
 }
 
 const median = (values: readonly number[]): number => [...values].sort((a, b) => a - b)[Math.floor(values.length / 2)] ?? NaN;
@@ -113,7 +106,10 @@ try {
   const chosen = performance.now();
   await page.getByLabel("Choose a table to upload").setInputFiles(file);
   const save = page.getByRole("button", { name: "Save this table" });
-  await page.getByText(`${ROWS.toLocaleString("en")} rows`).waitFor();
+  await page
+    .getByRole("dialog")
+    .getByText(/rows, 20 columns/u)
+    .waitFor();
   const proposed = performance.now();
   await page.getByRole("dialog").getByLabel("Role of Class").selectOption({ label: "class" });
   const saving = performance.now();

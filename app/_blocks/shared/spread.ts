@@ -11,9 +11,18 @@ export function extent(values: ArrayLike<number>): readonly [number, number] | n
   return low <= high ? [low, high] : null;
 }
 
-/** Middle of the finite values; null where there is none. */
-export function median(values: ArrayLike<number>): number | null {
-  const finite = Float64Array.from(Array.from(values).filter((v) => Number.isFinite(v))).sort();
+const medians = new WeakMap<Float64Array, number | null>();
+
+/** Middle of the finite values, remembered for the array; null where there is none. */
+export function median(values: Float64Array): number | null {
+  const known = medians.get(values);
+  if (known !== undefined) return known;
+  const found = middleOf(values.filter((v) => Number.isFinite(v)).sort());
+  medians.set(values, found);
+  return found;
+}
+
+function middleOf(finite: Float64Array): number | null {
   if (finite.length === 0) return null;
   const middle = finite.length >> 1;
   const upper = finite[middle] ?? 0;

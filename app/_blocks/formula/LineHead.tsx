@@ -1,5 +1,6 @@
 "use client";
 
+import { useDeferredValue } from "react";
 import type { PageView } from "@/app/_page/contract";
 import { classNames } from "@/app/_ui/classNames";
 import { ClassMarker } from "@/app/_ui/ClassMarker";
@@ -25,6 +26,8 @@ export interface LineHeadProps {
 /** The small heading over a formula line: its result first, the reasoning stands under it. */
 export function LineHead({ block, line, result, table, picked, view, reachesMargin, isStale }: LineHeadProps) {
   const form = view.settings.uncertainty;
+  // A strip of many samples may come a moment after its words: typing goes first.
+  const drawn = useDeferredValue(result);
   const isSingle = result !== undefined && result.ok && !result.perSample && result.byClass === undefined;
   const range = result === undefined ? "" : rangeText(result, form);
   return (
@@ -48,8 +51,8 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
         </span>
         <span className="ml-auto text-margin text-second max-[719px]:ml-0 max-[719px]:basis-full">{result === undefined ? "" : countsText(result)}</span>
       </div>
-      {result?.ok && (result.perSample || result.byClass !== undefined) && (
-        <LineStrip block={block} line={result} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />
+      {result?.ok && drawn?.ok && (drawn.perSample || drawn.byClass !== undefined) && (
+        <LineStrip block={block} line={drawn} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />
       )}
       {result?.ok && result.byClass !== undefined && (
         <dl className="flex flex-wrap gap-x-6 text-margin">

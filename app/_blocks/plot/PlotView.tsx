@@ -21,6 +21,7 @@ import { PlotSettings } from "./PlotSettings";
 import { mostEllipses, plotInWords } from "./plotWords";
 import { PointsTable } from "./PointsTable";
 import type { PointRef } from "./traces";
+import { useSettled } from "./useSettled";
 
 export { stateInWords } from "./plotWords";
 
@@ -35,6 +36,9 @@ const drags: readonly { readonly mode: DragMode; readonly label: string }[] = [
   { mode: "pan", label: "Move" },
   { mode: "zoom", label: "Enlarge" },
 ];
+
+/** From so many samples on, a plot is drawn again only when what it shows has stood still for a moment. */
+const manySamples = 2000;
 
 /** A plot: the drawing, the list of what is drawn, the key of classes, and the same as a table. */
 export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
@@ -75,6 +79,9 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
     );
   }, [result, width, closeUp, block, view, palette, pickedIn, pickedByOthers, dragMode]);
 
+  const samples = result?.layers.reduce((most, layer) => (layer.what === "samples" ? Math.max(most, layer.points.x.length) : most), 0) ?? 0;
+  const drawn = useSettled(figure, samples > manySamples ? 200 : 0);
+
   const onPick = useCallback(
     (points: readonly PointRef[], adds: boolean) => {
       if (view.mode === "frozen") return;
@@ -87,7 +94,6 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
     [view],
   );
   const errors = (result?.problems ?? []).filter((p) => p.severity === "error");
-  const samples = result?.layers.reduce((most, layer) => (layer.what === "samples" ? Math.max(most, layer.points.x.length) : most), 0) ?? 0;
   const isNarrow = block.width === 4 || block.width === 6;
   return (
     <div className={isNarrow ? "min-w-0" : "grid min-w-0 grid-cols-[minmax(0,1fr)] gap-x-6 lg:grid-cols-[minmax(0,1fr)_232px]"}>
@@ -99,7 +105,7 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
           className="relative overflow-hidden"
           style={{ height: width === 0 ? 360 : plotHeight(width) }}
         >
-          {figure !== null && <PlotCanvas figure={figure} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
+          {drawn !== null && <PlotCanvas figure={drawn} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
           {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}
           {figure === null && <p className="p-3 text-second">{view.results === null ? "Calculating for the first time." : "Nothing to draw yet."}</p>}
         </div>

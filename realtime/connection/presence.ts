@@ -45,7 +45,8 @@ export class Presence {
   /** Tells one viewer about everybody. */
   tellAll(viewer: Visible): void {
     if (!this.viewers.has(viewer)) return;
-    const entries = [...this.seen].map(([clientId, { clock, state }]) => ({ clientId, clock, state }));
+    // A browser that lost its connection forgot these states and not their clocks: told at the old one, it would not listen.
+    const entries = [...this.seen].map(([clientId, seen]) => ({ clientId, clock: ++seen.clock, state: seen.state }));
     if (entries.length > 0) viewer.send(encodeAwareness(entries));
   }
 

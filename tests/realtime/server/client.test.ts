@@ -138,6 +138,7 @@ test("A4 people see each other, under the names the server knows", async () => {
   expect(seenBy(one)).toMatchObject([{ block: "b2", user: { id: l.analyst, name: "Analyst" } }]);
   expect(seenBy(two)).toMatchObject([{ block: "b1", user: { id: l.lead, name: "Lead" } }]);
   relay.cut();
+  await two.until(() => seenBy(two).length === 0);
   await two.until(() => two.save.kind === "saved" && seenBy(two).length === 1);
   two.awareness.setLocalStateField("block", "b3");
   await one.until(() => seenBy(one)[0]?.block === "b3");

@@ -1,4 +1,4 @@
-import type { Block, BlockKind } from "@/cells";
+import { parseLines, type Block, type BlockKind } from "@/cells";
 
 export interface FreshBlockPlace {
   /** Blocks of the page, in order. */
@@ -27,7 +27,21 @@ function nearestTable({ blocks, after }: FreshBlockPlace): string | undefined {
   return tables[tables.length - 1]?.id;
 }
 
-/** A new, empty block of a kind, that reads from what stands nearest. */
+/**
+ * What a new plot or trend of a table draws first: the two last results of the formula block nearest above that reads the table
+ * and gives at least two, then of the first one below. Empty where there is none, so that the fields ask for it.
+ */
+function firstAxes(table: string | undefined, { blocks, after }: FreshBlockPlace): { readonly x: string; readonly y: string } {
+  const above = after === null ? 0 : blocks.indexOf(after) + 1;
+  for (const block of [...blocks.slice(0, above).reverse(), ...blocks.slice(above)]) {
+    if (block.kind !== "formula" || block.data === undefined || block.data !== table) continue;
+    const [x, y] = parseLines(block.text).lines.slice(-2);
+    if (x !== undefined && y !== undefined) return { x: x.name, y: y.name };
+  }
+  return { x: "", y: "" };
+}
+
+/** A new block of a kind, as empty as may be, that reads from what stands nearest. */
 export function freshBlock(kind: BlockKind, place: FreshBlockPlace): Block {
   const id = freeHandle(kind, place.blocks);
   const table = nearestTable(place);
@@ -37,9 +51,9 @@ export function freshBlock(kind: BlockKind, place: FreshBlockPlace): Block {
     case "formula":
       return { id, kind, text: "", ...(table === undefined ? {} : { data: table }) };
     case "plot":
-      return { id, kind, plot: "scatter", drawn: table === undefined ? [] : [{ data: table, x: "", y: "", ellipses: "1 sigma" }] };
+      return { id, kind, plot: "scatter", drawn: table === undefined ? [] : [{ data: table, ...firstAxes(table, place), ellipses: "1 sigma" }] };
     case "trend":
-      return { id, kind, data: table ?? "d", x: "", y: "", method: "york", width: 6 };
+      return { id, kind, data: table ?? "d", ...firstAxes(table, place), method: "york", width: 6 };
     case "budget":
       return { id, kind, start: { body: "BSE" in place.bodies ? "BSE" : (Object.keys(place.bodies)[0] ?? "BSE_MS95") }, steps: [], report: [] };
     case "note":

@@ -48,7 +48,7 @@ export function bodySubstance(name: string, access: Access): Substance {
 export function findBody(name: string, access: Access): Body {
   const body = access.body(name);
   if (body === undefined) {
-    throw new CellError("no-such-body", `There is no body "${name}". Give the page an alias of that name, or write the id of a compilation such as CI_PLJ14.`);
+    throw new CellError("unknown-body", `There is no body "${name}". Give the page an alias of that name, or write the id of a compilation such as CI_PLJ14.`);
   }
   return body;
 }

@@ -30,7 +30,7 @@ const trendBlock: Block = blockSchema.parse({ kind: "trend", id: "t", data: "ch"
 const noTrend: Surroundings = { blocks: [trendBlock], results: { t: emptyResult(trendBlock, []) } };
 
 const refusals: readonly Refusal[] = [
-  { because: "unknown body", budget: { start: { body: "Moon" }, steps: [] }, code: "no-such-body", field: "start", says: /no body "Moon".*alias.*CI_PLJ14/u },
+  { because: "unknown body", budget: { start: { body: "Moon" }, steps: [] }, code: "unknown-body", field: "start", says: /no body "Moon".*alias.*CI_PLJ14/u },
   {
     because: "solar abundances have no mass",
     budget: { start: { body: "SUN_A09" }, steps: [] },

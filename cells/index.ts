@@ -57,6 +57,7 @@ export type {
 } from "./page/schema";
 
 // Tables
+export { referencesOf } from "./table/references";
 export type { ColumnCorrelation, QuantityColumn, RowOrigin, Table, TableColumn, TextColumn } from "./table/table";
 
 // Results and the engine
@@ -111,18 +112,26 @@ export {
   elementsByCondensation,
   elementsOfBody,
   isFromMemory,
+  isOwnBodyId,
   keyElement,
   listBodies,
   lookupBody,
   lookupPhase,
   massFactor,
+  MOST_OWN_BODIES,
+  ownBodyCodeSchema,
+  ownBodyFaults,
+  ownBodyId,
+  ownBodyIdSchema,
+  ownBodySchema,
   oxides,
   parseChemical,
   parseSpecies,
   resolveSpecies,
+  saysFromMemory,
   speciesOfBody,
 } from "./species";
-export type { Body, BodyLookup, BodySpecies, BodyValue, Chemical, IronForm, Resolution, Species } from "./species";
+export type { Body, BodyLookup, BodySpecies, BodyValue, Chemical, IronForm, OwnBody, OwnBodyFault, OwnValue, Resolution, Species } from "./species";
 
 // Expression language
 export {

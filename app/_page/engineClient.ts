@@ -1,6 +1,7 @@
 import type { BlockResult, Column, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock } from "@/realtime/document";
 import type { FileProposal, FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
+import { unpackPlot } from "./plotPacking";
 import { keepSameLines } from "./sameLines";
 import { unpackTable } from "./tablePacking";
 
@@ -35,7 +36,8 @@ export interface EngineClient {
   stop(): void;
 }
 
-function arrived(result: TravellingResult): BlockResult {
+function arrived(result: TravellingResult, results: ReadonlyMap<string, BlockResult>): BlockResult {
+  if (result.kind === "plot") return unpackPlot(result, results);
   if (result.kind !== "data") return result;
   const { table, ...rest } = result;
   return table === undefined ? rest : { ...rest, table: unpackTable(table) };
@@ -60,7 +62,7 @@ export function createEngineClient(
     const next = new Map<string, BlockResult>();
     for (const handle of message.order) {
       const fresh = changed.get(handle);
-      const result = fresh === undefined ? results.get(handle) : keepSameLines(results.get(handle), arrived(fresh));
+      const result = fresh === undefined ? results.get(handle) : keepSameLines(results.get(handle), arrived(fresh, next));
       if (result !== undefined) next.set(handle, result);
     }
     results = next;

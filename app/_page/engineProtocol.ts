@@ -1,4 +1,5 @@
-import type { Block, BlockResult, Column, DataResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
+import type { Block, BlockResult, Column, DataResult, PlotResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
+import type { PackedPlot } from "./plotPacking";
 import type { PackedTable } from "./tablePacking";
 
 /**
@@ -6,8 +7,8 @@ import type { PackedTable } from "./tablePacking";
  * as copies whose memory is handed over.
  */
 
-/** A block result on its way: a table's texts are packed, all else is as it is. */
-export type TravellingResult = Exclude<BlockResult, DataResult> | (Omit<DataResult, "table"> & { readonly table?: PackedTable });
+/** A block result on its way: a table's texts are packed, a plot's stay behind, all else is as it is. */
+export type TravellingResult = Exclude<BlockResult, DataResult | PlotResult> | PackedPlot | (Omit<DataResult, "table"> & { readonly table?: PackedTable });
 
 export interface PageMessage {
   readonly type: "page";

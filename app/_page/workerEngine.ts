@@ -1,5 +1,6 @@
 import { CellError, PAGE_FORMAT, type Block, type BlockResult, type Engine, type PageDocument, type PageResults, type Table } from "@/cells";
 import type { FileProposal, FromWorker, PageMessage, Preview, ToWorker, TravellingResult } from "./engineProtocol";
+import { packPlot } from "./plotPacking";
 import { packTable } from "./tablePacking";
 import { copyForTransfer } from "./transfer";
 
@@ -20,7 +21,12 @@ const SAMPLE_VALUES = 4;
 /** More problems than this are counted only. */
 const MOST_PROBLEMS = 500;
 
-function travelling(result: BlockResult): TravellingResult {
+function travelling(result: BlockResult, results: ReadonlyMap<string, BlockResult>): TravellingResult {
+  if (result.kind === "plot")
+    return packPlot(result, (handle) => {
+      const from = results.get(handle);
+      return from?.kind === "data" ? from.table : undefined;
+    });
   if (result.kind !== "data") return result;
   const { table, ...rest } = result;
   return table === undefined ? rest : { ...rest, table: packTable(table) };
@@ -145,7 +151,7 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
       order.push(handle);
       if (sent.get(handle) === result) continue;
       sent.set(handle, result);
-      changed.push([handle, travelling(result)]);
+      changed.push([handle, travelling(result, results.blocks)]);
     }
     for (const handle of sent.keys()) if (!results.blocks.has(handle) || loading.has(handle)) sent.delete(handle);
     const { copy, transfer } = copyForTransfer(changed);

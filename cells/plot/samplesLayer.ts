@@ -4,7 +4,8 @@ import { plotAxis } from "../page/references";
 import type { PlotLayer, PlotPoints } from "../page/results";
 import type { Drawn, PlotBlock } from "../page/schema";
 import { State } from "../quantity/state";
-import type { Table, TextColumn } from "../table/table";
+import { referencesOf } from "../table/references";
+import type { Table } from "../table/table";
 import { conversion, requireOnAxis, type PlotAxis } from "./axes";
 import type { Drawing, Placed } from "./drawing";
 
@@ -56,7 +57,6 @@ export function samplesLayer(
 }
 
 export function samplesOf(table: Table, drawn: SamplesDrawn, place: number, ellipses: number, points: PlotPoints): SamplesLayer {
-  const references = table.columns.find((column): column is TextColumn => column.kind === "text" && column.role === "reference");
   return {
     what: "samples",
     drawn: place,
@@ -66,7 +66,7 @@ export function samplesOf(table: Table, drawn: SamplesDrawn, place: number, elli
     classes: table.classes,
     samples: table.samples,
     rows: table.rowIds,
-    references: references?.text ?? new Array<string>(table.rows).fill(""),
+    references: referencesOf(table),
   };
 }
 

@@ -1,6 +1,6 @@
 "use client";
 
-import { useMemo, useState, type KeyboardEvent, type MouseEvent } from "react";
+import { useMemo, useRef, useState, type KeyboardEvent, type MouseEvent } from "react";
 import type { PageView } from "@/app/_page/contract";
 import { classLine } from "@/app/_ui/classStyle";
 import { classNames } from "@/app/_ui/classNames";
@@ -8,7 +8,7 @@ import { formatValue, speakValue, withUnit } from "@/app/_ui/concise";
 import { absent, stateSymbols } from "@/app/_blocks/shared/words";
 import { rowLabel } from "@/app/_blocks/shared/picks";
 import type { LineResult, Table } from "@/cells";
-import { buildStrip, nearestRow, rowsByValue, stripSlot, tickPath } from "./strip";
+import { buildStrip, countFinite, leastRow, nearestRow, placeInWalk, rowsByValue, stripSlot, tickPath } from "./strip";
 
 export interface LineStripProps {
   readonly block: string;
@@ -30,7 +30,14 @@ const percentOf = (slot: number): string => `${slot / 10}%`;
 export function LineStrip({ block, line, table, picked, view, reachesMargin }: LineStripProps) {
   const classesOf = line.byClass ?? table?.classes ?? noClasses;
   const strip = useMemo(() => buildStrip(line.value, classesOf), [line.value, classesOf]);
-  const walk = useMemo(() => rowsByValue(line.value), [line.value]);
+  const many = useMemo(() => countFinite(line.value), [line.value]);
+  const least = useMemo(() => leastRow(line.value), [line.value]);
+  // Ordering a hundred thousand rows takes its time: only who walks along the strip waits for it.
+  const walk = useRef<{ readonly values: Float64Array; readonly rows: readonly number[] } | null>(null);
+  const walked = (): readonly number[] => {
+    if (walk.current?.values !== line.value) walk.current = { values: line.value, rows: rowsByValue(line.value) };
+    return walk.current.rows;
+  };
   const [cursor, setCursor] = useState<number | null>(null);
   if (strip === null) return null;
 
@@ -48,8 +55,8 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
     return nearestRow(line.value, strip.from + ((event.clientX - box.left) / box.width) * (strip.to - strip.from));
   };
   const onKeyDown = (event: KeyboardEvent): void => {
-    const place = cursor === null ? -1 : walk.indexOf(cursor);
-    const last = walk.length - 1;
+    const place = cursor === null ? -1 : placeInWalk(line.value, cursor);
+    const last = many - 1;
     const next = {
       ArrowRight: place + 1,
       ArrowUp: place + 1,
@@ -60,7 +67,7 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
     }[event.key];
     if (next !== undefined) {
       event.preventDefault();
-      setCursor(walk[Math.min(Math.max(next, 0), last)] ?? null);
+      setCursor(walked()[Math.min(Math.max(next, 0), last)] ?? null);
     } else if (event.key === "Enter" && cursor !== null) {
       event.preventDefault();
       traceRow(cursor);
@@ -70,7 +77,7 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
     }
   };
 
-  const current = cursor ?? named ?? walk[0] ?? 0;
+  const current = cursor ?? named ?? Math.max(0, least);
   const gaps = line.byClass === undefined ? absent(line.states) : [];
   return (
     <div className="relative mt-2 mr-[88px] h-12">
@@ -79,8 +86,8 @@ export function LineStrip({ block, line, table, picked, view, reachesMargin }: L
         tabIndex={0}
         aria-label={`Values of ${line.name}, from the least to the greatest`}
         aria-valuemin={1}
-        aria-valuemax={walk.length}
-        aria-valuenow={Math.max(1, walk.indexOf(current) + 1)}
+        aria-valuemax={many}
+        aria-valuenow={current === least ? 1 : placeInWalk(line.value, current) + 1}
         aria-valuetext={`${label(current)}, ${speakValue(line.value[current] ?? NaN, line.sigma[current] ?? NaN)}`}
         aria-orientation="horizontal"
         className="absolute inset-x-0 top-3 h-5 cursor-crosshair"

@@ -1,3 +1,5 @@
+import { classCodes } from "@/app/_blocks/shared/classCodes";
+
 /** Ticks of one class on a strip, as places in thousandths of its width. */
 export interface StripClass {
   readonly class: string;
@@ -37,16 +39,24 @@ export function buildStrip(values: ArrayLike<number>, classes: readonly string[]
   const pad = high === low ? Math.abs(high) * 0.1 || 1 : (high - low) * 0.04;
   const from = low - pad;
   const to = high + pad;
-  const byClass = new Map<string, Set<number>>();
+  const { names, codes } = classCodes(classes);
+  // Rows past the end of `classes` have none; so have those whose class is "".
+  const none = names.indexOf("") < 0 ? names.length : names.indexOf("");
+  const stands = Array.from({ length: Math.max(names.length, none + 1) }, () => new Uint8Array(slotsAcross + 1));
   for (let i = 0; i < values.length; i++) {
     const v = values[i] ?? NaN;
     if (!Number.isFinite(v)) continue;
-    const name = classes[i] ?? "";
-    let slots = byClass.get(name);
-    if (slots === undefined) byClass.set(name, (slots = new Set()));
-    slots.add(stripSlot(v, from, to));
+    const slots = stands[i < codes.length ? (codes[i] ?? none) : none];
+    if (slots !== undefined) slots[stripSlot(v, from, to)] = 1;
   }
-  return { from, to, classes: Array.from(byClass, ([name, slots]) => ({ class: name, slots: Array.from(slots).sort((a, b) => a - b) })) };
+  const found = stands.map((slots, place) => ({ class: names[place] ?? "", slots: placesOf(slots) }));
+  return { from, to, classes: found.filter(({ slots }) => slots.length > 0) };
+}
+
+function placesOf(marks: Uint8Array): number[] {
+  const places: number[] = [];
+  for (let slot = 0; slot < marks.length; slot++) if (marks[slot] === 1) places.push(slot);
+  return places;
 }
 
 /** SVG path of ticks that stand on the base line of a strip 1000 × 20. */
@@ -66,6 +76,38 @@ export function nearestRow(values: ArrayLike<number>, value: number): number {
     }
   }
   return best;
+}
+
+/** How many rows have a value. */
+export function countFinite(values: ArrayLike<number>): number {
+  let count = 0;
+  for (let i = 0; i < values.length; i++) if (Number.isFinite(values[i] ?? NaN)) count++;
+  return count;
+}
+
+/** Row of the least value, the first of equal ones; −1 where there is none. */
+export function leastRow(values: ArrayLike<number>): number {
+  let best = -1;
+  let least = Infinity;
+  for (let i = 0; i < values.length; i++) {
+    const v = values[i] ?? NaN;
+    if (v < least && v > -Infinity) {
+      least = v;
+      best = i;
+    }
+  }
+  return best;
+}
+
+/** Place of a row in the walk of {@link rowsByValue}, counted without walking. */
+export function placeInWalk(values: ArrayLike<number>, row: number): number {
+  const value = values[row] ?? NaN;
+  let place = 0;
+  for (let i = 0; i < values.length; i++) {
+    const v = values[i] ?? NaN;
+    if (Number.isFinite(v) && (v < value || (v === value && i < row))) place++;
+  }
+  return place;
 }
 
 /** Rows that have a value, from the least to the greatest, ties in table order: the walk of the arrow keys. */

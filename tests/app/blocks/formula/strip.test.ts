@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { buildStrip, nearestRow, rowsByValue, stripSlot } from "@/app/_blocks/formula/strip";
+import { buildStrip, countFinite, leastRow, nearestRow, placeInWalk, rowsByValue, stripSlot } from "@/app/_blocks/formula/strip";
 import { seed } from "../../../support/seed";
 
 describe("tick strip", () => {
@@ -42,5 +42,17 @@ describe("tick strip", () => {
     expect(rowsByValue([3, NaN, 1, 3])).toEqual([2, 0, 3]);
     expect(nearestRow([3, NaN, 1], 1.4)).toBe(2);
     expect(nearestRow([NaN], 1)).toBe(-1);
+  });
+
+  it("counts a row's place in the walk without walking", () => {
+    fc.assert(
+      fc.property(fc.array(fc.oneof(fc.integer({ min: -9, max: 9 }), fc.constant(NaN)), { maxLength: 60 }), (values) => {
+        const walk = rowsByValue(values);
+        expect(countFinite(values)).toBe(walk.length);
+        expect(leastRow(values)).toBe(walk[0] ?? -1);
+        walk.forEach((row, place) => expect(placeInWalk(values, row)).toBe(place));
+      }),
+      { seed },
+    );
   });
 });

@@ -1,7 +1,7 @@
 import { CellError, type Problem } from "../errors";
 import type { BlockContext } from "../page/context";
 import type { BudgetBlock, TrendBlock } from "../page/schema";
-import { lookupBody, type Body } from "../species";
+import type { Body, BodyLookup } from "../species";
 import { expressionAim, trendAim, type Aim } from "./aim";
 import { measureOf, type Measure } from "./measure";
 import { planOf, type Plan } from "./plan";
@@ -76,11 +76,12 @@ export function readBudget(
   return { plan, aim, report: shownReport, bodiesUsed, problems };
 }
 
-function bodiesWith(context: BlockContext, swap: Swap): (name: string) => Body | undefined {
-  return (name) => {
+function bodiesWith({ bodies }: BlockContext, swap: Swap): BodyLookup {
+  const find = (name: string): Body | undefined => {
     const other = Object.hasOwn(swap, name) ? swap[name] : undefined;
-    return other === undefined ? context.bodies(name) : lookupBody(other);
+    return other === undefined ? bodies(name) : bodies.all.find(({ id }) => id === other);
   };
+  return Object.assign(find, { all: bodies.all });
 }
 
 function trendBlock(handle: string, context: BlockContext): TrendBlock {

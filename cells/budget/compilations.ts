@@ -2,7 +2,7 @@ import { CellError } from "../errors";
 import type { BlockContext } from "../page/context";
 import type { BudgetResult } from "../page/results";
 import type { BudgetBlock } from "../page/schema";
-import { listBodies, type Body } from "../species";
+import type { Body } from "../species";
 import { spreadOf, type LinearForm } from "./algebra";
 import { readBudget, type Budget } from "./budget";
 import type { Measure } from "./measure";
@@ -27,8 +27,8 @@ export function byCompilation(
   fixed: ReadonlySet<string>,
 ): BudgetResult["byCompilation"] {
   const names = Object.entries(budget.bodiesUsed).flatMap(([name, id]) => {
-    const body = listBodies().find((known) => known.id === id);
-    const alike = body === undefined || fixed.has(name) ? [] : compilationsLike(body);
+    const body = context.bodies.all.find((known) => known.id === id);
+    const alike = body === undefined || fixed.has(name) ? [] : compilationsLike(body, context.bodies.all);
     return alike.length > 1 ? [{ name, ids: alike.map((other) => other.id) }] : [];
   });
   if (names.length === 0) return [];
@@ -65,10 +65,13 @@ function answer(block: BudgetBlock, context: BlockContext, bodies: Readonly<Reco
   }
 }
 
-/** Compilations of the same kind of body: those of CI chondrites, those of the bulk silicate Earth … in the tables' order. */
-export function compilationsLike(body: Body): readonly Body[] {
+/**
+ * Compilations of the same kind of body: those of CI chondrites, those of the bulk silicate Earth … in the tables' order, the
+ * page's own behind them.
+ */
+export function compilationsLike(body: Body, all: readonly Body[]): readonly Body[] {
   if (body.kind === "phase") return [];
-  return listBodies().filter((other) => other.kind === body.kind && kindOf(other) === kindOf(body));
+  return all.filter((other) => other.kind === body.kind && kindOf(other) === kindOf(body));
 }
 
 /** "CI chondrite" and "CI chondrites, group mean" are compilations of one kind of body. */

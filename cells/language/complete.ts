@@ -1,4 +1,4 @@
-import { listBodies, parseSpecies, resolveSpecies } from "../species";
+import { isOwnBodyId, parseSpecies, resolveSpecies, type Body } from "../species";
 import type { Table } from "../table/table";
 import { functionNamed, functions } from "./functions";
 import type { Scope } from "./scope";
@@ -115,20 +115,21 @@ function functionOptions(): Completion[] {
 }
 
 function bodyOptions(scope: Scope): Completion[] {
-  return listBodies().map((body) => {
+  return scope.bodies.all.map((body) => {
     const alias = scope.bodies(body.id) === body ? body.id : "";
     return {
       label: body.id,
       insert: writeName(body.id),
       kind: "body",
       detail: body.what,
-      help: alias === "" ? "Hidden by an alias of the page." : bodyHelp(body.fromMemory, body.formula),
+      help: alias === "" ? "Hidden by an alias of the page." : bodyHelp(body),
     };
   });
 }
 
-function bodyHelp(fromMemory: boolean, formula: string | undefined): string {
+function bodyHelp({ id, fromMemory, formula, values }: Body): string {
   if (formula !== undefined) return `Stoichiometric, ${formula}.`;
+  if (isOwnBodyId(id)) return fromMemory ? "The group's own, written down from memory." : `The group's own, from ${values[0]?.source ?? "its source"}.`;
   return fromMemory ? "Some of its values were written down from memory." : "All its values were read in a copy of their source.";
 }
 

@@ -78,9 +78,15 @@ class Evaluation {
     private readonly sources: ReadonlyMap<string, Uint8Array>,
     private readonly memory: Memory,
   ) {
-    const bodies = bodyLookup(page.bodies ?? {});
+    const own = page.ownBodies ?? {};
+    const bodies = bodyLookup(page.bodies ?? {}, own);
     this.graph = pageGraph(page);
-    this.aliases = JSON.stringify(page.bodies ?? {});
+    this.aliases = JSON.stringify([
+      page.bodies ?? {},
+      Object.keys(own)
+        .sort()
+        .map((id) => [id, own[id]]),
+    ]);
     this.pairs = pairsOf(page, this.graph);
     const resultOf = (handle: string, whole: boolean): BlockResult | undefined => (whole ? undefined : this.fits.get(handle)) ?? this.results.get(handle);
     this.scopes = pageScopes(this.graph, bodies, resultOf);

@@ -59,6 +59,8 @@ function sentenceFor(issue: Issue, json: unknown): string {
       return `${where}: expected ${deepest.issue.values.map((value) => JSON.stringify(value)).join(" or ")}, got ${describe(valueAt(json, deepest.path))}.`;
     case "custom":
       return `${where}: ${deepest.issue.message}.`;
+    case "invalid_key":
+      return `${where}: ${deepest.issue.issues[0]?.message ?? "this cannot be a name here"}.`;
     case "invalid_union":
       if (deepest.issue.discriminator !== undefined) {
         return `${where} is ${describe(valueAt(json, deepest.path))}, which is not one this page format knows.`;

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { ownBodiesSchema } from "../species/ownBody";
 
 /**
  * The page document: a page as JSON. A live page, the body of an API call, a snapshot and an example are all this.
@@ -297,6 +298,8 @@ export type BlockKind = Block["kind"];
 export type DataBlock = z.infer<typeof dataBlockSchema>;
 export type FormulaBlock = z.infer<typeof formulaBlockSchema>;
 export type TrendBlock = z.infer<typeof trendBlockSchema>;
+  /** The group's own bodies that this page uses, whole, by id: a page leans on nothing outside of it but the built-in tables. */
+  ownBodies: ownBodiesSchema.optional(),
 export type BudgetBlock = z.infer<typeof budgetBlockSchema>;
 export type PlotBlock = z.infer<typeof plotBlockSchema>;
 export type NoteBlock = z.infer<typeof noteBlockSchema>;

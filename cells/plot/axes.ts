@@ -4,7 +4,6 @@ import { plotTable } from "../page/references";
 import type { AxisInfo } from "../page/results";
 import type { PlotBlock } from "../page/schema";
 import { units, type Unit } from "../quantity/unit";
-import { listBodies } from "../species";
 import type { Drawing, Placed } from "./drawing";
 import { valueOnBody } from "./valueOnBody";
 
@@ -56,7 +55,7 @@ function meaningOf(placed: Placed, drawing: Drawing): Pick<Evaluated, "unit" | "
   } catch (error) {
     const { block, context } = drawing;
     const drawn = block.drawn.flatMap((line) => ("bodies" in line ? line.bodies : []));
-    for (const body of [...drawn, ...context.aliases, ...listBodies().map(({ id }) => id)]) {
+    for (const body of [...drawn, ...context.aliases, ...context.bodies.all.map(({ id }) => id)]) {
       const found = valueOnBody(context.scope(undefined), placed.text, body, { block: block.id, field: placed.field });
       if (!(found instanceof CellError)) return found;
     }

@@ -1,6 +1,7 @@
 import { parseUnit, sigmaToCanonical, toCanonical } from "../quantity/unit";
 import type { Body, BodyLookup, BodyValue } from "./body";
 import { elementMassFraction, parseChemical } from "./chemical";
+import { bodyOfOwn, type OwnBody } from "./ownBody";
 import { bodyRows } from "./reference/bodies";
 import { chondriteGroupRows } from "./reference/chondriteGroups";
 import { phaseRows } from "./reference/phases";
@@ -17,6 +18,7 @@ const solarSources: readonly (readonly [begins: RegExp, id: string])[] = [
 ];
 
 const all: ReadonlyMap<string, Body> = build();
+const builtIn: readonly Body[] = [...all.values()];
 
 function build(): Map<string, Body> {
   const made = new Map<string, { what: string; kind: Body["kind"]; formula?: string; values: BodyValue[] }>();
@@ -96,9 +98,9 @@ export function isFromMemory(checked: string): boolean {
   return checked.startsWith("from memory");
 }
 
-/** Every reference composition, in the order of the reference tables; phases last. */
+/** Every built-in reference composition, in the order of the reference tables; phases last. A page's own are in its look-up. */
 export function listBodies(): readonly Body[] {
-  return [...all.values()];
+  return builtIn;
 }
 
 /** A body by its own id (`CI_PLJ14`, `SUN_A09`, `CV_WK88`, `forsterite`); undefined where there is none. */
@@ -115,13 +117,21 @@ export function lookupPhase(nameOrFormula: string): Body | undefined {
 }
 
 /**
- * Look-up with the aliases of a page: an alias first, then an id. An alias leads to an id, never to another alias.
+ * Look-up with the aliases of a page and its own bodies: an alias first, then an id. An alias leads to an id, never to another
+ * alias. A built-in id means the built-in body whatever a page carries.
  *
  * @param aliases alias → id of a compilation, as the page document has it
+ * @param own the page's own bodies by id; one with a fault is no body
  */
-export function bodyLookup(aliases: Readonly<Record<string, string>>): BodyLookup {
-  return (aliasOrId) => {
-    const id = Object.hasOwn(aliases, aliasOrId) ? aliases[aliasOrId] : undefined;
-    return all.get(id ?? aliasOrId);
+export function bodyLookup(aliases: Readonly<Record<string, string>>, own: Readonly<Record<string, OwnBody>> = {}): BodyLookup {
+  // In the order of their ids, whoever put them on the page first.
+  const mine = Object.keys(own)
+    .sort()
+    .flatMap((id) => (own[id] === undefined || all.has(id) ? [] : (bodyOfOwn(id, own[id]) ?? [])));
+  const byId = new Map(mine.map((body) => [body.id, body]));
+  const find = (aliasOrId: string): Body | undefined => {
+    const id = (Object.hasOwn(aliases, aliasOrId) ? aliases[aliasOrId] : undefined) ?? aliasOrId;
+    return all.get(id) ?? byId.get(id);
   };
+  return Object.assign(find, { all: mine.length === 0 ? builtIn : [...builtIn, ...mine] });
 }

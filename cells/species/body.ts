@@ -31,7 +31,11 @@ export interface Body {
 }
 
 /** Finds a body by an alias of the page first, then by its own id; undefined where there is none. */
-export type BodyLookup = (aliasOrId: string) => Body | undefined;
+export interface BodyLookup {
+  (aliasOrId: string): Body | undefined;
+  /** Every body that has an id here: the built-in ones in the order of their tables, then the page's own by id. */
+  readonly all: readonly Body[];
+}
 
 /** How one species of a body comes about: the value used and the conversion. */
 export interface BodySpecies {

@@ -7,6 +7,18 @@ export type { Chemical } from "./chemical";
 export { condensationTemperature, elementsByCondensation } from "./condensation";
 export { massFactor, oxides, parseSpecies } from "./forms";
 export type { IronForm, Species } from "./forms";
+export {
+  isOwnBodyId,
+  MOST_OWN_BODIES,
+  ownBodiesSchema,
+  ownBodyCodeSchema,
+  ownBodyFaults,
+  ownBodyId,
+  ownBodyIdSchema,
+  ownBodySchema,
+  saysFromMemory,
+} from "./ownBody";
+export type { OwnBody, OwnBodyFault, OwnValue } from "./ownBody";
 export type { Candidate, Refused, Resolution, ResolutionWarning, Resolved, Term } from "./resolution";
 export { resolveSpecies } from "./resolve";
 export { elementsOfBody, shortNumber, speciesOfBody } from "./speciesOfBody";

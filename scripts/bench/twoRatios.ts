@@ -93,30 +93,35 @@ export interface Ways {
   readonly machine: () => number;
   /** From the text of both formulas to their results, as a page asks for them. */
   readonly wholePage: () => number;
-  /** Sums of the five results, to compare with numpy's. */
-  readonly sums: readonly number[];
+  /** Value and σ of the one, value and σ of the other, covariance. */
+  readonly results: (way: "interpreter" | "machine" | "wholePage") => readonly Float64Array[];
 }
 
+/** Each way makes its results anew, as numpy does. */
 export function waysOf(table: Table, texts: readonly [string, string]): Ways {
   const program = programOf(table, texts);
-  const to = program.results.map(() => new Float64Array(table.rows));
-  const last = (): number => to[4]?.[table.rows - 1] ?? Number.NaN;
-  interpret(program, table.rows, to);
-  const sums = to.map((column) => column.reduce((sum, value) => sum + value, 0));
+  const made = (): Float64Array[] => program.results.map(() => new Float64Array(table.rows));
+  const interpreter = (): readonly Float64Array[] => {
+    const to = made();
+    interpret(program, table.rows, to);
+    return to;
+  };
+  const machine = (): readonly Float64Array[] => {
+    const to = made();
+    if (!runMachine(program, table.rows, to)) throw new Error("WebAssembly with vectors is not to be had here");
+    return to;
+  };
+  const wholePage = (): readonly Float64Array[] => {
+    const scope = scopeOf(table);
+    const [x, y] = texts.map((text) => evaluateExpression(scope, text, { block: "r" }));
+    return x === undefined || y === undefined ? [] : [x.value, x.sigma, y.value, y.sigma, x.covariance(y)];
+  };
+  const ways = { interpreter, machine, wholePage };
+  const last = (results: readonly Float64Array[]): number => results[4]?.[table.rows - 1] ?? Number.NaN;
   return {
-    sums,
-    interpreter: () => {
-      interpret(program, table.rows, to);
-      return last();
-    },
-    machine: () => {
-      if (!runMachine(program, table.rows, to)) throw new Error("WebAssembly with vectors is not to be had here");
-      return last();
-    },
-    wholePage: () => {
-      const scope = scopeOf(table);
-      const [x, y] = texts.map((text) => evaluateExpression(scope, text, { block: "r" }));
-      return x === undefined || y === undefined ? Number.NaN : (x.covariance(y)[table.rows - 1] ?? Number.NaN);
-    },
+    interpreter: () => last(interpreter()),
+    machine: () => last(machine()),
+    wholePage: () => last(wholePage()),
+    results: (way) => ways[way](),
   };
 }

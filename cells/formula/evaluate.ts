@@ -3,6 +3,7 @@ import { evaluateExpression, parseLines, type Evaluated, type FormulaLine, type 
 import type { BlockContext } from "../page/context";
 import type { FormulaResult, LineCorrelation, LineResult } from "../page/results";
 import type { FormulaBlock } from "../page/schema";
+import { simulateLines, withSimulation } from "../simulate";
 import { countStates } from "../quantity/state";
 
 export interface FormulaInputs {
@@ -14,6 +15,8 @@ export interface FormulaInputs {
 
 interface Calculated {
   readonly line: FormulaLine;
+  /** Among the block's lines. */
+  readonly place: number;
   readonly evaluated: Evaluated;
 }
 
@@ -31,13 +34,14 @@ export function evaluateFormula(block: FormulaBlock, context: BlockContext, inpu
   for (const line of lines) {
     const evaluated = scope === undefined || inputs.circular.has(line.name) ? undefined : calculate(block, line, scope, problems);
     if (evaluated !== undefined) {
-      calculated.push({ line, evaluated });
+      calculated.push({ line, place: results.length, evaluated });
       Object.assign(bodiesUsed, evaluated.bodiesUsed);
     }
     results.push(evaluated === undefined ? failedLine(line) : lineResult(line, evaluated));
   }
   problems.sort((a, b) => (a.span?.[0] ?? -1) - (b.span?.[0] ?? -1));
-  return { kind: "formula", lines: results, correlation: correlations(calculated, inputs.drawnTogether), problems, bodiesUsed };
+  const result: FormulaResult = { kind: "formula", lines: results, correlation: correlations(calculated, inputs.drawnTogether), problems, bodiesUsed };
+  return withSimulation(result, (base, wish) => simulateLines(base, calculated, wish));
 }
 
 function scopeOf(block: FormulaBlock, context: BlockContext, problems: Problem[]): Scope | undefined {

@@ -95,6 +95,11 @@ export class Evaluated implements EvaluatedMeaning {
     return this.#measured.commons.flatMap((part) => this.#expand(part));
   }
 
+  /** The calculation behind the numbers, for drawing its inputs anew. */
+  get measured(): Measurement {
+    return this.#measured;
+  }
+
   #expand(part: CommonPart): readonly { variable: CommonVariable; partial: Float64Array }[] {
     const partial = this.#measured.partial(part);
     if (part.sort === "common") return [{ variable: part.variable, partial }];

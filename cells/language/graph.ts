@@ -204,15 +204,19 @@ export class Graph {
    *
    * @param columnOf the column that a load's place in the other graph stands for
    * @param mark set before the keys of parameters, so that two graphs' parameters are never taken for one
+   * @param columnOfParam the column that takes a parameter's place, for parameters that are to vary; the parameter's own place is asked
    */
-  adopt(from: Graph, root: number, columnOf: (place: number) => Column, mark: string): number {
+  adopt(from: Graph, root: number, columnOf: (place: number) => Column, mark: string, columnOfParam?: (place: number) => Column | undefined): number {
     const own = new Map<number, number>();
     const place = (index: number): number => (index < 0 ? -1 : (own.get(index) ?? -1));
     for (const index of nodesUnder(from, [root])) {
       const { op, a, b, c, value } = from.at(index);
       if (op === "load") own.set(index, this.load(columnOf(value), from.loads[value]?.label ?? ""));
-      else if (op === "param") own.set(index, this.param(`${mark}${from.paramKey(value)}`, from.params[value] ?? Number.NaN));
-      else own.set(index, this.#make(op, place(a), place(b), place(c), value));
+      else if (op === "param") {
+        const varying = columnOfParam?.(value);
+        const key = `${mark}${from.paramKey(value)}`;
+        own.set(index, varying === undefined ? this.param(key, from.params[value] ?? Number.NaN) : this.load(varying, key));
+      } else own.set(index, this.#make(op, place(a), place(b), place(c), value));
     }
     return place(root);
   }

@@ -7,6 +7,7 @@ export type { CompositionValue, OnComposition } from "./composition";
 export { evaluateCondition, evaluateExpression } from "./evaluate";
 export { Evaluated } from "./evaluated";
 export type { EvaluatedMeaning } from "./evaluated";
+export type { Measurement, Model } from "./measure";
 export { functions } from "./functions";
 export type { FunctionInfo } from "./functions";
 export { parseLines } from "./lines";

@@ -1,7 +1,7 @@
-import type { ColumnVariable, CompiledValue } from "./compiled";
+import type { ColumnVariable, CompiledValue, Variable } from "./compiled";
 import type { Compiler } from "./compiler";
 import { tooNearNode } from "./edges";
-import { partialsOf } from "./derivatives";
+import { partialsOf, type Links } from "./derivatives";
 import type { Column, Graph, Load } from "./graph";
 import { run } from "./execute";
 import { MAX_DERIVED_NODES } from "./limits";
@@ -32,6 +32,19 @@ export interface Measurement {
   readonly graph: Graph;
   partialNode(variable: ColumnVariable | CommonPart): number;
   columnOf(place: number): Column;
+  readonly model: Model;
+}
+
+/** The calculation itself, for those who draw its inputs anew instead of differentiating it. */
+export interface Model {
+  /** Node of the value in its display unit, and that of its state. */
+  readonly node: number;
+  readonly state: number;
+  /** Every input of the whole compilation, by its node; what an aggregate leans on stands among the links. */
+  readonly variables: ReadonlyMap<number, Variable>;
+  readonly links: Links;
+  /** Where there is one entry for each class. */
+  readonly split: Split | null;
 }
 
 /**
@@ -48,9 +61,11 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   const length = extentOf(value.over);
   const columnOf = columnsOver(compiler, value.over);
   const results = new Results(compiler, length);
+  const state = graph.guard(value.state, node);
+  const model: Model = { node, state, variables, links: compiler.links, split: value.over?.split ?? null };
   const made = {
     value: results.numbers(node),
-    state: results.bytes(graph.guard(value.state, node)),
+    state: results.bytes(state),
     sigma: results.numbers(nodes.sigma),
     sigmaPerSample: results.numbers(nodes.sigmaPerSample),
     sigmaCommon: results.numbers(nodes.sigmaCommon),
@@ -80,7 +95,7 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   };
   const assumedCount = graph.constantOf(nodes.assumed) === 0 ? 0 : countFlags(made.assumed);
   const nearEdgeCount = graph.constantOf(near) === 0 ? 0 : countFlags(made.nearEdge);
-  return { length, ...made, assumedCount, nearEdgeCount, columns, commons, partial, graph, partialNode, columnOf };
+  return { length, ...made, assumedCount, nearEdgeCount, columns, commons, partial, graph, partialNode, columnOf, model };
 }
 
 /** Collects what is to be calculated in one run: a node asked for twice is calculated once, and zeros not at all. */

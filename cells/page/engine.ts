@@ -10,6 +10,7 @@ import { ENGINE_VERSION, type BlockResult, type PageResults, type TraceNode, typ
 import { pageScopes, type Scopes } from "./scopes";
 import type { Block, Column, DataBlock, PageDocument } from "./schema";
 import { proposeImport } from "./propose";
+import { simulatedNumber, simulationOf, type Simulation } from "../simulate";
 import { traceNumber } from "./trace";
 
 /** A column as import proposes it, and why. */
@@ -38,7 +39,11 @@ export interface Engine {
   /** Gives the bytes of a source, under its SHA-256 or, on the command line, its file name. */
   setSource(ref: string, bytes: Uint8Array): void;
   hasSource(ref: string): boolean;
-  evaluate(page: PageDocument): PageResults;
+  /**
+   * @param simulations "now" runs every simulation to its end; "later" gives results of first order at once, with the
+   *   simulations that are to be advanced by the caller, whose blocks have their full results from the next evaluation on
+   */
+  evaluate(page: PageDocument, simulations?: "now" | "later"): PageResults;
   /** Where a number of the last evaluation comes from; null where there is no such number now. */
   trace(request: TraceRequest): TraceNode | null;
   /** Reads a file and proposes what each of its columns is. Throws CellError where it is no table. */
@@ -53,9 +58,9 @@ export function createEngine(): Engine {
   return {
     setSource: (ref, bytes) => void sources.set(ref, bytes),
     hasSource: (ref) => sources.has(ref),
-    evaluate: (page) => {
+    evaluate: (page, simulations = "now") => {
       last = new Evaluation(page, sources, memory);
-      return last.run();
+      return last.run(simulations);
     },
     trace: (request) => last?.trace(request) ?? null,
     propose: proposeImport,
@@ -69,6 +74,7 @@ class Evaluation {
   private readonly context: BlockContext;
   private readonly results = new Map<string, BlockResult>();
   private readonly fits = new Map<string, BlockResult>();
+  /** What names of bodies mean on this page, as one text: everything but tables depends on it. */
   private readonly aliases: string;
   /** Pairs of expressions that are drawn or fitted against each other, by data block. */
   private readonly pairs: readonly Pair[];
@@ -103,7 +109,7 @@ class Evaluation {
     };
   }
 
-  run(): PageResults {
+  run(simulations: "now" | "later"): PageResults {
     this.memory.begin();
     for (const step of this.graph.steps) this.calculate(step);
     for (const block of this.page.blocks) {
@@ -113,18 +119,31 @@ class Evaluation {
     const bodies: Record<string, string> = {};
     for (const [alias, id] of Object.entries(this.page.bodies ?? {})) if (this.context.bodies(alias) !== undefined) bodies[alias] = id;
     const blocks = new Map<string, BlockResult>();
+    const putOff = new Map<string, Simulation>();
     for (const block of this.page.blocks) {
       const result = this.results.get(block.id);
       if (result === undefined) continue;
       Object.assign(bodies, result.bodiesUsed);
-      blocks.set(block.id, result);
+      const simulation = this.simulation(block);
+      const simulated = simulations === "now" ? simulation?.finish() : simulation?.result;
+      blocks.set(block.id, simulated ?? result);
+      if (simulation !== undefined && simulated === undefined) putOff.set(block.id, simulation);
     }
-    return { engine: ENGINE_VERSION, bodies, blocks, readsFrom: this.graph.readsFrom };
+    return { engine: ENGINE_VERSION, bodies, blocks, readsFrom: this.graph.readsFrom, ...(putOff.size === 0 ? {} : { simulations: putOff }) };
+  }
+
+  /** Other blocks read what first order says, so that nothing waits for a simulation and nothing depends on whether it ran. */
+  private simulation(block: Block): Simulation | undefined {
+    const result = this.results.get(block.id);
+    return result === undefined ? undefined : simulationOf(result, "simulate" in block ? block.simulate : undefined);
   }
 
   trace(request: TraceRequest): TraceNode | null {
     const block = this.graph.resolve(request.block);
-    return block === undefined ? null : traceNumber(block, request, this.context);
+    const node = block === undefined ? null : traceNumber(block, request, this.context);
+    if (block === undefined || node === null) return node;
+    const simulated = simulatedNumber(this.simulation(block)?.result, request);
+    return simulated === undefined ? node : { ...node, simulated };
   }
 
   private calculate(step: Step): void {
@@ -203,10 +222,9 @@ class Evaluation {
   }
 }
 
-/** A block's document as far as results can depend on it. */
+/** A block's document as far as results of first order can depend on it. */
 function documentText(block: Block): string {
-  const { width: _, ...rest } = block;
-  return JSON.stringify(rest);
+  return JSON.stringify({ ...block, width: undefined, simulate: undefined });
 }
 
 /** A result with what the page has to say of its block; where both say the same, the page does it in more words. */

@@ -1,4 +1,6 @@
 import type { Problem, Span } from "../errors";
+import type { SimulatedBudget, SimulatedLine, SimulatedNumber } from "../simulate/simulated";
+import type { Simulation } from "../simulate/simulation";
 import type { StateName } from "../quantity/state";
 import type { Table } from "../table/table";
 import type { Basis, BlockKind, RowId, TrendBlock } from "./schema";
@@ -15,6 +17,8 @@ export interface PageResults {
   readonly blocks: ReadonlyMap<string, BlockResult>;
   /** Handles that each block reads from, for the rail. */
   readonly readsFrom: ReadonlyMap<string, readonly string[]>;
+  /** By handle: simulations that were put off and are not done, whose blocks stand here with what first order says. */
+  readonly simulations?: ReadonlyMap<string, Simulation>;
 }
 
 export type BlockResult = DataResult | FormulaResult | TrendResult | BudgetResult | PlotResult | NoteResult;
@@ -100,6 +104,8 @@ export interface LineResult {
   readonly assumed: number;
   /** For lines that give one value a class: the classes, in order of appearance; arrays then have one entry a class. */
   readonly byClass?: readonly string[];
+  /** Quantiles of draws, where the block simulates or first order cannot be trusted. */
+  readonly simulated?: SimulatedLine;
 }
 
 export interface LineCorrelation {
@@ -214,6 +220,8 @@ export interface BudgetResult extends AnyResult {
   }[];
   /** Mass at start and end, kg per kg of the start, and the difference that must be zero where closure can hold. */
   readonly closure?: { readonly start: number; readonly end: number; readonly error: number };
+  /** Quantiles of draws, where the block simulates or first order cannot be trusted. */
+  readonly simulated?: SimulatedBudget;
 }
 
 /** How one thing is divided between what the budget ends with and what it left behind: fractions of both together, summing to 1. */
@@ -373,6 +381,8 @@ export interface TraceNode {
   readonly share: number | null;
   /** Sentences: conversion used, amendment and its reason, assumed σ and its reason, source and checked state of a body. */
   readonly notes: readonly string[];
+  /** Of the asked number: what draws of its inputs say of it. */
+  readonly simulated?: SimulatedNumber & { readonly draws: number; readonly seed: number };
   /** For cells: where it stands. */
   readonly cell?: {
     readonly block: string;

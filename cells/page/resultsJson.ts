@@ -1,5 +1,6 @@
 import type { Problem } from "../errors";
 import { State, stateName } from "../quantity/state";
+import type { SimulatedLine } from "../simulate/simulated";
 import {
   RESULTS_FORMAT,
   type BlockResult,
@@ -101,6 +102,22 @@ function lineJson(line: LineResult): object {
     sigma: present(line.sigma, line.state),
     ...(line.lowerBound.includes(1) ? { sigmaIs: Array.from(line.lowerBound, (is) => (is === 1 ? "lower bound" : null)) } : {}),
     state: Array.from(line.state, stateName),
+    ...(line.simulated === undefined ? {} : { simulated: simulatedJson(line.simulated) }),
+  };
+}
+
+/** Quantiles of every value; null for those that were not simulated. */
+function simulatedJson({ draws, seed, asked, median, from68, to68, from95, to95, withoutValue }: SimulatedLine): object {
+  return {
+    draws,
+    seed,
+    asked,
+    median: numbers(median),
+    from68: numbers(from68),
+    to68: numbers(to68),
+    from95: numbers(from95),
+    to95: numbers(to95),
+    ...(withoutValue.some((count) => count > 0) ? { withoutValue: Array.from(withoutValue) } : {}),
   };
 }
 
@@ -145,6 +162,7 @@ function budgetJson(result: BudgetResult): object {
     shares: result.shares,
     byCompilation: result.byCompilation,
     closure: result.closure ?? null,
+    ...(result.simulated === undefined ? {} : { simulated: result.simulated }),
     ...tail(result),
   };
 }

@@ -137,12 +137,16 @@ export const dataBlockSchema = z
     "a data block has exactly one of source, typed, stack, join",
   );
 
+/** Simulated propagation beside that to first order: draws of every input, and the seed that their chance follows from. */
+export const simulateSchema = z.strictObject({ draws: z.number().int().min(200).max(50_000), seed: z.number().int().min(0).max(999_999_999) });
+
 export const formulaBlockSchema = z.strictObject({
   kind: z.literal("formula"),
   ...commonFields,
   /** Handle of the data block whose columns the lines use; none for lines over bodies only. */
   data: handleSchema.optional(),
   text: z.string().max(100_000),
+  simulate: simulateSchema.optional(),
 });
 
 export const trendMethodSchema = z.enum(["york", "ordinary least squares", "reduced major axis", "theil-sen"]);
@@ -222,6 +226,7 @@ export const budgetBlockSchema = z.strictObject({
   steps: z.array(stepSchema).max(20),
   target: targetSchema.optional(),
   report: z.array(expressionSchema).max(50).optional(),
+  simulate: simulateSchema.optional(),
 });
 
 export const ellipsesSchema = z.enum(["none", "1 sigma", "2 sigma", "95 %"]);
@@ -289,6 +294,8 @@ export const pageSchema = z.strictObject({
   title: z.string().max(300),
   /** Aliases of the page for reference bodies: which compilation "CI" means here. */
   bodies: z.record(handleSchema, z.string().max(80)).optional(),
+  /** The group's own bodies that this page uses, whole, by id: a page leans on nothing outside of it but the built-in tables. */
+  ownBodies: ownBodiesSchema.optional(),
   blocks: z.array(blockSchema).max(300),
 });
 
@@ -298,8 +305,6 @@ export type BlockKind = Block["kind"];
 export type DataBlock = z.infer<typeof dataBlockSchema>;
 export type FormulaBlock = z.infer<typeof formulaBlockSchema>;
 export type TrendBlock = z.infer<typeof trendBlockSchema>;
-  /** The group's own bodies that this page uses, whole, by id: a page leans on nothing outside of it but the built-in tables. */
-  ownBodies: ownBodiesSchema.optional(),
 export type BudgetBlock = z.infer<typeof budgetBlockSchema>;
 export type PlotBlock = z.infer<typeof plotBlockSchema>;
 export type NoteBlock = z.infer<typeof noteBlockSchema>;

@@ -1,0 +1,11 @@
+/** Simulated propagation: inputs drawn by chance, seeded, beside propagation to first order (JCGM 101:2008). */
+export { commonNoise, byKey } from "./commonNoise";
+export { simulateLines } from "./lines";
+export type { CalculatedLine } from "./lines";
+export { simulatedNumber } from "./ofNumber";
+export { quantilesOf } from "./quantiles";
+export { capital, differs, range, wishWords } from "./sentences";
+export { MOST_UNASKED, USUAL_WISH } from "./simulated";
+export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulationWish } from "./simulated";
+export { Simulation, simulationOf, withSimulation } from "./simulation";
+export type { StartSimulation } from "./simulation";

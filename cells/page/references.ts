@@ -83,6 +83,7 @@ export function expressionsOf(block: Block): Expression[] {
       return [
         ...expression("x", plotAxis(block, "x"), main),
         ...expression("y", plotAxis(block, "y"), main),
+        ...expression("z", block.z, main),
         ...block.drawn.flatMap((drawn, i) =>
           "data" in drawn
             ? [

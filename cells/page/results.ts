@@ -264,11 +264,24 @@ export interface PlotResult extends AnyResult {
   readonly plot: "scatter" | "ternary" | "pattern" | "distribution";
   readonly x: AxisInfo;
   readonly y: AxisInfo;
+  /** Ternaries: what stands at the corners. x and y are the shares of the first two in the sum of the three. */
+  readonly corners?: { readonly x: string; readonly y: string; readonly z: string };
+  /** Patterns: what stands across, from the left. */
+  readonly columns?: readonly PatternColumn[];
   /** In the order of the block's list. */
   readonly layers: readonly PlotLayer[];
   /** How many samples are drawn and, by state, are not. */
   readonly drawn: number;
   readonly notDrawn: Partial<Record<StateName, number>>;
+}
+
+/** An element, or another value, of a pattern. */
+export interface PatternColumn {
+  readonly of: string;
+  /** Where it stands across: its 50 % condensation temperature in K, or its place in the order from 1. */
+  readonly x: number;
+  /** K; null where none is listed. */
+  readonly temperature: number | null;
 }
 
 /** What one line of a plot's list comes to: numbers ready to be drawn. `drawn` is its place in the block's list. */
@@ -278,11 +291,23 @@ export type PlotLayer =
       readonly drawn: number;
       readonly data: string;
       readonly ellipses: number;
+      /** Patterns have one layer for each value: which. */
+      readonly of?: string;
+      /** Patterns: whether a sample's points are joined by a line. */
+      readonly joined?: boolean;
       readonly points: PlotPoints;
       readonly classes: readonly string[];
       readonly samples: readonly string[];
       readonly rows: readonly RowId[];
+      /** Reference of each row; empty where the table has no column of references. */
       readonly references: readonly string[];
+    }
+  | {
+      /** Patterns: the means of classes, a line for each. */
+      readonly what: "means";
+      readonly drawn: number;
+      readonly data: string;
+      readonly classes: readonly ClassMeans[];
     }
   | {
       readonly what: "trend";
@@ -316,6 +341,9 @@ export type PlotLayer =
       readonly drawn: number;
       readonly bodies: readonly {
         readonly name: string;
+        /** Patterns have one mark for each value of a body: the body's name, and which value. */
+        readonly body?: string;
+        readonly of?: string;
         readonly compilation: string;
         readonly x: number;
         readonly y: number;
@@ -326,6 +354,13 @@ export type PlotLayer =
       }[];
     }
   | { readonly what: "annotation"; readonly drawn: number; readonly text: string; readonly x: number; readonly y: number };
+
+export interface ClassMeans {
+  readonly name: string;
+  /** Samples that have at least one of the values. */
+  readonly samples: number;
+  readonly points: readonly { readonly of: string; readonly x: number; readonly y: number; readonly sigmaY: number | null; readonly n: number }[];
+}
 
 export interface PlotPoints {
   /** All rows in table order; NaN where a row has no point. */

@@ -173,6 +173,8 @@ function plotJson(result: PlotResult): object {
     plot: result.plot,
     x: result.x,
     y: result.y,
+    ...(result.corners === undefined ? {} : { corners: result.corners }),
+    ...(result.columns === undefined ? {} : { columns: result.columns }),
     drawn: result.drawn,
     notDrawn: result.notDrawn,
     layers: result.layers.map(layerJson),
@@ -185,8 +187,14 @@ function layerJson(layer: PlotLayer): object {
   switch (layer.what) {
     case "samples": {
       const n = layer.points.x.reduce((count, x) => (Number.isFinite(x) ? count + 1 : count), 0);
-      return { what: layer.what, data: layer.data, n, ellipses: layer.ellipses };
+      return { what: layer.what, data: layer.data, ...(layer.of === undefined ? {} : { of: layer.of }), n, ellipses: layer.ellipses };
     }
+    case "means":
+      return {
+        what: layer.what,
+        data: layer.data,
+        classes: layer.classes.map(({ points, ...one }) => ({ ...one, points: points.map((point) => ({ ...point, y: orNull(point.y) })) })),
+      };
     case "trend":
       return { what: layer.what, trend: layer.trend, range: layer.range.map(orNull), usesScatter: layer.usesScatter };
     case "crossing":

@@ -239,6 +239,8 @@ export const drawnSchema = z.union([
     y: expressionSchema.optional(),
     z: expressionSchema.optional(),
     values: z.array(expressionSchema).max(60).optional(),
+    /** Patterns: a line through each sample's points (the default), through the means of each class, or none. */
+    join: z.enum(["sample", "class", "none"]).optional(),
     where: expressionSchema.optional(),
     ellipses: ellipsesSchema.optional(),
     ...hidden,
@@ -262,12 +264,14 @@ export const plotBlockSchema = z.strictObject({
   /** What the axes show, for bodies and budgets that have no expression of their own; the first data line's, where left out. */
   x: expressionSchema.optional(),
   y: expressionSchema.optional(),
+  /** Ternaries: the third corner. */
+  z: expressionSchema.optional(),
   drawn: z.array(drawnSchema).max(40),
   xAxis: axisSchema.optional(),
   yAxis: axisSchema.optional(),
-  /** Pattern plots: the body that normalises, and the order of elements. */
+  /** Pattern plots: the body that normalises, and where elements stand: at their temperature, evenly in its order, or as typed. */
   normalise: z.string().max(80).optional(),
-  order: z.union([z.literal("condensation temperature"), z.array(z.string().max(3)).max(100)]).optional(),
+  order: z.union([z.enum(["condensation temperature", "condensation order"]), z.array(z.string().max(3)).max(100)]).optional(),
 });
 
 export const noteBlockSchema = z.strictObject({

@@ -3,16 +3,18 @@ import { pathOn } from "../budget";
 import type { BlockContext } from "../page/context";
 import type { PlotLayer, PlotResult } from "../page/results";
 import type { Drawn, PlotBlock } from "../page/schema";
+import { State } from "../quantity/state";
 import { parseUnit } from "../quantity/unit";
 import { axisOf, axisCandidates, conversion, nameOnly, type Conversion, type PlotAxis } from "./axes";
 import { bodiesLayer } from "./bodiesLayer";
 import { radiusOf } from "./contour";
 import { countDrawn } from "./countDrawn";
-import { Drawing } from "./drawing";
+import { Drawing, type Placed } from "./drawing";
 import { extentOf } from "./extent";
 import { evaluatePattern } from "./pattern";
-import { samplesLayer, samplesPlaced } from "./samplesLayer";
-import { ternaryBlock } from "./ternary";
+import { at, samplesLayer, samplesPlaced } from "./samplesLayer";
+import { warnOutOfLog, warnRangeOfLog } from "./logAxis";
+import { cornersOf, keepInside, ternaryBlock } from "./ternary";
 import { crossingLayer, trendLayer, type DrawnPair } from "./trendLayers";
 
 /**
@@ -20,8 +22,8 @@ import { crossingLayer, trendLayer, type DrawnPair } from "./trendLayers";
  *
  * Samples stand with their σ and the correlation of their errors; a trend with its 95 % band; a crossing with the ellipse that
  * holds 95 %; bodies where the axes' expressions put them. What cannot stand on the axes is an error of its own line, and the
- * others are drawn. A ternary's x and y are the shares of its first two corners in the sum of the three. Hidden lines are
- * not calculated.
+ * others are drawn. A ternary's x and y are the shares of its first two corners in the sum of the three; bodies and paths
+ * stand in it too. Hidden lines are not calculated.
  */
 export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResult {
   const drawing = new Drawing(block, context);
@@ -29,11 +31,14 @@ export function evaluatePlot(block: PlotBlock, context: BlockContext): PlotResul
   const shown = block.plot === "ternary" ? ternaryBlock(block, drawing) : block;
   const axes = { x: readAxis(shown, "x", drawing), y: block.plot === "distribution" ? undefined : readAxis(shown, "y", drawing) };
   const layers = drawLayers(shown, drawing, axes);
+  warnRangeOfLog(drawing);
+  const corners = block.plot === "ternary" ? cornersOf(block) : undefined;
   return {
     kind: "plot",
     plot: block.plot,
     x: axes.x?.info ?? nameOnly(axisCandidates(shown, "x", drawing)[0]?.text),
     y: axes.y?.info ?? nameOnly(block.plot === "distribution" ? undefined : axisCandidates(shown, "y", drawing)[0]?.text),
+    ...(corners === undefined ? {} : { corners }),
     layers,
     ...countDrawn(drawing, layers),
     problems: drawing.problems,
@@ -104,6 +109,8 @@ function layerOf(drawing: Drawing, block: PlotBlock, drawn: Drawn, place: number
     if (x === undefined || (needsY && y === undefined)) return undefined;
     const radius = block.plot === "scatter" ? radiusOf(drawn.ellipses ?? "1 sigma") : block.plot === "ternary" ? radiusOf(drawn.ellipses ?? "none") : 0;
     const layer = samplesLayer(drawing, drawn, place, { x, y: y ?? null }, expressions, radius);
+    if (block.plot === "ternary") keepInside(drawing, layer, place);
+    else warnOutOfLog(drawing, `drawn[${place}]`, drawn.data, notAboveZero(drawing, block, place, expressions), "sample");
     if (expressions.y !== null) pairs.push({ x: expressions.x, y: expressions.y });
     return layer;
   }
@@ -116,8 +123,24 @@ function layerOf(drawing: Drawing, block: PlotBlock, drawn: Drawn, place: number
     const both = scatterAxes(block, drawing, drawn.crossing, "crossing", { x, y });
     return both === undefined ? undefined : crossingLayer(drawing, drawn, place, both, pairs);
   }
-  const both = scatterAxes(block, drawing, drawn.budget, "path", { x, y });
+  const both = block.plot === "ternary" ? bothOf({ x, y }) : scatterAxes(block, drawing, drawn.budget, "path", { x, y });
   return both === undefined ? undefined : pathLayer(drawing, drawn.budget, place, both);
+}
+
+/** How many samples have a value that a logarithmic axis has no place for. */
+function notAboveZero(drawing: Drawing, block: PlotBlock, place: number, { x, y }: { readonly x: Placed; readonly y: Placed | null }): number {
+  const logs = [...(block.xAxis?.scale === "log" ? [drawing.evaluate(x)] : []), ...(block.yAxis?.scale === "log" && y !== null ? [drawing.evaluate(y)] : [])];
+  if (logs.length === 0) return 0;
+  const chosen = drawing.chosen.get(place);
+  const rows = Math.max(...logs.map(({ value }) => value.length));
+  let count = 0;
+  for (let row = 0; row < rows; row++)
+    if ((chosen === undefined || chosen[row] === 1) && logs.some(({ state, value }) => at(state, row) === State.present && at(value, row) <= 0)) count++;
+  return count;
+}
+
+function bothOf({ x, y }: Axes): { x: PlotAxis; y: PlotAxis } | undefined {
+  return x === undefined || y === undefined ? undefined : { x, y };
 }
 
 /** Both axes, on a plot that has lines. @throws CellError on one that has none */
@@ -125,9 +148,9 @@ function scatterAxes(block: PlotBlock, drawing: Drawing, handle: string, what: s
   if (block.plot !== "scatter")
     throw new CellError(
       "not-drawn-here",
-      `The ${what} of ${handle} can be drawn on a scatter plot only. Take it off this ${block.plot}, or make the plot a scatter plot.`,
+      `The ${what} of ${handle} can be drawn on a scatter plot only${what === "path" ? ", or on a ternary" : ""}. Take it off this ${block.plot}, or make the plot a scatter plot.`,
     );
-  return x === undefined || y === undefined ? undefined : { x, y };
+  return bothOf({ x, y });
 }
 
 function pathLayer(drawing: Drawing, handle: string, place: number, { x, y }: { readonly x: PlotAxis; readonly y: PlotAxis }): PlotLayer | undefined {

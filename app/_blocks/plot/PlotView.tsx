@@ -11,12 +11,11 @@ import { usePalette } from "@/app/_blocks/shared/usePalette";
 import type { PlotBlock } from "@/cells";
 import { ClassKey } from "./ClassKey";
 import { DrawnList } from "./DrawnList";
-import { layOutDistribution } from "./distribution";
 import { buildFigure, type DragMode } from "./figure";
-import { plotFrame, plotHeight, wholeView, type ViewRange } from "./frame";
+import type { ViewRange } from "./frame";
+import { heightFor, layOutPlot } from "./layOutPlot";
 import type { Hovered } from "./PlotCanvas";
 import { PlotHover } from "./PlotHover";
-import { roughWidth } from "./placeLabels";
 import { PlotSettings } from "./PlotSettings";
 import { mostEllipses, plotInWords } from "./plotWords";
 import { PointsTable } from "./PointsTable";
@@ -62,20 +61,17 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
   const width = Math.floor(size.width);
   const figure = useMemo(() => {
     if (result === undefined || width === 0) return null;
-    const spread = result.plot === "distribution" ? layOutDistribution(result, (name) => view.classIndex(name)) : null;
-    const whole = wholeView(result, block.xAxis, block.yAxis);
-    const range = closeUp ?? (spread === null ? whole : { x: whole.x, y: [-0.6, spread.rows.length - 0.4] as const });
-    const left = spread === null ? undefined : Math.min(width / 3, 24 + Math.max(...spread.rows.map((name) => roughWidth(name, 11)), 24));
-    const frame = plotFrame(width, plotHeight(width), range, block.xAxis?.scale === "log", spread === null && block.yAxis?.scale === "log", left);
+    const classIndex = (name: string): number => view.classIndex(name);
+    const laid = layOutPlot(block, result, { width, height: heightFor(result.plot, width) }, closeUp, classIndex);
     const nameOf = (handle: string): string => view.blocks.find((b) => b.block.id === handle)?.block.name ?? handle;
     return buildFigure(
       block,
-      spread?.result ?? result,
+      laid.result,
       nameOf,
-      { palette, frame, projector: view.settings.projector, classIndex: (name) => view.classIndex(name), pickedIn, pickedByOthers },
+      { palette, frame: laid.frame, projector: view.settings.projector, classIndex, pickedIn, pickedByOthers },
       view.results,
       dragMode,
-      spread?.rows ?? null,
+      laid.rows,
     );
   }, [result, width, closeUp, block, view, palette, pickedIn, pickedByOthers, dragMode]);
 
@@ -103,7 +99,7 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
           role="img"
           aria-label={result === undefined ? "Plot, not calculated yet" : plotInWords(result)}
           className="relative overflow-hidden"
-          style={{ height: width === 0 ? 360 : plotHeight(width) }}
+          style={{ height: width === 0 ? 360 : heightFor(block.plot, width) }}
         >
           {drawn !== null && <PlotCanvas figure={drawn} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
           {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}

@@ -2,9 +2,13 @@ import type { Annotations } from "plotly.js";
 import { formatValue } from "@/app/_ui/concise";
 import { rowLabel } from "@/app/_blocks/shared/picks";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
-import type { PageResults, PlotLayer } from "@/cells";
+import type { PageResults, PlotLayer, PlotResult } from "@/cells";
+import { chemicalMarkup, plainText } from "./chemicalMarkup";
 import { missesOf } from "./misses";
-import { placeLabels, roughWidth, type LabelRequest, type Obstacle } from "./placeLabels";
+import { linesOfBodies } from "./patternTraces";
+import { patternWords } from "./patternWords";
+import { overlap, placeLabels, roughWidth, type Box, type LabelRequest, type Obstacle } from "./placeLabels";
+import { ternaryWords } from "./ternaryTraces";
 import { normalAt, washOf, type Drawing } from "./traces";
 
 type Note = Partial<Annotations>;
@@ -18,11 +22,6 @@ interface Label {
   readonly gap: number;
 }
 
-/** Characters that Plotly's small markup would read as its own. */
-function plainText(text: string): string {
-  return text.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
-}
-
 /** Below this width the long labels would cover what they name; the list beside the plot says the rest. */
 const narrow = 480;
 
@@ -30,6 +29,12 @@ function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null
   const { palette } = drawing;
   switch (layer.what) {
     case "bodies":
+      // A body that runs through a pattern is named once, where its line ends at the right.
+      if (layer.bodies.some(({ of }) => of !== undefined))
+        return linesOfBodies(layer).flatMap(([name, points]): Label[] => {
+          const last = points.reduce((best, p) => (drawing.frame.px(p.x) > drawing.frame.px(best.x) ? p : best));
+          return [{ x: last.x, y: last.y, gap: 10, lines: [{ text: name, size: 12, color: palette.ink, weight: 600 }] }];
+        });
       return layer.bodies.map((b) => ({ x: b.x, y: b.y, gap: 10, lines: [{ text: b.name, size: 12, color: palette.ink, weight: 600 }] }));
     case "crossing": {
       const crossing = resultOf(results, layer.trends[0], "trend")?.crossing;
@@ -66,6 +71,7 @@ function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null
         ? []
         : [{ x: layer.end.x, y: layer.end.y, gap: 8, lines: [{ text: layer.end.label, size: 12, color: palette.indigo, weight: 400 }] }];
     case "samples": {
+      if (layer.of !== undefined) return [];
       const rows = drawing.pickedIn(layer.data).filter((i) => Number.isFinite(layer.points.x[i] ?? NaN));
       // Names of a few picked samples help; names of many only cover them.
       if (rows.length === 0 || rows.length > 4) return [];
@@ -78,7 +84,7 @@ function labelOf(layer: PlotLayer, drawing: Drawing, results: PageResults | null
       }));
     }
     case "annotation":
-      return [{ x: layer.x, y: layer.y, gap: 4, lines: [{ text: layer.text, size: 12, color: palette.ink, weight: 400 }] }];
+    case "means":
     case "trend":
       return [];
   }
@@ -136,11 +142,14 @@ function trendName(layer: Extract<PlotLayer, { what: "trend" }>, name: string, d
   const { frame, palette } = drawing;
   const [from, to] = layer.range;
   const { x, y } = layer.line;
-  const last = x.length - 1;
-  if (last < 1) return null;
+  if (x.length < 2) return null;
   const at = (place: number): number => {
-    const slope = ((y[last] ?? 0) - (y[0] ?? 0)) / ((x[last] ?? 1) - (x[0] ?? 0));
-    return (y[0] ?? 0) + slope * (place - (x[0] ?? 0));
+    const k = Math.max(
+      1,
+      x.findIndex((end) => end >= place),
+    );
+    const slope = ((y[k] ?? 0) - (y[k - 1] ?? 0)) / ((x[k] ?? 1) - (x[k - 1] ?? 0));
+    return (y[k - 1] ?? 0) + slope * (place - (x[k - 1] ?? 0));
   };
   const x0 = frame.px(from);
   const y0 = frame.py(at(from));
@@ -173,28 +182,39 @@ function trendName(layer: Extract<PlotLayer, { what: "trend" }>, name: string, d
 
 /** All that is written on a drawing: axes in words, labels beside their points, trends along their lines, numbers at ticks. */
 export function buildAnnotations(
-  layers: readonly PlotLayer[],
+  result: PlotResult,
   axes: { readonly x: string; readonly y: string },
   nameOf: (handle: string) => string,
   drawing: Drawing,
   results: PageResults | null,
 ): Note[] {
   const { frame, palette } = drawing;
-  const notes: Note[] = [
-    {
-      ...inData,
-      xref: "paper",
-      yref: "paper",
-      x: 1,
-      y: 0,
-      xanchor: "right",
-      yanchor: "top",
-      yshift: -22,
-      text: plainText(axes.x),
-      font: { family: sans, size: 12, color: palette.ink, weight: 500 } as Note["font"] & { weight: number },
-    },
-    ...(axes.y === "" ? [] : [textAt(frame.margin.l + 8, frame.margin.t + 6, axes.y, 12, palette.ink, 500, drawing)]),
-  ];
+  const { layers } = result;
+  const write = (px: number, py: number, text: string, size: number, color: string, weight: number, extra: Note): Note =>
+    textAt(px, py, "", size, color, weight, drawing, { text, ...extra });
+  const title = { family: sans, size: 12, color: palette.ink, weight: 500 } as Note["font"] & { weight: number };
+  const notes: Note[] =
+    result.plot === "ternary"
+      ? ternaryWords(result, drawing, write)
+      : [
+          {
+            ...inData,
+            xref: "paper",
+            yref: "paper",
+            x: 1,
+            y: 0,
+            xanchor: "right",
+            yanchor: "top",
+            yshift: result.plot === "pattern" ? -58 : -22,
+            text: chemicalMarkup(axes.x),
+            font: title,
+          },
+          ...(result.plot === "pattern"
+            ? [...patternWords(result, drawing, write), write(frame.margin.l, 2, chemicalMarkup(axes.y), 12, palette.ink, 500, {})]
+            : axes.y === ""
+              ? []
+              : [write(frame.margin.l + 8, frame.margin.t + 6, chemicalMarkup(axes.y), 12, palette.ink, 500, {})]),
+        ];
   const inView = (l: Label): boolean =>
     frame.px(l.x) >= frame.margin.l &&
     frame.px(l.x) <= frame.width - frame.margin.r &&
@@ -215,40 +235,57 @@ export function buildAnnotations(
     height: l.lines.length * 16,
   }));
   const axisBox: Obstacle[] = Array.from({ length: 10 }, (_, i) => ({ x: frame.margin.l + 8 + i * roughWidth(axes.y) * 0.1, y: frame.margin.t + 14 }));
-  const places = placeLabels(requests, [...obstaclesOf(layers, drawing), ...axisBox], {
-    left: frame.margin.l + 4,
-    top: frame.margin.t + 4,
-    right: frame.width - frame.margin.r - 4,
-    bottom: frame.height - frame.margin.b - 4,
-  });
+  const inside: Box = { left: frame.margin.l + 4, top: frame.margin.t + 4, right: frame.width - frame.margin.r - 4, bottom: frame.height - frame.margin.b - 4 };
+  const placed = layers.flatMap((layer) => (layer.what === "annotation" ? [{ layer, box: annotationBox(layer, frame) }] : []));
+  const places = placeLabels(
+    requests,
+    [...obstaclesOf(layers, drawing), ...axisBox],
+    inside,
+    placed.map(({ box }) => box),
+  );
+  const taken: Box[] = placed.map(({ box }) => box);
+  for (const { layer, box } of placed) if (overlap(box, inside) > 0) notes.push(textAt(box.left, box.top, layer.text, 12, palette.ink, 400, drawing));
   labels.forEach((label, i) => {
     const place = places[i];
-    if (place === undefined) return;
+    const request = requests[i];
+    if (place === undefined || request === undefined) return;
+    taken.push({ ...place, right: place.left + request.width, bottom: place.top + request.height });
     label.lines.forEach((line, n) => notes.push(textAt(place.left, place.top + n * 16, line.text, line.size, line.color, line.weight, drawing)));
   });
   for (const layer of layers) {
     if (layer.what === "trend") {
       const note = trendName(layer, nameOf(layer.trend), drawing);
       if (note !== null) notes.push(note);
-    } else if (layer.what === "path") {
-      for (const tick of layer.ticks) {
-        const [dx, dy] = normalAt(layer.line, tick, frame);
-        // The upper side of the path, where its samples seldom lie.
-        const side = dy > 0 ? -1 : 1;
-        notes.push(
-          textAt(
-            frame.px(tick.x) + side * dx * 13 - roughWidth(tick.label, 11) / 2,
-            frame.py(tick.y) + side * dy * 13 - 7,
-            tick.label,
-            11,
-            palette.indigo,
-            400,
-            drawing,
-            { bgcolor: "rgba(0,0,0,0)" },
-          ),
-        );
-      }
-    }
+    } else if (layer.what === "path") notes.push(...tickFigures(layer, drawing, inside, taken));
   }
   return notes;
+}
+
+/** Where a person's own words stand: they begin at their point, at half their height. */
+export function annotationBox({ x, y, text }: Extract<PlotLayer, { what: "annotation" }>, frame: Drawing["frame"]): Box {
+  const [left, middle] = [frame.px(x), frame.py(y)];
+  return { left, top: middle - 8, right: left + roughWidth(text), bottom: middle + 8 };
+}
+
+/** Figures at a path's ticks, on the side where they cover nothing; a tick whose figure would cover another text goes without. */
+function tickFigures(layer: Extract<PlotLayer, { what: "path" }>, drawing: Drawing, inside: Box, taken: Box[]): Note[] {
+  const { frame, palette } = drawing;
+  return layer.ticks.flatMap((tick): Note[] => {
+    const [px, py] = [frame.px(tick.x), frame.py(tick.y)];
+    // The end says its own amount.
+    if (layer.end !== undefined && Math.hypot(px - frame.px(layer.end.x), py - frame.py(layer.end.y)) < 12) return [];
+    const [dx, dy] = normalAt(layer.line, tick, frame);
+    const width = roughWidth(tick.label, 11);
+    // The upper side of the path first, where its samples seldom lie.
+    const first = dy > 0 ? -1 : 1;
+    for (const side of [first, -first]) {
+      const [cx, cy] = [px + side * dx * (8 + Math.abs(dx) * (width / 2)), py + side * dy * 13];
+      const box: Box = { left: cx - width / 2, top: cy - 7, right: cx + width / 2, bottom: cy + 7 };
+      const isClear = overlap(box, inside) > width * 13.9 && taken.every((other) => overlap(box, other) === 0);
+      if (!isClear) continue;
+      taken.push(box);
+      return [textAt(box.left, box.top, tick.label, 11, palette.indigo, 400, drawing, { bgcolor: "rgba(0,0,0,0)" })];
+    }
+    return [];
+  });
 }

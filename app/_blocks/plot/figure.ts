@@ -4,7 +4,10 @@ import type { PageResults, PlotBlock, PlotLayer, PlotResult } from "@/cells";
 import { buildAnnotations } from "./annotations";
 import type { Range } from "./frame";
 import { missesOf } from "./misses";
+import { logTicks } from "./axisTicks";
+import { patternTraces } from "./patternTraces";
 import { axisInWords } from "./plotWords";
+import { ternaryTraces } from "./ternaryTraces";
 import { bodiesTraces, carriedOn, crossingTraces, missTraces, pathTraces, pickedTraces, samplesTraces, trendTraces, type Drawing } from "./traces";
 
 export interface Figure {
@@ -28,6 +31,7 @@ function tracesOf(layer: PlotLayer, drawing: Drawing): Data[] {
     case "path":
       return pathTraces(layer, drawing);
     case "annotation":
+    case "means":
       return [];
   }
 }
@@ -35,7 +39,9 @@ function tracesOf(layer: PlotLayer, drawing: Drawing): Data[] {
 /** A framed axis with ticks inside on all four sides, figures outside, no grid and no zero line. */
 function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Partial<LayoutAxis> {
   const { palette } = drawing;
-  const step = tickStep(range[1] - range[0], Math.max(2, Math.floor(pixels / 64)));
+  const most = Math.max(2, Math.floor(pixels / 64));
+  const step = tickStep(Math.abs(range[1] - range[0]), most);
+  const figures = log ? logTicks(range, most) : null;
   return {
     range: [range[0], range[1]],
     type: log ? "log" : "linear",
@@ -49,14 +55,18 @@ function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Par
     ticklen: 6,
     tickwidth: 1,
     tickcolor: palette.ink,
-    ...(log ? {} : { dtick: step, tick0: 0, tickformat: `.${tickDecimals(step)}f` }),
+    ...(figures !== null
+      ? { tickmode: "array", tickvals: figures.major.map((tick) => tick.at), ticktext: figures.major.map((tick) => tick.text) }
+      : { dtick: step, tick0: 0, tickformat: `.${tickDecimals(step)}f` }),
     tickfont: { family: '"IBM Plex Sans", "Helvetica Neue", Arial, sans-serif', size: drawing.projector ? 14 : 11, color: palette.second },
     minor: {
       ticks: "inside",
       ticklen: 3,
       tickwidth: 0.7,
       tickcolor: palette.ink,
-      ...(log ? {} : { dtick: step / (String(step / 10 ** Math.floor(Math.log10(step))).startsWith("5") ? 5 : 4) }),
+      ...(figures !== null
+        ? { tickmode: "array", tickvals: [...figures.minor] }
+        : { dtick: step / (String(step / 10 ** Math.floor(Math.log10(step))).startsWith("5") ? 5 : 4) }),
     },
     fixedrange: false,
     automargin: false,
@@ -67,6 +77,14 @@ function axis(range: Range, log: boolean, pixels: number, drawing: Drawing): Par
 function rowTicks(rows: readonly string[]): Partial<LayoutAxis> {
   return { tickmode: "array", tickvals: rows.map((_, i) => i), ticktext: [...rows], ticks: "", minor: {} } as Partial<LayoutAxis>;
 }
+
+/** Elements in place of figures: what is written under them stands with the other words. */
+function columnTicks(columns: PlotResult["columns"]): Partial<LayoutAxis> {
+  return { tickmode: "array", tickvals: (columns ?? []).map(({ x }) => x), showticklabels: false, minor: {} } as Partial<LayoutAxis>;
+}
+
+/** A triangle has its own axes. */
+const noAxis: Partial<LayoutAxis> = { visible: false, mirror: false };
 
 /** The card knows dashes by name only. */
 function onGraphicsCard(trace: Data): void {
@@ -86,7 +104,9 @@ export function buildFigure(
 ): Figure {
   const { frame, palette } = drawing;
   const layers = result.layers.filter((layer) => block.drawn[layer.drawn]?.hidden !== true);
-  const data = layers.flatMap((layer) => tracesOf(layer, drawing));
+  const isPattern = result.plot === "pattern";
+  const data = isPattern ? patternTraces(layers, drawing) : layers.flatMap((layer) => tracesOf(layer, drawing));
+  if (result.plot === "ternary") data.unshift(...ternaryTraces(drawing));
   data.push(...missTraces(missesOf(layers, results), drawing));
   for (const layer of layers) if (layer.what === "samples") data.push(...pickedTraces(layer, drawing));
   // The graphics card's layer lies over the vectors: with any of it, everything is drawn on it, so that the order holds.
@@ -105,9 +125,17 @@ export function buildFigure(
       hoverdistance: 12,
       dragmode,
       font: { family: '"IBM Plex Sans", "Helvetica Neue", Arial, sans-serif', color: palette.ink, size: 12 },
-      xaxis: axis(frame.view.x, frame.logX, frame.width - frame.margin.l - frame.margin.r, drawing),
-      yaxis: { ...axis(frame.view.y, frame.logY, frame.height - frame.margin.t - frame.margin.b, drawing), ...(rows === null ? {} : rowTicks(rows)) },
-      annotations: buildAnnotations(layers, axes, nameOf, drawing, results),
+      xaxis: {
+        ...axis(frame.view.x, frame.logX, frame.width - frame.margin.l - frame.margin.r, drawing),
+        ...(isPattern ? columnTicks(result.columns) : {}),
+        ...(result.plot === "ternary" ? noAxis : {}),
+      },
+      yaxis: {
+        ...axis(frame.view.y, frame.logY, frame.height - frame.margin.t - frame.margin.b, drawing),
+        ...(rows === null ? {} : rowTicks(rows)),
+        ...(result.plot === "ternary" ? noAxis : {}),
+      },
+      annotations: buildAnnotations({ ...result, layers }, axes, nameOf, drawing, results),
       newselection: { line: { color: palette.indigo, width: 1, dash: "solid" } },
       activeselection: { fillcolor: palette.indigo, opacity: 0.06 },
       selections: [],

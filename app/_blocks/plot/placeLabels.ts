@@ -20,7 +20,7 @@ export interface LabelPlace {
   readonly top: number;
 }
 
-interface Box {
+export interface Box {
   readonly left: number;
   readonly top: number;
   readonly right: number;
@@ -39,7 +39,7 @@ const directions = [
   [0, 1],
 ] as const;
 
-function overlap(a: Box, b: Box): number {
+export function overlap(a: Box, b: Box): number {
   const w = Math.min(a.right, b.right) - Math.max(a.left, b.left);
   const h = Math.min(a.bottom, b.bottom) - Math.max(a.top, b.top);
   return w > 0 && h > 0 ? w * h : 0;
@@ -48,9 +48,11 @@ function overlap(a: Box, b: Box): number {
 /**
  * Places labels beside their points, one after the other, each where it covers least: first no other label, then few
  * points, never outside the frame if it can be helped. Greedy and without chance, so that a drawing looks the same each time.
+ *
+ * @param taken boxes of text that stand already
  */
-export function placeLabels(requests: readonly LabelRequest[], obstacles: readonly Obstacle[], frame: Box): LabelPlace[] {
-  const placed: Box[] = [];
+export function placeLabels(requests: readonly LabelRequest[], obstacles: readonly Obstacle[], frame: Box, taken: readonly Box[] = []): LabelPlace[] {
+  const placed: Box[] = [...taken];
   return requests.map((label) => {
     let best: Box | null = null;
     let cost = Infinity;

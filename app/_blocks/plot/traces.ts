@@ -23,12 +23,14 @@ export interface Drawing {
 export interface PointRef {
   readonly data: string;
   readonly index: number;
+  /** Patterns: which value. */
+  readonly of?: string;
 }
 
 type Samples = Extract<PlotLayer, { what: "samples" }>;
 
-const quiet = { hoverinfo: "none", showlegend: false } as const;
-const silent = { hoverinfo: "skip", showlegend: false } as const;
+export const quiet = { hoverinfo: "none", showlegend: false } as const;
+export const silent = { hoverinfo: "skip", showlegend: false } as const;
 
 export function washOf(color: string, alpha: number): string {
   const hex = /^#([0-9a-f]{2})([0-9a-f]{2})([0-9a-f]{2})$/i.exec(color);
@@ -36,7 +38,7 @@ export function washOf(color: string, alpha: number): string {
   return `rgba(${parseInt(hex[1] ?? "0", 16)},${parseInt(hex[2] ?? "0", 16)},${parseInt(hex[3] ?? "0", 16)},${alpha})`;
 }
 
-function looks(index: number, palette: Palette): { readonly symbol: string; readonly fill: string; readonly line: string } {
+export function looks(index: number, palette: Palette): { readonly symbol: string; readonly fill: string; readonly line: string } {
   if (index < 0) return { symbol: "circle", fill: palette.paper, line: palette.second };
   const style = classStyle(index);
   return { symbol: style.shape, ...style[palette.light] };
@@ -243,12 +245,11 @@ export function pathTraces(layer: Extract<PlotLayer, { what: "path" }>, { palett
   const y: (number | null)[] = [];
   for (const tick of layer.ticks) {
     const [dx, dy] = normalAt(layer.line, tick, frame);
-    const perX = (frame.view.x[1] - frame.view.x[0]) / (frame.width - frame.margin.l - frame.margin.r);
-    const perY = (frame.view.y[1] - frame.view.y[0]) / (frame.height - frame.margin.t - frame.margin.b);
-    x.push(tick.x - 4.5 * dx * perX, tick.x + 4.5 * dx * perX, null);
-    y.push(tick.y + 4.5 * dy * perY, tick.y - 4.5 * dy * perY, null);
+    const [px, py] = [frame.px(tick.x), frame.py(tick.y)];
+    x.push(frame.xAt(px - 4.5 * dx), frame.xAt(px + 4.5 * dx), null);
+    y.push(frame.yAt(py - 4.5 * dy), frame.yAt(py + 4.5 * dy), null);
   }
-  if (x.length > 0 && !frame.logX && !frame.logY) traces.push({ ...silent, type: "scatter", mode: "lines", x, y, line: { color: palette.indigo, width: 1.2 } });
+  if (x.length > 0) traces.push({ ...silent, type: "scatter", mode: "lines", x, y, line: { color: palette.indigo, width: 1.2 } });
   if (layer.end !== undefined)
     traces.push({
       ...silent,

@@ -82,6 +82,8 @@ describe("samples on a scatter plot", () => {
     const below = [...lineOf(evaluate(data(), ratios), "mg_si").value].filter((value) => value <= 0.9).length;
     expect(below).toBeGreaterThan(0);
     expect(result.notDrawn).toEqual({ "out of domain": below });
+    expect(result.problems).toMatchObject([{ code: "not-on-log-axis", severity: "warning", field: "drawn[0]" }]);
+    expect(result.problems[0]?.text).toContain(`${below} ${below === 1 ? "sample of ch has" : "samples of ch have"} a value that is not above zero`);
   });
 });
 

@@ -54,10 +54,10 @@ export function theilSen(points: FitPoints): ScatterLine {
   };
 }
 
-/** Width of Sen's 95 % interval of the slope. */
+/** Width of Sen's 95 % interval of the slope: from the M-th to the M-th from the end of the N slopes, M = (N − C)/2, rounded outwards. */
 function senInterval(sorted: Float64Array, n: number): number {
   const half = (Z_95 * Math.sqrt((n * (n - 1) * (2 * n + 5)) / 18)) / 2;
-  const low = Math.max(0, Math.floor(sorted.length / 2 - half));
+  const low = Math.max(0, Math.floor(sorted.length / 2 - half) - 1);
   const high = Math.min(sorted.length - 1, Math.ceil(sorted.length / 2 + half));
   return (sorted[high] ?? NaN) - (sorted[low] ?? NaN);
 }

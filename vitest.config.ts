@@ -16,7 +16,14 @@ export default defineConfig({
         test: {
           name: "unit",
           sequence: { groupOrder: 0 },
-          include: ["tests/cells/**/*.test.ts", "tests/app/**/*.test.{ts,tsx}", "tests/examples.test.ts", "tests/compat/**/*.test.ts", "tests/reference/**/*.test.ts", "tests/house.test.ts"],
+          include: [
+            "tests/cells/**/*.test.ts",
+            "tests/app/**/*.test.{ts,tsx}",
+            "tests/examples.test.ts",
+            "tests/compat/**/*.test.ts",
+            "tests/reference/**/*.test.ts",
+            "tests/house.test.ts",
+          ],
           exclude: ["tests/app/server/**"],
           testTimeout: 60_000,
         },

@@ -40,10 +40,11 @@ def mixing(source, k):
     two = {name: rounded(1 + 25 * source.random(), 4) for name in ("Mg", "Si", "Al")}
     share = rounded(0.02 + 0.96 * source.random(), 4)
     m = {name: (1 - mpf(repr(share))) * mpf(repr(one[name])) + mpf(repr(share)) * mpf(repr(two[name])) for name in one}
-    # A x + B x y + C y + D = 0 (Langmuir et al. 1978) for x = Mg/Si and y = Al/Mg, whose denominators differ: a hyperbola.
+    # With x = Mg/Si and y = Al/Mg the share is -Si1 (x - x1) / (Si2 (x - x2)) over the rest, and -Mg1 (y - y1) / (Mg2 (y - y2))
+    # as well; equating both gives A x + B x y + C y + D = 0, a hyperbola (Langmuir et al. 1978).
     (m1, s1, l1), (m2, s2, l2) = ([mpf(repr(each[name])) for name in ("Mg", "Si", "Al")] for each in (one, two))
     x1, x2, y1, y2 = m1 / s1, m2 / s2, l1 / m1, l2 / m2
-    hyperbola = [s2 * m1 * y2 - s1 * m2 * y1, s1 * m2 - s2 * m1, s2 * m1 * x1 - s1 * m2 * x2, s1 * m2 * x2 * y1 - s2 * m1 * x1 * y2]
+    hyperbola = [s2 * m1 * y1 - s1 * m2 * y2, s1 * m2 - s2 * m1, s2 * m1 * x2 - s1 * m2 * x1, s1 * m2 * x1 * y2 - s2 * m1 * x2 * y1]
     return {
         "id": f"mixing {k + 1}",
         "given": {"one": one, "two": two, "share": share},

@@ -68,6 +68,11 @@ interface Shared {
 
 const values = new WeakMap<CommonVariable, AggregateValue>();
 
+/** The mean, median … that a common variable is, with its rows and how it moves with each; undefined for what is none. */
+export function aggregateOf(variable: CommonVariable): AggregateValue | undefined {
+  return values.get(variable);
+}
+
 function variableOf(aggregated: AggregateValue, key: string, label: string, of: CompiledValue): CommonVariable {
   const { name, rows, value, sigma, external, mswd } = aggregated;
   const notes = [`over ${rows.length} ${rows.length === 1 ? "sample" : "samples"}`];

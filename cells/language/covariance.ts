@@ -40,7 +40,7 @@ export function perSampleCovariance(a: Measurement, b: Measurement): Float64Arra
   return found;
 }
 
-/** Covariance, row by row, through bodies, fits and aggregates. */
+/** Covariance, row by row, through bodies, fits and aggregates, and through samples that a fit of the other was fitted to. */
 export function commonCovariance(a: Measurement, b: Measurement): Float64Array {
   const found = new Float64Array(Math.max(a.length, b.length));
   for (const x of a.commons) {
@@ -57,8 +57,26 @@ export function commonCovariance(a: Measurement, b: Measurement): Float64Array {
       }
     }
   }
+  crossParts(a, b, found);
+  crossParts(b, a, found);
   blank(found, a.state, b.state);
   return found;
+}
+
+/** Adds what a's common variables share with b's measured values: a fitted slope with the samples it was fitted to. */
+function crossParts(a: Measurement, b: Measurement, found: Float64Array): void {
+  for (const x of a.commons) {
+    if (x.sort !== "common") continue;
+    for (const y of b.columns) {
+      const covariance = x.variable.covarianceWithColumn?.(y.column);
+      if (covariance === undefined) continue;
+      const [p, q] = [a.partial(x), b.partial(y)];
+      for (let i = 0; i < found.length; i++) {
+        const product = valueAt(p, i) * valueAt(q, i) * valueAt(covariance, i);
+        if (product === product) found[i] = (found[i] as number) + product;
+      }
+    }
+  }
 }
 
 /** Entry of a column that may hold one number for all rows. */

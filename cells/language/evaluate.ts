@@ -51,7 +51,12 @@ function finish(compiler: Compiler, value: CompiledValue, at: ExpressionPlace): 
     });
   const { over } = value;
   const meaning = { unit, basis: statedBasis(value.meaning.counting), remark: value.meaning.remark ?? null };
-  return new Evaluated(meaning, measured, { table: over?.table ?? null, ...(over?.split == null ? {} : { byClass: over.split.classes }), problems, uses });
+  return new Evaluated(meaning, measured, {
+    table: over?.table ?? null,
+    ...(over?.split == null ? {} : { byClass: over.split.classes, splitColumn: over.split.column }),
+    problems,
+    uses,
+  });
 }
 
 function nearEdgeSentence(compiler: Compiler, { nearEdgeCount, length }: Measurement): string {

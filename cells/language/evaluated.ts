@@ -17,6 +17,13 @@ export interface EvaluatedMeaning {
   readonly remark: string | null;
 }
 
+export interface CommonInput {
+  readonly variable: CommonVariable;
+  readonly partial: Float64Array;
+  /** Place of the class it is of, for what is common to one class alone. */
+  readonly place?: number;
+}
+
 /**
  * An expression, calculated. Arrays hold one entry for each row of the table, or each class, or one only (`perSample` false);
  * where the state is not "present" every number is NaN.
@@ -45,6 +52,8 @@ export class Evaluated implements EvaluatedMeaning {
   readonly perSample: boolean;
   /** Classes, where there is one entry for each. */
   readonly byClass?: readonly string[];
+  /** Name of the column that the classes are of. */
+  readonly splitColumn?: string;
   /** The table the entries belong to; null where there is one for all. */
   readonly table: Table | null;
   /** Warnings: species that disagree, declared substitutions … */
@@ -60,7 +69,13 @@ export class Evaluated implements EvaluatedMeaning {
   constructor(
     meaning: EvaluatedMeaning,
     measured: Measurement,
-    of: { readonly table: Table | null; readonly byClass?: readonly string[]; readonly problems: readonly Problem[]; readonly uses: Uses },
+    of: {
+      readonly table: Table | null;
+      readonly byClass?: readonly string[];
+      readonly splitColumn?: string;
+      readonly problems: readonly Problem[];
+      readonly uses: Uses;
+    },
   ) {
     this.unit = meaning.unit;
     this.basis = meaning.basis;
@@ -78,6 +93,7 @@ export class Evaluated implements EvaluatedMeaning {
     this.table = of.table;
     this.perSample = of.table !== null && of.byClass === undefined;
     if (of.byClass !== undefined) this.byClass = of.byClass;
+    if (of.splitColumn !== undefined) this.splitColumn = of.splitColumn;
     this.problems = of.problems;
     this.bodiesUsed = Object.fromEntries(of.uses.bodies);
     this.conversions = [...of.uses.conversions.values()].flat();
@@ -91,7 +107,7 @@ export class Evaluated implements EvaluatedMeaning {
   }
 
   /** Common variables with the partial derivative of each entry (display unit per canonical unit), in order of first appearance. */
-  get common(): readonly { readonly variable: CommonVariable; readonly partial: Float64Array }[] {
+  get common(): readonly CommonInput[] {
     return this.#measured.commons.flatMap((part) => this.#expand(part));
   }
 
@@ -100,11 +116,12 @@ export class Evaluated implements EvaluatedMeaning {
     return this.#measured;
   }
 
-  #expand(part: CommonPart): readonly { variable: CommonVariable; partial: Float64Array }[] {
+  #expand(part: CommonPart): readonly CommonInput[] {
     const partial = this.#measured.partial(part);
     if (part.sort === "common") return [{ variable: part.variable, partial }];
     return part.variables.map((variable, place) => ({
       variable,
+      place,
       partial: partial.map((value, i) => ((this.byClass === undefined ? part.split.classOf[i] : i) === place ? value : 0)),
     }));
   }

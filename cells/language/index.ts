@@ -1,4 +1,6 @@
 /** The expression language: reading, checking, calculating with units, bases and correlated 1σ. */
+export { aggregateOf } from "./aggregate";
+export type { AggregateValue } from "./aggregateValue";
 export type { ClassVariable, ColumnVariable, OneVariable, Variable } from "./compiled";
 export { complete, helpFor } from "./complete";
 export type { Completion, Completions } from "./complete";
@@ -18,5 +20,6 @@ export { parse } from "./parse";
 export type { CommonVariable, ExpressionPlace, Named, NamedLine, Scope, ScopeOffer } from "./scope";
 export { isPlainName, writeName } from "./tokens";
 export { traceRow } from "./trace";
+export { declaredCorrelation } from "./uncertainty";
 export type { RowTrace, TracedColumn, TracedCommon, TracedInput } from "./trace";
 export type { Tree } from "./tree";

@@ -214,13 +214,26 @@ export function fromBody(compiler: Compiler, body: Body, name: string, at: Span)
 
 /** A number that is the same for every sample. */
 export function common(compiler: Compiler, variable: CommonVariable): CompiledValue {
-  const node = compiler.graph.param(variable.key, variable.value);
-  compiler.variables.set(node, { sort: "common", node, variable });
+  const node = commonLeaf(compiler, variable);
   const unit = variable.unit ?? units["1"];
   const counting = variable.basis ?? (unit.dimension === "dimensionless" ? "none" : columnCounting(unit, undefined, undefined));
   const meaning = variable.unit === undefined && variable.basis === undefined ? plainNumber : quantityIn(unit, counting, dimensionOf(unit));
   const state = compiler.graph.constant(Number.isFinite(variable.value) ? State.present : State.missing);
   return { kind: "value", node, state, meaning, over: null };
+}
+
+/** The leaf of a common variable. What it leans on comes first: derivatives are followed from later nodes to earlier ones. */
+function commonLeaf(compiler: Compiler, variable: CommonVariable): number {
+  const { graph, links, variables } = compiler;
+  const leans = (variable.leansOn ?? []).map(({ variable: on, partial }) => ({ to: commonLeaf(compiler, on), key: on.key, partial }));
+  const node = graph.param(variable.key, variable.value);
+  variables.set(node, { sort: "common", node, variable });
+  if (leans.length > 0)
+    links.set(
+      node,
+      leans.map(({ to, key, partial }) => ({ to, partial: graph.param(`${variable.key}>${key}`, partial) })),
+    );
+  return node;
 }
 
 function ambiguous(tree: NameTree, why: string): CellError {

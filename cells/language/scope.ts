@@ -1,7 +1,7 @@
 import type { Basis } from "../page/schema";
 import type { Unit } from "../quantity/unit";
 import type { BodyLookup } from "../species/body";
-import type { Table } from "../table/table";
+import type { QuantityColumn, Table } from "../table/table";
 
 /**
  * A quantity that is one and the same for every sample: a body's value, a fitted slope, a budget's solved amount, the mean of
@@ -22,6 +22,13 @@ export interface CommonVariable {
   readonly basis?: Basis | "formula units";
   /** Canonical covariance with another common variable; 0 where they are independent. Never asked about itself. */
   readonly covarianceWith?: (other: CommonVariable) => number;
+  /**
+   * Canonical covariance with the measured values of a column, row by row; undefined where there is none. A fitted slope has one
+   * with each sample it was fitted to.
+   */
+  readonly covarianceWithColumn?: (column: QuantityColumn) => Float64Array | undefined;
+  /** What it leans on in turn, beside its own σ: the bodies that a fit's samples are normalised to. Canonical derivatives, direct ones only. */
+  readonly leansOn?: readonly { readonly variable: CommonVariable; readonly partial: number }[];
   /** Sentences for a trace: source, checked state … */
   readonly notes?: readonly string[];
 }

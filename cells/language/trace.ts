@@ -1,6 +1,7 @@
 import type { Evaluated } from "./evaluated";
 import type { ColumnVariable } from "./compiled";
 import type { CommonVariable } from "./scope";
+import { commonCovarianceOf } from "./uncertainty";
 
 /** One input of one number, for the tree of where it comes from. */
 export type TracedInput = TracedColumn | TracedCommon;
@@ -50,6 +51,7 @@ export function traceRow(evaluated: Evaluated, index: number): RowTrace {
   const inputs: TracedInput[] = [];
   const share = (own: number): number | null => (variance > 0 ? own / variance : null);
   const columns = evaluated.inputs.map(({ variable, partial }) => ({ variable, partial: partial[row] ?? Number.NaN }));
+  const commons = evaluated.common.map(({ variable, partial }) => ({ variable, partial: partial[row] ?? Number.NaN }));
   for (const { variable, partial } of columns) {
     if (partial === 0 || partial !== partial) continue;
     const own = variable.column.sigma[row] ?? Number.NaN;
@@ -60,19 +62,27 @@ export function traceRow(evaluated: Evaluated, index: number): RowTrace {
       const product = rho * partial * own * other.partial * (other.variable.column.sigma[row] ?? Number.NaN);
       if (product === product) part += product;
     }
+    for (const common of commons) part += crossPart(common, { variable, partial }, row);
     inputs.push({ kind: "column", variable, row, value: variable.column.value[row] ?? Number.NaN, sigma: own, partial, share: share(part) });
   }
-  const commons = evaluated.common.map(({ variable, partial }) => ({ variable, partial: partial[row] ?? Number.NaN }));
   for (const { variable, partial } of commons) {
     if (partial === 0 || partial !== partial) continue;
     const own = variable.sigma;
     let part = own === own ? partial * own * partial * own : 0;
     for (const other of commons) {
       if (other.variable.key === variable.key) continue;
-      const covariance = variable.covarianceWith?.(other.variable) ?? other.variable.covarianceWith?.(variable) ?? 0;
-      if (covariance === covariance && other.partial === other.partial) part += covariance * partial * other.partial;
+      const covariance = commonCovarianceOf(variable, other.variable);
+      if (other.partial === other.partial) part += covariance * partial * other.partial;
     }
+    for (const column of columns) part += crossPart({ variable, partial }, column, row);
     inputs.push({ kind: "common", variable, value: variable.value, sigma: own, partial, share: share(part) });
   }
   return { inputs, conversions: evaluated.conversions, lines: evaluated.lines, bodies: evaluated.bodiesUsed };
+}
+
+/** What a common variable and a measured value have in common, once: half of it for each. */
+function crossPart(common: { variable: CommonVariable; partial: number }, column: { variable: ColumnVariable; partial: number }, row: number): number {
+  const covariance = common.variable.covarianceWithColumn?.(column.variable.column);
+  const product = common.partial * column.partial * (covariance?.[row] ?? 0);
+  return product === product ? product : 0;
 }

@@ -67,11 +67,12 @@ export function uncertaintyNodes(graph: Graph, partials: ReadonlyMap<number, num
     if (hasAssumed(variable.column))
       assumed = graph.max(assumed, graph.mul(graph.load(variable.column.assumed, `${labelOf(variable)}:assumed`), graph.compare("ne", partial, zero)));
   }
+  const cross = crossCovariance(graph, columns, commons);
   const both: Variance = {
-    variance: graph.add(perSample.variance, common.variance),
+    variance: graph.add(graph.add(perSample.variance, common.variance), cross),
     lacks: graph.max(perSample.lacks, common.lacks),
     has: graph.max(perSample.has, common.has),
-    mayCancel: perSample.mayCancel || common.mayCancel,
+    mayCancel: perSample.mayCancel || common.mayCancel || graph.constantOf(cross) !== 0,
   };
   return {
     sigma: root(graph, both),
@@ -129,6 +130,25 @@ function perSampleNodes(graph: Graph, parts: readonly { variable: ColumnVariable
   }
   const covariance = declaredCovariance(graph, parts, terms);
   return { variance: graph.add(variance, covariance), has, lacks, mayCancel: graph.constantOf(covariance) !== 0 };
+}
+
+/** 2 Σ ∂f/∂c ∂f/∂x cov(c, x) over common variables that share errors with single samples, as a slope with those it was fitted to. */
+function crossCovariance(
+  graph: Graph,
+  columns: readonly { variable: ColumnVariable; partial: number }[],
+  commons: readonly { variable: CommonPart; partial: number }[],
+): number {
+  let sum = graph.constant(0);
+  for (const { variable: common, partial: onCommon } of commons) {
+    if (common.sort !== "common") continue;
+    for (const { variable, partial } of columns) {
+      const covariance = common.variable.covarianceWithColumn?.(variable.column);
+      if (covariance === undefined) continue;
+      const both = graph.mul(graph.mul(onCommon, partial), graph.load(covariance, `${common.variable.key}~${labelOf(variable)}`));
+      sum = graph.add(sum, graph.mul(graph.constant(2), both));
+    }
+  }
+  return sum;
 }
 
 /** 2 Σ ρ t_i t_j over the pairs of columns for which the table declares an error correlation. */
@@ -225,6 +245,12 @@ export function covarianceOfParts(a: CommonPart, b: CommonPart): number | Float6
 
 function covarianceOf(a: OneVariable["variable"], b: OneVariable["variable"]): number {
   if (a.key === b.key) return a.sigma === a.sigma ? a.sigma * a.sigma : 0;
-  const covariance = a.covarianceWith?.(b) ?? b.covarianceWith?.(a) ?? 0;
+  return commonCovarianceOf(a, b);
+}
+
+/** Canonical covariance of two different common variables. Either may be the one that knows of the other; 0 where that is unknown. */
+export function commonCovarianceOf(a: OneVariable["variable"], b: OneVariable["variable"]): number {
+  const known = a.covarianceWith?.(b) ?? 0;
+  const covariance = known !== 0 ? known : (b.covarianceWith?.(a) ?? 0);
   return covariance === covariance ? covariance : 0;
 }

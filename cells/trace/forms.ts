@@ -35,12 +35,12 @@ export function formBranches(tracing: Tracing, form: LinearForm): { from: TraceN
 function samplesNode(source: SampleSource, parts: readonly { readonly variable: SampleVariable; readonly term: Term }[], share: number | null): TraceNode {
   const n = source.rows.length;
   const { errors } = source;
-  const notes = [`${n} samples of ${source.table.handle}`];
+  const notes = [`${n} ${source.classes === undefined ? "samples" : "classes"} of ${source.table.handle}`];
   if (errors.from === "errors" && errors.extraY > 0)
     notes.push(`Beside their errors they scatter by ${short(errors.extraY)} (1σ upwards), which is part of their share.`);
   if (errors.from === "residuals") notes.push("The σ comes from how far the samples lie from the line.");
   if (errors.from === "unknown") notes.push("How the σ divides between the samples is not known for this method.");
-  const weights = errors.from === "unknown" ? undefined : sampleWeights(source, parts);
+  const weights = errors.from === "unknown" || source.classes !== undefined ? undefined : sampleWeights(source, parts);
   return {
     kind: "fit",
     label: `samples of ${source.handle}`,

@@ -8,7 +8,8 @@ import { distanceOfPoints, type Distance, type PointForms } from "./distance";
 import { jointDraws } from "./jointDraws";
 import { combine, hasUnknown, variance, type LinearForm } from "./linearForm";
 import { ellipseCurve, simulatedRegion } from "./region";
-import { sharedUnknown, type AxisOfFit, type TrendFit } from "./trendFit";
+import { sharedEstimated } from "./sharedSamples";
+import type { AxisOfFit, TrendFit } from "./trendFit";
 
 /** Where two trends cross, ready for results, and the curve that holds 95 % of where they may. */
 export interface TrendsCrossed {
@@ -85,8 +86,8 @@ function basisInWords({ basis, remark }: AxisOfFit): string {
   return basis === null ? (remark ?? "without a basis") : basis === "formula units" ? "a ratio of formula units" : `a ratio by ${basis}`;
 }
 
-function warnings(first: TrendFit, second: TrendFit): { code: string; severity: "warning"; text: string }[] {
-  const found: { code: string; severity: "warning"; text: string }[] = [];
+function warnings(first: TrendFit, second: TrendFit): Pick<Problem, "code" | "severity" | "text">[] {
+  const found: Pick<Problem, "code" | "severity" | "text">[] = [];
   for (const axis of ["x", "y"] as const) {
     const [a, b] = [first[axis].meaning, second[axis].meaning];
     if (a !== b)
@@ -96,12 +97,12 @@ function warnings(first: TrendFit, second: TrendFit): { code: string; severity: 
         text: `On ${axis}, ${first.handle} has ${a} and ${second.handle} ${b}. Their crossing means something only where these are one quantity.`,
       });
   }
-  const unknown = sharedUnknown(first.source, second.source);
-  if (unknown > 0)
+  const estimated = sharedEstimated(first.source, second.source);
+  if (estimated > 0)
     found.push({
       code: "shared-samples",
-      severity: "warning",
-      text: `${first.handle} and ${second.handle} share ${unknown} ${unknown === 1 ? "sample" : "samples"}, and what their errors thereby have in common is not in the crossing's σ: it is known for two York fits, or two least-squares fits, over one table.`,
+      severity: "note",
+      text: `${first.handle} and ${second.handle} share ${estimated} ${estimated === 1 ? "sample" : "samples"}; what their errors thereby have in common is in the crossing's σ, estimated from how ${estimated === 1 ? "it lies" : "these lie"} off both lines.`,
     });
   return found;
 }

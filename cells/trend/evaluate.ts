@@ -8,13 +8,16 @@ import { formatNumber } from "../quantity/format";
 import type { Table } from "../table/table";
 import { bodyPoint } from "./bodyPoint";
 import { choosePoints, valueAt, type Chosen } from "./choosePoints";
+import { chooseClasses, samplePulls } from "./classPoints";
 import { bodyDistance, crossTrends, withRegion } from "./crossTrends";
 import type { LineForms } from "./crossing";
 import { distanceFromLine, type PointForms } from "./distance";
 import { fitLine, type FittedLine, type LineCovariance } from "./fitLine";
 import { covariance, hasUnknown, variance } from "./linearForm";
 import { residuals } from "./outliers";
-import { commonTerms, fitOf, sampleVariables, withFit, type AxisOfFit, type SampleSource, type TrendFit } from "./trendFit";
+import { calibrated, rawPulls, type Pulls } from "./pulls";
+import type { ClassPoint, SampleSource } from "./sampleSource";
+import { commonTerms, fitOf, sampleVariables, withFit, type AxisOfFit, type TrendFit } from "./trendFit";
 
 /**
  * A line through samples, how well they keep to it, how far the page's bodies lie from it, and where it crosses another.
@@ -37,7 +40,8 @@ function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
   if (read === undefined) return emptyTrend(block, problems);
   const { x, y, table } = read;
   const weighs = block.method === "york";
-  const chosen = choosePoints(block, table, x, y, read.where, weighs);
+  const chosen = choose(block, read, weighs, problems);
+  if (chosen === undefined) return emptyTrend(block, problems);
   problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen));
   const base: TrendResult = {
     ...emptyTrend(block, []),
@@ -56,6 +60,20 @@ function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
     return { ...base, problems: [...problems, atRow(error, table, chosen).toProblem(block.id)] };
   }
 }
+
+/** The points of a fit: samples, or classes where their means stand on the axes. Undefined where that has a fault. */
+function choose(block: TrendBlock, { table, x, y, where }: Axes, weighs: boolean, problems: Problem[]): FitChosen | undefined {
+  if (x.byClass === undefined && y.byClass === undefined) return choosePoints(block, table, x, y, where, weighs);
+  try {
+    return chooseClasses(block, table, x, y, where, weighs);
+  } catch (error) {
+    if (!(error instanceof CellError)) throw error;
+    problems.push(error.toProblem(block.id));
+    return undefined;
+  }
+}
+
+type FitChosen = Chosen & { readonly classes?: readonly ClassPoint[] };
 
 interface Axes {
   readonly scope: Scope;
@@ -96,16 +114,10 @@ function readAxes(block: TrendBlock, context: BlockContext, problems: Problem[])
 
 function requirePerSample(evaluated: Evaluated, table: Table, text: string, field: "x" | "y"): void {
   const place = { field, span: [0, text.length] as const };
-  if (evaluated.byClass !== undefined)
+  if (!evaluated.perSample && evaluated.byClass === undefined)
     throw new CellError(
       "not-per-sample",
-      `${text.trim()} has one value for each class, and a line goes through samples. Put the class means into a data block of their own, with their σ.`,
-      place,
-    );
-  if (!evaluated.perSample)
-    throw new CellError(
-      "not-per-sample",
-      `${text.trim()} has one value for all samples, so no line can be put through it. Use something measured on each sample.`,
+      `${text.trim()} has one value for all samples, so no line can be put through it. Use something measured on each sample, or the means of classes, as in mean(x, Group).`,
       place,
     );
   if (evaluated.table !== table)
@@ -164,9 +176,11 @@ function whyNoLine({ points: { y, correlation } }: Chosen): string {
   return "No line was found: the iteration leads to no number. See whether the σ are in the right unit, or choose another method.";
 }
 
-function atRow(error: CellError, table: Table, { rows }: Chosen): CellError {
+function atRow(error: CellError, table: Table, { rows, classes }: FitChosen): CellError {
   const place = error.place.row;
   if (typeof place !== "number") return error;
+  const point = classes?.[place];
+  if (point !== undefined) return new CellError(error.code, `${point.name}: ${error.message}`, { ...error.place, row: point.name });
   const row = rows[place] ?? 0;
   const name = table.samples[row] ?? "";
   return new CellError(error.code, name === "" ? error.message : `${name}: ${error.message}`, { ...error.place, row: table.rowIds[row] ?? place });
@@ -181,7 +195,7 @@ function lineResult(
   context: BlockContext,
   base: TrendResult,
   { scope, table, x, y }: Axes,
-  chosen: Chosen,
+  chosen: FitChosen,
   line: FittedLine,
   problems: Problem[],
 ): TrendResult {
@@ -197,6 +211,8 @@ function lineResult(
     influence: line.ofErrors,
     errors: line.errors,
     covariance: of,
+    ...(chosen.classes === undefined ? {} : { classes: chosen.classes }),
+    pulls: onlyOnce(() => pullsOf(block.method, chosen, line, of)),
   });
   const formsOf = (source: SampleSource): LineForms => {
     const [slope, intercept] = sampleVariables(source, line.slope, line.intercept);
@@ -248,6 +264,16 @@ function lineResult(
     bodiesUsed,
   };
   return withFit(result, fit);
+}
+
+function pullsOf(method: TrendBlock["method"], { rows, points, classes }: FitChosen, line: FittedLine, covariance: LineCovariance): Pulls {
+  const raw = classes === undefined ? { rows, ...rawPulls(method, points, line) } : samplePulls(classes, line.ofErrors);
+  return { rows: raw.rows, ...calibrated(raw, covariance) };
+}
+
+function onlyOnce<T>(make: () => T): () => T {
+  let made: T | undefined;
+  return () => (made ??= make());
 }
 
 function axisOfFit(expression: string, block: TrendBlock, context: BlockContext, { unit, basis, remark }: Evaluated): AxisOfFit {
@@ -306,14 +332,11 @@ function aboutFit(block: TrendBlock, line: FittedLine): Problem[] {
   return found;
 }
 
-function pointsOf(block: TrendBlock, table: Table, { rows, points }: Chosen, line: FittedLine, x: Evaluated, y: Evaluated): TrendPoint[] {
+function pointsOf(block: TrendBlock, table: Table, { rows, points, classes }: FitChosen, line: FittedLine, x: Evaluated, y: Evaluated): TrendPoint[] {
   const found = residuals(block.method, points, line);
   const correlation = x.correlation(y);
   return Array.from(rows, (row, i) => ({
-    index: row,
-    row: table.rowIds[row] ?? row,
-    sample: table.samples[row] ?? "",
-    class: table.classes[row] ?? "",
+    ...nameOfPoint(table, row, i, classes?.[i]),
     x: points.x[i] ?? Number.NaN,
     y: points.y[i] ?? Number.NaN,
     sigmaX: valueAt(x.sigma, row),
@@ -322,6 +345,12 @@ function pointsOf(block: TrendBlock, table: Table, { rows, points }: Chosen, lin
     residual: found[i]?.residual ?? Number.NaN,
     outlier: found[i]?.outlier ?? false,
   }));
+}
+
+/** Which sample, or which class, a point is. A class has no place among the rows. */
+function nameOfPoint(table: Table, row: number, i: number, point: ClassPoint | undefined): Pick<TrendPoint, "index" | "row" | "sample" | "class"> {
+  if (point !== undefined) return { index: -1 - i, row: point.name, sample: point.name, class: point.name };
+  return { index: row, row: table.rowIds[row] ?? row, sample: table.samples[row] ?? "", class: table.classes[row] ?? "" };
 }
 
 function evaluateCrossing(block: TrendBlock, crossWith: string, line: TrendResult, context: BlockContext): TrendResult {

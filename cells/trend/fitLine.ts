@@ -66,7 +66,8 @@ export function fitLine(method: TrendBlock["method"], scatter: NonNullable<Trend
     case "reduced major axis":
       return residualLine(points, reducedMajorAxis(points), "unknown");
     case "theil-sen":
-      return residualLine(points, theilSen(points), "unknown");
+      // The median of slopes answers single errors in steps; on average over errors as least squares does.
+      return { ...residualLine(points, theilSen(points), "unknown"), ofErrors: ordinaryLeastSquares(points).influence };
   }
 }
 

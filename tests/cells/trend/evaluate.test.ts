@@ -267,10 +267,14 @@ describe("what cannot be fitted says so, at its place", () => {
     expect(result.problems).toEqual([expect.objectContaining({ field: "x", severity: "error" })]);
   });
 
-  it("one value for all samples, or one a class, is no axis", () => {
+  it("one value for all samples is no axis; one a class goes with another a class, not with one a sample", () => {
     expect(evaluateTrend(trend({ x: "mean(X)" }), contextOf(pointsTable(good))).problems[0]).toMatchObject({ code: "not-per-sample", field: "x" });
     const byClass = evaluateTrend(trend({ x: "mean(Mg / Si, Group)", y: "Al / Si" }), contextOf(twelve()));
-    expect(byClass.problems[0]).toMatchObject({ code: "not-per-sample", field: "x", text: expect.stringContaining("one value for each class") as string });
+    expect(byClass.problems[0]).toMatchObject({
+      code: "not-per-sample",
+      field: "y",
+      text: expect.stringContaining("On x there is a value for each class of Group and on y a value for each sample") as string,
+    });
   });
 
   it("fewer than three points, all x equal, σ = 0 on both axes: sentences that say what to do", () => {

@@ -1,7 +1,8 @@
-import { handleSchema } from "@/cells";
+import { handleSchema, MOST_OWN_BODIES, ownBodyIdSchema, ownBodySchema } from "@/cells";
 import * as Y from "yjs";
+import { isSame } from "./entryEdits";
 import { isOrderKey } from "./orderKeys";
-import { isNew, newItems, partOf, type Part } from "./roles";
+import { isNew, newItems, partOf, standingBefore, type Part } from "./roles";
 import {
   blocksOf,
   entryFault,
@@ -25,7 +26,7 @@ const MOST_UNKNOWN = 65_536;
 const MOST_DEPTH = 30;
 const MOST_BODIES = 200;
 const MOST_KEY = 600;
-const rootNames: ReadonlySet<string> = new Set(["page", "blocks", "bodies"]);
+const rootNames: ReadonlySet<string> = new Set(["page", "blocks", "bodies", "ownBodies"]);
 const blockKey = /^[A-Za-z0-9]{1,40}$/;
 
 type Fault = string | null;
@@ -98,6 +99,20 @@ function bodyFault(map: Y.Map<unknown>, alias: string): Fault {
     : "A name for a body is a handle, and stands for a short text.";
 }
 
+/** An own body comes whole and right, and what its id stands for never changes: another version has another id. */
+function ownBodyFault(transaction: Y.Transaction, map: Y.Map<unknown>, id: string): Fault {
+  if (!map.has(id)) return null;
+  const body = map.get(id);
+  if (map.size > MOST_OWN_BODIES) return `A page has at most ${MOST_OWN_BODIES.toString()} own bodies.`;
+  if (!ownBodyIdSchema.safeParse(id).success) return "The id of an own body is damaged.";
+  const read = ownBodySchema.safeParse(body);
+  if (!read.success) return `The body ${id} cannot be taken: ${read.error.issues[0]?.message ?? "it has another form"}.`;
+  const before = standingBefore(transaction, map, id)?.content;
+  return before instanceof Y.ContentAny && !isSame(before.arr[0], body)
+    ? `The body ${id} is on this page already with other values. Give yours another id.`
+    : null;
+}
+
 function binnedFault(value: unknown): Fault {
   const fine = typeof value === "object" && value !== null && Object.keys(value).length === 2 && "by" in value && "at" in value;
   return fine && String(value.by).length <= 80 && String(value.at).length <= 40 ? null : "What says who laid a block into the bin is damaged.";
@@ -140,6 +155,8 @@ function changedFault(transaction: Y.Transaction, part: Part, keys: ReadonlySet<
         return pageFault(part.map, key);
       case "bodies":
         return bodyFault(part.map, key);
+      case "ownBodies":
+        return ownBodyFault(transaction, part.map, key);
       case "blocks":
         if (part.map.size > MOST_BLOCKS) return `A page has at most ${MOST_BLOCKS.toString()} blocks, its bin included.`;
         return part.map.has(key) ? wholeBlockFault(key, part.map.get(key)) : null;

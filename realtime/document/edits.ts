@@ -1,6 +1,6 @@
-import type { Block } from "@/cells";
+import { MOST_OWN_BODIES, ownBodyIdSchema, ownBodySchema, type Block, type OwnBody } from "@/cells";
 import * as Y from "yjs";
-import { canonical, createEntryEdits, type EntryEdits } from "./entryEdits";
+import { canonical, createEntryEdits, isSame, type EntryEdits } from "./entryEdits";
 import { EditError, kindOf, refuse, requireBlock } from "./editing";
 import { editText } from "./editText";
 import { freshKey } from "./entryKeys";
@@ -21,6 +21,7 @@ import {
   listsOf,
   LOCAL,
   MOST_TITLE,
+  ownBodiesOf,
   pageOf,
   plainCopy,
   plainEntry,
@@ -42,7 +43,13 @@ export interface PageEdits extends EntryEdits {
   moveBlock(key: string, afterKey: string | null): void;
   setWidth(key: string, width: 4 | 6 | 8 | 12): void;
   setTitle(title: string): void;
-  setBodies(bodies: Readonly<Record<string, string>>): void;
+  /**
+   * Says which compilations the page's names of bodies mean.
+   *
+   * @param copies own bodies of the group that the page does not carry yet, by id. Those that nothing on the page names any more
+   *   are taken off it.
+   */
+  setBodies(bodies: Readonly<Record<string, string>>, copies?: Readonly<Record<string, OwnBody>>): void;
   /** Sets a field of a block; `undefined` takes it away. A list is brought to the given entries, a text to the given text. */
   setField(key: string, field: string, value: unknown): void;
   /** The shared text of a formula or a note. */
@@ -69,6 +76,14 @@ function attributed(doc: Y.Doc, block: Block, me: string): Block {
     fields[list] = entries.map((entry: object) => (here.has(canonical(plainEntry(entry))) ? entry : { ...entry, by: me, at }));
   }
   return fields as Block;
+}
+
+/** Why an own body cannot be copied onto the page; `null` where it can. */
+function copyFault(own: Y.Map<unknown>, id: string, body: OwnBody): string | null {
+  const read = ownBodySchema.safeParse(body);
+  if (!ownBodyIdSchema.safeParse(id).success || !read.success)
+    return `The body ${id} cannot be taken: ${read.error?.issues[0]?.message ?? "its id is damaged"}.`;
+  return own.has(id) && !isSame(own.get(id), plainCopy(body)) ? `The body ${id} is on this page already with other values. Nothing was changed.` : null;
 }
 
 function entriesHere(block: BlockMap, list: ListName): string[] {
@@ -168,9 +183,17 @@ export function createEdits(doc: Y.Doc, me: { readonly id: string }): PageEdits 
       if (title.length > MOST_TITLE) throw new EditError(`A title has at most ${MOST_TITLE.toString()} characters; this one has ${title.length.toString()}.`);
       change(() => pageOf(doc).set("title", title));
     },
-    setBodies: (bodies) => {
+    setBodies: (bodies, copies = {}) => {
       const map = bodiesOf(doc);
+      const own = ownBodiesOf(doc);
+      for (const [id, body] of Object.entries(copies)) refuse(copyFault(own, id, body));
+      const { blocks, bin } = readPage(doc);
+      const said = JSON.stringify([Object.values(bodies), [...blocks, ...bin].map(({ block }) => block)]);
+      const kept = new Set([...own.keys(), ...Object.keys(copies)].filter((id) => said.includes(id)));
+      if (kept.size > MOST_OWN_BODIES) throw new EditError(`A page carries at most ${MOST_OWN_BODIES.toString()} bodies of the group's own.`);
       change(() => {
+        for (const id of [...own.keys()]) if (!kept.has(id)) own.delete(id);
+        for (const [id, body] of Object.entries(copies)) if (kept.has(id) && !own.has(id)) own.set(id, plainCopy(body));
         for (const alias of [...map.keys()]) if (!(alias in bodies)) map.delete(alias);
         for (const [alias, body] of Object.entries(bodies)) if (map.get(alias) !== body) map.set(alias, body);
       });

@@ -2,7 +2,20 @@ import type { Block, PageDocument } from "@/cells";
 import * as Y from "yjs";
 import { entryKeyFor, freshKey } from "./entryKeys";
 import { firstOrderKeys } from "./orderKeys";
-import { blocksOf, bodiesOf, hasText, isListOf, listsOf, pageOf, plainCopy, plainEntry, SHAPE_VERSION, type BlockMap, type ListName } from "./shape";
+import {
+  blocksOf,
+  bodiesOf,
+  hasText,
+  isListOf,
+  listsOf,
+  ownBodiesOf,
+  pageOf,
+  plainCopy,
+  plainEntry,
+  SHAPE_VERSION,
+  type BlockMap,
+  type ListName,
+} from "./shape";
 
 /** A record of anything, for walking over a block's fields by name. */
 export const fieldsOf = (block: Block): Readonly<Record<string, unknown>> => ({ ...block });
@@ -59,10 +72,10 @@ export function fillPage(doc: Y.Doc, page: PageDocument): void {
   doc.transact(() => {
     pageOf(doc).set("shape", SHAPE_VERSION);
     pageOf(doc).set("title", page.title);
-    if (page.bodies !== undefined) {
-      for (const [alias, body] of Object.entries(page.bodies)) bodiesOf(doc).set(alias, body);
-      if (Object.keys(page.bodies).length === 0) pageOf(doc).set("empty", ["bodies"]);
-    }
+    for (const [alias, body] of Object.entries(page.bodies ?? {})) bodiesOf(doc).set(alias, body);
+    for (const [id, body] of Object.entries(page.ownBodies ?? {})) ownBodiesOf(doc).set(id, plainCopy(body));
+    const empty = (["bodies", "ownBodies"] as const).filter((field) => page[field] !== undefined && Object.keys(page[field]).length === 0);
+    if (empty.length > 0) pageOf(doc).set("empty", empty);
     page.blocks.forEach((block, n) => blocksOf(doc).set(freshKey(), createBlock(block, places[n] ?? "a0")));
   });
 }

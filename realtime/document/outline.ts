@@ -25,7 +25,7 @@ const shown: ReadonlySet<string> = new Set(["id", "name", "width", "source", "pl
 export function touchesHeading(transaction: Y.Transaction): boolean {
   for (const [type, keys] of transaction.changed) {
     const part = partOf(transaction.doc, type);
-    if (part === null || part.is === "list" || part.is === "text" || part.is === "bodies") continue;
+    if (part === null || part.is === "list" || part.is === "text" || part.is === "bodies" || part.is === "ownBodies") continue;
     if (part.is !== "block" || [...keys].some((key) => key !== null && shown.has(key))) return true;
   }
   return false;

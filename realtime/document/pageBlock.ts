@@ -1,4 +1,4 @@
-import { blockSchema, type Block, type PageDocument, type Problem } from "@/cells";
+import { blockSchema, type Block, type OwnBody, type PageDocument, type Problem } from "@/cells";
 
 /** Who laid a block into the page's bin, and when. */
 export interface Binned {
@@ -19,6 +19,8 @@ export interface PageBlock {
 export interface PageReading {
   readonly title: string;
   readonly bodies: Readonly<Record<string, string>>;
+  /** The group's own bodies that the page carries, by id. One that did not change is the identical object. */
+  readonly ownBodies: Readonly<Record<string, OwnBody>>;
   readonly blocks: readonly PageBlock[];
   readonly bin: readonly PageBlock[];
   /** What cannot be read, and handles that two blocks have; by block handle. */

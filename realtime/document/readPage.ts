@@ -1,8 +1,8 @@
-import { PAGE_FORMAT, type PageDocument, type Problem } from "@/cells";
+import { ownBodyIdSchema, ownBodySchema, PAGE_FORMAT, type OwnBody, type PageDocument, type Problem } from "@/cells";
 import type * as Y from "yjs";
 import { freeHandle, type PageBlock, type PageReading } from "./pageBlock";
 import { readBlock } from "./readBlock";
-import { blocksOf, bodiesOf, byPlace, pageOf, type BlockMap } from "./shape";
+import { blocksOf, bodiesOf, byPlace, ownBodiesOf, pageOf, type BlockMap } from "./shape";
 
 interface Cached {
   readonly page: PageBlock | null;
@@ -12,6 +12,7 @@ interface Cached {
 /** What was read of a document before, dropped block by block as blocks change. */
 class Reader {
   private readonly cache = new Map<string, Cached>();
+  private readonly bodies = new WeakMap<object, OwnBody | string>();
   private last: PageReading | null = null;
 
   constructor(private readonly doc: Y.Doc) {
@@ -23,7 +24,7 @@ class Reader {
         else for (const changed of event.changes.keys.keys()) this.cache.delete(changed);
       }
     });
-    for (const map of [pageOf(doc), bodiesOf(doc)]) map.observe(() => (this.last = null));
+    for (const map of [pageOf(doc), bodiesOf(doc), ownBodiesOf(doc)]) map.observe(() => (this.last = null));
   }
 
   read(): PageReading {
@@ -37,6 +38,7 @@ class Reader {
     for (const [alias, body] of bodiesOf(this.doc).entries()) if (typeof body === "string") bodies[alias] = body;
     const all: PageBlock[] = [];
     const problems: Problem[] = [];
+    const ownBodies = this.ownBodies(problems);
     for (const [key, map] of blocksOf(this.doc).entries()) {
       const cached = this.one(key, map);
       problems.push(...cached.problems);
@@ -47,7 +49,33 @@ class Reader {
       all.filter((b) => b.binned === undefined),
       problems,
     );
-    return { title: typeof title === "string" ? title : "", bodies, blocks, bin: all.filter((b) => b.binned !== undefined), problems };
+    return { title: typeof title === "string" ? title : "", bodies, ownBodies, blocks, bin: all.filter((b) => b.binned !== undefined), problems };
+  }
+
+  /** Own bodies in the order of their ids, whoever put them there first. One that cannot be read is left out, and says so. */
+  private ownBodies(problems: Problem[]): Readonly<Record<string, OwnBody>> {
+    const found: Record<string, OwnBody> = {};
+    for (const [id, stored] of [...ownBodiesOf(this.doc).entries()].sort(([a], [b]) => (a < b ? -1 : 1))) {
+      const read = ownBodyIdSchema.safeParse(id).success ? this.ownBody(stored) : "its id is damaged";
+      if (typeof read !== "string") found[id] = read;
+      else
+        problems.push({
+          code: "unreadable-body",
+          severity: "error",
+          text: `The body ${id.slice(0, 40)} of this page cannot be read: ${read}. Choose it anew.`,
+        });
+    }
+    return found;
+  }
+
+  private ownBody(stored: unknown): OwnBody | string {
+    if (typeof stored !== "object" || stored === null) return "it is no body";
+    let read = this.bodies.get(stored);
+    if (read === undefined) {
+      const parsed = ownBodySchema.safeParse(stored);
+      this.bodies.set(stored, (read = parsed.success ? parsed.data : (parsed.error.issues[0]?.message ?? "it has another form")));
+    }
+    return read;
   }
 
   private one(key: string, map: BlockMap): Cached {
@@ -93,8 +121,9 @@ export function readPage(doc: Y.Doc): PageReading {
 
 /** The page document (JSON) of a live page, without its bin (rule D2). */
 export function toPageDocument(doc: Y.Doc): PageDocument {
-  const { title, bodies, blocks } = readPage(doc);
+  const { title, bodies, ownBodies, blocks } = readPage(doc);
   const empty = pageOf(doc).get("empty");
-  const named = Object.keys(bodies).length > 0 || (Array.isArray(empty) && empty.includes("bodies"));
-  return { format: PAGE_FORMAT, title, ...(named ? { bodies } : {}), blocks: blocks.map((b) => b.block) };
+  const isThere = (field: string, held: object): boolean => Object.keys(held).length > 0 || (Array.isArray(empty) && empty.includes(field));
+  const named = { ...(isThere("bodies", bodies) ? { bodies } : {}), ...(isThere("ownBodies", ownBodies) ? { ownBodies } : {}) };
+  return { format: PAGE_FORMAT, title, ...named, blocks: blocks.map((b) => b.block) };
 }

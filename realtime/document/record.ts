@@ -1,7 +1,7 @@
 import * as Y from "yjs";
 import { canonical, isSame } from "./entryEdits";
-import { isNew, newItems, partOf } from "./roles";
-import { attributedLists, blocksOf, isBlockKind, listOf, listsOf, storedEntry, type BlockMap, type EntryMap, type ListName } from "./shape";
+import { newItems, partOf, standingBefore } from "./roles";
+import { attributedLists, blocksOf, isBlockKind, listOf, listsOf, storedEntry, type BlockMap, type ListName } from "./shape";
 
 type Entry = Readonly<Record<string, unknown>>;
 
@@ -18,15 +18,6 @@ const entryIn = (item: Y.Item | null): Entry | null => {
   if (!(item?.content instanceof Y.ContentAny)) return null;
   return storedEntry(item.content.arr[item.content.arr.length - 1])?.entry ?? null;
 };
-
-/** The item that stood at a key before the transaction; `null` where none did. */
-function standingBefore(transaction: Y.Transaction, map: EntryMap, key: string): Y.Item | null {
-  let item = map._map.get(key) ?? null;
-  while (item !== null && isNew(transaction, item)) item = item.left;
-  if (item === null) return null;
-  // Deleted before the transaction: its content was collected, or the delete set does not name it.
-  return item.deleted && !Y.isDeleted(transaction.deleteSet, item.id) ? null : item;
-}
 
 /**
  * What a transaction did to the attributed lists. Two concurrent amendments of one value are both here: the loser's

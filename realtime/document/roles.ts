@@ -1,10 +1,11 @@
 import * as Y from "yjs";
-import { blocksOf, bodiesOf, isBlockKind, isListOf, pageOf, type BlockKind, type BlockMap, type EntryMap, type ListName } from "./shape";
+import { blocksOf, bodiesOf, isBlockKind, isListOf, ownBodiesOf, pageOf, type BlockKind, type BlockMap, type EntryMap, type ListName } from "./shape";
 
 /** What a shared type is on the page, by where it stands. */
 export type Part =
   | { readonly is: "page"; readonly map: Y.Map<unknown> }
   | { readonly is: "bodies"; readonly map: Y.Map<unknown> }
+  | { readonly is: "ownBodies"; readonly map: Y.Map<unknown> }
   | { readonly is: "blocks"; readonly map: Y.Map<BlockMap> }
   | { readonly is: "block"; readonly key: string; readonly map: BlockMap }
   | { readonly is: "list"; readonly key: string; readonly kind: BlockKind; readonly list: ListName; readonly map: EntryMap }
@@ -14,6 +15,7 @@ export type Part =
 export function partOf(doc: Y.Doc, type: unknown): Part | null {
   if (type === pageOf(doc)) return { is: "page", map: pageOf(doc) };
   if (type === bodiesOf(doc)) return { is: "bodies", map: bodiesOf(doc) };
+  if (type === ownBodiesOf(doc)) return { is: "ownBodies", map: ownBodiesOf(doc) };
   if (type === blocksOf(doc)) return { is: "blocks", map: blocksOf(doc) };
   if (!(type instanceof Y.AbstractType)) return null;
   const item = type._item;
@@ -40,6 +42,15 @@ export function* newItems(transaction: Y.Transaction): Generator<Y.Item> {
       if (struct instanceof Y.Item) yield struct;
     }
   }
+}
+
+/** The item that stood at a key before the transaction; `null` where none did. */
+export function standingBefore(transaction: Y.Transaction, map: Y.Map<unknown>, key: string): Y.Item | null {
+  let item = map._map.get(key) ?? null;
+  while (item !== null && isNew(transaction, item)) item = item.left;
+  if (item === null) return null;
+  // Deleted before the transaction: its content was collected, or the delete set does not name it.
+  return item.deleted && !Y.isDeleted(transaction.deleteSet, item.id) ? null : item;
 }
 
 /** True for something this transaction brought. */

@@ -7,6 +7,7 @@ import * as Y from "yjs";
  * ```
  * page    { shape, title, empty? }            root map
  * bodies  { alias: id }                       root map
+ * ownBodies { id: body }                      root map; what an id stands for never changes
  * blocks  { key: block }                      root map; a block's key never changes
  *   block { kind, id, place, …plain fields, binned? }
  *         text                                Y.Text, formulas and notes
@@ -126,6 +127,8 @@ export function plainEntry(value: object): Record<string, unknown> {
 export const blocksOf = (doc: Y.Doc): Y.Map<BlockMap> => doc.getMap<BlockMap>("blocks");
 export const pageOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("page");
 export const bodiesOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("bodies");
+/** The group's own bodies that the page uses, whole, by id. */
+export const ownBodiesOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("ownBodies");
 
 /**
  * An empty document whose roots are what pages have there. A root that an update brings before anybody asked for it is
@@ -133,7 +136,7 @@ export const bodiesOf = (doc: Y.Doc): Y.Map<unknown> => doc.getMap("bodies");
  */
 export function emptyDoc(): Y.Doc {
   const doc = new Y.Doc();
-  for (const root of [pageOf, blocksOf, bodiesOf]) root(doc);
+  for (const root of [pageOf, blocksOf, bodiesOf, ownBodiesOf]) root(doc);
   return doc;
 }
 

@@ -16,7 +16,7 @@ const mantle: OwnBody = {
 };
 const remembered: OwnBody = { ...mantle, source: "From memory", fromMemory: true };
 
-function page(over: Partial<PageDocument> & { blocks: unknown[] }): PageDocument {
+function page(over: Omit<Partial<PageDocument>, "blocks"> & { readonly blocks: readonly object[] }): PageDocument {
   return readPageDocument({ format: "cotectic-page/1", title: "", bodies: { M: "OWN_M_1" }, ownBodies: { OWN_M_1: mantle }, ...over });
 }
 function lines(results: PageResults, handle = "f"): Record<string, readonly [value: number | undefined, sigma: number | null | undefined]> {
@@ -144,7 +144,7 @@ describe("a page with a body of its own", () => {
             target: { expression: "Mg / Si", equals: { value: 1, basis: "mass" } },
           }),
           budget({ id: "c", start: { body: "BSE_MS95" }, target: { expression: "Mg / Si", equals: { body: "OWN_M_1" } } }),
-        ] as PageDocument["blocks"],
+        ],
       }),
     );
     const [b, c] = [results.blocks.get("b"), results.blocks.get("c")];
@@ -171,7 +171,7 @@ describe("a page with a body of its own", () => {
             steps: [{ do: "add", what: { element: "Si" }, amount: "solve" }],
             target: { expression: "Mg / Si", equals: { body: "CI" } },
           }),
-        ] as PageDocument["blocks"],
+        ],
       }),
     );
     const b = results.blocks.get("b");
@@ -205,7 +205,7 @@ describe("a page with a body of its own", () => {
           { id: "d", kind: "data", typed: rows, columns: [{ name: "Sample", role: "sample" }, ...["Mg", "Al", "Si"].flatMap(column)] },
           { id: "t", kind: "trend", data: "d", x: "Al / Si", y: "Mg / Si", method: "york" },
           { id: "p", kind: "plot", plot: "scatter", x: "Al / Si", y: "Mg / Si", drawn: [{ data: "d" }, { bodies: ["M", "OWN_M_1"], ellipses: "1 sigma" }] },
-        ] as unknown as PageDocument["blocks"],
+        ],
       }),
     );
     const [t, p] = [results.blocks.get("t"), results.blocks.get("p")];
@@ -225,7 +225,7 @@ describe("a page with a body of its own", () => {
 
   it("moves with its content and stays the same object where nothing changed", () => {
     const engine = createEngine();
-    const blocks = [formula("a = at(Mg / Si, M)")] as unknown as PageDocument["blocks"];
+    const blocks = [formula("a = at(Mg / Si, M)")];
     const first = engine.evaluate(page({ blocks }));
     const again = engine.evaluate(page({ blocks }));
     expect(again.blocks.get("f")).toBe(first.blocks.get("f"));

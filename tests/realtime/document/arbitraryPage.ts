@@ -98,7 +98,27 @@ const plot = some(
 
 export const arbitraryBlock = fc.oneof(data, formula, note, trend, budget, plot) as fc.Arbitrary<Block>;
 
+/** Species of different elements, so that none is given twice. */
+const ownValue = some(
+  { species: fc.constantFrom("MgO", "SiO2", "Al", "FeOt", "La", "CaO"), unit: fc.constantFrom("wt%", "µg/g", "mg/g"), value: fc.integer({ min: 0, max: 100 }) },
+  { sigma: fc.double({ min: 0, max: 5, noNaN: true }).map((v) => v + 0) },
+);
+const ownBody = some(
+  {
+    name: word.map((text) => `x${text}`),
+    source: fc.constantFrom("10.1000/xyz", "Anon. 2030, J. Rocks 1, 2"),
+    fromMemory: fc.boolean(),
+    values: fc.uniqueArray(ownValue, { minLength: 1, maxLength: 4, selector: (v) => v.species }),
+  },
+  { description: word },
+);
+const ownBodies = fc.dictionary(
+  fc.stringMatching(/^[A-Za-z][A-Za-z0-9_]{0,8}$/).map((code) => `OWN_${code}_1`),
+  ownBody,
+  { maxKeys: 3, ...plain },
+);
+
 export const arbitraryPage: fc.Arbitrary<PageDocument> = some(
   { format: fc.constant("cotectic-page/1" as const), title: word, blocks: fc.uniqueArray(arbitraryBlock, { maxLength: 6, selector: (b) => b.id }) },
-  { bodies: fc.dictionary(handle, word, { maxKeys: 3, ...plain }) },
+  { bodies: fc.dictionary(handle, word, { maxKeys: 3, ...plain }), ownBodies },
 ).map((page) => JSON.parse(JSON.stringify(page)) as PageDocument);

@@ -84,6 +84,7 @@ export function expressionsOf(block: Block): Expression[] {
         ...expression("x", plotAxis(block, "x"), main),
         ...expression("y", plotAxis(block, "y"), main),
         ...expression("z", block.z, main),
+        ...expression("per", block.per, main),
         ...block.drawn.flatMap((drawn, i) =>
           "data" in drawn
             ? [

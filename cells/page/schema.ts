@@ -271,6 +271,8 @@ export const plotBlockSchema = z.strictObject({
   yAxis: axisSchema.optional(),
   /** Pattern plots: the body that normalises, and where elements stand: at their temperature, evenly in its order, or as typed. */
   normalise: z.string().max(80).optional(),
+  /** Pattern plots: what every value is divided by first, such as Si, so that a sample with more water or carbon is not lower in everything. */
+  per: expressionSchema.optional(),
   order: z.union([z.enum(["condensation temperature", "condensation order"]), z.array(z.string().max(3)).max(100)]).optional(),
 });
 

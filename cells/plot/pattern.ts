@@ -15,8 +15,8 @@ import { valueOnBody } from "./valueOnBody";
 /** What the lines of one pattern share. */
 interface Pattern {
   readonly drawing: Drawing;
-  /** The body as the block writes it. */
-  readonly normaliser: string;
+  /** What a value comes to: divided by what the pattern is relative to, then by the same on the body. */
+  readonly written: (text: string) => string;
   readonly order: PatternOrder;
   readonly isLog: boolean;
   /** Layers that are not drawn themselves, since their means are, and still hold the samples that count. */
@@ -40,7 +40,9 @@ export function evaluatePattern(drawing: Drawing): PlotResult {
   });
   if (normaliser !== undefined && body !== undefined) {
     drawing.bodiesUsed[normaliser] = body.id;
-    const pattern: Pattern = { drawing, normaliser, order, isLog: block.yAxis?.scale === "log", counted };
+    const per = block.per === undefined || block.per.trim() === "" ? "" : ` / (${block.per})`;
+    const written = (text: string): string => `norm((${text})${per}, ${writeName(normaliser)})`;
+    const pattern: Pattern = { drawing, written, order, isLog: block.yAxis?.scale === "log", counted };
     block.drawn.forEach((drawn, place) => {
       if (drawn.hidden === true) return;
       const made = drawing.attempt(`drawn[${place}]`, () => layersOf(pattern, drawn, place));
@@ -53,7 +55,8 @@ export function evaluatePattern(drawing: Drawing): PlotResult {
   const x: AxisInfo = order.isByTemperature
     ? { expression: "", label: "50 % condensation temperature", unit: "K", basis: null }
     : { expression: "", label: columns.map(({ of }) => of).join(", "), unit: "1", basis: null };
-  const y: AxisInfo = { expression: "", label: `normalised to ${by}`, unit: "1", basis: null };
+  const relative = block.per === undefined || block.per.trim() === "" ? "" : `relative to ${block.per.trim()}, `;
+  const y: AxisInfo = { expression: "", label: `${relative}normalised to ${by}`, unit: "1", basis: null };
   return {
     kind: "plot",
     plot: "pattern",
@@ -88,14 +91,14 @@ function layersOf(pattern: Pattern, drawn: Drawn, place: number): PlotLayer[] {
   throw new CellError("not-drawn-here", "Trends, crossings and budget paths can be drawn on a scatter plot only. Take this one off the pattern.");
 }
 
-function samplesLayers({ drawing, normaliser, order, isLog, counted }: Pattern, drawn: SamplesDrawn, place: number): PlotLayer[] {
+function samplesLayers({ drawing, written, order, isLog, counted }: Pattern, drawn: SamplesDrawn, place: number): PlotLayer[] {
   if (drawing.context.block(drawn.data)?.kind !== "data") return [];
   const table = tableOf(drawing, drawn, place);
   const chosen = chosenRows(drawing, drawn, place);
   let outside = 0;
   const values = columnsOf(drawing, drawn, place, order).flatMap((column): PatternValues[] => {
     const made = drawing.attempt(column.field, () => {
-      const placed = { text: `norm((${column.text}), ${writeName(normaliser)})`, data: drawn.data, field: column.field };
+      const placed = { text: written(column.text), data: drawn.data, field: column.field };
       const evaluated = drawing.evaluate(placed);
       requireValuePerSample(evaluated, table, { ...placed, text: column.text });
       const { points, off } = pointsAt(evaluated, column.place, table.rows, table.setAside, chosen, isLog);
@@ -109,7 +112,25 @@ function samplesLayers({ drawing, normaliser, order, isLog, counted }: Pattern, 
   const layers = values.map(({ of, points }): PlotLayer => ({ ...samplesOf(table, drawn, place, 0, points), of, joined }));
   if (drawn.join !== "class") return layers;
   counted.push(...layers);
+  warnOfDetection(drawing, `drawn[${place}]`, values, table.classes, chosen);
   return [{ what: "means", drawn: place, data: drawn.data, classes: classMeans(values, table.classes) }];
+}
+
+/** A mean over the samples that were above detection alone is too high, and must not pass for that of the class. */
+function warnOfDetection(drawing: Drawing, field: string, values: readonly PatternValues[], classes: readonly string[], chosen: Uint8Array | undefined): void {
+  const found = values.flatMap(({ of, points }): string[] => {
+    const below = new Map<string, number>();
+    const present = new Set<string>();
+    for (let row = 0; row < classes.length; row++) {
+      if (chosen !== undefined && chosen[row] !== 1) continue;
+      const name = classes[row] ?? "";
+      if (points.state[row] === State.present) present.add(name);
+      else if (points.state[row] === State.belowDetection) below.set(name, (below.get(name) ?? 0) + 1);
+    }
+    return [...below].flatMap(([name, count]) => (present.has(name) ? [`${of} of ${name === "" ? "no class" : name} (${count})`] : []));
+  });
+  if (found.length > 0)
+    drawing.warn("mean-without-detection", field, `Values below detection are not in the means, so these are too high: ${found.join(", ")}.`);
 }
 
 function pointsAt(
@@ -142,7 +163,7 @@ function pointsAt(
 }
 
 /** Bodies against the same: one mark for each value they give, of those the samples draw; of all elements where none are drawn. */
-function bodiesOf({ drawing, normaliser, order }: Pattern, names: readonly string[], place: number): PlotLayer {
+function bodiesOf({ drawing, written, order }: Pattern, names: readonly string[], place: number): PlotLayer {
   const field = `drawn[${place}].bodies`;
   const { block, context } = drawing;
   const drawnTexts = block.drawn.flatMap((drawn) => ("data" in drawn && drawn.hidden !== true ? textsOf(drawing, drawn) : []));
@@ -161,7 +182,7 @@ function bodiesOf({ drawing, normaliser, order }: Pattern, names: readonly strin
     return texts.flatMap((text) => {
       const of = nameOf(text);
       if (needsTemperature && condensationTemperature(of) === undefined) return [];
-      const evaluated = valueOnBody(scope, `norm((${text}), ${writeName(normaliser)})`, name, { block: block.id, field });
+      const evaluated = valueOnBody(scope, written(text), name, { block: block.id, field });
       if (evaluated instanceof CellError) return [];
       drawing.bodiesUsed[name] = body.id;
       const sigma = evaluated.sigma[0] ?? Number.NaN;

@@ -5,7 +5,7 @@ export type Rewrite = (expression: string) => string;
 const isPlain = (value: unknown): value is Plain => typeof value === "object" && value !== null && !Array.isArray(value);
 
 /** Fields and keys of entries that are expressions. */
-const expressionKeys: ReadonlySet<string> = new Set(["x", "y", "z", "where", "expression"]);
+const expressionKeys: ReadonlySet<string> = new Set(["x", "y", "z", "per", "where", "expression"]);
 /** Fields and keys of entries that are lists of expressions. */
 const expressionListKeys: ReadonlySet<string> = new Set(["values", "report"]);
 

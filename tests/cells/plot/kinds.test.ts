@@ -150,6 +150,17 @@ describe("a pattern", () => {
     expect(result.columns?.map(({ of }) => of)).toEqual(["Al", "Si"]);
   });
 
+  it("is relative to an element where one is given, on samples and bodies alike", () => {
+    const results = evaluate(data(), plot([{ data: "ch", values: ["Al", "Si"] }, { bodies: ["CI"] }], { per: "Si" }));
+    const result = resultOf(results, "p", "plot");
+    expect(result.y.label).toBe("relative to Si, normalised to CI (CI_PLJ14)");
+    const [al, si, bodies] = result.layers;
+    // CI: Al 0.840, Si 10.70 wt% (Palme, Lodders & Jones 2014); S1: Al2O3 3.2, SiO2 34.0 wt%.
+    expect(al?.what === "samples" ? al.points.y[0] : undefined).toBeCloseTo((3.2 * 0.52925) / (34 * 0.46744) / (0.84 / 10.7), 3);
+    expect(si?.what === "samples" ? [si.points.y[0], si.points.sigmaY[0]] : undefined).toEqual([1, 0]);
+    expect(bodies?.what === "bodies" ? bodies.bodies.map(({ y }) => y) : undefined).toEqual([1, 1]);
+  });
+
   it("draws class means with the σ of the mean, and the normalising body's once", () => {
     const results = evaluate(data(), plot([{ data: "ch", values: ["Al", "Ca"], join: "class" }]));
     const result = resultOf(results, "p", "plot");
@@ -172,6 +183,9 @@ describe("a pattern", () => {
     expect(means.classes[1]?.points.map(({ of, n }) => [of, n])).toEqual([
       ["Al", 4],
       ["Ca", 3],
+    ]);
+    expect(result.problems.map(({ code, text }) => [code, text])).toEqual([
+      ["mean-without-detection", "Values below detection are not in the means, so these are too high: Ca of CO (1)."],
     ]);
     expect(means.classes[2]?.points.map(({ of, sigmaY }) => [of, sigmaY])).toEqual([["Al", null]]);
   });

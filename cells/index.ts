@@ -57,6 +57,8 @@ export type {
 } from "./page/schema";
 
 // Tables
+export { ownSigmaKinds, readOwnTable } from "./table/readOwnTable";
+export type { OwnSigmaKind, OwnTable } from "./table/readOwnTable";
 export { referencesOf } from "./table/references";
 export type { ColumnCorrelation, QuantityColumn, RowOrigin, Table, TableColumn, TextColumn } from "./table/table";
 

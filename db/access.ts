@@ -36,6 +36,7 @@ export const rules = {
     "change role": leads,
     "remove person": leads,
     "create page": editors,
+    "add body": editors,
   },
   page: {
     read: everyone,

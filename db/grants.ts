@@ -1,7 +1,7 @@
 import type pg from "pg";
 
 /** Tables whose rows the application adds and never changes. The triggers say the same to everybody, the owner included. */
-export const frozenTables = ["snapshots", "snapshot_files", "contents", "amendment_log"] as const;
+export const frozenTables = ["snapshots", "snapshot_files", "contents", "amendment_log", "group_bodies"] as const;
 
 /**
  * Gives the application's role its rights: to read and write rows, to add to frozen tables, and to change no table.

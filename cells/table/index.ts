@@ -10,5 +10,7 @@ export { identifier, proposeMapping } from "./propose";
 export type { Proposal } from "./propose";
 export { quotas } from "./raw";
 export type { DecimalSign, RawTable } from "./raw";
+export { ownSigmaKinds, readOwnTable } from "./readOwnTable";
+export type { OwnSigmaKind, OwnTable } from "./readOwnTable";
 export { readTable, shapeTable } from "./read";
 export type { ColumnCorrelation, QuantityColumn, RowOrigin, Table, TableColumn, TextColumn } from "./table";

@@ -45,6 +45,7 @@ export default async function GroupPage({ params }: Props) {
     <>
       <SiteHeader>
         <Link href={`/groups/${groupId}/people`}>People</Link>
+        <Link href={`/groups/${groupId}/bodies`}>Bodies</Link>
         <Link href="/start">Groups</Link>
         <Link href="/account">Account</Link>
       </SiteHeader>

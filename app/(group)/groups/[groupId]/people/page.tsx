@@ -34,6 +34,7 @@ export default async function PeoplePage({ params }: { readonly params: Promise<
     <>
       <SiteHeader home={`/groups/${groupId}`} title={group?.name}>
         <Link href={`/groups/${groupId}`}>Pages</Link>
+        <Link href={`/groups/${groupId}/bodies`}>Bodies</Link>
         <Link href="/account">Account</Link>
       </SiteHeader>
       <main className="mx-auto grid max-w-[760px] gap-10 px-4 pt-12 pb-16">

@@ -96,8 +96,8 @@ export function FrozenPage({ snapshot, groupName, groupId, role, document: page,
     const store = createPageStore(initialState({ pageId: snapshot.pageId, mode: "frozen", title: snapshot.title, document: page, me: null }), actions);
     const start = () => {
       engine = startPageEngine(store, frozenSourceUrl(snapshot.id, files));
-      const { title, bodies, blocks } = store.get();
-      engine.update({ title, bodies, blocks });
+      const { title, bodies, ownBodies, blocks } = store.get();
+      engine.update({ title, bodies, ownBodies, blocks });
       return () => {
         engine?.stop();
         engine = null;

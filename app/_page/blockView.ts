@@ -24,6 +24,7 @@ function lookedAt(state: PageState, key: string): readonly unknown[] {
     state.edits,
     state.live,
     state.bodies,
+    state.ownBodies,
     state.settings,
     state.picked,
     state.traced,
@@ -57,6 +58,9 @@ function liveView(store: PageStore): PageView {
     },
     get bodies() {
       return store.get().bodies;
+    },
+    get ownBodies() {
+      return store.get().ownBodies;
     },
     get results() {
       return store.get().results;

@@ -1,4 +1,4 @@
-import type { Block, Engine, PageResults, RowId, TraceNode, TraceRequest } from "@/cells";
+import type { Block, Engine, OwnBody, PageResults, RowId, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock, PageEdits } from "@/realtime/document";
 import type { Awareness } from "y-protocols/awareness";
 import type { UndoManager } from "yjs";
@@ -64,6 +64,8 @@ export interface PageView {
   readonly blocks: readonly PageBlock[];
   readonly bin: readonly PageBlock[];
   readonly bodies: Readonly<Record<string, string>>;
+  /** The group's own bodies that the page carries, by id. */
+  readonly ownBodies: Readonly<Record<string, OwnBody>>;
   /** null until the engine has answered once. */
   readonly results: PageResults | null;
   /** True while the engine works on something newer than `results`. */

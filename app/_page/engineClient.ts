@@ -1,4 +1,4 @@
-import type { BlockResult, Column, PageResults, TraceNode, TraceRequest } from "@/cells";
+import type { BlockResult, Column, OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock } from "@/realtime/document";
 import type { FileProposal, FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
 import { unpackPlot } from "./plotPacking";
@@ -16,6 +16,7 @@ export interface WorkerLike {
 export interface PageInput {
   readonly title: string;
   readonly bodies: Readonly<Record<string, string>>;
+  readonly ownBodies: Readonly<Record<string, OwnBody>>;
   readonly blocks: readonly PageBlock[];
 }
 
@@ -89,7 +90,7 @@ export function createEngineClient(
   };
 
   return {
-    update({ title, bodies, blocks }) {
+    update({ title, bodies, ownBodies, blocks }) {
       const changed: [string, PageBlock["block"]][] = [];
       const sources: Record<string, string> = {};
       const present = new Set<string>();
@@ -105,7 +106,7 @@ export function createEngineClient(
         }
       }
       for (const key of given.keys()) if (!present.has(key)) given.delete(key);
-      worker.postMessage({ type: "page", version: ++version, title, bodies, order: blocks.map((b) => b.key), changed, sources });
+      worker.postMessage({ type: "page", version: ++version, title, bodies, ownBodies, order: blocks.map((b) => b.key), changed, sources });
     },
     async trace(request) {
       const answer = await ask((id) => ({ type: "trace", id, request }));

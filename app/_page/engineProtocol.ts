@@ -1,4 +1,4 @@
-import type { Block, BlockResult, Column, DataResult, PlotResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
+import type { Block, BlockResult, Column, DataResult, OwnBody, PlotResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
 import type { PackedPlot } from "./plotPacking";
 import type { PackedTable } from "./tablePacking";
 
@@ -16,6 +16,7 @@ export interface PageMessage {
   readonly version: number;
   readonly title: string;
   readonly bodies: Readonly<Record<string, string>>;
+  readonly ownBodies: Readonly<Record<string, OwnBody>>;
   /** Keys of all blocks in the page's order. */
   readonly order: readonly string[];
   readonly changed: readonly (readonly [key: string, block: Block])[];

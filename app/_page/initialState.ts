@@ -21,6 +21,7 @@ export function initialState({ pageId, mode, title, document, me, people }: Init
     blocks: document === null ? [] : blocksOfDocument(document),
     bin: [],
     bodies: document?.bodies ?? {},
+    ownBodies: document?.ownBodies ?? {},
     results: null,
     loading: new Set(),
     calculating: true,

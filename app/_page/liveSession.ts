@@ -86,9 +86,15 @@ export function createLiveSession(props: LivePageProps, connect: Connect): LiveS
       frame = 0;
       if (!isReady) return;
       const old = store.get();
-      const { title, bodies, blocks, bin } = readPage(connection.doc);
-      const shared = { title, bodies: shareStructure(old.bodies, bodies), blocks: shareStructure(old.blocks, blocks), bin: shareStructure(old.bin, bin) };
-      const changes = shared.bodies !== old.bodies || shared.blocks !== old.blocks;
+      const { title, bodies, ownBodies, blocks, bin } = readPage(connection.doc);
+      const shared = {
+        title,
+        bodies: shareStructure(old.bodies, bodies),
+        ownBodies: shareStructure(old.ownBodies, ownBodies),
+        blocks: shareStructure(old.blocks, blocks),
+        bin: shareStructure(old.bin, bin),
+      };
+      const changes = shared.bodies !== old.bodies || shared.ownBodies !== old.ownBodies || shared.blocks !== old.blocks;
       store.set({ ...shared, ...(changes ? { calculating: true } : {}) });
       if (changes) engine.update(shared);
     };

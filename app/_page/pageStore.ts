@@ -1,4 +1,4 @@
-import type { PageResults, TraceNode, TraceRequest } from "@/cells";
+import type { OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { Draft } from "@/realtime/client";
 import type { PageBlock, PageEdits } from "@/realtime/document";
 import type { LiveText, PageMode, PagePlace, PickedRow, Presence, SaveState, Settings } from "./contract";
@@ -12,6 +12,8 @@ export interface PageState {
   readonly blocks: readonly PageBlock[];
   readonly bin: readonly PageBlock[];
   readonly bodies: Readonly<Record<string, string>>;
+  /** The group's own bodies that the page carries, by id. */
+  readonly ownBodies: Readonly<Record<string, OwnBody>>;
   readonly results: PageResults | null;
   /** Handles whose source is still on its way. */
   readonly loading: ReadonlySet<string>;

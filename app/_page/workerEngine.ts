@@ -120,7 +120,7 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
       const block = blocks.get(key);
       if (block !== undefined) ordered.push(block);
     }
-    return { format: PAGE_FORMAT, title: page?.title ?? "", bodies: { ...page?.bodies }, blocks: ordered };
+    return { format: PAGE_FORMAT, title: page?.title ?? "", bodies: { ...page?.bodies }, ownBodies: { ...page?.ownBodies }, blocks: ordered };
   };
 
   const evaluate = () => {

@@ -66,7 +66,7 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
         isReadOnly
           ? []
           : [
-              formulaCompletion(() => suggestionsFor(latest.current.block, latest.current.view.results, latest.current.view.bodies)),
+              formulaCompletion(() => suggestionsFor(latest.current.block, latest.current.view.results, latest.current.view.bodies, latest.current.view.ownBodies)),
               keymap.of(completionKeymap),
             ],
         watchText(setWritten),

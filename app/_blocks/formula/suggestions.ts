@@ -1,5 +1,5 @@
 import { counted } from "@/app/_ui/concise";
-import { functions, writeName, type FormulaBlock, type PageResults } from "@/cells";
+import { functions, writeName, type FormulaBlock, type OwnBody, type PageResults } from "@/cells";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
 
 /** Something that may be written at the caret. */
@@ -23,7 +23,12 @@ export function elementsIn(species: string): readonly string[] {
  * What may be written in a formula block: columns of its data, the elements they hold, other lines, results of trends and
  * budgets, bodies, functions.
  */
-export function suggestionsFor(block: FormulaBlock, results: PageResults | null, bodies: Readonly<Record<string, string>>): Suggestion[] {
+export function suggestionsFor(
+  block: FormulaBlock,
+  results: PageResults | null,
+  bodies: Readonly<Record<string, string>>,
+  ownBodies: Readonly<Record<string, OwnBody>> = {},
+): Suggestion[] {
   const found = new Map<string, Suggestion>();
   const add = (label: string, detail: string, help: string, boost: number, insert = writeName(label)): void => {
     if (!found.has(label)) found.set(label, { label, insert, detail, help, boost });
@@ -61,6 +66,8 @@ export function suggestionsFor(block: FormulaBlock, results: PageResults | null,
     else if (result.kind === "budget") add(`${handle}.solved`, result.solved?.unit ?? "", `Solved amount of the budget ${handle}.`, 0, `${handle}.solved`);
   }
   for (const [alias, compilation] of Object.entries(bodies)) add(alias, "body", `Stands for ${compilation} on this page.`, 1);
+  for (const [id, { name, source, fromMemory }] of Object.entries(ownBodies))
+    add(id, name, fromMemory ? "The group's own, written down from memory." : `The group's own, from ${source}.`, 0);
   for (const f of functions) add(f.name, f.form, f.help, -1, `${f.name}(`);
   return Array.from(found.values());
 }

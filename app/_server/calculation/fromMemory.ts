@@ -1,4 +1,4 @@
-import { isFromMemory, keyElement, lookupBody, parseChemical, type PageDocument } from "@/cells";
+import { bodyLookup, isFromMemory, keyElement, parseChemical, type PageDocument } from "@/cells";
 import type { MemoryValue } from "./tasks";
 
 /**
@@ -10,8 +10,9 @@ import type { MemoryValue } from "./tasks";
 export function valuesFromMemory(page: PageDocument, bodies: Readonly<Record<string, string>>): MemoryValue[] {
   const elements = elementsNamed(page);
   const found: MemoryValue[] = [];
+  const lookup = bodyLookup({}, page.ownBodies);
   for (const id of [...new Set(Object.values(bodies))].sort()) {
-    for (const { species, value, unit, source, checked } of lookupBody(id)?.values ?? []) {
+    for (const { species, value, unit, source, checked } of lookup(id)?.values ?? []) {
       const element = elementOf(species);
       if (isFromMemory(checked) && (elements === "all" || (element !== undefined && elements.has(element))))
         found.push({ body: id, species, value, unit, source });

@@ -2,7 +2,7 @@ import { describe, expect, it } from "vitest";
 import { createEngineClient, type EngineClient, type WorkerLike } from "@/app/_page/engineClient";
 import { createWorkerEngine } from "@/app/_page/workerEngine";
 import type { FromWorker, ToWorker } from "@/app/_page/engineProtocol";
-import { CellError, type Block, type BlockResult, type Engine, type PageResults } from "@/cells";
+import { CellError, type Block, type OwnBody, type BlockResult, type Engine, type PageResults } from "@/cells";
 import type { PageBlock } from "@/realtime/document";
 import { exampleTable } from "./table";
 
@@ -93,9 +93,10 @@ function channel(fetchBytes: (url: string) => Promise<Uint8Array> = () => Promis
   return { client, seen, sent, settle, evaluated };
 }
 
-const on = (...blocks: Block[]): { title: string; bodies: Record<string, string>; blocks: PageBlock[] } => ({
+const on = (...blocks: Block[]): { title: string; bodies: Record<string, string>; ownBodies: Record<string, OwnBody>; blocks: PageBlock[] } => ({
   title: "t",
   bodies: {},
+  ownBodies: {},
   blocks: blocks.map((block, i) => ({ key: block.id, order: String(i), block })),
 });
 const note: Block = { id: "n", kind: "note", text: "a" };

@@ -10,6 +10,8 @@ const folders = readdirSync(examples, { withFileTypes: true })
   .sort();
 
 const read = (folder: string, file: string): string => readFileSync(path.join(examples, folder, file), "utf8");
+/** Without its rules of thumb, whose figures are of other pages: tests/cells/facts.test.ts holds those. */
+const readmeOf = (folder: string): string => read(folder, "README.md").split("\n## Rules of thumb")[0] ?? "";
 const pageOf = (folder: string): PageDocument => readPageDocument(JSON.parse(read(folder, "page.json")));
 const expectedOf = (folder: string): object => JSON.parse(read(folder, "expected.json"));
 const filesOf = (page: PageDocument): string[] => [
@@ -96,14 +98,14 @@ describe.each(folders)("the example %s", (folder) => {
 
   it("quotes in its README only what expected.json holds", () => {
     const expected = expectedOf(folder);
-    const quoted = quotedIn(read(folder, "README.md"));
+    const quoted = quotedIn(readmeOf(folder));
     expect(quoted.length).toBeGreaterThan(3);
     for (const { where, text } of quoted) expect({ where, text: asQuoted(at(expected, where), text) }).toEqual({ where, text });
   });
 
   it("has no number with a decimal point in its README that is neither a result nor in its files", () => {
     const page = pageOf(folder);
-    const readme = read(folder, "README.md");
+    const readme = readmeOf(folder);
     const known = [JSON.stringify(page), ...filesOf(page).map((file) => read(folder, file)), ...quotedIn(readme).map(({ text }) => text)].join("\n");
     const prose = readme.replace(/^\|.*\|$/gmu, "").replace(/`[^`]*`/gu, "");
     const unknown = (prose.match(/\d+\.\d+(?:\(\d+\))?/gu) ?? []).filter((number) => !known.includes(number));

@@ -231,15 +231,74 @@ describe("1σ mixed with 2σ", () => {
     const cell = (node === null ? [] : nodesOf(node)).find(({ kind }) => kind === "cell");
     expect(cell?.cell).toMatchObject({ rawSigma: "0.4", sigmaHeader: "2s MgO" });
   });
+
+  it("does not happen to percent or to intervals: however 1σ of 0.2 is written, it is 0.2, in a fit's weights too", () => {
+    const kinds = { "1 sigma": 0.2, "2 sigma": 0.4, "1 sigma relative %": 2, "2 sigma relative %": 4, "95 % interval": 1.959964 * 0.2 };
+    for (const [as, written] of Object.entries(kinds)) {
+      const text = `x,s,y,sy\n10,${written},1,0.1\n10,${written},2,0.1\n10,${written},4,0.1\n`;
+      const columns = [
+        { header: "x", name: "x", role: "quantity", unit: "1" },
+        { header: "s", role: "uncertainty", of: "x", as },
+      ];
+      const results = freshEngine(text).evaluate(pageOf([{ id: "ch", kind: "data", source: { file: "ch.csv" }, columns }, formula("one = x\nm = wmean(x)")]));
+      expect(lineOf(results, "one").sigma[0], as).toBeCloseTo(0.2, 6);
+      expect(lineOf(results, "m").sigma[0], as).toBeCloseTo(0.2 / Math.sqrt(3), 6);
+    }
+  });
 });
 
-describe("an unknown σ and a value below detection", () => {
-  it("are not taken as 0", () => {
-    const results = evaluate(data(), formula("ca = CaO\nsum = mean(CaO)"));
-    const json = resultsJson(results) as { blocks: { r: { lines: { value: unknown[]; sigma: unknown[]; state: string[] }[] } } };
-    const [ca] = json.blocks.r.lines;
-    expect(ca?.sigma[0]).toBeNull();
-    expect([ca?.value[6], ca?.state[6]]).toEqual([null, "below detection"]);
+describe("an unknown σ", () => {
+  const results = evaluate(
+    data(),
+    formula("ca = CaO\nratio = CaO / MgO\nmean_mg = mean(MgO)"),
+    { ...fit({ x: "MgO", y: "CaO" }) },
+    {
+      id: "b",
+      kind: "budget",
+      start: { body: "BSE" },
+      steps: [{ do: "share with metal", species: "Si", metalFraction: { value: 0.323 }, amount: "solve" }],
+      target: { expression: "Mg / Si", equals: { body: "CI" } },
+    },
+  );
+  const json = resultsJson(results) as {
+    blocks: { r: { lines: { value: unknown[]; sigma: unknown[]; sigmaIs?: unknown }[] }; b: { solved: { sigma: unknown; sigmaIs?: string } } };
+  };
+
+  it("is not taken as 0: it is null in results, and no σ at all is made of it", () => {
+    expect(json.blocks.r.lines[0]?.sigma).toEqual(new Array(9).fill(null));
+    expect(lineOf(results, "ca").sigma.some((sigma) => sigma === 0)).toBe(false);
+  });
+
+  it("makes what leans on it a lower bound that says so, never a σ like any other", () => {
+    const line = resultOf(results, "r", "formula").lines.find(({ name }) => name === "ratio");
+    // By hand for S1: the ratio's σ from MgO alone.
+    expect(line?.sigma[0]).toBeCloseTo(((2.6 / 24.1) * 0.2) / 24.1, 12);
+    expect(Array.from(line?.lowerBound ?? [])).toEqual([1, 1, 1, 1, 1, 1, 0, 1, 0]);
+    expect(json.blocks.b.solved.sigmaIs).toBe("lower bound");
+  });
+
+  it("leaves a sample out of a fit that weighs by σ, and the fit counts it", () => {
+    const trendResult = resultOf(results, "t", "trend");
+    expect(trendResult.leftOut).toMatchObject({ "without σ": 7 });
+    expect(trendResult.problems.some(({ code }) => code === "without-sigma")).toBe(true);
+    expect(trendResult.slope).toBeUndefined();
+  });
+});
+
+describe("“<” turned into 0", () => {
+  const results = evaluate(data(), formula("ca = CaO\nmean_ca = mean(CaO)\nleast_ca = least(CaO)\nratio = CaO / MgO\nsum = CaO + MgO"), {
+    id: "p",
+    kind: "plot",
+    plot: "scatter",
+    drawn: [{ data: "ch", x: "MgO", y: "CaO" }],
+  });
+
+  it("does not happen to the value: it has none, its state says why, and so has all that is made of it", () => {
+    const json = resultsJson(results) as { blocks: { r: { lines: { value: unknown[]; state: string[] }[] } } };
+    for (const i of [0, 3, 4]) expect([json.blocks.r.lines[i]?.value[6], json.blocks.r.lines[i]?.state[6]]).toEqual([null, "below detection"]);
+  });
+
+  it("does not happen to a mean, a minimum or a drawing: they leave it out and count it", () => {
     const counted = csv
       .trim()
       .split("\n")
@@ -247,7 +306,50 @@ describe("an unknown σ and a value below detection", () => {
       .map((row) => Number(row.split(",")[8] || Number.NaN))
       .filter(Number.isFinite);
     expect(counted).toHaveLength(7);
-    expect(lineOf(results, "sum").value[0]).toBeCloseTo(counted.reduce((a, b) => a + b, 0) / 7, 12);
+    expect(lineOf(results, "mean_ca").value[0]).toBeCloseTo(counted.reduce((a, b) => a + b, 0) / 7, 12);
+    expect(lineOf(results, "least_ca").value[0]).toBe(2);
+    expect(resultOf(results, "p", "plot")).toMatchObject({ drawn: 7, notDrawn: { "below detection": 1 } });
+    expect(resultOf(results, "ch", "data").columns.find(({ name }) => name === "CaO")).toMatchObject({ n: 7, missing: 1, belowDetection: 1 });
+  });
+});
+
+describe("iron counted twice or by half", () => {
+  const given = "Sample,FeO,Fe2O3,FeOt,Metal\nA,8.34,2.06,10.1936,0\nB,8.34,,10.1936,1\nC,8,1,,2\n";
+  const quantity = (header: string, species: string): object => ({ header, name: header, role: "quantity", species, unit: "wt%" });
+  const table = (...columns: object[]): object => ({
+    id: "ch",
+    kind: "data",
+    source: { file: "ch.csv" },
+    columns: [{ header: "Sample", role: "sample" }, ...columns],
+  });
+  const iron = (...columns: object[]): ReturnType<typeof evaluate> =>
+    freshEngine(given).evaluate(pageOf([table(...columns), formula("total = FeOt\nas_iron = Fe_total")]));
+  // IUPAC 2021: Fe 55.845, O 15.999.
+  const [feInFeO, feInFe2O3] = [55.845 / 71.844, (2 * 55.845) / (2 * 55.845 + 3 * 15.999)];
+
+  it("does not happen to two oxides: they are added as iron, and a row that lacks one has no total, not a part of it", () => {
+    const results = iron(quantity("FeO", "FeO"), quantity("Fe2O3", "Fe2O3"));
+    const { value } = lineOf(results, "as_iron");
+    expect(value[0]).toBeCloseTo(8.34 * feInFeO + 2.06 * feInFe2O3, 5);
+    expect(value[1]).toBeNaN();
+    expect(lineOf(results, "total").value[0]).toBeCloseTo(8.34 + (2.06 * feInFe2O3) / feInFeO, 5);
+  });
+
+  it("does not happen to a total beside its parts: it stands alone", () => {
+    const { value } = lineOf(iron(quantity("FeO", "FeO"), quantity("Fe2O3", "Fe2O3"), quantity("FeOt", "FeOt")), "total");
+    expect([value[0], value[1]]).toEqual([expect.closeTo(10.1936, 12), expect.closeTo(10.1936, 12)]);
+    expect(value[2]).toBeCloseTo(8 + (1 * feInFe2O3) / feInFeO, 5);
+  });
+
+  it("does not happen to metal: it counts once, beside the oxides", () => {
+    const { value } = lineOf(iron(quantity("FeO", "FeO"), quantity("Fe2O3", "Fe2O3"), quantity("Metal", "Fe_metal")), "as_iron");
+    expect(value[2]).toBeCloseTo(8 * feInFeO + 1 * feInFe2O3 + 2, 5);
+  });
+
+  it("does not happen to a bare FeO: whether it is all the iron must be said", () => {
+    const results = iron(quantity("FeO", "FeO"));
+    expect(errorsOf(results, "r").length).toBeGreaterThan(0);
+    for (const line of resultOf(results, "r", "formula").lines) expect(line.value.some(Number.isFinite)).toBe(false);
   });
 });
 

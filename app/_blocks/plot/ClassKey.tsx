@@ -1,21 +1,46 @@
 import type { PageView } from "@/app/_page/contract";
 import { ClassMarker } from "@/app/_ui/ClassMarker";
+import { classCodes } from "@/app/_blocks/shared/classCodes";
 import type { PlotResult } from "@/cells";
 import { isDrawn } from "./isDrawn";
 
 /** Classes drawn on a plot, with how many samples of each; in the order of the page's class sequence. */
 export function classCounts(result: PlotResult, classIndex: (name: string) => number): readonly { readonly name: string; readonly count: number }[] {
   const counts = new Map<string, number>();
+  const counted = new Set<number>();
   for (const layer of result.layers) {
+    if (layer.what === "means") for (const { name, samples } of layer.classes) counts.set(name, (counts.get(name) ?? 0) + samples);
     if (layer.what !== "samples") continue;
-    for (let i = 0; i < layer.points.x.length; i++) {
-      if (!isDrawn(layer.points, i, result.plot)) continue;
-      const name = layer.classes[i] ?? "";
-      counts.set(name, (counts.get(name) ?? 0) + 1);
+    // A pattern has a layer for every value: a sample counts once.
+    if (layer.of !== undefined) {
+      if (counted.has(layer.drawn)) continue;
+      counted.add(layer.drawn);
+      for (const name of patternClasses(result, layer.drawn)) counts.set(name, (counts.get(name) ?? 0) + 1);
+      continue;
     }
+    const { names, codes } = classCodes(layer.classes);
+    const found = new Uint32Array(names.length);
+    for (let i = 0; i < codes.length; i++) {
+      const code = codes[i] ?? 0;
+      if (isDrawn(layer.points, i, result.plot)) found[code] = (found[code] ?? 0) + 1;
+    }
+    found.forEach((count, code) => {
+      const name = names[code] ?? "";
+      if (count > 0) counts.set(name, (counts.get(name) ?? 0) + count);
+    });
   }
   const place = (name: string): number => (name === "" ? Infinity : classIndex(name));
   return Array.from(counts, ([name, count]) => ({ name, count })).sort((a, b) => place(a.name) - place(b.name));
+}
+
+/** The class of every sample that a line of a pattern draws at least one value of. */
+function patternClasses(result: PlotResult, line: number): readonly string[] {
+  const layers = result.layers.filter((layer) => layer.what === "samples" && layer.drawn === line);
+  const first = layers[0];
+  if (first?.what !== "samples") return [];
+  return Array.from(first.points.x, (_, i) => i).flatMap((i) =>
+    layers.some((layer) => layer.what === "samples" && isDrawn(layer.points, i, result.plot)) ? [first.classes[i] ?? ""] : [],
+  );
 }
 
 /** The key of classes: marker, name and how many are drawn. */

@@ -3,16 +3,19 @@ import { tickDecimals, tickStep } from "@/app/_blocks/shared/scale";
 import type { PageResults, PlotBlock, PlotLayer, PlotResult } from "@/cells";
 import { buildAnnotations } from "./annotations";
 import type { Range } from "./frame";
+import { cloudOf, isCloud, type CloudView } from "./cloud/cloud";
 import { missesOf } from "./misses";
 import { logTicks } from "./axisTicks";
 import { patternTraces } from "./patternTraces";
 import { axisInWords } from "./plotWords";
 import { ternaryTraces } from "./ternaryTraces";
-import { bodiesTraces, carriedOn, crossingTraces, missTraces, pathTraces, pickedTraces, samplesTraces, trendTraces, type Drawing } from "./traces";
+import { bodiesTraces, crossingTraces, missTraces, pathTraces, pickedTraces, samplesTraces, trendTraces, type Drawing } from "./traces";
 
 export interface Figure {
   readonly data: Data[];
   readonly layout: Partial<Layout>;
+  /** Samples too many for Plotly, painted under it; null where there are none. */
+  readonly cloud: CloudView | null;
 }
 
 /** How the pointer's drag is read. */
@@ -86,10 +89,12 @@ function columnTicks(columns: PlotResult["columns"]): Partial<LayoutAxis> {
 /** A triangle has its own axes. */
 const noAxis: Partial<LayoutAxis> = { visible: false, mirror: false };
 
-/** The card knows dashes by name only. */
-function onGraphicsCard(trace: Data): void {
-  trace.type = "scattergl";
-  if ("line" in trace && trace.line !== undefined && "dash" in trace.line && trace.line.dash === carriedOn) trace.line.dash = "dash";
+/** A mark that nobody sees, in the corner of the view. */
+function cornerTrace({ view, logX, logY }: Drawing["frame"]): Data[] {
+  const at = (end: number, log: boolean): number => (log ? 10 ** end : end);
+  return [
+    { type: "scatter", mode: "markers", x: [at(view.x[0], logX)], y: [at(view.y[0], logY)], marker: { opacity: 0 }, hoverinfo: "skip", showlegend: false },
+  ];
 }
 
 /** A plot as Plotly takes it: the layers bottom first, picks on top, all words as annotations. */
@@ -109,11 +114,13 @@ export function buildFigure(
   if (result.plot === "ternary") data.unshift(...ternaryTraces(drawing));
   data.push(...missTraces(missesOf(layers, results), drawing));
   for (const layer of layers) if (layer.what === "samples") data.push(...pickedTraces(layer, drawing));
-  // The graphics card's layer lies over the vectors: with any of it, everything is drawn on it, so that the order holds.
-  if (data.some((trace) => trace.type === "scattergl")) for (const trace of data) onGraphicsCard(trace);
+  // Without a trace of its own Plotly neither draws axes nor lets anybody drag a box.
+  if (data.length === 0) data.push(...cornerTrace(frame));
+  const clouds = isPattern ? [] : layers.flatMap((layer) => (layer.what === "samples" && isCloud(layer) ? [cloudOf(layer, drawing)] : []));
   const axes = { x: axisInWords(result.x, block.xAxis?.label), y: rows === null ? axisInWords(result.y, block.yAxis?.label) : "" };
   return {
     data,
+    cloud: clouds.length === 0 ? null : { clouds, frame, paper: palette.paper },
     layout: {
       width: frame.width,
       height: frame.height,

@@ -5,7 +5,7 @@ import { State, type Curve, type PlotLayer } from "@/cells";
 import { traceEllipse } from "./ellipse";
 import type { Frame } from "./frame";
 import type { Miss } from "./misses";
-import { mostEllipses } from "./plotWords";
+import { isCloud, mostRings } from "./cloud/cloud";
 
 /** What the traces need to know beside the layers. */
 export interface Drawing {
@@ -44,8 +44,9 @@ export function looks(index: number, palette: Palette): { readonly symbol: strin
   return { symbol: style.shape, ...style[palette.light] };
 }
 
-/** Samples: ellipses first, then markers, one pair of traces a class, then what is set aside. */
+/** Samples: ellipses first, then markers, one pair of traces a class, then what is set aside. Very many are a cloud instead. */
 export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
+  if (isCloud(layer)) return [];
   const { points } = layer;
   const { palette } = drawing;
   const rowsOf = new Map<number, number[]>();
@@ -61,10 +62,9 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
       else rows.push(i);
     }
   }
-  const isMany = points.x.length > mostEllipses;
-  const type = isMany ? "scattergl" : "scatter";
+  const type = "scatter";
   const traces: Data[] = [];
-  if (layer.ellipses > 0 && !isMany) {
+  if (layer.ellipses > 0) {
     for (const [index, rows] of rowsOf) {
       const x: (number | null)[] = [];
       const y: (number | null)[] = [];
@@ -93,10 +93,9 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
       customdata: rows.map((i) => [layer.data, i]),
       marker: {
         symbol: look.symbol,
-        size: drawing.projector ? 11 : isMany ? 5 : 7.5,
+        size: drawing.projector ? 11 : 7.5,
         color: look.fill,
-        opacity: isMany ? 0.55 : 1,
-        line: { color: look.line, width: isMany ? 0 : 1 },
+        line: { color: look.line, width: 1 },
       },
     });
   }
@@ -115,6 +114,8 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
 }
 
 function ring(layer: Samples, picked: readonly number[], color: string, size: number): Data[] {
+  // So many are painted with the cloud.
+  if (isCloud(layer) && picked.length > mostRings) return [];
   const rows = picked.filter((i) => Number.isFinite(layer.points.x[i] ?? NaN) && Number.isFinite(layer.points.y[i] ?? NaN));
   if (rows.length === 0) return [];
   return [

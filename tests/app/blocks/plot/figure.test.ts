@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { nowhere } from "@/app/_blocks/plot/cloud/cloud";
 import { buildFigure } from "@/app/_blocks/plot/figure";
 import { plotFrame, wholeView } from "@/app/_blocks/plot/frame";
 import { drawnInWords, stateInWords } from "@/app/_blocks/plot/plotWords";
@@ -87,10 +88,12 @@ describe("a plot's figure", () => {
     expect(ellipses[0]?.x?.filter((v) => v === null)).toHaveLength(2);
   });
 
-  it("leaves ellipses off and goes to the graphics card above 2,000 samples, and says so", () => {
-    const all = traces(figureOf([trend, samples(2001)]));
-    expect(all.every((t) => t.type === "scattergl")).toBe(true);
-    expect(all.filter((t) => t.mode === "markers")).toHaveLength(2);
+  it("paints more than 2,000 samples as a cloud under its lines, without ellipses, and says so", () => {
+    const few = figureOf([trend, samples(2000)]);
+    expect(few.cloud).toBeNull();
+    const many = figureOf([trend, samples(2001)]);
+    expect(traces(many).filter((t) => t.mode === "markers")).toEqual([]);
+    expect(many.cloud?.clouds.map((cloud) => cloud.lookOf.filter((look) => look !== nowhere).length)).toEqual([2001]);
     expect(drawnInWords({ data: "all" }, samples(2001)).says).toBe("ellipses left off above 2000 samples");
   });
 

@@ -62,9 +62,9 @@ export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEdi
           />
         ) : (
           <>
-            {expression("x", "Across")}
-            {plot !== "distribution" && expression("y", "Upwards")}
-            {plot === "ternary" && expression("z", "Third corner")}
+            {expression("x", plot === "ternary" ? "Corner at the lower right" : "Across")}
+            {plot !== "distribution" && expression("y", plot === "ternary" ? "Corner at the top" : "Upwards")}
+            {plot === "ternary" && expression("z", "Corner at the lower left")}
           </>
         )}
         <CommitField
@@ -79,6 +79,19 @@ export function DrawnEditor({ drawn, view, plot, problemOf, onChange }: DrawnEdi
             onChange(text.trim() === "" ? rest : { ...rest, where: text.trim() });
           }}
         />
+        {plot === "pattern" && (
+          <Select
+            label="A line through"
+            value={drawn.join ?? "sample"}
+            options={[
+              { value: "sample", label: "each sample" },
+              { value: "class", label: "the means of classes" },
+              { value: "none", label: "nothing" },
+            ]}
+            onChoose={(join) => onChange({ ...drawn, join })}
+          />
+        )}
+        {plot === "ternary" && ellipses(drawn.ellipses, "none", (next) => onChange({ ...drawn, ellipses: next }))}
         {plot === "scatter" && ellipses(drawn.ellipses, "1 sigma", (next) => onChange({ ...drawn, ellipses: next }))}
       </div>
     );

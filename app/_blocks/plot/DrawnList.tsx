@@ -20,10 +20,12 @@ export interface DrawnListProps {
   readonly block: PlotBlock;
   readonly result: PlotResult | undefined;
   readonly view: PageView;
+  /** Where a new annotation stands. */
+  readonly middle?: { readonly x: number; readonly y: number } | undefined;
 }
 
 /** What is drawn, top first: each line with its eye, its place, and what it is. */
-export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
+export function DrawnList({ blockKey, block, result, view, middle }: DrawnListProps) {
   const [run, refusal] = useRefusal();
   const [open, setOpen] = useState<number | null>(null);
   const edits = view.mode === "edit" ? view.edits : null;
@@ -124,6 +126,7 @@ export function DrawnList({ blockKey, block, result, view }: DrawnListProps) {
               block,
               view.blocks.map((b) => b.block),
               Object.keys(view.bodies),
+              middle,
             ).map(({ label, drawn }) => ({
               label,
               opens: true,

@@ -6,7 +6,7 @@ import { Select } from "@/app/_ui/Select";
 import { CommitField } from "@/app/_blocks/shared/CommitField";
 import { readNumber } from "@/app/_blocks/shared/readNumber";
 import { useRefusal } from "@/app/_blocks/shared/useRefusal";
-import type { Axis, PlotBlock } from "@/cells";
+import type { Axis, PlotBlock, PlotResult } from "@/cells";
 import type { PageEdits } from "@/realtime/document";
 
 type AxisField = "xAxis" | "yAxis";
@@ -19,7 +19,17 @@ const kinds = [
 ] as const;
 
 /** Kind of plot and its axes. An end left empty follows the data. */
-export function PlotSettings({ blockKey, block, edits }: { readonly blockKey: string; readonly block: PlotBlock; readonly edits: PageEdits }) {
+export function PlotSettings({
+  blockKey,
+  block,
+  result,
+  edits,
+}: {
+  readonly blockKey: string;
+  readonly block: PlotBlock;
+  readonly result: PlotResult | undefined;
+  readonly edits: PageEdits;
+}) {
   const [run, refusal] = useRefusal();
   const setAxis = (field: AxisField, change: Partial<Record<keyof Axis, string | number | undefined>>): void => {
     const next = Object.fromEntries(Object.entries({ ...block[field], ...change }).filter(([, value]) => value !== undefined && value !== ""));
@@ -54,7 +64,49 @@ export function PlotSettings({ blockKey, block, edits }: { readonly blockKey: st
               onCommit={(text) => run(() => edits.setField(blockKey, "normalise", text.trim() === "" ? undefined : text.trim()))}
             />
           )}
-          {(["xAxis", "yAxis"] as const).map((field) => (
+          {block.plot === "pattern" && (
+            <CommitField
+              label="Relative to"
+              mono
+              placeholder="Si"
+              hint="Divides every value first. Left empty, concentrations are compared."
+              value={block.per ?? ""}
+              onCommit={(text) => run(() => edits.setField(blockKey, "per", text.trim() === "" ? undefined : text.trim()))}
+            />
+          )}
+          {block.plot === "pattern" && (
+            <Select
+              label="Elements stand"
+              value={Array.isArray(block.order) ? "typed" : (block.order ?? "condensation temperature")}
+              options={orders}
+              onChoose={(next) =>
+                run(() =>
+                  edits.setField(blockKey, "order", next === "typed" ? [...(result?.columns ?? []).map(({ of }) => of).filter((of) => of.length <= 3)] : next),
+                )
+              }
+            />
+          )}
+          {block.plot === "pattern" && Array.isArray(block.order) && (
+            <CommitField
+              label="Order, parted by commas"
+              mono
+              placeholder="Al, Ca, Mg, Si"
+              value={block.order.join(", ")}
+              onCommit={(text) =>
+                run(() =>
+                  edits.setField(
+                    blockKey,
+                    "order",
+                    text
+                      .split(",")
+                      .map((t) => t.trim())
+                      .filter((t) => t !== ""),
+                  ),
+                )
+              }
+            />
+          )}
+          {axesOf(block).map((field) => (
             <fieldset key={field} className="grid grid-cols-2 gap-x-3 gap-y-2">
               <legend className="pb-1 font-medium">{field === "xAxis" ? "Across" : "Upwards"}</legend>
               <CommitField
@@ -66,13 +118,15 @@ export function PlotSettings({ blockKey, block, edits }: { readonly blockKey: st
               />
               {end(field, "from")}
               {end(field, "to")}
-              <Select
-                label="Scale"
-                className="col-span-2"
-                value={block[field]?.scale ?? "linear"}
-                options={scales}
-                onChoose={(next) => setAxis(field, { scale: next === "linear" ? undefined : next })}
-              />
+              {!(block.plot === "pattern" && field === "xAxis") && (
+                <Select
+                  label="Scale"
+                  className="col-span-2"
+                  value={block[field]?.scale ?? "linear"}
+                  options={scales}
+                  onChoose={(next) => setAxis(field, { scale: next === "linear" ? undefined : next })}
+                />
+              )}
             </fieldset>
           ))}
           {refusal !== null && (
@@ -85,6 +139,18 @@ export function PlotSettings({ blockKey, block, edits }: { readonly blockKey: st
     </div>
   );
 }
+
+/** Axes that have settings: a triangle's are its corners, and the rows of a distribution are its classes. */
+function axesOf({ plot }: PlotBlock): readonly AxisField[] {
+  if (plot === "ternary") return [];
+  return plot === "distribution" ? ["xAxis"] : ["xAxis", "yAxis"];
+}
+
+const orders = [
+  { value: "condensation temperature", label: "at their condensation temperature" },
+  { value: "condensation order", label: "evenly, most refractory first" },
+  { value: "typed", label: "in an order of your own" },
+] as const;
 
 const scales = [
   { value: "linear", label: "linear" },

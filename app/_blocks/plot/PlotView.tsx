@@ -9,6 +9,8 @@ import { originsOf, pickedIndices } from "@/app/_blocks/shared/picks";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
 import { usePalette } from "@/app/_blocks/shared/usePalette";
 import type { PlotBlock } from "@/cells";
+import { changeEntry } from "@/app/_blocks/shared/entries";
+import { AnnotationHandles, placeAt } from "./AnnotationHandles";
 import { ClassKey } from "./ClassKey";
 import { DrawnList } from "./DrawnList";
 import { buildFigure, type DragMode } from "./figure";
@@ -20,7 +22,6 @@ import { PlotSettings } from "./PlotSettings";
 import { mostEllipses, plotInWords } from "./plotWords";
 import { PointsTable } from "./PointsTable";
 import type { PointRef } from "./traces";
-import { useSettled } from "./useSettled";
 
 export { stateInWords } from "./plotWords";
 
@@ -36,9 +37,6 @@ const drags: readonly { readonly mode: DragMode; readonly label: string }[] = [
   { mode: "zoom", label: "Enlarge" },
 ];
 
-/** From so many samples on, a plot is drawn again only when what it shows has stood still for a moment. */
-const manySamples = 2000;
-
 /** A plot: the drawing, the list of what is drawn, the key of classes, and the same as a table. */
 export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
   const [box, size] = useSize<HTMLDivElement>();
@@ -46,6 +44,7 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
   const result = resultOf(view.results, block.id, "plot");
   const [hovered, setHovered] = useState<Hovered | null>(null);
   const [dragMode, setDragMode] = useState<DragMode>(view.mode === "frozen" ? "zoom" : "select");
+  const [showsTable, setTable] = useState(false);
   const [closeUp, setCloseUp] = useState<ViewRange | null>(null);
 
   const pickedIn = useCallback((data: string) => pickedIndices(tableOf(view.results, data), view.picked), [view]);
@@ -59,10 +58,16 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
     [view],
   );
   const width = Math.floor(size.width);
+  const laid = useMemo(
+    () =>
+      result === undefined || width === 0
+        ? null
+        : layOutPlot(block, result, { width, height: heightFor(result.plot, width) }, closeUp, (name) => view.classIndex(name)),
+    [result, width, closeUp, block, view],
+  );
   const figure = useMemo(() => {
-    if (result === undefined || width === 0) return null;
+    if (laid === null) return null;
     const classIndex = (name: string): number => view.classIndex(name);
-    const laid = layOutPlot(block, result, { width, height: heightFor(result.plot, width) }, closeUp, classIndex);
     const nameOf = (handle: string): string => view.blocks.find((b) => b.block.id === handle)?.block.name ?? handle;
     return buildFigure(
       block,
@@ -73,10 +78,9 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
       dragMode,
       laid.rows,
     );
-  }, [result, width, closeUp, block, view, palette, pickedIn, pickedByOthers, dragMode]);
+  }, [laid, block, view, palette, pickedIn, pickedByOthers, dragMode]);
 
   const samples = result?.layers.reduce((most, layer) => (layer.what === "samples" ? Math.max(most, layer.points.x.length) : most), 0) ?? 0;
-  const drawn = useSettled(figure, samples > manySamples ? 200 : 0);
 
   const onPick = useCallback(
     (points: readonly PointRef[], adds: boolean) => {
@@ -89,7 +93,23 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
     },
     [view],
   );
+  const edits = view.mode === "edit" ? view.edits : null;
+  const moveAnnotation = (index: number, x: number, y: number): void => {
+    const shown = block.drawn[index];
+    if (edits !== null && shown !== undefined && "annotation" in shown) changeEntry(edits, blockKey, "drawn", index, shown, { ...shown, x, y });
+  };
   const errors = (result?.problems ?? []).filter((p) => p.severity === "error");
+  const warnings = (result?.problems ?? []).filter((p) => ["not-on-log-axis", "outside-triangle", "mean-without-detection"].includes(p.code));
+  // A new annotation stands in the middle of what is seen.
+  const middle =
+    laid === null
+      ? undefined
+      : placeAt(
+          laid.frame,
+          block.plot,
+          (laid.frame.margin.l + laid.frame.width - laid.frame.margin.r) / 2,
+          (laid.frame.margin.t + laid.frame.height - laid.frame.margin.b) / 2,
+        );
   const isNarrow = block.width === 4 || block.width === 6;
   return (
     <div className={isNarrow ? "min-w-0" : "grid min-w-0 grid-cols-[minmax(0,1fr)] gap-x-6 lg:grid-cols-[minmax(0,1fr)_232px]"}>
@@ -101,7 +121,8 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
           className="relative overflow-hidden"
           style={{ height: width === 0 ? 360 : heightFor(block.plot, width) }}
         >
-          {drawn !== null && <PlotCanvas figure={drawn} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
+          {figure !== null && <PlotCanvas figure={figure} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
+          {laid !== null && edits !== null && <AnnotationHandles result={laid.result} frame={laid.frame} onMove={moveAnnotation} />}
           {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}
           {figure === null && <p className="p-3 text-second">{view.results === null ? "Calculating for the first time." : "Nothing to draw yet."}</p>}
         </div>
@@ -120,10 +141,20 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
               </Button>
             ))}
           {closeUp !== null && <Button onClick={() => setCloseUp(null)}>Whole view</Button>}
-          {samples > mostEllipses && <span className="text-second">More than {mostEllipses} samples: drawn without ellipses.</span>}
+          {samples > mostEllipses && (
+            <span className="text-second">
+              More than {mostEllipses} samples:{" "}
+              {block.plot === "pattern" ? "lines of single samples are left off; draw the means of classes" : "drawn as points, without ellipses"}.
+            </span>
+          )}
         </div>
         {errors.map((p, index) => (
           <p key={index} className="mt-2 text-vermilion">
+            {p.text}
+          </p>
+        ))}
+        {warnings.map((p, index) => (
+          <p key={index} className="mt-2 text-margin text-second">
             {p.text}
           </p>
         ))}
@@ -133,16 +164,16 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
           </p>
         )}
         {result !== undefined && (
-          <details className="mt-2">
+          <details className="mt-2" onToggle={(event) => setTable(event.currentTarget.open)}>
             <summary className="cursor-pointer text-margin font-medium text-indigo">The same as a table</summary>
-            <PointsTable result={result} view={view} />
+            {showsTable && <PointsTable result={result} view={view} />}
           </details>
         )}
       </div>
       <div className="min-w-0">
-        <DrawnList blockKey={blockKey} block={block} result={result} view={view} />
+        <DrawnList blockKey={blockKey} block={block} result={result} view={view} middle={middle} />
         {result !== undefined && <ClassKey result={result} view={view} />}
-        {view.mode === "edit" && view.edits !== null && <PlotSettings blockKey={blockKey} block={block} edits={view.edits} />}
+        {view.mode === "edit" && view.edits !== null && <PlotSettings blockKey={blockKey} block={block} result={result} edits={view.edits} />}
       </div>
     </div>
   );

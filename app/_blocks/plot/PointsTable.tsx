@@ -10,6 +10,7 @@ import { tableOf } from "@/app/_blocks/shared/tableOf";
 import { State, stateName, type PlotResult } from "@/cells";
 import { hasPlace } from "./isDrawn";
 import { axisInWords } from "./plotWords";
+import { valuesAt } from "./underPointer";
 
 /** Rows shown at once; a table that nobody can read to its end only slows the page. */
 const step = 200;
@@ -28,7 +29,35 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
   });
   const bodies = result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : []));
   const hasY = result.plot !== "distribution";
-  const heads = ["sample", "class", axisInWords(result.x, undefined), ...(hasY ? [axisInWords(result.y, undefined), "correlation"] : [])];
+  const isPattern = result.plot === "pattern";
+  const isTernary = result.plot === "ternary";
+  const hasCorrelation = result.plot === "scatter";
+  const means = result.layers.flatMap((layer) =>
+    layer.what === "means" ? layer.classes.flatMap(({ name, points }) => points.map((point) => ({ name, ...point }))) : [],
+  );
+  const numbers =
+    isTernary && result.corners !== undefined
+      ? [result.corners.x, result.corners.y, result.corners.z].map((corner) => `${corner}, %`)
+      : isPattern
+        ? ["value", axisInWords(result.y, undefined)]
+        : [axisInWords(result.x, undefined), ...(hasY ? [axisInWords(result.y, undefined)] : [])];
+  const heads = ["sample", "class", ...numbers, ...(hasCorrelation ? ["correlation"] : [])];
+  /** Cells of a place: what the pointer would say there, or the value's name and number in a pattern. */
+  const cells = (place: Parameters<typeof valuesAt>[1], of: string | undefined) =>
+    isPattern ? (
+      <>
+        <td className="pr-3 text-right">{of}</td>
+        <td className="pr-3 text-right">
+          <Value value={place.y} sigma={place.sigmaY} form={form} />
+        </td>
+      </>
+    ) : (
+      valuesAt(result, place, of).map((each) => (
+        <td key={each.of} className="pr-3 text-right">
+          <Value value={each.value} sigma={each.sigma} form={form} />
+        </td>
+      ))
+    );
   return (
     <div className="mt-2 max-h-96 overflow-auto" tabIndex={0} role="region" aria-label="What is drawn, as a table">
       <table className="w-full border-collapse text-margin">
@@ -54,20 +83,24 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
           {bodies.map((b) => (
             <tr key={`body ${b.name}`} className="border-b border-hairline">
               <th scope="row" className="py-0.5 pr-3 text-left font-medium">
-                {b.name}
+                {b.body ?? b.name}
               </th>
               <td className="pr-3 text-second">body, {b.compilation}</td>
-              <td className="pr-3 text-right">
-                <Value value={b.x} sigma={b.sigmaX} form={form} />
+              {cells(b, b.of)}
+              {hasCorrelation && <td className="pr-3 text-right font-mono">{b.correlation.toFixed(2).replace("-", "−")}</td>}
+              {view.mode !== "frozen" && <td />}
+            </tr>
+          ))}
+          {means.map((mean) => (
+            <tr key={`mean ${mean.name} ${mean.of}`} className="border-b border-hairline">
+              <th scope="row" className="py-0.5 pr-3 text-left font-medium">
+                mean of {mean.n}
+              </th>
+              <td className="pr-3 whitespace-nowrap">
+                {mean.name !== "" && <ClassMarker index={view.classIndex(mean.name)} className="mr-2" />}
+                {mean.name}
               </td>
-              {hasY && (
-                <>
-                  <td className="pr-3 text-right">
-                    <Value value={b.y} sigma={b.sigmaY} form={form} />
-                  </td>
-                  <td className="pr-3 text-right font-mono">{b.correlation.toFixed(2).replace("-", "−")}</td>
-                </>
-              )}
+              {cells({ x: mean.x, y: mean.y, sigmaX: 0, sigmaY: mean.sigmaY, correlation: 0 }, mean.of)}
               {view.mode !== "frozen" && <td />}
             </tr>
           ))}
@@ -76,7 +109,10 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
             const correlation = layer.points.correlation[index] ?? NaN;
             const label = rowLabel(table, index);
             return (
-              <tr key={`${layer.drawn} ${index}`} className={`border-b border-hairline ${isPicked ? "bg-surface shadow-[inset_2px_0_var(--indigo)]" : ""}`}>
+              <tr
+                key={`${layer.drawn} ${layer.of ?? ""} ${index}`}
+                className={`border-b border-hairline ${isPicked ? "bg-surface shadow-[inset_2px_0_var(--indigo)]" : ""}`}
+              >
                 <th scope="row" className="py-0.5 pr-3 pl-2 text-left font-mono font-normal">
                   {label}
                 </th>
@@ -85,16 +121,18 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
                   {name}
                   {layer.points.state[index] !== State.present && <span className="ml-2 text-second">{stateName(layer.points.state[index] ?? 0)}</span>}
                 </td>
-                <td className="pr-3 text-right">
-                  <Value value={x} sigma={layer.points.sigmaX[index] ?? null} form={form} />
-                </td>
-                {hasY && (
-                  <>
-                    <td className="pr-3 text-right">
-                      <Value value={layer.points.y[index] ?? null} sigma={layer.points.sigmaY[index] ?? null} form={form} />
-                    </td>
-                    <td className="pr-3 text-right font-mono">{Number.isFinite(correlation) ? correlation.toFixed(2).replace("-", "−") : "–"}</td>
-                  </>
+                {cells(
+                  {
+                    x,
+                    y: layer.points.y[index] ?? null,
+                    sigmaX: layer.points.sigmaX[index] ?? null,
+                    sigmaY: layer.points.sigmaY[index] ?? null,
+                    correlation,
+                  },
+                  layer.of,
+                )}
+                {hasCorrelation && (
+                  <td className="pr-3 text-right font-mono">{Number.isFinite(correlation) ? correlation.toFixed(2).replace("-", "−") : "–"}</td>
                 )}
                 {view.mode !== "frozen" && (
                   <td className="text-right">

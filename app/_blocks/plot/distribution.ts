@@ -54,6 +54,7 @@ export function layOutDistribution(result: PlotResult, classIndex: (name: string
   const rowOf = (name: string): number => classes.indexOf(name) + (hasBodies ? 1 : 0);
   const laid = result.layers.flatMap((layer): PlotLayer[] => {
     if (layer.what === "bodies") return [{ ...layer, bodies: layer.bodies.map(({ ellipse: _, ...body }) => ({ ...body, y: 0, sigmaY: null })) }];
+    if (layer.what === "annotation") return [layer];
     if (layer.what !== "samples") return [];
     const y = new Float64Array(layer.points.x.length).fill(NaN);
     for (const name of classes) {

@@ -32,15 +32,20 @@ function countDrawn(layer: Extract<PlotLayer, { what: "samples" }>, plot: PlotRe
 export function drawnInWords(drawn: Drawn, layer: PlotLayer | undefined, plot: PlotResult["plot"] = "scatter"): DrawnWords {
   const says = (text: string): string => (drawn.hidden ? "hidden" : layer === undefined ? `${text}${text === "" ? "" : "; "}nothing to draw` : text);
   if ("data" in drawn) {
-    const count = layer?.what === "samples" ? countDrawn(layer, plot) : 0;
+    const count = layer?.what === "samples" ? countDrawn(layer, plot) : layer?.what === "means" ? layer.classes.length : 0;
     const size =
-      layer?.what === "samples" && plot === "scatter"
+      layer?.what === "samples" && (plot === "scatter" || plot === "ternary")
         ? layer.points.x.length > mostEllipses && layer.ellipses > 0
           ? `ellipses left off above ${mostEllipses} samples`
           : ellipseInWords(layer.ellipses)
         : "";
+    const pattern = plot !== "pattern" ? "" : drawn.join === "class" ? "means of classes, bars 1σ of the mean" : "bars 1σ, broken where a value is missing";
     const where = drawn.where === undefined || drawn.where.trim() === "" ? "" : `where ${drawn.where.trim()}`;
-    return { title: `Samples of ${drawn.data}`, says: says([size, where].filter((t) => t !== "").join("; ")), count: drawn.hidden ? "" : String(count) };
+    return {
+      title: `Samples of ${drawn.data}`,
+      says: says([size, pattern, where].filter((t) => t !== "").join("; ")),
+      count: drawn.hidden ? "" : String(count),
+    };
   }
   if ("trend" in drawn) {
     const band = layer?.what === "trend" && layer.band !== undefined ? `band 95 %${layer.usesScatter ? ", with scatter" : ""}; ` : "";
@@ -55,11 +60,20 @@ export function drawnInWords(drawn: Drawn, layer: PlotLayer | undefined, plot: P
   if ("budget" in drawn) return { title: "Path", says: says(drawn.budget), count: "" };
   if ("bodies" in drawn) {
     const compilations = layer?.what === "bodies" ? layer.bodies.map((b) => b.compilation) : drawn.bodies;
-    const size = drawn.ellipses === "2 sigma" ? ", 2σ" : drawn.ellipses === "95 %" ? ", 95 %" : drawn.ellipses === "none" ? "" : ", 1σ";
+    const size =
+      plot === "pattern" || plot === "distribution"
+        ? ""
+        : drawn.ellipses === "2 sigma"
+          ? ", 2σ"
+          : drawn.ellipses === "95 %"
+            ? ", 95 %"
+            : drawn.ellipses === "none"
+              ? ""
+              : ", 1σ";
     return {
       title: "Bodies",
       says: says(Array.from(new Set(compilations)).join(", ") + size),
-      count: drawn.hidden ? "" : String(layer?.what === "bodies" ? layer.bodies.length : 0),
+      count: drawn.hidden ? "" : String(layer?.what === "bodies" ? new Set(layer.bodies.map((b) => b.body ?? b.name)).size : 0),
     };
   }
   return { title: "Annotation", says: says(drawn.annotation), count: "" };

@@ -1,5 +1,6 @@
 import { CellError } from "../errors";
 import type { CommonVariable, Named } from "../language";
+import { crossingOf, fitOf, isSampleVariable, renamed, type LinearForm } from "../trend";
 import { parseUnit, sigmaToCanonical, toCanonical, units, type Unit } from "../quantity/unit";
 import type { AxisInfo, BlockResult, BudgetResult, TrendResult } from "./results";
 
@@ -40,20 +41,54 @@ function ofTrend(handle: string, result: TrendResult, member: string): Named | u
     const otherScale = member === "slope" ? 1 / y.per : x.per / y.per;
     const sameBasis = result.x.basis === result.y.basis;
     const basis = member === "slope" && sameBasis ? null : result.y.basis;
-    const variable: CommonVariable = {
+    const named = {
       key: member === "slope" ? slope : intercept,
       label: `${member} of ${handle}`,
       value: (parameter?.value ?? Number.NaN) * scale,
-      sigma: sigma * scale,
       unit: member === "slope" ? units["1"] : y,
       ...(basis === null ? {} : { basis }),
-      covarianceWith: (other) => (other.key === (member === "slope" ? intercept : slope) ? covariance * scale * otherScale : 0),
       notes: [scattered ? "1σ with the scatter beyond the errors" : "1σ from the errors of the points"],
+    };
+    const known = fromSamples(fitOf(result)?.line[member], named, scale);
+    if (known !== undefined) return { kind: "common", variable: known };
+    const variable: CommonVariable = {
+      ...named,
+      sigma: sigma * scale,
+      covarianceWith: (other) => (other.key === (member === "slope" ? intercept : slope) ? covariance * scale * otherScale : 0),
     };
     return { kind: "common", variable };
   }
   if (member === "crossing_x" || member === "crossing_y") return ofCrossing(handle, result, member);
   return undefined;
+}
+
+/**
+ * A fit's parameter as formulas use it: its own σ is what its samples bring, shared with these samples' own values and with
+ * other fits; what is common to the samples, as a body that they are normalised to, it leans on.
+ */
+function fromSamples(form: LinearForm | undefined, named: Pick<CommonVariable, "key" | "label" | "value">, scale: number): CommonVariable | undefined {
+  const own = form?.terms.find(({ variable }) => isSampleVariable(variable));
+  if (form === undefined || own === undefined || !isSampleVariable(own.variable)) return undefined;
+  const rest = form.terms.filter((term) => term !== own);
+  const made = renamed(own.variable, { ...named, sigma: own.variable.sigma * Math.abs(scale) }, scale);
+  return rest.length === 0 ? made : { ...made, leansOn: directly(rest, scale) };
+}
+
+/**
+ * Derivatives of a form without what its variables lean on themselves: a second fit leans on a first one's slope, and on a body
+ * both by way of that slope and beside it. Whoever uses both follows each once.
+ */
+function directly(terms: LinearForm["terms"], scale: number): NonNullable<CommonVariable["leansOn"]> {
+  const direct = new Map(terms.map(({ variable, partial }) => [variable.key, partial]));
+  for (const { variable } of [...terms].sort((a, b) => depth(b.variable) - depth(a.variable))) {
+    const own = direct.get(variable.key) ?? 0;
+    for (const { variable: on, partial } of variable.leansOn ?? []) direct.set(on.key, (direct.get(on.key) ?? 0) - own * partial);
+  }
+  return terms.map(({ variable }) => ({ variable, partial: (direct.get(variable.key) ?? 0) * scale }));
+}
+
+function depth({ leansOn }: CommonVariable): number {
+  return leansOn === undefined ? 0 : 1 + Math.max(0, ...leansOn.map(({ variable }) => depth(variable)));
 }
 
 function ofCrossing(handle: string, result: TrendResult, member: "crossing_x" | "crossing_y"): Named {
@@ -63,13 +98,22 @@ function ofCrossing(handle: string, result: TrendResult, member: "crossing_x" | 
   const axis = member === "crossing_x" ? "x" : "y";
   const [own, other] = axis === "x" ? [unitOf(result.x), unitOf(result.y)] : [unitOf(result.y), unitOf(result.x)];
   const { basis } = result[axis];
-  const variable: CommonVariable = {
+  const named = {
     key: `trend:${handle}:${member}`,
     label: `${axis} of the crossing of ${handle} with ${crossing.with}`,
     value: toCanonical(crossing[axis].value, own),
-    sigma: sigmaToCanonical(crossing[axis].sigma ?? Number.NaN, own),
     unit: own,
     ...(basis === null ? {} : { basis }),
+  };
+  const point = crossingOf(result)?.[axis];
+  if (crossing.region === "ellipse" && point !== undefined) {
+    const notes = ["Its errors are those of the two lines, and of what is common to their samples, listed beside it."];
+    return { kind: "common", variable: { ...named, sigma: 0, leansOn: directly(point.terms, 1 / own.per), notes } };
+  }
+  const variable: CommonVariable = {
+    ...named,
+    sigma: sigmaToCanonical(crossing[axis].sigma ?? Number.NaN, own),
+    ...(crossing.region === "simulated" ? { notes: ["Its σ is simulated; what it shares with samples and bodies used beside it is not carried."] } : {}),
     covarianceWith: (variable) =>
       variable.key === `trend:${handle}:${axis === "x" ? "crossing_y" : "crossing_x"}` ? crossing.covariance / own.per / other.per : 0,
   };

@@ -5,7 +5,7 @@ import { State, stateName } from "../quantity/state";
 import type { Table } from "../table/table";
 import { valueAt, type Chosen } from "./choosePoints";
 import { covariance, type LinearForm, type Term } from "./linearForm";
-import type { Pulls } from "./pulls";
+import type { RawPulls } from "./pulls";
 import type { ClassPoint } from "./sampleSource";
 
 /** Classes that go into a fit, each a point with the errors of its means. */
@@ -140,7 +140,7 @@ function leftOutClasses(block: TrendBlock, names: readonly string[]): { excluded
 export function samplePulls(
   classes: readonly ClassPoint[],
   move: { readonly slopeX: Float64Array; readonly slopeY: Float64Array; readonly interceptX: Float64Array; readonly interceptY: Float64Array },
-): Pulls {
+): RawPulls & { readonly rows: Int32Array } {
   const slopes = new Map<number, number>();
   const intercepts = new Map<number, number>();
   const gather = (terms: readonly Term[], onSlope: number, onIntercept: number): void => {

@@ -15,6 +15,8 @@ import type { AxisOfFit, TrendFit } from "./trendFit";
 export interface TrendsCrossed {
   readonly crossing?: Crossing;
   readonly region?: Curve;
+  /** The crossing to first order, with what it depends on. */
+  readonly point?: CrossingPoint;
   readonly problems: readonly Problem[];
 }
 
@@ -55,7 +57,7 @@ export function crossTrends(block: string, first: TrendFit, second: TrendFit, bo
       text: `The slopes of ${first.handle} and ${second.handle} differ by only ${formatNumber(point.separation, 2)}σ, so the region of their crossing is simulated (${DRAWS} draws) and no ellipse; its σ are half the width that holds 68 % of the draws.`,
     });
   const { curve, ...rest } = made;
-  return { crossing: { with: second.handle, ...rest }, region: curve, problems };
+  return { crossing: { with: second.handle, ...rest }, region: curve, point, problems };
 }
 
 function tooNear(first: TrendFit, second: TrendFit, other: LineForms, separation: number): string {
@@ -215,17 +217,23 @@ function halfWidth(values: Float64Array): number {
   return 0.5 * (at(0.5 + WITHIN_1_SIGMA / 2) - at(0.5 - WITHIN_1_SIGMA / 2));
 }
 
-/** Under this key a trend's result carries the curve of its crossing's 95 % region. */
-const regionKey = Symbol("crossing region");
-type WithRegion<T> = T & { readonly [regionKey]?: Curve };
+/** Under this key a trend's result carries its crossing's 95 % region and what the crossing depends on. */
+const crossedKey = Symbol("crossing");
+type Crossed = Pick<TrendsCrossed, "region" | "point">;
+type WithCrossed<T> = T & { readonly [crossedKey]?: Crossed };
 
-export function withRegion<T extends object>(result: T, region: Curve | undefined): T {
-  if (region === undefined) return result;
-  const made: WithRegion<T> = { ...result, [regionKey]: region };
+export function withCrossed<T extends object>(result: T, { region, point }: Crossed): T {
+  if (region === undefined || point === undefined) return result;
+  const made: WithCrossed<T> = { ...result, [crossedKey]: { region, point } };
   return made;
 }
 
 /** Closed curve of the region that holds 95 % of where a trend's crossing may be; undefined where it has no crossing. */
 export function crossingRegionOf(result: object): Curve | undefined {
-  return (result as WithRegion<object>)[regionKey];
+  return (result as WithCrossed<object>)[crossedKey]?.region;
+}
+
+/** The crossing to first order, in the units of the trend's axes, with what it depends on; undefined where there is none. */
+export function crossingOf(result: object): CrossingPoint | undefined {
+  return (result as WithCrossed<object>)[crossedKey]?.point;
 }

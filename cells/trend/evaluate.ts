@@ -9,7 +9,7 @@ import type { Table } from "../table/table";
 import { bodyPoint } from "./bodyPoint";
 import { choosePoints, valueAt, type Chosen } from "./choosePoints";
 import { chooseClasses, samplePulls } from "./classPoints";
-import { bodyDistance, crossTrends, withRegion } from "./crossTrends";
+import { bodyDistance, crossTrends, withCrossed } from "./crossTrends";
 import type { LineForms } from "./crossing";
 import { distanceFromLine, type PointForms } from "./distance";
 import { fitLine, type FittedLine, type LineCovariance } from "./fitLine";
@@ -367,14 +367,14 @@ function evaluateCrossing(block: TrendBlock, crossWith: string, line: TrendResul
     const point = bodyPoint(context.scope(block.data), first, block.x, block.y, body, { block: block.id });
     return point === undefined ? [] : [{ body, point }];
   });
-  const { crossing, region, problems } = crossTrends(block.id, first, second, bodies);
-  return withRegion(
+  const { crossing, problems, ...crossed } = crossTrends(block.id, first, second, bodies);
+  return withCrossed(
     {
       ...line,
       ...(crossing === undefined ? {} : { crossing }),
       problems: [...line.problems, ...problems],
       bodiesUsed: { ...line.bodiesUsed, ...other.bodiesUsed },
     },
-    region,
+    crossed,
   );
 }

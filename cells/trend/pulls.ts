@@ -3,9 +3,14 @@ import type { FitPoints } from "./lineFit";
 import { moments } from "./moments";
 
 /** What each sample, by lying where it does, brought to a line: contributions whose squares add up to the line's variances. */
-export interface Pulls {
+export interface Pulls extends RawPulls {
   /** Rows of the fit's table. */
   readonly rows: Int32Array;
+  /** The intercept's as they are but for their size: products with the slope's are then not exactly the line's own covariance. */
+  readonly interceptAsFound: Float64Array;
+}
+
+export interface RawPulls {
   readonly slope: Float64Array;
   readonly intercept: Float64Array;
 }
@@ -19,7 +24,7 @@ export interface Pulls {
  *
  * Cost n, for Theil–Sen n².
  */
-export function rawPulls(method: string, points: FitPoints, line: Pick<FittedLine, "slope" | "intercept" | "ofErrors">): Omit<Pulls, "rows"> {
+export function rawPulls(method: string, points: FitPoints, line: Pick<FittedLine, "slope" | "intercept" | "ofErrors">): RawPulls {
   const n = points.x.length;
   const slope = new Float64Array(n);
   const intercept = new Float64Array(n);
@@ -58,7 +63,7 @@ export function rawPulls(method: string, points: FitPoints, line: Pick<FittedLin
  * All zero where every point lies on the line, to rounding.
  */
 export function calibrated(
-  raw: Omit<Pulls, "rows">,
+  raw: RawPulls,
   { slopeVariance, interceptVariance, covariance }: { readonly slopeVariance: number; readonly interceptVariance: number; readonly covariance: number },
 ): Omit<Pulls, "rows"> {
   const n = raw.slope.length;
@@ -72,12 +77,19 @@ export function calibrated(
     ii += a * a;
   }
   const rest = ii - (si * si) / ss;
-  const none = { slope: new Float64Array(n), intercept: new Float64Array(n) };
+  const none = { slope: new Float64Array(n), intercept: new Float64Array(n), interceptAsFound: new Float64Array(n) };
   if (!(ss > 1e-20 * slopeVariance) || !(slopeVariance > 0)) return none;
   const toSlope = Math.sqrt(slopeVariance / ss);
   const along = covariance / Math.sqrt(slopeVariance * ss);
   const across = rest > 1e-12 * ii ? Math.sqrt(Math.max(0, interceptVariance - (covariance * covariance) / slopeVariance) / rest) : 0;
+  // Where height and slope have nothing in common; there the pulls on the height are scaled by themselves.
+  const centre = -covariance / slopeVariance;
+  const heights = raw.intercept.map((a, i) => a + centre * (raw.slope[i] ?? 0));
+  let hh = 0;
+  for (const height of heights) hh += height * height;
+  const toHeight = hh > 0 ? Math.sqrt(Math.max(0, interceptVariance - (covariance * covariance) / slopeVariance) / hh) : 0;
   return {
+    interceptAsFound: heights.map((height, i) => toHeight * height - centre * toSlope * (raw.slope[i] ?? 0)),
     slope: raw.slope.map((s) => toSlope * s),
     intercept: raw.intercept.map((a, i) => along * (raw.slope[i] ?? 0) + across * (a - (si / ss) * (raw.slope[i] ?? 0))),
   };

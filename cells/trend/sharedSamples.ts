@@ -214,14 +214,19 @@ export function aggregateCovariance(source: SampleSource, which: 0 | 1, variable
   if (aggregated === undefined || (aggregated.name !== "mean" && aggregated.name !== "wmean" && aggregated.name !== "median")) return 0;
   // The rows of an aggregate are those of the table that its columns are of.
   if (!aggregated.measured.columns.some((input) => input.table === source.table)) return 0;
-  const { rows, slope, intercept } = source.pulls();
+  const { rows, slope, interceptAsFound } = source.pulls();
   const pull = new Map<number, number>();
-  rows.forEach((row, i) => pull.set(row, (which === 0 ? slope[i] : intercept[i]) ?? 0));
+  rows.forEach((row, i) => pull.set(row, (which === 0 ? slope[i] : interceptAsFound[i]) ?? 0));
   let sum = 0;
+  let square = 0;
   aggregated.rows.forEach((row, i) => {
     const share = aggregated.name === "median" ? 1 / aggregated.rows.length : (aggregated.influence[i] ?? 0);
-    sum += (pull.get(row) ?? 0) * share * ((aggregated.measured.value[row] ?? NaN) - aggregated.value);
+    const own = share * ((aggregated.measured.value[row] ?? NaN) - aggregated.value);
+    sum += (pull.get(row) ?? 0) * own;
+    square += own * own;
   });
+  // The mean's own pulls, scaled to its σ as the line's are to the line's.
+  sum *= variable.sigma / Math.sqrt(square);
   if (sum !== sum) return 0;
   const sigma = Math.sqrt(which === 0 ? source.covariance.slopeVariance : source.covariance.interceptVariance);
   const bound = sigma * variable.sigma;

@@ -1,7 +1,7 @@
-import { kernels, loadChunk, type Kernel } from "./kernels";
+import { kernels, loadChunk, STEP, type Kernel } from "./kernels";
 import type { Program } from "./program";
 
-/** Rows handled at once: all registers of a usual program then fit into the processor's second cache. */
+/** Rows handled at once, a multiple of {@link STEP}: all registers of a usual program then fit into the processor's second cache. */
 export const CHUNK = 512;
 
 /** Registers are kept between runs; a run needs no allocation but its results. */
@@ -15,7 +15,7 @@ const none = new Float64Array(0);
  */
 export function interpret(program: Program, rows: number, to: readonly (Float64Array | Uint8Array)[]): void {
   while (pool.length < program.registers) pool.push(new Float64Array(CHUNK));
-  for (const { register, value } of program.fixed) pool[register]?.fill(value, 0, Math.min(CHUNK, rows));
+  for (const { register, value } of program.fixed) pool[register]?.fill(value, 0, Math.min(CHUNK, rows + STEP));
   const steps = program.instructions.map(({ op, target, a, b, c, column }) => ({
     kernel: op === "load" ? undefined : kernels[op],
     column,
@@ -39,6 +39,6 @@ export function interpret(program: Program, rows: number, to: readonly (Float64A
 }
 
 function store(to: Float64Array | Uint8Array, start: number, from: Float64Array, n: number): void {
-  if (to instanceof Float64Array) for (let i = 0; i < n; i++) to[start + i] = from[i] as number;
+  if (to instanceof Float64Array) to.set(n === from.length ? from : from.subarray(0, n), start);
   else for (let i = 0; i < n; i++) to[start + i] = from[i] as number;
 }

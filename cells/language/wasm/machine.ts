@@ -60,18 +60,21 @@ export function runMachine(program: Program, rows: number, to: readonly (Float64
   const outputs = to.map((result, k) => viewOf(result, found.buffer, at(columns.length + k)));
   for (let start = 0; start < rows; start += ROWS) {
     const n = Math.min(ROWS, rows - start);
-    columns.forEach((column, i) => inputs[i]?.set(n === column.length ? column : column.subarray(start, start + n)));
+    for (let i = 0; i < columns.length; i++) {
+      const column = columns[i] as Column;
+      inputs[i]?.set(n === column.length ? column : column.subarray(start, start + n));
+    }
     run(n * 8);
-    to.forEach((result, k) => {
-      const output = outputs[k];
-      if (output !== undefined) result.set(n === ROWS ? output : output.subarray(0, n), start);
-    });
+    for (let k = 0; k < to.length; k++) {
+      const output = outputs[k] as Column;
+      to[k]?.set(n === ROWS ? output : output.subarray(0, n), start);
+    }
   }
   return true;
 }
 
 function compiledOf(of: Machine, program: Program, columns: readonly Column[], widths: readonly Width[]): Run | undefined {
-  const shape = shapeOf(program, columns, widths);
+  const shape = shapeKept(program, columns, widths);
   const known = of.compiled.get(shape);
   if (known !== undefined) {
     of.compiled.delete(shape);
@@ -89,6 +92,18 @@ function compiledOf(of: Machine, program: Program, columns: readonly Column[], w
     machine = null;
     return undefined;
   }
+}
+
+const shapes = new WeakMap<Program, { readonly widths: string; readonly shape: string }>();
+
+/** The shape of a program, written once however often it is run. */
+function shapeKept(program: Program, columns: readonly Column[], widths: readonly Width[]): string {
+  const known = shapes.get(program);
+  const written = widths.join();
+  if (known?.widths === written) return known.shape;
+  const shape = shapeOf(program, columns, widths);
+  shapes.set(program, { widths: written, shape });
+  return shape;
 }
 
 function viewOf(like: Column, buffer: ArrayBuffer, at: number): Column {

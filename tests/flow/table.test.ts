@@ -477,19 +477,27 @@ function pointOnScreen(page: Page, handle: string, index: number): Promise<{ rea
   return block(page, handle)
     .locator(".js-plotly-plot")
     .evaluate((element, wanted) => {
-      interface Axis {
-        readonly _offset: number;
-        d2p(value: unknown): number;
-      }
+      // What the page gave the drawing surface: data, and where its axes begin and end.
       const graph = element as unknown as {
-        readonly data: readonly { readonly x: readonly unknown[]; readonly y: readonly unknown[]; readonly customdata?: readonly unknown[] }[];
-        readonly _fullLayout: { readonly xaxis: Axis; readonly yaxis: Axis };
+        readonly data: readonly { readonly x: readonly number[]; readonly y: readonly number[]; readonly customdata?: readonly unknown[] }[];
+        readonly layout: {
+          readonly width: number;
+          readonly height: number;
+          readonly margin: { readonly l: number; readonly r: number; readonly t: number; readonly b: number };
+          readonly xaxis: { readonly range: readonly [number, number] };
+          readonly yaxis: { readonly range: readonly [number, number] };
+        };
       };
       const box = element.getBoundingClientRect();
-      const { xaxis, yaxis } = graph._fullLayout;
+      const { width, height, margin, xaxis, yaxis } = graph.layout;
+      const part = (value: number, [from, to]: readonly [number, number]): number => (value - from) / (to - from);
       for (const trace of graph.data) {
         const at = trace.customdata?.findIndex((custom) => Array.isArray(custom) && custom[1] === wanted) ?? -1;
-        if (at >= 0) return { x: box.x + xaxis._offset + xaxis.d2p(trace.x[at]), y: box.y + yaxis._offset + yaxis.d2p(trace.y[at]) };
+        if (at < 0) continue;
+        return {
+          x: box.x + margin.l + part(trace.x[at] ?? NaN, xaxis.range) * (width - margin.l - margin.r),
+          y: box.y + height - margin.b - part(trace.y[at] ?? NaN, yaxis.range) * (height - margin.t - margin.b),
+        };
       }
       throw new Error(`sample ${wanted} is not drawn`);
     }, index);

@@ -114,17 +114,13 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
   return (
     <div className={isNarrow ? "min-w-0" : "grid min-w-0 grid-cols-[minmax(0,1fr)] gap-x-6 lg:grid-cols-[minmax(0,1fr)_232px]"}>
       <div className="min-w-0">
-        <div
-          ref={box}
-          role="img"
-          aria-label={result === undefined ? "Plot, not calculated yet" : plotInWords(result)}
-          className="relative overflow-hidden"
-          style={{ height: width === 0 ? 360 : heightFor(block.plot, width) }}
-        >
-          {figure !== null && <PlotCanvas figure={figure} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
+        <div ref={box} className="relative overflow-hidden" style={{ height: width === 0 ? 360 : heightFor(block.plot, width) }}>
+          <div role="img" aria-label={result === undefined ? "Plot, not calculated yet" : plotInWords(result)} className="h-full">
+            {figure !== null && <PlotCanvas figure={figure} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
+            {figure === null && <p className="p-3 text-second">{view.results === null ? "Calculating for the first time." : "Nothing to draw yet."}</p>}
+          </div>
           {laid !== null && edits !== null && <AnnotationHandles result={laid.result} frame={laid.frame} onMove={moveAnnotation} />}
           {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}
-          {figure === null && <p className="p-3 text-second">{view.results === null ? "Calculating for the first time." : "Nothing to draw yet."}</p>}
         </div>
         <div className="mt-1 flex flex-wrap items-baseline gap-x-4 gap-y-1 text-margin" role="group" aria-label="What dragging on the plot does">
           {drags

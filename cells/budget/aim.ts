@@ -9,7 +9,7 @@ import type { Measure } from "./measure";
 import { inField } from "./place";
 import { given } from "./plan";
 import { findBody, input, readSubstance, substanceOfBody, type Access } from "./readSubstance";
-import type { Known, Substance } from "./substance";
+import { settleAt, settled, type Known, type Settle, type Substance } from "./substance";
 
 /** What a budget is compared with, and what its amount must reach where one is solved for. */
 export interface Aim {
@@ -25,7 +25,11 @@ export interface Aim {
   of(measure: Measure): Known | undefined;
   /** Expressions that a report without any of its own shows. */
   readonly measures: readonly Measure[];
+  /** The same with the inputs at other values than their own. @throws CellError where there is no such target then */
+  under(valueOf: ValueOf): Aim;
 }
+
+type ValueOf = (variable: CommonVariable) => number;
 
 export interface AimParts {
   readonly block: BudgetBlock;
@@ -37,45 +41,65 @@ type ExpressionTarget = Extract<Target, { expression: string }>;
 
 /** Reads an expression's target. @throws CellError in the field concerned */
 export function expressionAim(target: ExpressionTarget, measure: Measure, { access, block }: Pick<AimParts, "access" | "block">): Aim {
-  const of = inField("target.equals", () => comparison(target, measure, access, block));
-  const goal = of(measure);
+  return aimAt(
+    measure,
+    inField("target.equals", () => comparison(target, measure, access, block)),
+  );
+}
+
+/** @param valueOf values of the inputs, where they are not their own */
+function aimAt(measure: Measure, compare: Compare, valueOf?: ValueOf): Aim {
+  const settle: Settle = valueOf === undefined ? (form) => form : settleAt(valueOf);
+  const own = (of: Measure): Measure => (valueOf === undefined ? of : of.under(valueOf));
+  const [aimed, of] = [own(measure), compare(settle)];
+  const goal = of(aimed);
   if (goal === undefined || typeof goal === "string")
     throw new CellError("no-target-value", `The target has no value: ${goal ?? ""}`, { field: "target.equals" });
   const exactly = goal.value;
   return {
     words: `${measure.text.trim()} to ${Number(exactly.toPrecision(5))}${measure.unit === "1" ? "" : ` ${measure.unit}`}`,
     gap: (what) => {
-      const reached = measure.on(what);
+      const reached = aimed.on(what);
       return typeof reached === "string" ? reached : minus(reached, goal);
     },
     plainGap: (what) => {
-      const reached = measure.on(what);
+      const reached = aimed.on(what);
       return typeof reached === "string" ? Number.NaN : reached.value - exactly;
     },
     scale: Math.abs(exactly),
-    of,
+    of: (asked) => of(own(asked)),
     measures: [measure],
+    under: (values) => aimAt(measure, compare, values),
   };
 }
 
-function comparison(target: ExpressionTarget, measure: Measure, access: Access, block: BudgetBlock): (of: Measure) => Known | undefined {
+/** What a measure comes to at the target, with numbers settled in some way; undefined where the target does not say. */
+type Compare = (settle: Settle) => (of: Measure) => Known | undefined;
+
+function comparison(target: ExpressionTarget, measure: Measure, access: Access, block: BudgetBlock): Compare {
   const { equals } = target;
   if ("value" in equals) {
     requireBasis(measure, equals.basis);
     const value = input(given(`${block.id}.target`, "target", equals));
-    return (of) => (of.text.replace(/\s+/gu, "") === measure.text.replace(/\s+/gu, "") ? value : undefined);
+    return (settle) => (of) => (of.text.replace(/\s+/gu, "") === measure.text.replace(/\s+/gu, "") ? settle(value) : undefined);
   }
   if ("body" in equals) {
     const body = findBody(equals.body, access);
     const substance = substanceOfBody(body);
-    return (of) => {
-      if (body.kind === "dex" && !of.isRatioOn(substance) && typeof of.on(substance) !== "string")
-        return `${body.id} gives abundances relative to hydrogen: ratios can be had of it, ${of.text.trim()} is none.`;
-      return of.on(substance);
+    return (settle) => {
+      const at = settled(substance, settle);
+      return (of) => {
+        if (body.kind === "dex" && !of.isRatioOn(at) && typeof of.on(at) !== "string")
+          return `${body.id} gives abundances relative to hydrogen: ratios can be had of it, ${of.text.trim()} is none.`;
+        return of.on(at);
+      };
     };
   }
   const sample = readSubstance(equals, access);
-  return (of) => of.on(sample);
+  return (settle) => {
+    const at = settled(sample, settle);
+    return (of) => of.on(at);
+  };
 }
 
 function requireBasis(measure: Measure, stated: "mass" | "atoms"): void {
@@ -98,24 +122,31 @@ export function trendAim(handle: string, x: Measure, y: Measure, result: TrendRe
   return inField("target.trend", () => {
     const line = lineOf(handle, result);
     const [toX, toY] = [factorTo(x, result.x), factorTo(y, result.y)];
-    const distance = (what: Substance, slope: LinearForm, intercept: LinearForm): Known => {
-      const [atX, atY] = [x.on(what), y.on(what)];
-      if (typeof atX === "string") return atX;
-      if (typeof atY === "string") return atY;
-      return minus(scaled(atY, toY), plus(intercept, times(slope, scaled(atX, toX))));
+    const at = (valueOf?: ValueOf): Aim => {
+      const settle: Settle = valueOf === undefined ? (form) => form : settleAt(valueOf);
+      const [onX, onY] = valueOf === undefined ? [x, y] : [x.under(valueOf), y.under(valueOf)];
+      const [ownSlope, ownIntercept] = [settle(line.slope), settle(line.intercept)];
+      const distance = (what: Substance, slope: LinearForm, intercept: LinearForm): Known => {
+        const [atX, atY] = [onX.on(what), onY.on(what)];
+        if (typeof atX === "string") return atX;
+        if (typeof atY === "string") return atY;
+        return minus(scaled(atY, toY), plus(intercept, times(slope, scaled(atX, toX))));
+      };
+      const [slope, intercept] = [plain(ownSlope), plain(ownIntercept)];
+      return {
+        words: `the path to the line of ${handle}`,
+        gap: (what) => distance(what, ownSlope, ownIntercept),
+        plainGap: (what) => {
+          const gap = distance(what, slope, intercept);
+          return typeof gap === "string" ? Number.NaN : gap.value;
+        },
+        scale: Math.abs(intercept.value),
+        of: () => undefined,
+        measures: [x, y],
+        under: at,
+      };
     };
-    const [slope, intercept] = [plain(line.slope), plain(line.intercept)];
-    return {
-      words: `the path to the line of ${handle}`,
-      gap: (what) => distance(what, line.slope, line.intercept),
-      plainGap: (what) => {
-        const gap = distance(what, slope, intercept);
-        return typeof gap === "string" ? Number.NaN : gap.value;
-      },
-      scale: Math.abs(intercept.value),
-      of: () => undefined,
-      measures: [x, y],
-    };
+    return at();
   });
 }
 

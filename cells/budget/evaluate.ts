@@ -3,15 +3,17 @@ import type { BlockContext } from "../page/context";
 import { emptyResult } from "../page/emptyResult";
 import type { BudgetPathPoint, BudgetResult } from "../page/results";
 import type { BudgetBlock } from "../page/schema";
+import { withSimulation } from "../simulate";
 import { exact, significantTerms, spreadOf, type LinearForm } from "./algebra";
 import { balanceOf, closureOf, leftOf } from "./balance";
 import { readBudget, type Budget } from "./budget";
 import { byCompilation } from "./compilations";
 import { withForms } from "./forms";
-import { follow } from "./plan";
+import { follow, shown } from "./plan";
 import { reportRow } from "./report";
 import { solve, type Solution } from "./solve";
 import { shareOf } from "./shares";
+import { simulateBudget, type Distrust } from "./simulate";
 import type { Stand } from "./state";
 import { amountsOf, requireRange, standsAlong, sweepOf } from "./sweep";
 
@@ -40,11 +42,12 @@ export function evaluateBudget(block: BudgetBlock, context: BlockContext): Budge
     return { ...nothing(), problems, bodiesUsed, report };
   }
   const { end, solution } = attempt;
-  problems.push(...warningsOf(block, attempt));
+  const distrusted = distrustedIn(block, budget, attempt);
+  problems.push(...distrusted.map(({ warning }) => warning), ...notesOf(block, attempt));
   const report = budget.report.map(({ text, measure }) => reportRow(text, measure, plan.start, end, budget.aim));
   const step = plan.varying.how === "solve" ? plan.varying.step : undefined;
   const [left, closure, balance] = [leftOf(end), closureOf(end), balanceOf(end, elementsOf(budget))];
-  return withForms(
+  const result = withForms(
     {
       kind: "budget",
       ok: true,
@@ -63,6 +66,7 @@ export function evaluateBudget(block: BudgetBlock, context: BlockContext): Budge
     },
     { ...(solution === undefined ? {} : { solved: solution.amount }), report: budget.report.map(({ measure }) => measure?.on(end)) },
   );
+  return withSimulation(result, (base, wish) => simulateBudget(base, { budget, solved: solution?.amount, distrusted }, wish));
 }
 
 interface End {
@@ -114,23 +118,48 @@ function fixedNames({ target }: BudgetBlock, context: BlockContext): ReadonlySet
   return new Set(Object.keys(context.result(target.trend)?.bodiesUsed ?? {}));
 }
 
-function warningsOf(block: BudgetBlock, { solution }: End): Problem[] {
-  if (solution === undefined) return [];
+/** An amount this near to the edge of what is possible, in σ, is as good as at it. */
+const NEAR_LIMIT = 3;
+
+/** Where first order cannot be trusted: what is simulated unasked. */
+function distrustedIn(block: BudgetBlock, { plan, report, aim }: Budget, { end, solution }: End): Distrust[] {
   const warn = (code: string, text: string): Problem => ({ code, severity: "warning", block: block.id, text });
-  const found: Problem[] = [];
-  if (solution.isTurning)
-    found.push(warn("turning-point", "The path turns close to the target, within 1σ of the answer, so the amount's σ to first order is not to be trusted."));
-  const unknown = significantTerms(solution.amount).filter(({ variable }) => !(variable.sigma >= 0));
-  if (unknown.length > 0) {
-    const named = unknown.slice(0, 4).map(({ variable }) => variable.label);
-    const more = unknown.length > 4 ? ` and ${unknown.length - 4} more` : "";
+  const found: Distrust[] = [];
+  if (solution?.isTurning === true)
     found.push({
-      ...warn(
-        "unknown-sigma",
-        `The σ of ${named.join(", ")}${more} is unknown, so that of the amount is ${spreadOf(solution.amount).sigma === null ? "unknown" : "a lower bound"}.`,
-      ),
-      severity: "note",
+      warning: warn("turning-point", "The path turns close to the target, within 1σ of the answer, so the amount's σ to first order is not to be trusted."),
     });
+  if (solution !== undefined && plan.varying.how === "solve") {
+    const limit = nearLimit(solution, plan.steps[plan.varying.step]?.deed.unit ?? "1");
+    if (limit !== undefined) found.push({ warning: warn("near-limit", `${limit}, so the amount's σ to first order reaches amounts that are not possible.`) });
+  }
+  const measures = new Map([...report.flatMap(({ measure }) => measure ?? []), ...(aim?.measures ?? [])].map((measure) => [measure.text, measure]));
+  for (const [text, measure] of measures) {
+    const sharp = measure.edges(end).find(({ form, tolerated }) => (spreadOf(form).sigma ?? 0) > tolerated * Math.abs(form.value));
+    if (sharp === undefined) continue;
+    const sentence = `The σ of ${sharp.source} at the end is large against the value itself (over 10 % in a denominator, or 0 within 3σ in a logarithm or root), so the σ of ${text.trim()} there, which is of first order, is a rough one.`;
+    found.push({ warning: warn("first-order", sentence), of: text });
   }
   return found;
+}
+
+function nearLimit({ amount, range }: Solution, unit: string): string | undefined {
+  const { sigma } = spreadOf(amount);
+  if (sigma === null || !(sigma > 0)) return undefined;
+  const near = (limit: number): boolean => Math.abs(amount.value - limit) < NEAR_LIMIT * sigma;
+  const [least, most] = [near(range.from), near(range.to)];
+  const shownUnit = unit === "1" ? "" : ` ${unit}`;
+  if (least && most) return `Both ends of what is possible, 0 and ${shown(range.to)}${shownUnit}, lie within ${NEAR_LIMIT}σ of the amount`;
+  if (least) return `An amount of 0 lies within ${NEAR_LIMIT}σ of the answer`;
+  return most ? `The most that is possible, ${shown(range.to)}${shownUnit}, lies within ${NEAR_LIMIT}σ of the amount` : undefined;
+}
+
+function notesOf(block: BudgetBlock, { solution }: End): Problem[] {
+  if (solution === undefined) return [];
+  const unknown = significantTerms(solution.amount).filter(({ variable }) => !(variable.sigma >= 0));
+  if (unknown.length === 0) return [];
+  const named = unknown.slice(0, 4).map(({ variable }) => variable.label);
+  const more = unknown.length > 4 ? ` and ${unknown.length - 4} more` : "";
+  const text = `The σ of ${named.join(", ")}${more} is unknown, so that of the amount is ${spreadOf(solution.amount).sigma === null ? "unknown" : "a lower bound"}.`;
+  return [{ code: "unknown-sigma", severity: "note", block: block.id, text }];
 }

@@ -9,7 +9,7 @@ import { sharing } from "./metal";
 import { inField } from "./place";
 import { bodySubstance, input, readSubstance, type Access } from "./readSubstance";
 import type { Deed, Stand } from "./state";
-import { withoutErrors, type Substance } from "./substance";
+import { settled, type Settle, type Substance } from "./substance";
 
 /** Where the amount comes from that a budget varies, if it varies one. */
 export type Varying =
@@ -25,6 +25,8 @@ export interface Plan {
   readonly steps: readonly { readonly deed: Deed; readonly amount: LinearForm | undefined }[];
   /** The same with plain numbers, for the many points of a path. */
   readonly plain: Plan | undefined;
+  /** The same with numbers settled in another way: for draws. */
+  settled(settle: Settle): Plan;
 }
 
 /** @throws CellError in the field concerned */
@@ -33,15 +35,17 @@ export function planOf(block: BudgetBlock, access: Access): Plan {
   const start = inField("start", () => readSubstance(block.start, access));
   const read = block.steps.map((step, i) => {
     const field = `steps[${i}]`;
-    return { deeds: deedOf(step, field, access), amount: amountOf(step, field) };
+    return { make: deedOf(step, field, access), amount: amountOf(step, field) };
   });
-  const exactly = read.map(({ deeds, amount }) => ({ deed: deeds.plain, amount: amount === undefined ? undefined : plain(amount) }));
-  return {
-    start,
+  const under = (settle: Settle): Plan => ({
+    start: settled(start, settle),
     varying,
-    steps: read.map(({ deeds, amount }) => ({ deed: deeds.full, amount })),
-    plain: { start: withoutErrors(start), varying, steps: exactly, plain: undefined },
-  };
+    steps: read.map(({ make, amount }) => ({ deed: make(settle), amount: amount === undefined ? undefined : settle(amount) })),
+    plain: undefined,
+    settled: under,
+  });
+  const whole = read.map(({ make, amount }) => ({ deed: make((form) => form), amount }));
+  return { start, varying, steps: whole, plain: under(plain), settled: under };
 }
 
 /** Looks that one amount at most varies and one step at most shares with metal. */
@@ -90,28 +94,26 @@ export function given(key: string, label: string, amount: Extract<Amount, { valu
   return { key: `typed:${key}`, label, value: amount.value, sigma: amount.sigma ?? Number.NaN };
 }
 
-interface Deeds {
-  readonly full: Deed;
-  readonly plain: Deed;
-}
+/** A step, read: made with its numbers as they are, or settled. */
+type MakeDeed = (settle: Settle) => Deed;
 
-function deedOf(step: Step, field: string, access: Access): Deeds {
+function deedOf(step: Step, field: string, access: Access): MakeDeed {
   switch (step.do) {
     case "add":
     case "remove":
     case "mix": {
       const what = inField(`${field}.what`, () => readSubstance(step.what, access));
       const make = step.do === "add" ? addition : step.do === "remove" ? removal : mixing;
-      return { full: make(what, field), plain: make(withoutErrors(what), field) };
+      return (settle) => make(settled(what, settle), field);
     }
     case "share with metal":
-      return metalDeeds(step, field, access);
+      return metalDeed(step, field, access);
     case "extract melt":
-      return meltDeeds(step, field, access);
+      return meltDeed(step, field, access);
   }
 }
 
-function metalDeeds(step: Extract<Step, { do: "share with metal" }>, field: string, access: Access): Deeds {
+function metalDeed(step: Extract<Step, { do: "share with metal" }>, field: string, access: Access): MakeDeed {
   const species = typeof step.species === "string" ? [step.species] : step.species;
   for (const [i, element] of species.entries()) {
     if (!isElement(element)) {
@@ -134,13 +136,10 @@ function metalDeeds(step: Extract<Step, { do: "share with metal" }>, field: stri
   const filling = rest === undefined ? undefined : inField(`${field}.rest`, () => bodySubstance(rest.body, access));
   if (species.length > 1)
     access.note(`The amount is that of each of ${species.join(", ")} in the metal: together they are ${species.length} times as much of it.`);
-  return {
-    full: sharing(species, fraction, filling, field),
-    plain: sharing(species, plain(fraction), filling === undefined ? undefined : withoutErrors(filling), field),
-  };
+  return (settle) => sharing(species, settle(fraction), filling === undefined ? undefined : settled(filling, settle), field);
 }
 
-function meltDeeds(step: Extract<Step, { do: "extract melt" }>, field: string, access: Access): Deeds {
+function meltDeed(step: Extract<Step, { do: "extract melt" }>, field: string, access: Access): MakeDeed {
   const solid = coefficientsOf(step.coefficients, `${field}.coefficients`, "D");
   const liquid = coefficientsOf(step.meltCoefficients ?? {}, `${field}.meltCoefficients`, "P");
   const partings = new Map<string, Parting>();
@@ -149,12 +148,11 @@ function meltDeeds(step: Extract<Step, { do: "extract melt" }>, field: string, a
     partings.set(element, { D, ...(P === undefined ? {} : { P }) });
   }
   requirePaired(partings, liquid.keys(), `${field}.meltCoefficients`);
-  const bare = new Map([...partings].map(([element, { D, P }]) => [element, { D: plain(D), ...(P === undefined ? {} : { P: plain(P) }) }]));
   const written = step.melt;
   const melt = written === undefined ? undefined : inField(`${field}.melt`, () => readSubstance(written, access));
-  return {
-    full: extraction({ model: step.model, partings, ...(melt === undefined ? {} : { melt }) }, field),
-    plain: extraction({ model: step.model, partings: bare, ...(melt === undefined ? {} : { melt: withoutErrors(melt) }) }, field),
+  return (settle) => {
+    const own = new Map([...partings].map(([element, { D, P }]) => [element, { D: settle(D), ...(P === undefined ? {} : { P: settle(P) }) }]));
+    return extraction({ model: step.model, partings: own, ...(melt === undefined ? {} : { melt: settled(melt, settle) }) }, field);
   };
 }
 

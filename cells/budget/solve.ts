@@ -3,7 +3,7 @@ import type { Aim } from "./aim";
 import { combine, exact, spreadOf, type LinearForm } from "./algebra";
 import { follow, shown, type Plan } from "./plan";
 import { findRoots, type Found } from "./roots";
-import type { Deed } from "./state";
+import type { Deed, Range } from "./state";
 import { isKnown } from "./substance";
 
 /** The amount that reaches the target. */
@@ -14,6 +14,8 @@ export interface Solution {
   readonly roots: readonly number[];
   /** True where the path turns within 1σ of the answer, so that σ to first order is not to be trusted. */
   readonly isTurning: boolean;
+  /** Amounts that are possible. */
+  readonly range: Range;
 }
 
 /**
@@ -23,6 +25,15 @@ export interface Solution {
  * @throws CellError `no-physical-solution` where no possible amount reaches the target, with what there is in its place
  */
 export function solve(plan: Plan, step: number, aim: Aim): Solution {
+  const { found, range, deed, gapAt } = rootsOf(plan, step, aim);
+  const [root] = found.roots;
+  if (root === undefined) throw noSolution(plan, deed, aim, found, range.to, gapAt(true));
+  const { amount, isTurning } = implicit(plan, aim, root, gapAt(true));
+  return { amount, roots: found.roots, isTurning, range };
+}
+
+/** All amounts that reach the target, and where they were looked for. @throws CellError where a step before cannot be done */
+export function rootsOf(plan: Plan, step: number, aim: Aim): Roots {
   const quick = plan.plain ?? plan;
   const deed = quick.steps[step]?.deed;
   if (deed === undefined) throw new RangeError(`expected a step from 0 to ${quick.steps.length - 1}, got ${step}`);
@@ -38,11 +49,64 @@ export function solve(plan: Plan, step: number, aim: Aim): Solution {
         throw error;
       }
     };
-  const found = findRoots(gapAt(false), range.from, range.to, aim.scale);
-  const [root] = found.roots;
-  if (root === undefined) throw noSolution(plan, deed, aim, found, range.to, gapAt(true));
-  const { amount, isTurning } = implicit(plan, aim, root, gapAt(true));
-  return { amount, roots: found.roots, isTurning };
+  return { found: findRoots(gapAt(false), range.from, range.to, aim.scale), range, deed, gapAt };
+}
+
+/** Points between the least possible amount and an answer at which the path is looked at for an earlier one. */
+const LOOKS = 8;
+/** Steps of the secant method; it doubles its digits with every two. */
+const STEPS = 30;
+
+/**
+ * The smallest amount that reaches the target, where another is known that lies close to it: the secant method from there,
+ * and a look at the path before it. Everything is searched where that does not settle it. Undefined where there is none.
+ *
+ * @param guess an amount near the answer
+ * @throws CellError where a step before cannot be done
+ */
+export function rootNear(plan: Plan, step: number, aim: Aim, guess: number): number | undefined {
+  const quick = plan.plain ?? plan;
+  const range = quick.steps[step]?.deed.range(follow(quick, exact(0), false, step));
+  const gap = (x: number): number => {
+    try {
+      return aim.plainGap(follow(quick, exact(x)));
+    } catch (error) {
+      if (error instanceof CellError) return Number.NaN;
+      throw error;
+    }
+  };
+  const root = range === undefined ? undefined : secant(gap, guess, range);
+  if (root === undefined || range === undefined) return rootsOf(plan, step, aim).found.roots[0];
+  const side = gap(range.from);
+  for (let i = 1; i < LOOKS; i++) {
+    const at = gap(range.from + ((root - range.from) * i) / LOOKS);
+    if (!(at * side > 0)) return rootsOf(plan, step, aim).found.roots[0];
+  }
+  return root;
+}
+
+function secant(f: (x: number) => number, guess: number, { from, to }: Range): number | undefined {
+  let [a, b] = [guess, guess === 0 ? 1e-6 : guess * (1 + 1e-4)];
+  let [fa, fb] = [f(a), f(b)];
+  for (let i = 0; i < STEPS; i++) {
+    if (fb === 0 || Math.abs(b - a) <= 4e-16 * Math.abs(b)) return b >= from && b <= to ? b : undefined;
+    const next = b - (fb * (b - a)) / (fb - fa);
+    if (!(next >= from && next <= to)) return undefined;
+    [a, fa] = [b, fb];
+    [b, fb] = [next, f(next)];
+    if (fb !== fb) return undefined;
+    // No closer than rounding allows: it goes to and fro between neighbours.
+    if (Math.abs(fb) >= Math.abs(fa) && Math.abs(b - a) <= 1e-12 * Math.abs(b)) return a;
+  }
+  return undefined;
+}
+
+interface Roots {
+  readonly found: Found;
+  readonly range: Range;
+  readonly deed: Deed;
+  /** How far from the target an amount leads, possible ones only or all. */
+  gapAt(unchecked: boolean): (x: number) => number;
 }
 
 function implicit(plan: Plan, aim: Aim, root: number, gapAt: (x: number) => number): Pick<Solution, "amount" | "isTurning"> {
@@ -87,12 +151,12 @@ function noSolution(plan: Plan, deed: Deed, aim: Aim, found: Found, to: number, 
   const negative = findRoots((x) => anyAmount(-x), 0, width * 0.999, aim.scale).roots.find((x) => x > 0);
   const would =
     negative === undefined
-      ? `over all possible amounts it stays ${range(found)} the target.`
+      ? `over all possible amounts it stays ${spanOf(found)} the target.`
       : `it would take a negative amount, ${shown(-negative)}${unit}. Something must be taken away that is added here, or the other way round.`;
   return new CellError(code, `No possible amount of ${deed.of} brings ${aim.words}: ${would}`, { field });
 }
 
-function range({ least, most }: Found): string {
+function spanOf({ least, most }: Found): string {
   const [near, far] = Math.abs(least) < Math.abs(most) ? [least, most] : [most, least];
   return `between ${shown(Math.abs(near))} and ${shown(Math.abs(far))} ${near > 0 || far > 0 ? "above" : "below"}`;
 }

@@ -4,7 +4,7 @@ export { simulateLines } from "./lines";
 export type { CalculatedLine } from "./lines";
 export { simulatedNumber } from "./ofNumber";
 export { quantilesOf } from "./quantiles";
-export { capital, differs, range, wishWords } from "./sentences";
+export { capital, count, differs, range, wishWords } from "./sentences";
 export { MOST_UNASKED, USUAL_WISH } from "./simulated";
 export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulationWish } from "./simulated";
 export { Simulation, simulationOf, withSimulation } from "./simulation";

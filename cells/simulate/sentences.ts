@@ -38,13 +38,11 @@ export function capital(sentence: string): string {
 }
 
 export function wishWords({ draws, seed }: SimulationWish): string {
-  return `${thousands(draws)} draws, seed ${seed}`;
+  return `${count(draws)} draws, seed ${seed}`;
 }
 
 export function withoutWords(withoutValue: number, draws: number): string {
-  return withoutValue === 0
-    ? ""
-    : ` ${thousands(withoutValue)} of the ${thousands(draws)} draws have no value: they divide by 0 or leave the domain of a function.`;
+  return withoutValue === 0 ? "" : ` ${count(withoutValue)} of the ${count(draws)} draws have no value: they divide by 0 or leave the domain of a function.`;
 }
 
 /** Two ends, rounded to a twentieth of what lies between them. */
@@ -77,6 +75,7 @@ function placeOf({ name, byClass }: Pick<LineResult, "name" | "byClass">, { tabl
   return `${name} of ${sample === "" ? `row ${String(table.rowIds[index])}` : sample}`;
 }
 
-function thousands(count: number): string {
-  return String(count).replace(/\B(?=(\d{3})+$)/gu, ",");
+/** 2000 as "2,000". */
+export function count(n: number): string {
+  return String(n).replace(/\B(?=(\d{3})+$)/gu, ",");
 }

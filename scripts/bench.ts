@@ -15,7 +15,7 @@ import { findPython, Python } from "./bench/python";
  */
 async function bench(folder: string): Promise<void> {
   const say = (line: Line): void => {
-    console.log(textOf(line, 80));
+    console.log(textOf(line, 94));
   };
   const found = findPython();
   if ("missing" in found) {

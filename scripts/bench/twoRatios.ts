@@ -87,41 +87,43 @@ function programOf(table: Table, texts: readonly [string, string]): Program {
   return lower(graph, asked, (place) => graph.loads[place]?.column ?? new Float64Array(table.rows));
 }
 
-/** The ways the engine has to calculate two ratios, each as a piece of work that gives one number of its result. */
-export interface Ways {
-  readonly interpreter: () => number;
-  readonly machine: () => number;
-  /** From the text of both formulas to their results, as a page asks for them. */
-  readonly wholePage: () => number;
-  /** Value and σ of the one, value and σ of the other, covariance. */
-  readonly results: (way: "interpreter" | "machine" | "wholePage") => readonly Float64Array[];
-}
+/**
+ * How the engine calculates two ratios: by either back end, into memory that is kept between calls, as its contract has it, or into
+ * results made anew by each call, as numpy does; and from the text of both formulas to results of their own, as a page asks for them.
+ */
+export const ways = ["machine", "machine, new results", "interpreter", "interpreter, new results", "whole page"] as const;
+export type Way = (typeof ways)[number];
 
-/** Each way makes its results anew, as numpy does. */
+/** Value and σ of the one ratio, value and σ of the other, covariance, each way. */
+export type Ways = Readonly<Record<Way, () => readonly Float64Array[]>>;
+
 export function waysOf(table: Table, texts: readonly [string, string]): Ways {
   const program = programOf(table, texts);
-  const made = (): Float64Array[] => program.results.map(() => new Float64Array(table.rows));
-  const interpreter = (): readonly Float64Array[] => {
-    const to = made();
+  const make = (): Float64Array[] => program.results.map(() => new Float64Array(table.rows));
+  const kept = make();
+  const interpreted = (to: Float64Array[]): Float64Array[] => {
     interpret(program, table.rows, to);
     return to;
   };
-  const machine = (): readonly Float64Array[] => {
-    const to = made();
+  const run = (to: Float64Array[]): Float64Array[] => {
     if (!runMachine(program, table.rows, to)) throw new Error("WebAssembly with vectors is not to be had here");
     return to;
   };
-  const wholePage = (): readonly Float64Array[] => {
-    const scope = scopeOf(table);
-    const [x, y] = texts.map((text) => evaluateExpression(scope, text, { block: "r" }));
-    return x === undefined || y === undefined ? [] : [x.value, x.sigma, y.value, y.sigma, x.covariance(y)];
-  };
-  const ways = { interpreter, machine, wholePage };
-  const last = (results: readonly Float64Array[]): number => results[4]?.[table.rows - 1] ?? Number.NaN;
   return {
-    interpreter: () => last(interpreter()),
-    machine: () => last(machine()),
-    wholePage: () => last(wholePage()),
-    results: (way) => ways[way](),
+    machine: () => run(kept),
+    "machine, new results": () => run(make()),
+    interpreter: () => interpreted(kept),
+    "interpreter, new results": () => interpreted(make()),
+    "whole page": () => {
+      const scope = scopeOf(table);
+      const [x, y] = texts.map((text) => evaluateExpression(scope, text, { block: "r" }));
+      if (x === undefined || y === undefined) throw new Error("expected two expressions");
+      return [x.value, x.sigma, y.value, y.sigma, x.covariance(y)];
+    },
   };
+}
+
+/** One number of what a way gives, to end in the sink. */
+export function lastOf(results: readonly Float64Array[]): number {
+  return results.reduce((sum, column) => sum + (column[column.length - 1] ?? Number.NaN), 0);
 }

@@ -18,7 +18,7 @@ interface Listed {
 export function BuiltInBody({ body }: { readonly body: Body }) {
   const values = body.values.map((value) => ({ ...value, fromMemory: isFromMemory(value.checked) }));
   return (
-    <Entry id={body.id} name={body.what} mark={memoryWords(values)}>
+    <Entry id={body.id} name={body.what} mark={memoryWords(values)} checked="checked in its source">
       {[...new Set(body.values.map(({ source }) => source))].map((source) => (
         <p key={source} className="text-margin text-second">
           {source}
@@ -62,7 +62,7 @@ export function OwnBodyEntry({ versions, groupId, edits }: { readonly versions: 
 function OneVersion({ version: { code, version, body, madeBy, madeAt }, children }: { readonly version: BodyOfGroup; readonly children?: ReactNode }) {
   const id = ownBodyId(code, version);
   return (
-    <Entry id={id} name={body.name} mark={body.fromMemory ? "from memory" : null}>
+    <Entry id={id} name={body.name} mark={body.fromMemory ? "from memory" : null} checked="from its source">
       <p className="text-margin wrap-anywhere text-second">{body.source}</p>
       {body.description ? <p className="mt-1 wrap-anywhere">{body.description}</p> : null}
       <p className="text-margin text-second">
@@ -84,14 +84,24 @@ function memoryWords(values: readonly Listed[]): string | null {
   return n === values.length ? "from memory" : `${n} of ${values.length} from memory`;
 }
 
-function Entry({ id, name, mark, children }: { readonly id: string; readonly name: string; readonly mark: string | null; readonly children: ReactNode }) {
+interface EntryProps {
+  readonly id: string;
+  readonly name: string;
+  /** What is from memory, in words. */
+  readonly mark: string | null;
+  /** What is said where nothing is. */
+  readonly checked: string;
+  readonly children: ReactNode;
+}
+
+function Entry({ id, name, mark, checked, children }: EntryProps) {
   return (
     <li className="border-b border-hairline py-2">
       <div className="flex flex-wrap items-baseline justify-between gap-x-4">
         <span>
           <span className="font-mono text-cell">{id}</span> <span className="wrap-anywhere">{name}</span>
         </span>
-        {mark === null ? <span className="text-margin text-second">checked</span> : <span className="text-margin text-vermilion">{mark}</span>}
+        {mark === null ? <span className="text-margin text-second">{checked}</span> : <span className="text-margin text-vermilion">{mark}</span>}
       </div>
       {children}
     </li>

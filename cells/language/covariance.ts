@@ -2,6 +2,7 @@ import { run } from "./execute";
 import { Graph } from "./graph";
 import { MAX_DERIVED_NODES } from "./limits";
 import type { Measurement } from "./measure";
+import { allPresent } from "./present";
 import { lower } from "./program";
 import { covarianceOfParts, declaredCorrelation } from "./uncertainty";
 
@@ -85,5 +86,6 @@ export function valueAt(column: Float64Array, i: number): number {
 }
 
 function blank(found: Float64Array, a: Uint8Array, b: Uint8Array): void {
+  if (allPresent(a) && allPresent(b)) return;
   for (let i = 0; i < found.length; i++) if ((a.length === 1 ? a[0] : a[i]) !== 0 || (b.length === 1 ? b[0] : b[i]) !== 0) found[i] = Number.NaN;
 }

@@ -5,6 +5,7 @@ import { partialsOf, type Links } from "./derivatives";
 import type { Column, Graph, Load } from "./graph";
 import { run } from "./execute";
 import { MAX_DERIVED_NODES } from "./limits";
+import { allPresent } from "./present";
 import { lower } from "./program";
 import { extentOf, type Over, type Split } from "./split";
 import { uncertaintyNodes, type CommonPart } from "./uncertainty";
@@ -140,6 +141,7 @@ function blankAbsent(
   length: number,
 ): void {
   const { value, state, sigma, sigmaPerSample, sigmaCommon, lowerBound, assumed, nearEdge } = made;
+  if (allPresent(state)) return;
   for (let i = 0; i < length; i++) {
     if (state[i] === 0) continue;
     value[i] = Number.NaN;

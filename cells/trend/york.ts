@@ -57,8 +57,8 @@ function distancesAt(points: FitPoints, slope: number, weight: Float64Array): nu
   const [xMean, yMean] = weigh(points, slope, weight);
   let S = 0;
   for (let i = 0; i < x.length; i++) {
-    const r = (y[i] ?? 0) - yMean - slope * ((x[i] ?? 0) - xMean);
-    S += (weight[i] ?? 0) * r * r;
+    const r = (y[i] as number) - yMean - slope * ((x[i] as number) - xMean);
+    S += (weight[i] as number) * r * r;
   }
   return S;
 }
@@ -81,12 +81,12 @@ function yorkFrom(points: FitPoints, start: number): YorkFit | undefined {
     let above = 0;
     let below = 0;
     for (let i = 0; i < n; i++) {
-      const p = sigmaX[i] ?? 0;
-      const q = sigmaY[i] ?? 0;
-      const w = weight[i] ?? 0;
-      const common = (correlation[i] ?? 0) * p * q;
-      const u = (x[i] ?? 0) - xMean;
-      const v = (y[i] ?? 0) - yMean;
+      const p = sigmaX[i] as number;
+      const q = sigmaY[i] as number;
+      const w = weight[i] as number;
+      const common = (correlation[i] as number) * p * q;
+      const u = (x[i] as number) - xMean;
+      const v = (y[i] as number) - yMean;
       const beta = w * (u * q * q + slope * v * p * p - (slope * u + v) * common);
       above += w * beta * v;
       below += w * beta * u;
@@ -110,14 +110,14 @@ function weigh(points: FitPoints, slope: number, weight: Float64Array): [xMean: 
   let sumX = 0;
   let sumY = 0;
   for (let i = 0; i < x.length; i++) {
-    const p = sigmaX[i] ?? 0;
-    const q = sigmaY[i] ?? 0;
-    const w = 1 / (q * q + slope * (slope * p * p - 2 * (correlation[i] ?? 0) * p * q));
+    const p = sigmaX[i] as number;
+    const q = sigmaY[i] as number;
+    const w = 1 / (q * q + slope * (slope * p * p - 2 * (correlation[i] as number) * p * q));
     weight[i] = w;
     sum += w;
     // Taken from the first point, so that data far from the origin keep their digits.
-    sumX += w * ((x[i] ?? 0) - x0);
-    sumY += w * ((y[i] ?? 0) - y0);
+    sumX += w * ((x[i] as number) - x0);
+    sumY += w * ((y[i] as number) - y0);
   }
   return [x0 + sumX / sum, y0 + sumY / sum];
 }
@@ -133,12 +133,12 @@ function summarise(points: FitPoints, slope: number, weight: Float64Array, conve
   let sumBeta = 0;
   let S = 0;
   for (let i = 0; i < n; i++) {
-    const p = sigmaX[i] ?? 0;
-    const q = sigmaY[i] ?? 0;
-    const w = weight[i] ?? 0;
-    const common = (correlation[i] ?? 0) * p * q;
-    const u = (x[i] ?? 0) - xMean;
-    const v = (y[i] ?? 0) - yMean;
+    const p = sigmaX[i] as number;
+    const q = sigmaY[i] as number;
+    const w = weight[i] as number;
+    const common = (correlation[i] as number) * p * q;
+    const u = (x[i] as number) - xMean;
+    const v = (y[i] as number) - yMean;
     const beta = w * (u * q * q + slope * v * p * p - (slope * u + v) * common);
     betas[i] = beta;
     sum += w;
@@ -149,8 +149,8 @@ function summarise(points: FitPoints, slope: number, weight: Float64Array, conve
   const betaMean = sumBeta / sum;
   let spread = 0;
   for (let i = 0; i < n; i++) {
-    const d = (betas[i] ?? 0) - betaMean;
-    spread += (weight[i] ?? 0) * d * d;
+    const d = (betas[i] as number) - betaMean;
+    spread += (weight[i] as number) * d * d;
   }
   const slopeVariance = 1 / spread;
   const adjustedMean = xMean + betaMean;

@@ -301,6 +301,36 @@ describe("a plot without samples", () => {
     expect(result.layers.map(({ what }) => what)).toEqual(["path", "bodies"]);
   });
 
+  it("draws mixing in two ratios as the hyperbola it is, and no chord", () => {
+    const other = { "Mg wt%": 20, "Si wt%": 15, "Al wt%": 0.4, "Ca wt%": 6 };
+    const mixing = { id: "b", kind: "budget", start: { body: "CI" }, steps: [{ do: "mix", what: { composition: other }, amount: { from: 0, to: 1 } }] };
+    const results = evaluate(mixing, { id: "p", kind: "plot", plot: "scatter", x: "Mg / Si", y: "Ca / Al", drawn: [{ budget: "b" }], xAxis: { scale: "log" } });
+    expect(errorsOf(results, "p")).toEqual([]);
+    const { line, ticks } = layer(resultOf(results, "p", "plot"), "path");
+    // By hand, from CI's mass fractions (Palme, Lodders & Jones 2014) and those above.
+    const [ci, end] = [
+      { Mg: 9.54, Si: 10.7, Al: 0.84, Ca: 0.911 },
+      { Mg: 20, Si: 15, Al: 0.4, Ca: 6 },
+    ];
+    const mixed = (f: number): readonly [number, number] => {
+      const of = (element: keyof typeof ci): number => (1 - f) * ci[element] + f * end[element];
+      return [of("Mg") / of("Si"), of("Ca") / of("Al")];
+    };
+    expect(line.x).toHaveLength(101);
+    line.x.forEach((x, i) => {
+      expect(x).toBeCloseTo(mixed(i / 100)[0], 10);
+      expect(line.y[i]).toBeCloseTo(mixed(i / 100)[1], 10);
+    });
+    // Langmuir et al. 1978, eq. 1: four places of the curve fix A x + B x y + C y + D = 0, and a straight line has B = 0.
+    const [x0 = 0, y0 = 0, x1 = 0, y1 = 0] = [line.x[0], line.y[0], line.x[100], line.y[100]];
+    const chord = y0 + ((y1 - y0) * ((line.x[50] ?? 0) - x0)) / (x1 - x0);
+    expect(Math.abs((line.y[50] ?? 0) - chord) / (y1 - y0)).toBeGreaterThan(0.1);
+    for (const tick of ticks) {
+      const f = Number.parseFloat(tick.label) / 100;
+      expect([tick.x, tick.y]).toEqual(mixed(f).map((value) => expect.closeTo(value, 10)));
+    }
+  });
+
   it("still says at the character what nothing has", () => {
     const results = evaluate(budget, plot("Mg / Unobtainium"));
     expect(errorsOf(results, "p")[0]).toMatchObject({ field: "x" });

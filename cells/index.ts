@@ -56,6 +56,10 @@ export type {
   UncertaintyKind,
 } from "./page/schema";
 
+// Simulated propagation
+export { Simulation, USUAL_WISH } from "./simulate";
+export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulationWish } from "./simulate";
+
 // Tables
 export { ownSigmaKinds, readOwnTable } from "./table/readOwnTable";
 export type { OwnSigmaKind, OwnTable } from "./table/readOwnTable";

@@ -85,6 +85,8 @@ export function FrozenPage({ snapshot, groupName, groupId, role, document: page,
     const actions: PageActions = {
       pick: () => undefined,
       trace: (request) => engine?.askTrace(request),
+      nearest: (request) => engine?.nearest(request) ?? Promise.resolve(null),
+      stopSimulation: (handle, isStopped) => engine?.stopSimulation(handle, isStopped),
       enter: () => undefined,
       undo: () => undefined,
       redo: () => undefined,

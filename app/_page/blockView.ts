@@ -20,6 +20,7 @@ function lookedAt(state: PageState, key: string): readonly unknown[] {
     state.blocks.map((b) => `${b.key} ${b.block.id} ${b.block.kind} ${b.block.name ?? ""}`).join("\n"),
     state.results === null,
     state.loading.has(handle),
+    state.simulating.get(handle),
     state.mode,
     state.edits,
     state.live,
@@ -68,6 +69,9 @@ function liveView(store: PageStore): PageView {
     get calculating() {
       return store.get().calculating;
     },
+    get simulating() {
+      return store.get().simulating;
+    },
     get edits() {
       return store.get().edits;
     },
@@ -95,6 +99,8 @@ function liveView(store: PageStore): PageView {
     classIndex: (name) => store.get().classes.get(name) ?? -1,
     pick: (rows) => actions.pick(rows),
     trace: (request) => actions.trace(request),
+    nearest: (request) => actions.nearest?.(request) ?? Promise.resolve(null),
+    stopSimulation: (handle, isStopped) => actions.stopSimulation(handle, isStopped),
     enter: (key) => actions.enter(key),
     show: (place) => actions.show(place),
     undo: () => actions.undo(),

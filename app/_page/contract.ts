@@ -1,5 +1,6 @@
 import type { Block, Engine, OwnBody, PageResults, RowId, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock, PageEdits } from "@/realtime/document";
+import type { SimulationProgress } from "./simulationQueue";
 import type { Awareness } from "y-protocols/awareness";
 import type { UndoManager } from "yjs";
 
@@ -81,6 +82,12 @@ export interface PageView {
   /** The number whose trace is open in the margin, if any. */
   readonly traced: { readonly request: TraceRequest; readonly node: TraceNode | null } | null;
   trace(request: TraceRequest | null): void;
+  /** Bodies and samples nearest to a sample; left out where no engine runs. */
+  nearest?(request: NearestRequest): Promise<Nearest | null>;
+  /** How far the simulations of blocks are that are not done, by handle. */
+  readonly simulating?: ReadonlyMap<string, SimulationProgress>;
+  /** Stops the simulation of a block, or lets it go on. */
+  stopSimulation?(handle: string, isStopped: boolean): void;
   /** Tells the others which block one is in. */
   enter(blockKey: string | null): void;
   /** Fixed marker and colour of a class across the whole page; index into the class sequence. */

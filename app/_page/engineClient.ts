@@ -2,6 +2,7 @@ import type { BlockResult, Column, OwnBody, PageResults, TraceNode, TraceRequest
 import type { PageBlock } from "@/realtime/document";
 import type { FileProposal, FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
 import { unpackPlot } from "./plotPacking";
+import type { SimulationProgress } from "./simulationQueue";
 import { keepSameLines } from "./sameLines";
 import { unpackTable } from "./tablePacking";
 
@@ -24,6 +25,8 @@ export interface EngineClientEvents {
   /** New results; those that did not change are the identical objects. */
   readonly onResults: (results: PageResults, loading: ReadonlySet<string>, upToDate: boolean) => void;
   readonly onFault: (text: string) => void;
+  /** How far simulations are, by handle; those that are done are not named any more. */
+  readonly onSimulating?: (progress: ReadonlyMap<string, SimulationProgress>) => void;
 }
 
 /** The page's side of the engine. */
@@ -31,6 +34,9 @@ export interface EngineClient {
   /** Hands over the page as it is now; only changed blocks travel. */
   update(page: PageInput): void;
   trace(request: TraceRequest): Promise<TraceNode | null>;
+  nearest(request: NearestRequest): Promise<Nearest | null>;
+  /** Stops the simulation of a block, or lets it go on. */
+  stopSimulation(handle: string, isStopped: boolean): void;
   propose(bytes: Uint8Array, fileName: string): Promise<FileProposal>;
   preview(bytes: Uint8Array, fileName: string, columns: readonly Column[]): Promise<Preview>;
   giveSource(sha256: string, bytes: Uint8Array): void;
@@ -74,6 +80,7 @@ export function createEngineClient(
   worker.onmessage = ({ data }) => {
     if (data.type === "results") return take(data);
     if (data.type === "fault") return events.onFault(data.text);
+    if (data.type === "simulating") return events.onSimulating?.(new Map(data.progress));
     const request = waiting.get(data.id);
     waiting.delete(data.id);
     if (data.type === "failed") request?.reject(new Error(data.text));
@@ -107,6 +114,9 @@ export function createEngineClient(
       }
       for (const key of given.keys()) if (!present.has(key)) given.delete(key);
       worker.postMessage({ type: "page", version: ++version, title, bodies, ownBodies, order: blocks.map((b) => b.key), changed, sources });
+    },
+    stopSimulation(handle, isStopped) {
+      worker.postMessage({ type: "simulation", block: handle, isStopped });
     },
     async trace(request) {
       const answer = await ask((id) => ({ type: "trace", id, request }));

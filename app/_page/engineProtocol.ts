@@ -1,5 +1,6 @@
 import type { Block, BlockResult, Column, DataResult, OwnBody, PlotResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
 import type { PackedPlot } from "./plotPacking";
+import type { SimulationProgress } from "./simulationQueue";
 import type { PackedTable } from "./tablePacking";
 
 /**
@@ -27,6 +28,9 @@ export interface PageMessage {
 export type ToWorker =
   | PageMessage
   | { readonly type: "trace"; readonly id: number; readonly request: TraceRequest }
+  | { readonly type: "nearest"; readonly id: number; readonly request: NearestRequest }
+  /** Stops the simulation of a block, or lets it go on. */
+  | { readonly type: "simulation"; readonly block: string; readonly isStopped: boolean }
   | { readonly type: "propose"; readonly id: number; readonly bytes: Uint8Array; readonly fileName: string }
   /** What a file comes to under a mapping, before anything is saved. */
   | { readonly type: "preview"; readonly id: number; readonly bytes: Uint8Array; readonly fileName: string; readonly columns: readonly Column[] }
@@ -73,6 +77,8 @@ export interface Preview {
 
 export type FromWorker =
   | ResultsMessage
+  /** Blocks that are being simulated, after their results of first order and until those with quantiles; none when all is done. */
+  | { readonly type: "simulating"; readonly progress: readonly (readonly [handle: string, progress: SimulationProgress])[] }
   | { readonly type: "trace"; readonly id: number; readonly node: TraceNode | null }
   | { readonly type: "proposal"; readonly id: number; readonly proposal: FileProposal }
   | { readonly type: "preview"; readonly id: number; readonly preview: Preview }

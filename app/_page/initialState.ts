@@ -25,6 +25,7 @@ export function initialState({ pageId, mode, title, document, me, people }: Init
     results: null,
     loading: new Set(),
     calculating: true,
+    simulating: new Map(),
     fault: null,
     edits: null,
     me,

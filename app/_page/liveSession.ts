@@ -63,6 +63,8 @@ export function createLiveSession(props: LivePageProps, connect: Connect): LiveS
       say("picked", spokenPicks(rows));
     },
     trace: (request) => running?.engine.askTrace(request),
+    nearest: (request) => running?.engine.nearest(request) ?? Promise.resolve(null),
+    stopSimulation: (handle, isStopped) => running?.engine.stopSimulation(handle, isStopped),
     enter: (key) => say("block", key),
     undo: () => void running?.undo?.undo(),
     redo: () => void running?.undo?.redo(),

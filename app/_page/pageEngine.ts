@@ -30,6 +30,7 @@ export function startPageEngine(
       store.set({ results, loading, calculating: !upToDate, fault: null, classes: classSequence(results, classes) });
       if (traced !== null && upToDate) askTrace(traced.request);
     },
+    onSimulating: (simulating) => store.set({ simulating }),
     onFault: (fault) => store.set({ fault, calculating: false }),
   });
   return { ...client, askTrace };

@@ -2,6 +2,7 @@ import type { OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { Draft } from "@/realtime/client";
 import type { PageBlock, PageEdits } from "@/realtime/document";
 import type { LiveText, PageMode, PagePlace, PickedRow, Presence, SaveState, Settings } from "./contract";
+import type { SimulationProgress } from "./simulationQueue";
 import type { PageServices } from "./services";
 
 /** All that the screens of one page show. Never changed in place: a change is a new object, with unchanged parts kept. */
@@ -18,6 +19,8 @@ export interface PageState {
   /** Handles whose source is still on its way. */
   readonly loading: ReadonlySet<string>;
   readonly calculating: boolean;
+  /** Blocks that are being simulated now, or whose simulation was stopped, by handle. */
+  readonly simulating: ReadonlyMap<string, SimulationProgress>;
   /** A fault of the engine itself, in words. */
   readonly fault: string | null;
   readonly edits: PageEdits | null;
@@ -41,6 +44,9 @@ export interface PageState {
 export interface PageActions {
   pick(rows: readonly PickedRow[]): void;
   trace(request: TraceRequest | null): void;
+  /** Bodies and samples nearest to a sample; left out where no engine runs. */
+  nearest?(request: NearestRequest): Promise<Nearest | null>;
+  stopSimulation(handle: string, isStopped: boolean): void;
   enter(blockKey: string | null): void;
   undo(): void;
   redo(): void;

@@ -1,6 +1,7 @@
 import { CellError, PAGE_FORMAT, type Block, type BlockResult, type Engine, type PageDocument, type PageResults, type Table } from "@/cells";
 import type { FileProposal, FromWorker, PageMessage, Preview, ToWorker, TravellingResult } from "./engineProtocol";
 import { packPlot } from "./plotPacking";
+import { createSimulationQueue } from "./simulationQueue";
 import { packTable } from "./tablePacking";
 import { copyForTransfer } from "./transfer";
 
@@ -138,7 +139,7 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
     const began = performance.now();
     let results: PageResults;
     try {
-      results = engine.evaluate(now);
+      results = engine.evaluate(now, "later");
     } catch (error) {
       parts.post({ type: "fault", version, text: sentence(error) }, []);
       return;
@@ -169,7 +170,15 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
       },
       transfer,
     );
+    simulations.take(new Map([...(results.simulations ?? [])].filter(([handle]) => !loading.has(handle))));
   };
+
+  const simulations = createSimulationQueue({
+    later: parts.later,
+    now: () => performance.now(),
+    onProgress: (progress) => parts.post({ type: "simulating", progress: [...progress] }, []),
+    onDone: schedule,
+  });
 
   const preview = (message: Extract<ToWorker, { type: "preview" }>): Preview => {
     // An engine of its own: a preview must not touch what the page's engine remembers.
@@ -219,6 +228,9 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
       case "source":
         engine.setSource(message.sha256, message.bytes);
         schedule();
+        return;
+      case "simulation":
+        simulations.stop(message.block, message.isStopped);
         return;
       case "trace":
         // A trace is asked of what was evaluated last; a page that waits is evaluated first.

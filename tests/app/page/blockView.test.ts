@@ -7,6 +7,7 @@ import type { NoteResult, PageResults } from "@/cells";
 const actions: PageActions = {
   pick: () => undefined,
   trace: () => undefined,
+  stopSimulation: () => undefined,
   enter: () => undefined,
   undo: () => undefined,
   redo: () => undefined,

@@ -61,7 +61,8 @@ const data = fc
   )
   .map(([a, b]) => ({ ...a, ...b }));
 const text = fc.oneof(word, fc.constant("mg_si = Mg / Si\nal_si = Al / Si"), fc.constant("αβγ 🜨 \ud83d\ude00"));
-const formula = some({ kind: fc.constant("formula"), id: handle, text }, { ...title, data: handle });
+const simulate = fc.record({ draws: fc.integer({ min: 200, max: 50_000 }), seed: fc.integer({ min: 0, max: 999_999_999 }) });
+const formula = some({ kind: fc.constant("formula"), id: handle, text }, { ...title, data: handle, simulate });
 const note = some({ kind: fc.constant("note"), id: handle, text }, title);
 const trend = some(
   { kind: fc.constant("trend"), id: handle, data: handle, x: word, y: word, method: fc.constantFrom("york", "ordinary least squares") },
@@ -83,7 +84,7 @@ const step = fc.oneof(
 );
 const budget = some(
   { kind: fc.constant("budget"), id: handle, start: substance, steps: list(step) },
-  { ...title, report: list(word), target: fc.record({ trend: handle }) },
+  { ...title, report: list(word), target: fc.record({ trend: handle }), simulate },
 );
 const drawn = fc.oneof(
   some({ data: handle }, { x: word, y: word, hidden: fc.boolean() }),

@@ -99,6 +99,7 @@ export type {
   Uncertain,
 } from "./page/results";
 export { createEngine } from "./page/engine";
+export type { Nearest, NearestOne, NearestRequest } from "./data/nearest";
 export type { Engine, ImportProposal, ProposedColumn } from "./page/engine";
 export { hasErrors, resultsJson } from "./page/resultsJson";
 export { resultsTable } from "./page/resultsTable";

@@ -1,4 +1,4 @@
-import type { Block, Engine, OwnBody, PageResults, RowId, TraceNode, TraceRequest } from "@/cells";
+import type { Block, Engine, Nearest, NearestRequest, OwnBody, PageResults, RowId, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock, PageEdits } from "@/realtime/document";
 import type { SimulationProgress } from "./simulationQueue";
 import type { Awareness } from "y-protocols/awareness";

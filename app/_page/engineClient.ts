@@ -1,4 +1,4 @@
-import type { BlockResult, Column, OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
+import type { BlockResult, Column, Nearest, NearestRequest, OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { PageBlock } from "@/realtime/document";
 import type { FileProposal, FromWorker, Preview, ResultsMessage, ToWorker, TravellingResult } from "./engineProtocol";
 import { unpackPlot } from "./plotPacking";
@@ -121,6 +121,10 @@ export function createEngineClient(
     async trace(request) {
       const answer = await ask((id) => ({ type: "trace", id, request }));
       return answer.type === "trace" ? answer.node : null;
+    },
+    async nearest(request) {
+      const answer = await ask((id) => ({ type: "nearest", id, request }));
+      return answer.type === "nearest" ? answer.nearest : null;
     },
     async propose(bytes, fileName) {
       const answer = await ask((id) => ({ type: "propose", id, bytes, fileName }));

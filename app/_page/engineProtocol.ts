@@ -1,4 +1,17 @@
-import type { Block, BlockResult, Column, DataResult, OwnBody, PlotResult, Problem, ProposedColumn, TraceNode, TraceRequest } from "@/cells";
+import type {
+  Block,
+  BlockResult,
+  Column,
+  DataResult,
+  Nearest,
+  NearestRequest,
+  OwnBody,
+  PlotResult,
+  Problem,
+  ProposedColumn,
+  TraceNode,
+  TraceRequest,
+} from "@/cells";
 import type { PackedPlot } from "./plotPacking";
 import type { SimulationProgress } from "./simulationQueue";
 import type { PackedTable } from "./tablePacking";
@@ -80,6 +93,7 @@ export type FromWorker =
   /** Blocks that are being simulated, after their results of first order and until those with quantiles; none when all is done. */
   | { readonly type: "simulating"; readonly progress: readonly (readonly [handle: string, progress: SimulationProgress])[] }
   | { readonly type: "trace"; readonly id: number; readonly node: TraceNode | null }
+  | { readonly type: "nearest"; readonly id: number; readonly nearest: Nearest | null }
   | { readonly type: "proposal"; readonly id: number; readonly proposal: FileProposal }
   | { readonly type: "preview"; readonly id: number; readonly preview: Preview }
   | { readonly type: "failed"; readonly id: number; readonly text: string }

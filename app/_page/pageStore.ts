@@ -1,4 +1,4 @@
-import type { OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
+import type { Nearest, NearestRequest, OwnBody, PageResults, TraceNode, TraceRequest } from "@/cells";
 import type { Draft } from "@/realtime/client";
 import type { PageBlock, PageEdits } from "@/realtime/document";
 import type { LiveText, PageMode, PagePlace, PickedRow, Presence, SaveState, Settings } from "./contract";

@@ -237,6 +237,10 @@ export function createWorkerEngine(parts: WorkerEngineParts): { receive: (messag
         if (due) evaluate();
         answer(message.id, () => ({ type: "trace", id: message.id, node: engine.trace(message.request) }));
         return;
+      case "nearest":
+        if (due) evaluate();
+        answer(message.id, () => ({ type: "nearest", id: message.id, nearest: engine.nearest(message.request) }));
+        return;
       case "propose":
         answer(message.id, () => ({ type: "proposal", id: message.id, proposal: propose(message.bytes, message.fileName) }));
         return;

@@ -7,6 +7,8 @@ import { pageGraph, type PageGraph, type Step } from "./graph";
 import { Memory } from "./memory";
 import { plotAxis } from "./references";
 import { ENGINE_VERSION, type BlockResult, type PageResults, type TraceNode, type TraceRequest } from "./results";
+import { nearest, type Nearest, type NearestRequest } from "../data/nearest";
+import type { Table } from "../table/table";
 import { pageScopes, type Scopes } from "./scopes";
 import type { Block, Column, DataBlock, PageDocument } from "./schema";
 import { proposeImport } from "./propose";
@@ -46,6 +48,8 @@ export interface Engine {
   evaluate(page: PageDocument, simulations?: "now" | "later"): PageResults;
   /** Where a number of the last evaluation comes from; null where there is no such number now. */
   trace(request: TraceRequest): TraceNode | null;
+  /** Bodies and samples nearest to a sample of the last evaluation; null where there is no such sample, or it says too little. */
+  nearest(request: NearestRequest): Nearest | null;
   /** Reads a file and proposes what each of its columns is. Throws CellError where it is no table. */
   propose(bytes: Uint8Array, fileName: string): ImportProposal;
 }
@@ -63,6 +67,7 @@ export function createEngine(): Engine {
       return last.run(simulations);
     },
     trace: (request) => last?.trace(request) ?? null,
+    nearest: (request) => last?.nearest(request) ?? null,
     propose: proposeImport,
   };
 }
@@ -136,6 +141,20 @@ class Evaluation {
   private simulation(block: Block): Simulation | undefined {
     const result = this.results.get(block.id);
     return result === undefined ? undefined : simulationOf(result, "simulate" in block ? block.simulate : undefined);
+  }
+
+  nearest({ block, index }: NearestRequest): Nearest | null {
+    const tableOf = (handle: string): Table | undefined => {
+      const result = this.results.get(handle);
+      return result?.kind === "data" ? result.table : undefined;
+    };
+    const own = tableOf(this.graph.resolve(block)?.id ?? block);
+    // A table made of others has their samples; each counts where it was read.
+    const others = this.page.blocks.flatMap((each) => {
+      const table = each.kind === "data" && each.stack === undefined && each.join === undefined ? tableOf(each.id) : undefined;
+      return table === undefined ? [] : [table];
+    });
+    return own === undefined ? null : nearest(own, index, others, this.context.bodies.all);
   }
 
   trace(request: TraceRequest): TraceNode | null {

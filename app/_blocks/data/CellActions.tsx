@@ -1,10 +1,12 @@
 "use client";
 
+import { useState } from "react";
 import { Button } from "@/app/_ui/Button";
 import type { PageView } from "@/app/_page/contract";
 import type { DataBlock, RowId, Table } from "@/cells";
 import { TOTAL_COLUMN } from "@/app/_page/margin/footnotes";
 import type { GridColumn, GridModel } from "./gridModel";
+import { NearestDialog } from "./NearestDialog";
 import type { CellPlace } from "./gridKeys";
 
 export interface CellActionsProps {
@@ -45,6 +47,7 @@ export function targetAt(block: DataBlock, model: GridModel, place: CellPlace): 
 
 /** One line under a table: what can be done at the active cell. The same things are on the keyboard; nothing is only in a hover. */
 export function CellActions({ block, model, place, view, onAmend, onSetAside, onUndo, onDelete }: CellActionsProps) {
+  const [near, setNear] = useState<CellPlace["row"] | null>(null);
   const target = targetAt(block, model, place);
   if (target === undefined) return null;
   const { column, row, sample } = target;
@@ -67,6 +70,8 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
         {isTotal ? "" : `, ${column.name}`}
       </span>
       {column?.quantity !== undefined ? <Button onClick={() => view.trace({ block: block.id, name: column.name, index: place.row })}>Trace</Button> : null}
+      {view.nearest === undefined || model.table === undefined ? null : <Button onClick={() => setNear(place.row)}>Nearest</Button>}
+      {near === null ? null : <NearestDialog block={block.id} index={near} sample={sampleAt(model.table, near)} view={view} onClose={() => setNear(null)} />}
       {made
         ? origins.map((origin) => (
             <Button

@@ -47,6 +47,7 @@ function countingEngine() {
       const readsFrom = new Map(page.blocks.map((b) => [b.id, b.kind === "formula" && b.data !== undefined ? [b.data] : []]));
       return { engine: "test", bodies: {}, blocks, readsFrom };
     },
+    nearest: () => null,
     trace: ({ name }) => ({ kind: "result", label: name, value: 1, sigma: null, unit: "1", share: null, notes: [], from: [] }),
     propose(_, fileName) {
       if (fileName === "bad") throw new CellError("no-table", "This file is no table.");

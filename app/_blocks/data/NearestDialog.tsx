@@ -1,0 +1,76 @@
+"use client";
+
+import { useEffect, useState } from "react";
+import type { PageView } from "@/app/_page/contract";
+import { Button } from "@/app/_ui/Button";
+import { Dialog } from "@/app/_ui/Dialog";
+import type { Nearest, NearestOne } from "@/cells";
+import { missingInWords, nearestInWords } from "./nearestWords";
+
+export interface NearestDialogProps {
+  readonly block: string;
+  /** Index of the row in the table. */
+  readonly index: number;
+  readonly sample: string;
+  readonly view: PageView;
+  readonly onClose: () => void;
+}
+
+type Answer = "asked" | Nearest | null;
+
+/** Bodies and samples whose ratios of elements are most like those of one sample. */
+export function NearestDialog({ block, index, sample, view, onClose }: NearestDialogProps) {
+  const [answer, setAnswer] = useState<Answer>("asked");
+  const { nearest } = view;
+  useEffect(() => {
+    let mine = true;
+    const ask = nearest?.({ block, index }) ?? Promise.resolve(null);
+    ask.then(
+      (found) => mine && setAnswer(found),
+      () => mine && setAnswer(null),
+    );
+    return () => {
+      mine = false;
+    };
+    // Asked once, when the sheet opens: what it shows does not jump while somebody reads it.
+    // eslint-disable-next-line react-hooks/exhaustive-deps
+  }, [block, index]);
+  return (
+    <Dialog open onClose={onClose} size="wide" title={`Nearest to ${sample}`} says={nearestInWords(answer)}>
+      {answer === "asked" || answer === null ? null : (
+        <div className="grid gap-8 min-[720px]:grid-cols-2">
+          <List title="Bodies" all={answer.bodies} />
+          <List
+            title="Samples"
+            all={answer.samples}
+            onShow={(one) => {
+              onClose();
+              if (one.row !== undefined) view.show?.({ block: one.of, row: one.row });
+            }}
+          />
+        </div>
+      )}
+    </Dialog>
+  );
+}
+
+function List({ title, all, onShow }: { readonly title: string; readonly all: readonly NearestOne[]; readonly onShow?: (one: NearestOne) => void }) {
+  return (
+    <section>
+      <h3 className="border-b border-hairline pb-1 font-medium">{title}</h3>
+      {all.length === 0 ? <p className="py-2 text-margin text-second">None has three of these elements.</p> : null}
+      <ol className="text-margin">
+        {all.map((one) => (
+          <li key={`${one.of} ${one.row ?? ""} ${one.name}`} className="grid grid-cols-[1fr_auto] gap-x-4 border-b border-hairline py-1">
+            <span className="min-w-0">
+              {onShow === undefined ? one.name : <Button onClick={() => onShow(one)}>{one.name === "" ? `row ${one.row ?? ""}` : one.name}</Button>}{" "}
+              <span className="text-second">{one.of}</span>
+            </span>
+            <span className="font-mono">{one.distance.toFixed(3)}</span>
+            <span className="col-span-2 text-second">{missingInWords(one)}</span>
+          </li>
+        ))}
+      </ol>
+    </section>
+  );
+}

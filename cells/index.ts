@@ -57,7 +57,7 @@ export type {
 } from "./page/schema";
 
 // Simulated propagation
-export { Simulation, USUAL_WISH } from "./simulate";
+export { Simulation, USUAL_WISH, range as rangeInWords } from "./simulate";
 export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulationWish } from "./simulate";
 
 // Tables

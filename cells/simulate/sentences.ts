@@ -45,17 +45,19 @@ export function withoutWords(withoutValue: number, draws: number): string {
   return withoutValue === 0 ? "" : ` ${count(withoutValue)} of the ${count(draws)} draws have no value: they divide by 0 or leave the domain of a function.`;
 }
 
-/** Two ends, rounded to a twentieth of what lies between them. */
+/** Two ends, both rounded to the place of the second digit of what lies between them. */
 export function range(from: number, to: number): string {
-  return `${short(from, to - from)} to ${short(to, to - from)}`;
+  const places = 1 - exponentOf(to - from);
+  const short = (value: number): string => {
+    if (!(to > from)) return formatNumber(value);
+    const digits = exponentOf(value) + places + 1;
+    return digits < 1 ? "0" : formatNumber(value, digits);
+  };
+  return `${short(from)} to ${short(to)}`;
 }
 
-function short(value: number, width: number): string {
-  if (!(width > 0)) return formatNumber(value);
-  const size = Math.max(Math.abs(value), width);
-  let digits = 2;
-  for (let step = size; step > width && digits < 8; step /= 10) digits++;
-  return formatNumber(value, Math.abs(value) >= width ? digits : 2);
+function exponentOf(value: number): number {
+  return value === 0 ? 0 : Number(value.toExponential().split("e")[1] ?? 0);
 }
 
 /** By how many σ an end of the range of 68 % lies off that of first order; the larger of the two. */

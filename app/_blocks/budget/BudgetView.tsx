@@ -2,6 +2,8 @@
 
 import type { BlockViewProps } from "@/app/_page/contract";
 import { formatNumber, formatValue, withUnit } from "@/app/_ui/concise";
+import { quantilesInWords } from "@/app/_blocks/shared/simulatedWords";
+import { SimulateControl } from "@/app/_blocks/shared/SimulateControl";
 import { resultOf } from "@/app/_blocks/shared/tableOf";
 import type { BudgetBlock, BudgetResult } from "@/cells";
 import { BudgetBars } from "./BudgetBars";
@@ -61,12 +63,16 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
           </small>
         </p>
       )}
+      {solved !== undefined && result?.simulated?.solved != null && (
+        <p className="text-margin text-second">{quantilesInWords(result.simulated.solved, solved.unit)}</p>
+      )}
       {otherRoots.length > 0 && (
         <p className="text-margin text-second">
           Also reached at {otherRoots.map((root) => formatNumber(root, 4)).join(", ")}; the smallest physical amount is taken.
         </p>
       )}
       <BudgetSteps blockKey={blockKey} block={block} result={result} view={view} />
+      {block.steps.length > 0 && <SimulateControl blockKey={blockKey} handle={block.id} wish={block.simulate} view={view} />}
       {problems.map((p, index) => (
         <p key={index} className={p.severity === "error" ? "mt-2 text-vermilion" : "mt-2 text-margin text-second"}>
           {p.text}

@@ -8,6 +8,7 @@ import { createPortal } from "react-dom";
 import type { BlockViewProps } from "@/app/_page/contract";
 import { createCodeEditor } from "@/app/_blocks/shared/codeEditor";
 import { pickedIndices } from "@/app/_blocks/shared/picks";
+import { SimulateControl } from "@/app/_blocks/shared/SimulateControl";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
 import { useSharedText } from "@/app/_blocks/shared/useSharedText";
 import type { FormulaBlock } from "@/cells";
@@ -123,6 +124,7 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
           {isReadOnly ? "No formula is written here." : "Write a line: a name, an equals sign, an expression. For example mg_si = Mg / Si"}
         </p>
       )}
+      {lines.length > 0 && <SimulateControl blockKey={blockKey} handle={block.id} wish={block.simulate} view={view} />}
       {elsewhere.map((p, index) => (
         <p key={index} className={p.severity === "error" ? "mt-2 text-vermilion" : "mt-2 text-margin text-second"}>
           {p.text}

@@ -7,6 +7,7 @@ import { ClassMarker } from "@/app/_ui/ClassMarker";
 import { formatValue, withUnit } from "@/app/_ui/concise";
 import type { LineResult, Table } from "@/cells";
 import { countsText, natureText, rangeText } from "./headWords";
+import { lineSimulated } from "@/app/_blocks/shared/simulatedWords";
 import type { FormulaLine } from "./lines";
 import { LineStrip } from "./LineStrip";
 
@@ -51,6 +52,7 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
         </span>
         <span className="ml-auto text-margin text-second max-[719px]:ml-0 max-[719px]:basis-full">{result === undefined ? "" : countsText(result)}</span>
       </div>
+      {result !== undefined && lineSimulated(result) !== "" && <p className="text-margin text-second">{lineSimulated(result)}</p>}
       {result?.ok && drawn?.ok && (drawn.perSample || drawn.byClass !== undefined) && (
         <LineStrip block={block} line={drawn} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />
       )}

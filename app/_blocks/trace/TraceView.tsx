@@ -4,6 +4,7 @@ import { useEffect, useRef } from "react";
 import type { PageView } from "@/app/_page/contract";
 import { Button } from "@/app/_ui/Button";
 import { rowLabel } from "@/app/_blocks/shared/picks";
+import { quantilesInWords, wishInWords } from "@/app/_blocks/shared/simulatedWords";
 import { tableOf } from "@/app/_blocks/shared/tableOf";
 import { compactExpression } from "@/app/_blocks/shared/words";
 import { TraceBranches } from "./TraceBranch";
@@ -70,6 +71,11 @@ export function TraceView({ view }: { readonly view: PageView }) {
             {nodeValue(node, view.settings.uncertainty) || "–"}
             <small className="ml-2 font-sans text-margin font-normal text-second">{askedInWords(node)}</small>
           </p>
+          {node.simulated !== undefined && (
+            <p className="text-second">
+              {quantilesInWords(node.simulated, node.unit)} ({wishInWords(node.simulated)})
+            </p>
+          )}
           <div className="mt-2">
             <p className="pb-1 font-mono break-words">{node.label}</p>
             {hasShares(node) && <p className="pb-1 text-second">the branch’s width is its share of the variance</p>}

@@ -16,7 +16,7 @@ function lineOf(text: string): LineResult | undefined {
 describe("words of a simulation", () => {
   it("says ranges with the unit, and how it was drawn", () => {
     expect(quantilesInWords({ median: 2.1, from68: 1.4, to68: 3.4, from95: 1.1, to95: 5.2 }, "wt%")).toBe(
-      "simulated: 68 % within 1.4 to 3.4, 95 % within 1.1 to 5.2\u00a0wt%, middle 2.10",
+      "simulated: 68 % within 1.4 to 3.4, 95 % within 1.1 to 5.2\u2009wt%, middle 2.10",
     );
     expect(wishInWords({ draws: 20000, seed: 7 })).toBe("20,000 draws, seed 7");
   });

@@ -23,6 +23,8 @@ export function CloudCanvas({ view, painting }: CloudCanvasProps) {
       if (canvas.current.height !== made.height) canvas.current.height = made.height;
       context.putImageData(new ImageData(made.pixels, made.width, made.height), 0, 0);
       painting.current = made;
+      // What is painted now, for whoever waits for it.
+      canvas.current.dataset.view = JSON.stringify(view.frame.view);
     });
     return () => cancelAnimationFrame(frame);
   }, [view, painting]);

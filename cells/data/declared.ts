@@ -1,3 +1,4 @@
+import { impossibleCorrelations } from "./impossibleCorrelations";
 import type { DataBlock } from "../page/schema";
 import { State } from "../quantity/state";
 import { sigmaToCanonical } from "../quantity/unit";
@@ -106,6 +107,12 @@ function assume(block: DataBlock, table: Table, problems: Problems): void {
 }
 
 function correlate(block: DataBlock, table: Table, problems: Problems): readonly ColumnCorrelation[] {
+  const found = readCorrelations(block, table, problems);
+  sayImpossible([...table.correlations, ...found], table, problems);
+  return found;
+}
+
+function readCorrelations(block: DataBlock, table: Table, problems: Problems): readonly ColumnCorrelation[] {
   const found: ColumnCorrelation[] = [];
   (block.correlations ?? []).forEach((entry, index) => {
     const [a, b] = entry.of;
@@ -131,6 +138,19 @@ function correlate(block: DataBlock, table: Table, problems: Problems): readonly
     found.push({ of: [first.name, second.name], value: correlationsOf(column, first, second, table, problems) });
   });
   return found;
+}
+
+/** Errors of three columns and more cannot correlate in every way: ρ of 0.9, 0.9 and −0.9 would give some sum a variance below 0. */
+function sayImpossible(correlations: readonly ColumnCorrelation[], table: Table, problems: Problems): void {
+  const { columns, rows } = impossibleCorrelations(correlations, table.rows);
+  const [first] = rows;
+  if (first === undefined) return;
+  const all = rows.length === table.rows ? "in every row" : `in ${counted(rows.length, "row")}, first in row ${table.rowIds[first] ?? first + 1}`;
+  problems.error(
+    "correlations-impossible",
+    `The correlations declared between ${columns.join(", ")} cannot all hold together (${all}): their matrix is not positive definite, so some sums and ratios would have a variance below 0, which counts as 0. Check signs and sizes, or declare fewer of them.`,
+    { field: "correlations" },
+  );
 }
 
 /** Row by row out of a column; rows of which it says nothing count as uncorrelated, and are counted. */

@@ -37,7 +37,7 @@ export function evaluateData(block: DataBlock, context: BlockContext, source: Ui
   try {
     const { table: whole, proposed, amended } = make(block, context, source, problems);
     const table = block.replicates === undefined || block.join !== undefined ? whole : mergeReplicates(whole, block.replicates, problems);
-    const { flags: screening, totals } = screen(block, table, problems);
+    const { flags: screening, totals } = screen(block, table, problems, (handle) => totalsOf(context, handle));
     const aside = sum(table.setAside);
     return {
       kind: "data",
@@ -68,6 +68,12 @@ export function evaluateData(block: DataBlock, context: BlockContext, source: Ui
       bodiesUsed: {},
     };
   }
+}
+
+/** The range of totals that a table's own block sets. */
+function totalsOf(context: BlockContext, handle: string): DataBlock["totals"] {
+  const other = context.block(handle);
+  return other?.kind === "data" ? other.totals : undefined;
 }
 
 function make(block: DataBlock, context: BlockContext, source: Uint8Array | undefined, problems: Problems): Made {

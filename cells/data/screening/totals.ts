@@ -11,6 +11,11 @@ const majors = ["SiO2", "Al2O3", "MgO", "CaO"] as const;
 const known: ReadonlySet<string> = new Set(oxides);
 const volatileOxides: ReadonlySet<string> = new Set(["H2O", "CO2", "SO2", "SO3"]);
 
+export interface TotalsRange {
+  readonly from: number;
+  readonly to: number;
+}
+
 /** Totals of a table's rows, and the columns in them beside the iron. */
 export interface Totals {
   readonly total: Float64Array;
@@ -50,8 +55,9 @@ export function oxideTotals(table: Table, problems: Problems): Totals | undefine
 }
 
 /** Flags totals outside a range, for rows in use. */
-export function screenTotals(table: Table, totals: Totals, flags: Flags, range: { readonly from: number; readonly to: number } = COMMON): void {
+export function screenTotals(table: Table, totals: Totals, flags: Flags, rangeOf: (row: number) => TotalsRange | undefined = () => undefined): void {
   totals.total.forEach((total, row) => {
+    const range = rangeOf(row) ?? COMMON;
     if (table.setAside[row] === 1 || Number.isNaN(total) || (total >= range.from && total <= range.to)) return;
     const missing = totals.columns.filter((column) => column.state[row] !== State.present).map((column) => column.name);
     const without = missing.length === 0 ? "" : `, without ${missing.slice(0, 4).join(", ")}${missing.length > 4 ? " …" : ""}`;

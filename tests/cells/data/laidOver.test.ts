@@ -255,3 +255,34 @@ describe("whatever is laid over a source", () => {
     expect(page.add(block, bytes)).toEqual(first);
   });
 });
+
+describe("correlations that cannot all hold", () => {
+  const csv = "a (wt%),b (wt%),c (wt%),rho\n1,2,3,0.9\n1,2,3,-0.9\n";
+  const columns = [wtpct("MgO", "a (wt%)"), wtpct("SiO2", "b (wt%)"), wtpct("CaO", "c (wt%)"), { header: "rho", role: "quantity", unit: "1" }] as const;
+  const declare = (...values: (number | string)[]): ReturnType<typeof read> => {
+    const of = [
+      ["MgO", "SiO2"],
+      ["SiO2", "CaO"],
+      ["MgO", "CaO"],
+    ] as const;
+    return read(csv, {
+      columns: columns.map((column) => ({ ...column, ...("species" in column ? { name: column.species } : {}) })),
+      correlations: values.map((value, i) => ({ of: [...(of[i] ?? ["", ""])] as [string, string], value })),
+    });
+  };
+
+  it("are an error that names the columns and the rows: 0.9, 0.9 and −0.9 have the determinant −2.888 (1 + 2abc − a² − b² − c², by hand)", () => {
+    expect(problemOf(declare(0.9, 0.9, -0.9), "correlations-impossible")).toMatchObject({
+      severity: "error",
+      field: "correlations",
+      text: expect.stringContaining("MgO, SiO2, CaO cannot all hold together (in every row)") as string,
+    });
+    expect(problemOf(declare(0.9, 0.9, "rho"), "correlations-impossible").text).toContain("in 1 row, first in row 2");
+  });
+
+  it("are nothing to say of where they can: 0.9, 0.9, 0.7; all 1; two columns alone", () => {
+    for (const values of [[0.9, 0.9, 0.7], [1, 1, 1], [-1], [0.7, 0.7]]) expect(problemsOf(declare(...values), "correlations-impossible")).toEqual([]);
+    expect(problemsOf(declare(0.75, 0.75), "correlations-impossible")).toHaveLength(1);
+    expect(problemsOf(declare(1, 1, 0.5), "correlations-impossible")).toHaveLength(1);
+  });
+});

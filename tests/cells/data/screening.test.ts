@@ -25,6 +25,20 @@ describe("totals", () => {
     expect(totals({ FeOt: "12" })).toEqual(["total 102.0 wt%, above 101.5"]);
   });
 
+  it("of a stack are held against the ranges of the tables its rows were read in, unless it sets its own", () => {
+    const page = new DataPage();
+    const columns = [sample, ...[...major, "FeOt"].map((name) => wtpct(name))];
+    const head = ["Sample", ...major, "FeOt"].join(",");
+    page.source("fresh", `${head}\nA,45,4,38,3,5.8\n`, { columns });
+    page.source("wet", `${head}\nB,45,4,38,3,5.8\n`, { columns, totals: { from: 94, to: 101 } });
+    const noticed = (rest: Partial<DataBlock>): readonly string[] =>
+      flags(page.add({ id: "all", kind: "data", stack: ["fresh", "wet"], ...rest }).screening, "total").map((flag) => `${flag.sample}: ${flag.text}`);
+    expect(noticed({})).toEqual(["A: total 95.8 wt%, below 98.5"]);
+    expect(noticed({ totals: { from: 90, to: 101 } })).toEqual([]);
+    page.add({ id: "inner", kind: "data", stack: ["fresh", "wet"] });
+    expect(noticed({ stack: ["inner"] })).toEqual(["A: total 95.8 wt%, below 98.5"]);
+  });
+
   it("are held against the range set for the table", () => {
     expect(totals({ FeOt: "5.8" }, { totals: { from: 95, to: 102 } })).toEqual([]);
     expect(totals({ FeOt: "9" }, { totals: { from: 99.5, to: 100.5 } })).toEqual(["total 99.0 wt%, below 99.5"]);

@@ -42,7 +42,7 @@ function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
   const weighs = block.method === "york";
   const chosen = choose(block, read, weighs, problems);
   if (chosen === undefined) return emptyTrend(block, problems);
-  problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen));
+  problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen), ...aboutClosure(block, x, y));
   const base: TrendResult = {
     ...emptyTrend(block, []),
     n: chosen.rows.length,
@@ -141,6 +141,19 @@ function aboutData(block: TrendBlock, context: BlockContext): Problem[] {
       block: block.id,
       field: "data",
       text: `${block.data} has ${more} of its own, and this line rests on it as it is: ${first.text}`,
+    },
+  ];
+}
+
+/** Parts of one whole correlate because they sum to it (Aitchison 1986, ch. 3), whatever the rocks do; ratios do not. */
+function aboutClosure(block: TrendBlock, x: Evaluated, y: Evaluated): Problem[] {
+  if (x.unit.dimension !== "mass fraction" || y.unit.dimension !== "mass fraction") return [];
+  return [
+    {
+      code: "closure",
+      severity: "warning",
+      block: block.id,
+      text: `${block.x.trim()} and ${block.y.trim()} are parts of one whole: where one takes more of it the other has less, so a trend between them, a falling one above all, may be no more than that. Fit ratios to a common element, as in Mg / Si, to be free of it.`,
     },
   ];
 }
@@ -321,6 +334,12 @@ function aboutFit(block: TrendBlock, line: FittedLine): Problem[] {
       "line-with-scatter",
       "note",
       `The line is fitted with a scatter of ${formatNumber(line.scatter ?? Number.NaN, 3)} in y added to the errors. By the errors alone its slope would be ${formatNumber(line.byErrorsAlone.slope, 4)} and its intercept ${formatNumber(line.byErrorsAlone.intercept, 4)}.`,
+    );
+  if (block.scatter === "root mswd" && line.usesScatter && goodness !== undefined)
+    say(
+      "root-mswd",
+      "note",
+      `The σ in use are those by the errors alone times √MSWD = ${formatNumber(Math.sqrt(goodness.mswd), 3)}, as this trend is set to: all errors count as too small by one factor, and the line stays that of the errors. By default the scatter is estimated and fitted with.`,
     );
   if (line.usesScatter && line.scatter === 0)
     say(

@@ -83,7 +83,7 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
           {equation.y} = <Asked text={formatValue(equation.slope.value, equation.slope.sigma, { form })} label="the slope" onAsk={() => ask("slope")} />{" "}
           {equation.x} {equation.sign}{" "}
           <Asked text={formatValue(equation.intercept.value, equation.intercept.sigma, { form })} label="the intercept" onAsk={() => ask("intercept")} />
-          {equation.withScatter && <span className="ml-2 text-[0.76em] text-second">σ with scatter</span>}
+          {equation.withScatter && <span className="ml-2 text-[0.76em] text-second">{block.scatter === "root mswd" ? "σ × √MSWD" : "σ with scatter"}</span>}
         </p>
       )}
       {errors.map((p, index) => (

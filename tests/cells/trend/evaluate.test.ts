@@ -124,6 +124,7 @@ describe("scatter beyond the errors", () => {
   it("× √MSWD is the labelled alternative, and none leaves it out with a warning", () => {
     const likelihood = fitPoints(scattered);
     const root = fitPoints(scattered, { scatter: "root mswd" });
+    expect(root.problems.find(({ code }) => code === "root-mswd")?.text).toContain(`√MSWD = ${Math.sqrt(root.mswd ?? NaN).toPrecision(3)}`);
     expect(root.slope?.sigmaWithScatter).toBeCloseTo((root.slope?.sigma ?? NaN) * Math.sqrt(root.mswd ?? NaN), 12);
     expect(root.usesScatter).toBe(true);
     expect(root.scatter).toBeUndefined();
@@ -265,6 +266,11 @@ describe("what cannot be fitted says so, at its place", () => {
   it("bases that do not match are an error of the axis", () => {
     const result = evaluateTrend(trend({ x: "Mg / Si + atoms(Mg) / atoms(Si)", y: "Al / Si" }), contextOf(twelve()));
     expect(result.problems).toEqual([expect.objectContaining({ field: "x", severity: "error" })]);
+  });
+
+  it("two parts of one whole: that they may correlate for that alone; ratios do not", () => {
+    expect(codes(evaluateTrend(trend({ x: "Mg", y: "Al" }), contextOf(twelve())))).toContain("closure");
+    expect(codes(evaluateTrend(trend({ x: "Mg / Si", y: "Al / Si" }), contextOf(twelve())))).not.toContain("closure");
   });
 
   it("one value for all samples is no axis; one a class goes with another a class, not with one a sample", () => {

@@ -107,7 +107,7 @@ function single({ compiler, meaning, name, measured }: Shared, variable: CommonV
           "class-mismatch",
           "A mean over all samples of what already has a value for each class is not calculated. Take it class by class too.",
         );
-      return { to: common.node, partial: graph.param(`${variable.key}>${common.variable.key}`, weighedPartial(aggregated, measured.partial(common))) };
+      return { to: common.node, partial: graph.param(`${variable.key}>${common.variable.key}`, weighedPartial(aggregated, measured.directPartial(common))) };
     });
     compiler.links.set(node, links);
   }
@@ -130,7 +130,7 @@ function byClass({ compiler, tree, meaning, name, measured }: Shared, split: Spl
           `What is taken class by class of ${split.column} here was taken class by class of ${common.split.column} before.`,
           { span: tree.span },
         );
-      const partials = measured.partial(common);
+      const partials = measured.directPartial(common);
       return { to: common.node, partial: load(`>${common.node}`, (variable) => weighedPartial(values.get(variable), partials)) };
     }),
   );

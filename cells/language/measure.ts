@@ -29,6 +29,11 @@ export interface Measurement {
   readonly commons: readonly CommonPart[];
   /** Partial derivatives with respect to an input, row by row; made when first asked for. */
   partial(variable: ColumnVariable | CommonPart): Float64Array;
+  /**
+   * The same without what goes through other common variables: how the expression itself uses it. An aggregate leans on these,
+   * as those others lean on the variable by links of their own.
+   */
+  directPartial(variable: CommonPart): Float64Array;
   /** The derivative as a node of `graph`, and the columns its loads stand for over these rows. */
   readonly graph: Graph;
   partialNode(variable: ColumnVariable | CommonPart): number;
@@ -86,17 +91,23 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   }
   const partialNode = (variable: ColumnVariable | CommonPart): number => partials.get(variable.node) ?? graph.constant(0);
   const asCalculated = new Map<number, Float64Array>();
-  const partial = (variable: ColumnVariable | CommonPart): Float64Array => {
-    const known = asCalculated.get(variable.node);
+  const calculated = (derivative: number): Float64Array => {
+    const known = asCalculated.get(derivative);
     if (known !== undefined) return known;
     const found = new Float64Array(length);
-    run(lower(graph, [partialNode(variable)], columnOf), length, [found]);
-    asCalculated.set(variable.node, found);
+    run(lower(graph, [derivative], columnOf), length, [found]);
+    asCalculated.set(derivative, found);
     return found;
+  };
+  const partial = (variable: ColumnVariable | CommonPart): Float64Array => calculated(partialNode(variable));
+  let direct: ReadonlyMap<number, number> | undefined;
+  const directPartial = (variable: CommonPart): Float64Array => {
+    direct ??= compiler.links.size === 0 ? partials : partialsOf(graph, node, new Set(variables.keys()), new Map());
+    return calculated(direct.get(variable.node) ?? graph.constant(0));
   };
   const assumedCount = graph.constantOf(nodes.assumed) === 0 ? 0 : countFlags(made.assumed);
   const nearEdgeCount = graph.constantOf(near) === 0 ? 0 : countFlags(made.nearEdge);
-  return { length, ...made, assumedCount, nearEdgeCount, columns, commons, partial, graph, partialNode, columnOf, model };
+  return { length, ...made, assumedCount, nearEdgeCount, columns, commons, partial, directPartial, graph, partialNode, columnOf, model };
 }
 
 /** Collects what is to be calculated in one run: a node asked for twice is calculated once, and zeros not at all. */

@@ -205,3 +205,32 @@ describe("the trace of one number", () => {
     expect(bodies).toEqual({ CI: "CI_PLJ14" });
   });
 });
+
+describe("aggregates of what leans on aggregates", () => {
+  const rocks = scopeOf(
+    tableOf({ Mg: { value: [21, 22, 24], sigma: [0.2, 0.2, 0.2] }, Si: { value: [20, 21, 21], sigma: [0.2, 0.2, 0.2] }, Group: ["A", "A", "B"] }),
+  );
+  const of = (text: string) => evaluateExpression(rocks, text, { block: "r" });
+
+  it("count a body once: a mean over itself is 1 without σ, whatever body both were divided by", () => {
+    const one = of("mean(norm(Mg, CI) / mean(norm(Mg, CI)))");
+    expect(one.value[0]).toBeCloseTo(1, 12);
+    expect(one.sigma[0]).toBeLessThan(1e-9);
+    expect(of("mean(Mg / mean(Mg))").sigma[0]).toBeLessThan(1e-9);
+  });
+
+  it("keep the body's error where it does not cancel", () => {
+    const plain = of("mean(norm(Mg, CI))");
+    const twice = of("mean(norm(Mg, CI) * mean(norm(Mg, CI)))");
+    // The square of a mean has twice its relative σ.
+    expect((twice.sigmaCommon[0] ?? NaN) / (twice.value[0] ?? NaN)).toBeCloseTo((2 * (plain.sigmaCommon[0] ?? NaN)) / (plain.value[0] ?? NaN), 9);
+  });
+
+  it("also class by class, and through a choice", () => {
+    const byClass = of("mean(norm(Mg, CI) / mean(norm(Mg, CI), Group), Group)");
+    expect([...byClass.value].map((v) => Math.abs(v - 1) < 1e-12)).toEqual([true, true]);
+    expect(byClass.sigma[0]).toBeLessThan(1e-9);
+    const chosen = of("mean((Mg > wtpct(0) ? norm(Mg, CI) : norm(Si, CI)) / mean(norm(Mg, CI)))");
+    expect(chosen.sigma[0]).toBeLessThan(1e-9);
+  });
+});

@@ -7,6 +7,21 @@ import { counted, listed, type Problems } from "./problems";
 
 type Rule = NonNullable<DataBlock["replicates"]>;
 
+/** What a merged table was made from, for traces. Neither JSON nor a message between threads takes it along. */
+export interface Unmerged {
+  readonly table: Table;
+  /** Rows of that table behind each row of the merged one. */
+  readonly groups: readonly (readonly number[])[];
+  readonly rule: Rule;
+}
+
+const unmergedKey = Symbol("unmerged");
+
+/** The table as it was before analyses of one sample were merged; undefined where none were. */
+export function unmergedOf(table: Table): Unmerged | undefined {
+  return (table as Table & { readonly [unmergedKey]?: Unmerged })[unmergedKey];
+}
+
 /**
  * Makes one row a sample out of the analyses of one name; rows set aside stay as rows of their own, and so do rows without a
  * name. Every merged row keeps the origins of all its analyses.
@@ -26,8 +41,9 @@ export function mergeReplicates(table: Table, rule: Rule, problems: Problems): T
   const columns = table.columns.map((column): TableColumn => (column.kind === "text" ? mergeWords(column, groups, table, problems) : merger.column(column)));
   merger.summarise(merged.length);
   const first = (group: readonly number[]): number => group[0] ?? 0;
-  return {
+  const made: Table & { readonly [unmergedKey]: Unmerged } = {
     ...table,
+    [unmergedKey]: { table, groups, rule },
     rows: groups.length,
     rowIds: groups.map((group): RowId => table.rowIds[first(group)] ?? first(group) + 1),
     samples: groups.map((group) => table.samples[first(group)] ?? ""),
@@ -38,6 +54,7 @@ export function mergeReplicates(table: Table, rule: Rule, problems: Problems): T
     columns,
     correlations: table.correlations.map((correlation) => merger.correlation(correlation)),
   };
+  return made;
 }
 
 /** Rows that become one, in order of first appearance. */

@@ -422,6 +422,8 @@ export interface TraceNode {
   readonly cell?: {
     readonly block: string;
     readonly row: RowId;
+    /** Name of the sample, "" where it has none. */
+    readonly sample: string;
     readonly column: string;
     readonly raw: string;
     readonly rawSigma: string;

@@ -1,61 +1,140 @@
+import { columnOrigins } from "../data/members";
+import { replicateWeights } from "../data/replicateWeights";
+import { unmergedOf } from "../data/replicates";
 import type { BlockContext } from "../page/context";
 import type { TraceNode } from "../page/results";
-import type { DataBlock, RowId } from "../page/schema";
+import type { DataBlock } from "../page/schema";
 import { State } from "../quantity/state";
 import { sigmaFromCanonical } from "../quantity/unit";
-import type { QuantityColumn, Table } from "../table/table";
-import { inUnit, short } from "./node";
+import type { QuantityColumn, RowOrigin, Table } from "../table/table";
+import { byShare, inUnit, short } from "./node";
 
-/** One value of a table down to the cells of the sources it came from: one, or several where rows were merged. */
+/**
+ * One value of a table down to the cells of the sources it came from: one, or, where analyses were merged, each of them with
+ * its weight and its part of the share.
+ */
 export function cellNodes(context: BlockContext, table: Table, column: QuantityColumn, row: number, share: number | null): TraceNode[] {
-  const own = cellNode(context, table, column, row, share);
+  const merging = unmergedOf(table);
+  const before = merging?.table.columns.find((each): each is QuantityColumn => each.kind === "quantity" && each.name === column.name);
+  const group = merging?.groups[row];
+  if (merging !== undefined && before !== undefined && group !== undefined) {
+    const [only] = group;
+    if (group.length === 1 && only !== undefined) return cellNodes(context, merging.table, before, only, share);
+    return [mergedNode(context, { ...merging, column: before, group }, { table, column, row }, share)];
+  }
   const origins = (table.origins[row] ?? []).filter((origin) => origin.table !== table.handle);
-  const found = origins.flatMap(({ table: handle, row: id }): TraceNode[] => {
-    const origin = originOf(context, handle, id, column);
-    return origin === undefined ? [] : [cellNode(context, origin.table, origin.column, origin.row, origins.length === 1 ? share : null)];
-  });
-  const [only] = found;
-  if (found.length === 0 || only === undefined) return [own];
-  if (found.length === 1) return [only];
-  const { cell: _, ...merged } = own;
-  return [
-    {
-      ...merged,
-      kind: "aggregate",
-      label: `${column.name} of ${found.length} analyses`,
-      notes: [...own.notes, mergedNote(context, table.handle)],
-      from: found,
-    },
-  ];
+  const members = origins.length === 0 ? [] : membersOf(context, table, column, row);
+  const [first] = members;
+  if (first === undefined) return [cellNode(context, table, column, row, share)];
+  if (first.rows.length === 1) return cellNodes(context, first.table, first.column, first.rows[0] ?? 0, share);
+  // A join merges the analyses of a sample in each of its tables first.
+  const block = context.block(table.handle);
+  const rule = block?.kind === "data" ? block.replicates : undefined;
+  if (rule === undefined) return [cellNode(context, table, column, row, share)];
+  return [mergedNode(context, { table: first.table, column: first.column, group: first.rows, rule }, { table, column, row }, share)];
 }
 
-/** The row and column of a source that a row of a stacked or joined table came from. */
-function originOf(context: BlockContext, handle: string, id: RowId, column: QuantityColumn): { table: Table; column: QuantityColumn; row: number } | undefined {
-  const result = context.result(handle);
-  const table = result?.kind === "data" ? result.table : undefined;
-  if (table === undefined) return undefined;
-  const row = table.rowIds.indexOf(id);
+/** Analyses of one sample, as they were before they became one. */
+interface Merged {
+  readonly table: Table;
+  readonly column: QuantityColumn;
+  readonly group: readonly number[];
+  readonly rule: NonNullable<DataBlock["replicates"]>;
+}
+
+interface Place {
+  readonly table: Table;
+  readonly column: QuantityColumn;
+  readonly row: number;
+}
+
+function mergedNode(context: BlockContext, { table, column, group, rule }: Merged, to: Place, share: number | null): TraceNode {
+  const weights = replicateWeights(column, group, rule, to.column, to.row);
+  const from = weights.flatMap(({ row, weight, part }) => {
+    const nodes = cellNodes(context, table, column, row, share === null || part === null ? null : share * part);
+    return nodes.map((node): TraceNode => ({ ...node, notes: [weightNote(weight), ...node.notes] }));
+  });
+  const counting = weights.filter(({ weight }) => weight > 0).length;
+  const { cell: _, ...merged } = cellNode(context, to.table, to.column, to.row, share);
+  return {
+    ...merged,
+    kind: "aggregate",
+    label: `${to.column.name} of ${group.length} analyses`,
+    notes: [...merged.notes.filter((note) => !note.startsWith("Amended")), mergedNote(rule, counting > 1)],
+    from: byShare(from),
+  };
+}
+
+function weightNote(weight: number): string {
+  if (weight === 1) return "This analysis is the one that counts.";
+  return weight > 0 ? `Counts with weight ${short(weight, 4)} in the mean.` : "Does not count here.";
+}
+
+/** The rows of a table among those that a made table is made of, that one value of it came from. */
+function membersOf(
+  context: BlockContext,
+  made: Table,
+  column: QuantityColumn,
+  row: number,
+): { readonly table: Table; readonly column: QuantityColumn; readonly rows: number[] }[] {
+  const block = context.block(made.handle);
+  const handles = block?.kind === "data" ? (block.stack ?? block.join ?? []) : [];
+  const origins = new Set((made.origins[row] ?? []).map(originKey));
+  return handles.flatMap((handle) => {
+    const result = context.result(handle);
+    const table = result?.kind === "data" ? result.table : undefined;
+    const own = table === undefined ? undefined : columnIn(table, column);
+    if (table === undefined || own === undefined) return [];
+    const at = rowsByOrigin(table);
+    const rows = [...new Set([...origins].flatMap((origin) => at.get(origin) ?? []))].filter((each) =>
+      (table.origins[each] ?? []).every((origin) => origins.has(originKey(origin))),
+    );
+    return rows.length === 0 ? [] : [{ table, column: own, rows: rows.sort((a, b) => a - b) }];
+  });
+}
+
+/** The column of a member that a column of a made table has its values from. */
+function columnIn(table: Table, column: QuantityColumn): QuantityColumn | undefined {
   const quantities = table.columns.filter((each): each is QuantityColumn => each.kind === "quantity");
   if (column.sources !== undefined) {
-    const name = column.sources.find((source) => source.table === handle)?.column;
-    const named = quantities.find((each) => each.name === name);
-    return row < 0 || named === undefined ? undefined : { table, column: named, row };
+    const names = new Set(column.sources.map((source) => JSON.stringify([source.table, source.column])));
+    return quantities.find((each) => columnOrigins(table.handle, each).some((source) => names.has(JSON.stringify([source.table, source.column]))));
   }
   const alike = (each: QuantityColumn): boolean => each.species === column.species && each.unit.dimension === column.unit.dimension;
-  const found =
+  return (
     quantities.find((each) => each.name === column.name && alike(each)) ??
     (column.species === undefined ? undefined : quantities.find((each) => alike(each))) ??
-    quantities.find((each) => column.header !== undefined && each.header === column.header);
-  return row < 0 || found === undefined ? undefined : { table, column: found, row };
+    quantities.find((each) => column.header !== undefined && each.header === column.header)
+  );
 }
 
-function mergedNote(context: BlockContext, handle: string): string {
-  const block = context.block(handle);
-  const how = block?.kind === "data" ? block.replicates : undefined;
-  if (how === "weighted") return "Weighted mean of the analyses of one sample.";
-  if (how === "mean") return "Mean of the analyses of one sample.";
-  if (how !== undefined) return `Of the analyses of one sample, that of ${how.prefer.join(", else ")} is taken.`;
-  return "Put together from several rows.";
+const originKey = ({ table, row }: RowOrigin): string => JSON.stringify([table, row]);
+
+const placesByOrigin = new WeakMap<Table, ReadonlyMap<string, readonly number[]>>();
+
+/** Rows of a table by where they came from; made once for a table, since a mean over many samples asks for each of them. */
+function rowsByOrigin(table: Table): ReadonlyMap<string, readonly number[]> {
+  const known = placesByOrigin.get(table);
+  if (known !== undefined) return known;
+  const made = new Map<string, number[]>();
+  table.origins.forEach((origins, row) => {
+    for (const origin of origins) {
+      const key = originKey(origin);
+      const rows = made.get(key);
+      if (rows === undefined) made.set(key, [row]);
+      else rows.push(row);
+    }
+  });
+  placesByOrigin.set(table, made);
+  return made;
+}
+
+function mergedNote(rule: Merged["rule"], isMean: boolean): string {
+  if (typeof rule !== "string") return `Of the analyses of one sample, that of ${rule.prefer.join(", else ")} is taken.`;
+  if (!isMean) return "One analysis of the sample has a value that counts.";
+  return rule === "weighted"
+    ? "Mean of the analyses of one sample, weighted by 1/σ²; σ is 1/√Σ(1/σ²)."
+    : "Plain mean of the analyses of one sample; σ is that of their spread, s/√n, and each one's share is by its distance from the mean.";
 }
 
 function cellNode(context: BlockContext, table: Table, column: QuantityColumn, row: number, share: number | null): TraceNode {
@@ -70,6 +149,7 @@ function cellNode(context: BlockContext, table: Table, column: QuantityColumn, r
     cell: {
       block: table.handle,
       row: rowId,
+      sample: table.samples[row] ?? "",
       column: column.name,
       raw: column.raw[row] ?? "",
       rawSigma: column.rawSigma[row] ?? "",

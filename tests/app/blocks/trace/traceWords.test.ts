@@ -29,7 +29,7 @@ describe("a trace in words", () => {
   });
 
   it("names the row a cell stands in, as the source counts it", () => {
-    expect(cellInWords({ block: "th", row: 7, column: "MgO (wt%)", raw: "42.1", rawSigma: "" })).toBe("row 7, MgO (wt%)");
+    expect(cellInWords({ block: "th", row: 7, sample: "TH-07", column: "MgO (wt%)", raw: "42.1", rawSigma: "" })).toBe("row 7, MgO (wt%)");
   });
 
   it("knows whether any branch has a share, and how many cells there are", () => {

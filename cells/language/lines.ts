@@ -65,7 +65,7 @@ function readLine(line: string, start: number): FormulaLine | CellError | undefi
   if (trimmed === "") return undefined;
   const begin = start + line.indexOf(trimmed);
   const span: Span = [begin, begin + trimmed.length];
-  const equals = /^[^"'`=<>!]*(?:`[^`]*`)?[^"'`=<>!]*=(?!=)/u.exec(trimmed)?.[0];
+  const equals = /^[^"'`=<>!]*(?:`[^`]*`[^"'`=<>!]*)?=(?!=)/u.exec(trimmed)?.[0];
   if (equals === undefined) return new CellError("no-name", "A line gives a result a name: write name = expression.", { span });
   const written = equals.slice(0, -1).trim();
   const nameSpan: Span = [begin, begin + Math.max(written.length, 1)];

@@ -269,6 +269,8 @@ describe("attacks on time and memory end quickly", () => {
     expect(namesUsed(`${"$ ".repeat(25_000)}a`)).toHaveLength(1);
     expect(parseLines(`${"`".repeat(50_000)}\n${"a = ".repeat(10_000)}`).errors.length).toBeGreaterThan(0);
     complete(scope, `${"norm(".repeat(5000)}a, `, 25_003);
+    // One line as long as a whole block may be, without the sign that would end the search.
+    for (const one of ["a", "1+", "a.", "` ", " "]) expect(parseLines(one.repeat(100_000 / one.length)).lines.length).toBeLessThanOrEqual(1);
     expect(performance.now() - start).toBeLessThan(3000);
   });
 });

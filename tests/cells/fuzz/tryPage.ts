@@ -42,12 +42,12 @@ export function tryPage(page: unknown): "calculated" | "unreadable" {
   }
   const engine = createEngine();
   for (const [file, text] of sources) engine.setSource(file, new TextEncoder().encode(text));
-  const began = performance.now();
+  const began = process.cpuUsage();
   try {
     engine.evaluate(readPageDocument(page));
   } catch (error) {
     throw wrong(`calculating broke (${error instanceof Error ? (error.stack ?? error.message) : String(error)})`);
   }
-  if (performance.now() - began > 10_000) throw wrong("took more than ten seconds");
+  if (process.cpuUsage(began).user > 10_000_000) throw wrong("took more than ten seconds");
   return "calculated";
 }

@@ -140,6 +140,10 @@ export {
 } from "./species";
 export type { Body, BodyLookup, BodySpecies, BodyValue, Chemical, IronForm, OwnBody, OwnBodyFault, OwnValue, Resolution, Species } from "./species";
 
+// Where numbers come from
+export { dominantOf } from "./trace";
+export type { Dominant } from "./trace";
+
 // Expression language
 export {
   compileOnComposition,

@@ -2,6 +2,8 @@
 export { budgetNode } from "./budget";
 export { cellNodes } from "./cells";
 export type { Tracing } from "./commons";
+export { dominantOf } from "./dominant";
+export type { Dominant } from "./dominant";
 export { expressionNode } from "./expression";
 export { inUnit } from "./node";
 export { trendNode } from "./trend";

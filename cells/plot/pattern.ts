@@ -54,7 +54,12 @@ export function evaluatePattern(drawing: Drawing): PlotResult {
   const columns = order.columns(usedBy(layers));
   const x: AxisInfo = order.isByTemperature
     ? { expression: "", label: "50 % condensation temperature", unit: "K", basis: null }
-    : { expression: "", label: columns.map(({ of }) => of).join(", "), unit: "1", basis: null };
+    : {
+        expression: "",
+        label: block.order === "condensation order" ? "in order of 50 % condensation temperature, K" : columns.map(({ of }) => of).join(", "),
+        unit: "1",
+        basis: null,
+      };
   const relative = block.per === undefined || block.per.trim() === "" ? "" : `relative to ${block.per.trim()}, `;
   const y: AxisInfo = { expression: "", label: `${relative}normalised to ${by}`, unit: "1", basis: null };
   return {

@@ -206,7 +206,8 @@ export function buildAnnotations(
             xanchor: "right",
             yanchor: "top",
             yshift: result.plot === "pattern" ? -58 : -22,
-            text: chemicalMarkup(axes.x),
+            // A typed order is read off the symbols themselves.
+            text: result.plot === "pattern" && result.x.label === (result.columns ?? []).map(({ of }) => of).join(", ") ? "" : chemicalMarkup(axes.x),
             font: title,
           },
           ...(result.plot === "pattern"

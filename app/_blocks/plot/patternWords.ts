@@ -6,7 +6,7 @@ import type { Drawing } from "./traces";
 type Write = (px: number, py: number, text: string, size: number, color: string, weight: number, extra: Partial<Annotations>) => Partial<Annotations>;
 
 /** Room for an element's temperature, and for its symbol alone, in pixels. */
-const withTemperature = 30;
+const withTemperature = 33;
 const alone = 17;
 
 /** Under a pattern: each element's symbol with its condensation temperature below, drawn apart where places crowd, with a leader to its place. */

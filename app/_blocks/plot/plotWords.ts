@@ -12,7 +12,8 @@ export function axisInWords(axis: AxisInfo, label: string | undefined): string {
   if (label !== undefined && label !== "") return label;
   const name = axis.label === "" ? compactExpression(axis.expression) : axis.label;
   const unit = axis.unit === "" || axis.unit === "1" ? "" : `, ${axis.unit}`;
-  const basis = basisInWords(axis.basis);
+  // A concentration in a unit of mass says by what it is; a ratio does not.
+  const basis = unit !== "" && axis.basis === "mass" ? "" : basisInWords(axis.basis);
   return name + unit + (basis === "" ? "" : ` ${basis}`);
 }
 

@@ -6,7 +6,9 @@ import { plotFrame, type Frame, type ViewRange } from "./frame";
 export const HEIGHT = Math.sqrt(3) / 2;
 
 /** Room for corner labels and figures around the triangle, in pixels. */
-const room = { l: 44, r: 44, t: 30, b: 76 } as const;
+const room = { l: 36, r: 36, t: 22, b: 68 } as const;
+/** Between the triangle and the edge of the drawing surface, which cuts off what lies outside: ticks stand there. */
+const around = 8;
 
 /** Where two shares stand on the drawing: the first corner at the lower right, the second at the top, the third at the lower left. */
 export function ternaryPoint(x: number, y: number): readonly [number, number] {
@@ -77,7 +79,7 @@ export function layOutTernary(result: PlotResult): PlotResult {
 export function ternaryFrame(width: number, height: number, closeUp: ViewRange | null): Frame {
   const inner = { w: width - room.l - room.r, h: height - room.t - room.b };
   const view = closeUp ?? { x: [0, 1] as const, y: [0, HEIGHT] as const };
-  const perPixel = Math.max((view.x[1] - view.x[0]) / inner.w, (view.y[1] - view.y[0]) / inner.h);
+  const perPixel = Math.max((view.x[1] - view.x[0]) / (inner.w - 2 * around), (view.y[1] - view.y[0]) / (inner.h - 2 * around));
   const middle = { x: (view.x[0] + view.x[1]) / 2, y: (view.y[0] + view.y[1]) / 2 };
   const half = { x: (perPixel * inner.w) / 2, y: (perPixel * inner.h) / 2 };
   return plotFrame(width, height, { x: [middle.x - half.x, middle.x + half.x], y: [middle.y - half.y, middle.y + half.y] }, false, false, room);
@@ -85,7 +87,7 @@ export function ternaryFrame(width: number, height: number, closeUp: ViewRange |
 
 /** Height of a drawing so wide that the triangle fills it. */
 export function ternaryHeight(width: number): number {
-  return Math.round(Math.min(640, (width - room.l - room.r) * HEIGHT + room.t + room.b));
+  return Math.round(Math.min(640, (width - room.l - room.r - 2 * around) * HEIGHT + room.t + room.b + 2 * around));
 }
 
 type Point = readonly [u: number, v: number];

@@ -65,7 +65,7 @@ export function ternaryWords(result: PlotResult, { frame, palette, projector }: 
     // Outwards from the middle of the edge: its normal is 30° off its ticks.
     const normal = { x: [0, 1], y: [HEIGHT, -0.5], z: [-HEIGHT, -0.5] }[axis.corner];
     const [dx = 0, dy = 0] = normal;
-    const text = axis.corner === "z" ? `← ${chemicalMarkup(corners[axis.corner])}, %` : `${chemicalMarkup(corners[axis.corner])}, % →`;
+    const text = axis.corner !== "x" ? `← ${chemicalMarkup(corners[axis.corner])}, %` : `${chemicalMarkup(corners[axis.corner])}, % →`;
     put(frame.px(u) + dx * 36, frame.py(v) + dy * 36, text, 12, palette.ink, 500, {
       textangle: String(axis.corner === "x" ? 0 : axis.corner === "y" ? 60 : -60),
     });

@@ -1,9 +1,9 @@
-import { run } from "./execute";
 import { Graph } from "./graph";
 import { MAX_DERIVED_NODES } from "./limits";
 import type { Measurement } from "./measure";
 import { allPresent } from "./present";
 import { lower } from "./program";
+import { runRemembered } from "./remembered";
 import { covarianceOfParts, declaredCorrelation } from "./uncertainty";
 
 const made = new WeakMap<Measurement, WeakMap<Measurement, Float64Array>>();
@@ -15,7 +15,7 @@ const made = new WeakMap<Measurement, WeakMap<Measurement, Float64Array>>();
 export function perSampleCovariance(a: Measurement, b: Measurement): Float64Array {
   const known = made.get(a)?.get(b);
   if (known !== undefined) return known;
-  const found = new Float64Array(Math.max(a.length, b.length));
+  const length = Math.max(a.length, b.length);
   const graph = new Graph(MAX_DERIVED_NODES);
   let sum = graph.constant(0);
   for (const x of a.columns) {
@@ -28,12 +28,17 @@ export function perSampleCovariance(a: Measurement, b: Measurement): Float64Arra
       sum = graph.add(sum, rho === undefined ? product : graph.mul(product, graph.apply("orZero", graph.load(rho, "ρ"))));
     }
   }
-  if (graph.constantOf(sum) !== 0)
-    run(
-      lower(graph, [sum], (place) => graph.loads[place]?.column ?? found),
-      found.length,
-      [found],
-    );
+  // A copy: what is blanked depends on the two results and not on the covariance alone.
+  const found =
+    graph.constantOf(sum) === 0
+      ? new Float64Array(length)
+      : (
+          runRemembered(
+            lower(graph, [sum], (place) => graph.loads[place]?.column ?? new Float64Array(length)),
+            length,
+            [8],
+          )[0] as Float64Array
+        ).slice();
   blank(found, a.state, b.state);
   const inner = made.get(a) ?? new WeakMap<Measurement, Float64Array>();
   inner.set(b, found);

@@ -139,13 +139,14 @@ export class Evaluated implements EvaluatedMeaning {
   /** Correlation of the errors with those of another result, both sorts together; NaN where either σ is unknown or 0. */
   correlation(other: Evaluated): Float64Array {
     const [own, common] = [this.covariance(other), this.covarianceCommon(other)];
-    return own.map((value, i) => {
-      const sigmas = at(this.sigma, i) * at(other.sigma, i);
-      return sigmas > 0 ? Math.max(-1, Math.min(1, (value + (common[i] as number)) / sigmas)) : Number.NaN;
-    });
+    const { sigma } = this;
+    const [step, otherStep] = [sigma.length === 1 ? 0 : 1, other.sigma.length === 1 ? 0 : 1];
+    const found = new Float64Array(own.length);
+    for (let i = 0; i < found.length; i++) {
+      const sigmas = (sigma[i * step] as number) * (other.sigma[i * otherStep] as number);
+      const correlation = ((own[i] as number) + (common[i] as number)) / sigmas;
+      found[i] = sigmas > 0 ? Math.max(-1, Math.min(1, correlation)) : Number.NaN;
+    }
+    return found;
   }
-}
-
-function at(column: Float64Array, i: number): number {
-  return (column.length === 1 ? column[0] : column[i]) as number;
 }

@@ -3,10 +3,10 @@ import type { Compiler } from "./compiler";
 import { tooNearNode } from "./edges";
 import { partialsOf, type Links } from "./derivatives";
 import type { Column, Graph, Load } from "./graph";
-import { run } from "./execute";
 import { MAX_DERIVED_NODES } from "./limits";
 import { allPresent } from "./present";
 import { lower } from "./program";
+import { runRemembered } from "./remembered";
 import { extentOf, type Over, type Split } from "./split";
 import { uncertaintyNodes, type CommonPart } from "./uncertainty";
 
@@ -66,20 +66,23 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   const near = tooNearNode(graph, compiler.edges, variables, compiler.links);
   const length = extentOf(value.over);
   const columnOf = columnsOver(compiler, value.over);
-  const results = new Results(compiler, length);
   const state = graph.guard(value.state, node);
   const model: Model = { node, state, variables, links: compiler.links, split: value.over?.split ?? null };
-  const made = {
-    value: results.numbers(node),
-    state: results.bytes(state),
-    sigma: results.numbers(nodes.sigma),
-    sigmaPerSample: results.numbers(nodes.sigmaPerSample),
-    sigmaCommon: results.numbers(nodes.sigmaCommon),
-    lowerBound: results.bytes(nodes.lowerBound),
-    assumed: results.bytes(nodes.assumed),
-    nearEdge: results.bytes(near),
-  };
-  results.calculate(columnOf);
+  const made = calculate(
+    compiler,
+    {
+      value: node,
+      state,
+      sigma: nodes.sigma,
+      sigmaPerSample: nodes.sigmaPerSample,
+      sigmaCommon: nodes.sigmaCommon,
+      lowerBound: nodes.lowerBound,
+      assumed: nodes.assumed,
+      nearEdge: near,
+    },
+    length,
+    columnOf,
+  );
   blankAbsent(made, length);
 
   const columns: ColumnVariable[] = [];
@@ -94,8 +97,7 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   const calculated = (derivative: number): Float64Array => {
     const known = asCalculated.get(derivative);
     if (known !== undefined) return known;
-    const found = new Float64Array(length);
-    run(lower(graph, [derivative], columnOf), length, [found]);
+    const [found] = runRemembered(lower(graph, [derivative], columnOf), length, [8]) as readonly [Float64Array];
     asCalculated.set(derivative, found);
     return found;
   };
@@ -110,41 +112,43 @@ export function measure(compiler: Compiler, value: CompiledValue, node = value.n
   return { length, ...made, assumedCount, nearEdgeCount, columns, commons, partial, directPartial, graph, partialNode, columnOf, model };
 }
 
-/** Collects what is to be calculated in one run: a node asked for twice is calculated once, and zeros not at all. */
-class Results {
-  readonly #numbers = new Map<number, Float64Array>();
-  readonly #asked: number[] = [];
-  readonly #to: (Float64Array | Uint8Array)[] = [];
+type Numbers = "value" | "sigma" | "sigmaPerSample" | "sigmaCommon";
+type Bytes = "state" | "lowerBound" | "assumed" | "nearEdge";
+const bytes: readonly string[] = ["state", "lowerBound", "assumed", "nearEdge"] satisfies Bytes[];
 
-  constructor(
-    readonly compiler: Compiler,
-    readonly length: number,
-  ) {}
-
-  numbers(node: number): Float64Array {
-    const known = this.#numbers.get(node);
-    if (known !== undefined) return known;
-    const column = new Float64Array(this.length);
-    this.#numbers.set(node, column);
-    this.#ask(node, column);
-    return column;
+/** All nodes in one run: one asked for twice is calculated once, and zeros not at all. */
+function calculate(
+  compiler: Compiler,
+  nodes: Readonly<Record<Numbers | Bytes, number>>,
+  length: number,
+  columnOf: (place: number) => Column,
+): Record<Numbers, Float64Array> & Record<Bytes, Uint8Array> {
+  const { graph } = compiler;
+  const places = new Map<string, number>();
+  const asked: number[] = [];
+  const widths: (1 | 8)[] = [];
+  for (const [name, node] of Object.entries(nodes)) {
+    if (graph.constantOf(node) === 0) continue;
+    const width = bytes.includes(name) ? 1 : 8;
+    const known = asked.findIndex((other, i) => other === node && widths[i] === width);
+    places.set(name, known < 0 ? asked.length : known);
+    if (known >= 0) continue;
+    asked.push(node);
+    widths.push(width);
   }
-
-  bytes(node: number): Uint8Array {
-    const column = new Uint8Array(this.length);
-    this.#ask(node, column);
-    return column;
-  }
-
-  #ask(node: number, column: Float64Array | Uint8Array): void {
-    if (this.compiler.graph.constantOf(node) === 0) return;
-    this.#asked.push(node);
-    this.#to.push(column);
-  }
-
-  calculate(columnOf: (place: number) => Column): void {
-    run(lower(this.compiler.graph, this.#asked, columnOf), this.length, this.#to);
-  }
+  const results = asked.length === 0 ? [] : runRemembered(lower(graph, asked, columnOf), length, widths);
+  const numbers = (name: Numbers): Float64Array => (results[places.get(name) ?? -1] as Float64Array | undefined) ?? new Float64Array(length);
+  const flags = (name: Bytes): Uint8Array => (results[places.get(name) ?? -1] as Uint8Array | undefined) ?? new Uint8Array(length);
+  return {
+    value: numbers("value"),
+    sigma: numbers("sigma"),
+    sigmaPerSample: numbers("sigmaPerSample"),
+    sigmaCommon: numbers("sigmaCommon"),
+    state: flags("state"),
+    lowerBound: flags("lowerBound"),
+    assumed: flags("assumed"),
+    nearEdge: flags("nearEdge"),
+  };
 }
 
 function blankAbsent(

@@ -97,20 +97,28 @@ function pointsOf(
   const toX = conversion(x.unit, axes.x.unit);
   const toY = y === null || axes.y === null ? toX : conversion(y.unit, axes.y.unit);
   const correlation = y === null ? null : x.correlation(y);
+  // One value may stand for all rows: its place is the same in every row.
+  const stepX = x.value.length === 1 ? 0 : 1;
+  const stepY = y?.value.length === 1 ? 0 : 1;
   for (let row = 0; row < table.rows; row++) {
-    let state = Math.max(at(x.state, row), y === null ? State.present : at(y.state, row), table.setAside[row] === 1 ? State.setAside : State.present);
-    const valueX = toX.value(at(x.value, row));
-    const valueY = y === null ? Number.NaN : toY.value(at(y.value, row));
+    const [ix, iy] = [row * stepX, row * stepY];
+    let state = x.state[ix] as number;
+    if (y !== null) state = Math.max(state, y.state[iy] as number);
+    if (table.setAside[row] === 1) state = Math.max(state, State.setAside);
+    const valueX = toX.value(x.value[ix] as number);
+    const valueY = y === null ? Number.NaN : toY.value(y.value[iy] as number);
     // A logarithmic axis has no place for what is not above zero.
     if (state === State.present && ((logs.x && !(valueX > 0)) || (logs.y && y !== null && !(valueY > 0)))) state = State.outOfDomain;
     points.state[row] = state;
     if (state !== State.present || (chosen !== undefined && chosen[row] !== 1)) continue;
+    const sigmaX = (x.sigma[ix] as number) * toX.factor;
     points.x[row] = valueX;
-    points.sigmaX[row] = at(x.sigma, row) * toX.factor;
+    points.sigmaX[row] = sigmaX;
     if (y === null) continue;
+    const sigmaY = (y.sigma[iy] as number) * toY.factor;
     points.y[row] = valueY;
-    points.sigmaY[row] = at(y.sigma, row) * toY.factor;
-    points.correlation[row] = points.sigmaX[row] === 0 || points.sigmaY[row] === 0 ? 0 : at(correlation ?? x.sigma, row);
+    points.sigmaY[row] = sigmaY;
+    points.correlation[row] = sigmaX === 0 || sigmaY === 0 ? 0 : ((correlation ?? x.sigma)[correlation?.length === 1 ? 0 : row] as number);
   }
   return points;
 }

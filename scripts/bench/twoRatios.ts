@@ -60,6 +60,14 @@ export function bytesOf(table: Table): Uint8Array {
   return new Uint8Array(all.buffer);
 }
 
+/** The same numbers in the same memory, as columns of another table. */
+function unseen(table: Table): Table {
+  const columns = table.columns.map((column) =>
+    column.kind === "quantity" ? { ...column, value: new Float64Array(column.value.buffer), sigma: new Float64Array(column.sigma.buffer) } : column,
+  );
+  return { ...table, columns };
+}
+
 function scopeOf(table: Table): Scope {
   return { table, bodies: bodyLookup({}), lookup: () => undefined };
 }
@@ -115,7 +123,8 @@ export function waysOf(table: Table, texts: readonly [string, string]): Ways {
     interpreter: () => interpreted(kept),
     "interpreter, new results": () => interpreted(make()),
     "whole page": () => {
-      const scope = scopeOf(table);
+      // Columns that the engine has not seen: what it remembers of a calculation done before is not to be measured.
+      const scope = scopeOf(unseen(table));
       const [x, y] = texts.map((text) => evaluateExpression(scope, text, { block: "r" }));
       if (x === undefined || y === undefined) throw new Error("expected two expressions");
       return [x.value, x.sigma, y.value, y.sigma, x.covariance(y)];

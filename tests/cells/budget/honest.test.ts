@@ -165,7 +165,7 @@ describe("what makes a scientist reject a tool like this", () => {
       target: { expression: "Mg / wtpct(1) * (Si / wtpct(1))", equals: { value: 504, sigma: 0, basis: "mass" } },
     });
     expect(result.roots.length).toBeGreaterThan(0);
-    expect(result.problems).toEqual([expect.objectContaining({ code: "turning-point", severity: "warning" })]);
+    expect(result.problems).toContainEqual(expect.objectContaining({ code: "turning-point", severity: "warning" }));
   });
 
   it("lets a trace see how its numbers depend on their inputs, and keeps that out of JSON", () => {

@@ -16,6 +16,7 @@ import { DrawnList } from "./DrawnList";
 import { buildFigure, type DragMode } from "./figure";
 import type { ViewRange } from "./frame";
 import { heightFor, layOutPlot } from "./layOutPlot";
+import { ExportButton } from "./export/ExportButton";
 import type { Hovered } from "./PlotCanvas";
 import { PlotHover } from "./PlotHover";
 import { PlotSettings } from "./PlotSettings";
@@ -137,6 +138,7 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
               </Button>
             ))}
           {closeUp !== null && <Button onClick={() => setCloseUp(null)}>Whole view</Button>}
+          {result !== undefined && <ExportButton block={block} result={result} view={view} />}
           {samples > mostEllipses && (
             <span className="text-second">
               More than {mostEllipses} samples:{" "}

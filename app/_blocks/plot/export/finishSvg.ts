@@ -1,0 +1,28 @@
+import type { ExportSize } from "./exportSize";
+
+function escaped(text: string): string {
+  return text.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;");
+}
+
+export interface SvgParts {
+  readonly size: ExportSize;
+  /** Size of the drawing in its own pixels. */
+  readonly width: number;
+  readonly height: number;
+  readonly title: string;
+  readonly caption: string;
+  /** Rules of @font-face, with the type inside. */
+  readonly fonts: string;
+}
+
+/** A drawing of Plotly's as a figure that stands alone: its size in millimetres, its title and caption, and its type inside. */
+export function finishSvg(svg: string, { size, width, height, title, caption, fonts }: SvgParts): string {
+  const inner = svg.replace(/^[\s\S]*?<svg[^>]*>/u, "");
+  if (inner === svg) throw new Error("expected an SVG from the drawing surface");
+  const root =
+    `<svg xmlns="http://www.w3.org/2000/svg" xmlns:xlink="http://www.w3.org/1999/xlink" ` +
+    `width="${size.widthMm}mm" height="${size.heightMm}mm" viewBox="0 0 ${width} ${height}" role="img" aria-labelledby="figure-title figure-caption">`;
+  const words = `<title id="figure-title">${escaped(title)}</title><desc id="figure-caption">${escaped(caption)}</desc>`;
+  const style = fonts === "" ? "" : `<style>${fonts}</style>`;
+  return `<?xml version="1.0" encoding="UTF-8"?>\n${root}${words}${style}${inner}`;
+}

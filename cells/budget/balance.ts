@@ -1,6 +1,7 @@
 import type { BudgetPart, BudgetResult } from "../page/results";
+import { over, plus, times, type LinearForm } from "./algebra";
 import type { Parcel, Stand } from "./state";
-import { isKnown, type Substance } from "./substance";
+import { isKnown, type Known, type Substance } from "./substance";
 
 /**
  * What left the balance, as one thing: its mass in kg per kg of the start (of the whole, where metal is shared) and its
@@ -23,6 +24,25 @@ export function leftOf(end: Stand): BudgetResult["left"] {
     if (Number.isFinite(value)) composition[element] = value;
   }
   return { what, mass, composition };
+}
+
+/** Mass of what left, or one element of it, as it depends on the budget's inputs: the numbers of {@link leftOf} with their terms. */
+export function leftForm(end: Stand, of: string): Known | undefined {
+  const left = end.parcels.filter(({ way }) => way === "left");
+  const parcels = left.length > 0 ? left : end.parcels;
+  const [only] = parcels;
+  if (only === undefined) return undefined;
+  const mass = parcels.slice(1).reduce((sum, parcel) => plus(sum, parcel.mass), only.mass);
+  if (of === "mass") return mass;
+  if (parcels.length === 1) return only.reported.at(of);
+  let total: LinearForm | undefined;
+  for (const parcel of parcels) {
+    const known = parcel.whole.at(of);
+    if (!isKnown(known)) return known;
+    const part = times(parcel.mass, known);
+    total = total === undefined ? part : plus(total, part);
+  }
+  return total === undefined ? undefined : over(total, mass);
 }
 
 function valueOf(of: Substance, element: string): number {

@@ -4,17 +4,18 @@ import { emptyResult } from "../page/emptyResult";
 import type { BudgetPathPoint, BudgetResult } from "../page/results";
 import type { BudgetBlock } from "../page/schema";
 import { withSimulation } from "../simulate";
-import { exact, significantTerms, spreadOf, type LinearForm } from "./algebra";
-import { balanceOf, closureOf, leftOf } from "./balance";
+import { exact, minus, significantTerms, spreadOf, type LinearForm } from "./algebra";
+import { balanceOf, closureOf, leftForm, leftOf } from "./balance";
 import { readBudget, type Budget } from "./budget";
 import { byCompilation } from "./compilations";
-import { withForms } from "./forms";
+import { withForms, type ReportSide } from "./forms";
 import { follow, shown } from "./plan";
 import { reportRow } from "./report";
 import { solve, type Solution } from "./solve";
 import { shareOf } from "./shares";
 import { simulateBudget, type Distrust } from "./simulate";
-import type { Stand } from "./state";
+import { both, type Stand } from "./state";
+import type { Known } from "./substance";
 import { amountsOf, requireRange, standsAlong, sweepOf } from "./sweep";
 
 /**
@@ -64,9 +65,23 @@ export function evaluateBudget(block: BudgetBlock, context: BlockContext): Budge
       problems,
       bodiesUsed,
     },
-    { ...(solution === undefined ? {} : { solved: solution.amount }), report: budget.report.map(({ measure }) => measure?.on(end)) },
+    {
+      ...(solution === undefined ? {} : { solved: solution.amount }),
+      report: budget.report.map(({ measure }) => measure?.on(end)),
+      side: (at, side) => sideOf(budget, end, at, side),
+      left: (of) => leftForm(end, of),
+    },
   );
   return withSimulation(result, (base, wish) => simulateBudget(base, { budget, solved: solution?.amount, distrusted }, wish));
+}
+
+function sideOf({ plan, report, aim }: Budget, end: Stand, at: number, side: ReportSide): Known | undefined {
+  const measure = report[at]?.measure;
+  if (measure === undefined) return undefined;
+  if (side === "start") return measure.on(plan.start);
+  const target = aim?.of(measure);
+  if (side === "target" || target === undefined) return target;
+  return both(measure.on(end), target, minus);
 }
 
 interface End {

@@ -7,7 +7,14 @@ export interface BudgetForms {
   readonly solved?: LinearForm;
   /** Reported expressions at the end, in the report's order; a sentence where there is no value. */
   readonly report: readonly (Known | undefined)[];
+  /** Another side of a reported expression, by its place: made when asked for. */
+  side?(place: number, side: ReportSide): Known | undefined;
+  /** What was left behind: its mass, or an element of it; made when asked for. */
+  left?(of: string): Known | undefined;
 }
+
+/** `miss` is the difference of end and target, whose σ the miss is counted in. */
+export type ReportSide = "start" | "target" | "miss";
 
 /** Under this key a budget's result carries its forms; neither JSON nor a message between threads takes it along. */
 const formsKey = Symbol("forms");

@@ -84,7 +84,7 @@ function ofTrend(handle: string, result: TrendResult, name: string): Quoted | st
   if (name === "mswd" || name === "p")
     return result[name] === undefined
       ? `${handle} has no ${name}: its method gives none.`
-      : { shown: formatNumber(result[name], 2), unit: "", value: result[name] };
+      : { shown: formatNumber(result[name], 2), unit: "", value: result[name], ...(result.S === undefined ? {} : { trace: { block: handle, name } }) };
   if (name === "crossing_x" || name === "crossing_y") {
     if (result.crossing === undefined) return `${handle} has no crossing; choose the trend it is crossed with.`;
     const axis = name === "crossing_x" ? "x" : "y";
@@ -104,7 +104,7 @@ function distance(handle: string, name: string, distances: readonly BodyDistance
   const found = distances.find((candidate) => candidate.body === body);
   if (found === undefined)
     return `${handle} gives no distance from ${body} for {{${handle}.${name}}}; it gives those from ${distances.map((each) => each.body).join(", ") || "no body"}.`;
-  return { shown: formatNumber(found.distance, 2), unit: "σ", value: found.distance };
+  return { shown: formatNumber(found.distance, 2), unit: "σ", value: found.distance, trace: { block: handle, name } };
 }
 
 function ofReport(handle: string, report: BudgetReport, part: string): Quoted | string {
@@ -112,13 +112,15 @@ function ofReport(handle: string, report: BudgetReport, part: string): Quoted | 
   const none = `${handle} has no ${part} for ${report.expression}${report.note === undefined ? "" : `: ${report.note}`}.`;
   switch (part) {
     case "start":
-      return report.start === null ? none : uncertain(report.start, report.startSigma, unit);
+      return report.start === null ? none : uncertain(report.start, report.startSigma, unit, { block: handle, name: `${report.expression}.start` });
     case "end":
       return report.end === null ? none : uncertain(report.end, report.sigma, unit);
     case "target":
-      return report.target === null ? none : uncertain(report.target, report.targetSigma, unit);
+      return report.target === null ? none : uncertain(report.target, report.targetSigma, unit, { block: handle, name: `${report.expression}.target` });
     case "miss":
-      return report.miss === null ? none : { shown: formatNumber(report.miss, 2), unit: "σ", value: report.miss };
+      return report.miss === null
+        ? none
+        : { shown: formatNumber(report.miss, 2), unit: "σ", value: report.miss, trace: { block: handle, name: `${report.expression}.miss` } };
     default:
       return `A reported expression has start, end, target and miss, and no "${part}".`;
   }

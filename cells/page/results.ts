@@ -432,10 +432,14 @@ export interface TraceNode {
   readonly from: readonly TraceNode[];
 }
 
-/** Which number is asked about: a line of a formula, a column of a table, or a result of a trend or budget. */
+/** Which number is asked about: a line of a formula, a column of a table, a result of a trend or budget, or a drawn point. */
 export interface TraceRequest {
   readonly block: string;
-  /** Name of line or column; `slope`, `intercept`, `crossing.x`, `crossing.y`, `solved`, or a reported expression. */
+  /**
+   * Name of line or column; of a trend `slope`, `intercept`, `covariance`, `mswd`, `p`, `scatter`, `crossing.x`, `crossing.y`,
+   * `from_BODY`, `crossing.from_BODY`; of a budget `solved`, a reported expression, alone or with `.start`, `.target`, `.miss`,
+   * `left.mass`, `left.Fe`; of a plot what cells/trace/plot.ts says.
+   */
   readonly name: string;
   /** Index into the table's rows (not the row id); left out for single values. */
   readonly index?: number;

@@ -1,7 +1,7 @@
 import { CellError } from "../errors";
 import { parseLines } from "../language";
 import type { QuantityColumn } from "../table/table";
-import { budgetNode, cellNodes, expressionNode, inUnit, trendNode, type Tracing } from "../trace";
+import { budgetNode, cellNodes, expressionNode, inUnit, plotNode, trendNode, type Tracing } from "../trace";
 import type { BlockContext } from "./context";
 import type { TraceNode, TraceRequest } from "./results";
 import type { Block, DataBlock, FormulaBlock } from "./schema";
@@ -45,6 +45,10 @@ function trace(block: Block, { name, index }: TraceRequest, context: BlockContex
     case "budget": {
       const result = context.result(block.id);
       return result?.kind === "budget" ? budgetNode(tracing, block, result, name) : null;
+    }
+    case "plot": {
+      const result = context.result(block.id);
+      return result?.kind === "plot" ? plotNode(tracing, block, result, name, index) : null;
     }
     default:
       return null;

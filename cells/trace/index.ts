@@ -6,4 +6,5 @@ export { dominantOf } from "./dominant";
 export type { Dominant } from "./dominant";
 export { expressionNode } from "./expression";
 export { inUnit } from "./node";
+export { plotNode } from "./plot";
 export { trendNode } from "./trend";

@@ -3,7 +3,9 @@ import type { TrendBlock } from "../page/schema";
 import { fitOf, type LinearForm } from "../trend";
 import { crossing } from "../trend/crossing";
 import type { Tracing } from "./commons";
+import { distanceNode } from "./distance";
 import { formBranches } from "./forms";
+import { goodnessNode } from "./goodness";
 import { orNull, short } from "./node";
 
 /** Where a slope, an intercept or a crossing comes from: the samples of the fits, and what is common to them. */
@@ -11,6 +13,10 @@ export function trendNode(tracing: Tracing, block: TrendBlock, result: TrendResu
   if (!result.ok) return null;
   const axis = /^crossing[._](?<axis>[xy])$/u.exec(name)?.groups?.["axis"];
   if (axis === "x" || axis === "y") return crossingNode(tracing, block, result, axis);
+  if (name === "mswd" || name === "p" || name === "scatter") return goodnessNode(block, result, name);
+  if (name === "covariance") return covarianceNode(tracing, block, result);
+  const away = /^(?<of>crossing[._])?from_(?<body>.+)$/u.exec(name)?.groups;
+  if (away !== undefined) return distanceNode(tracing, block, result, away["body"] ?? "", away["of"] === undefined ? "line" : "crossing");
   return name === "slope" || name === "intercept" ? parameterNode(tracing, block, result, name) : null;
 }
 
@@ -29,6 +35,25 @@ function parameterNode(tracing: Tracing, block: TrendBlock, result: TrendResult,
     share: sigma === null ? null : 1,
     notes: [...fitNotes(result, block), ...notes],
     from,
+  };
+}
+
+/** The covariance of slope and intercept, with both of them as its branches: a variance has no variance, so nothing has a share. */
+function covarianceNode(tracing: Tracing, block: TrendBlock, result: TrendResult): TraceNode | null {
+  const value = result.usesScatter === true ? (result.covarianceWithScatter ?? result.covariance) : result.covariance;
+  if (value === undefined) return null;
+  const of = (["slope", "intercept"] as const).flatMap((name) => parameterNode(tracing, block, result, name) ?? []);
+  const product = of.reduce((all, { sigma }) => all * (sigma ?? Number.NaN), 1);
+  const correlation = value / product;
+  return {
+    kind: "result",
+    label: `covariance of slope and intercept of ${block.id}`,
+    value: orNull(value),
+    sigma: null,
+    unit: "",
+    share: null,
+    notes: Number.isFinite(correlation) ? [`Over the two σ it is a correlation of ${short(correlation)}.`] : [],
+    from: of.map((node) => ({ ...node, share: null, notes: [], from: [] })),
   };
 }
 

@@ -27,7 +27,8 @@ export function natureText(line: LineResult): string {
     const common = median(line.sigmaCommon);
     if (common !== null && typical !== null && common > 0.05 * typical) parts.push("part of σ is common to all");
   }
-  const lower = line.lowerBound.reduce((n, bit) => n + bit, 0);
+  let lower = 0;
+  for (let i = 0; i < line.lowerBound.length; i++) lower += line.lowerBound[i] ?? 0;
   if (lower > 0) parts.push(line.value.length === 1 ? "σ is a lower bound" : `σ a lower bound for ${lower}`);
   if (line.assumed > 0) parts.push(`${line.assumed} on assumed σ`);
   return parts.join(", ");

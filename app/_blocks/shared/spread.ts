@@ -17,16 +17,52 @@ const medians = new WeakMap<Float64Array, number | null>();
 export function median(values: Float64Array): number | null {
   const known = medians.get(values);
   if (known !== undefined) return known;
-  const found = middleOf(values.filter((v) => Number.isFinite(v)).sort());
+  const found = middleOf(values);
   medians.set(values, found);
   return found;
 }
 
-function middleOf(finite: Float64Array): number | null {
-  if (finite.length === 0) return null;
-  const middle = finite.length >> 1;
-  const upper = finite[middle] ?? 0;
-  return finite.length % 2 === 1 ? upper : (upper + (finite[middle - 1] ?? 0)) / 2;
+function middleOf(values: Float64Array): number | null {
+  const finite = new Float64Array(values.length);
+  let n = 0;
+  for (let i = 0; i < values.length; i++) {
+    const v = values[i] as number;
+    if (v - v === 0) finite[n++] = v;
+  }
+  if (n === 0) return null;
+  const middle = n >> 1;
+  const upper = place(finite, n, middle);
+  if (n % 2 === 1) return upper;
+  // What stands before the middle is not in order, but all of it is smaller.
+  let lower = -Infinity;
+  for (let i = 0; i < middle; i++) lower = Math.max(lower, finite[i] as number);
+  return (upper + lower) / 2;
+}
+
+/**
+ * The value that would stand at `k` if the first `n` were in order, by Hoare's selection (1961): a hundred thousand values need not
+ * be sorted for the one in their middle. Everything before `k` is then no greater.
+ */
+function place(values: Float64Array, n: number, k: number): number {
+  let low = 0;
+  let high = n - 1;
+  while (low < high) {
+    const pivot = values[(low + high) >> 1] as number;
+    let i = low;
+    let j = high;
+    while (i <= j) {
+      while ((values[i] as number) < pivot) i++;
+      while ((values[j] as number) > pivot) j--;
+      if (i > j) break;
+      const swapped = values[i] as number;
+      values[i++] = values[j] as number;
+      values[j--] = swapped;
+    }
+    if (k <= j) high = j;
+    else if (k >= i) low = i;
+    else break;
+  }
+  return values[k] as number;
 }
 
 /** A fraction as per cent: whole from 1 %, one decimal below; `under 0.1 %` for what would round to nothing. */

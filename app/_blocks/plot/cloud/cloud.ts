@@ -45,9 +45,11 @@ export const nowhere = 0xffff;
 /** Above so many, picked samples are painted too instead of ringed one by one. */
 export const mostRings = 500;
 
-function looksOf(names: readonly string[], drawing: Drawing): CloudLook[] {
+/** Above so many samples markers are smaller: they would only cover each other. */
+const crowded = 20_000;
+
+function looksOf(names: readonly string[], drawing: Drawing, radius: number): CloudLook[] {
   const { palette } = drawing;
-  const radius = drawing.projector ? 4 : 2.5;
   return names.map((name) => {
     const index = name === "" ? -1 : drawing.classIndex(name);
     if (index < 0) return { shape: "circle", color: palette.second, alpha: 0.55, radius };
@@ -69,9 +71,10 @@ export function isCloud(layer: Samples): boolean {
 export function cloudOf(layer: Samples, drawing: Drawing): Cloud {
   const { points } = layer;
   const { names, codes } = classCodes(layer.classes);
-  const looks = looksOf(names, drawing);
+  const radius = (points.x.length > crowded ? 1.6 : 2.5) * (drawing.projector ? 1.6 : 1);
+  const looks = looksOf(names, drawing, radius);
   const aside = looks.push({ shape: "cross", color: drawing.palette.second, alpha: 1, radius: 3 }) - 1;
-  const none = looks.push({ shape: "circle", color: drawing.palette.second, alpha: 0.55, radius: drawing.projector ? 4 : 2.5 }) - 1;
+  const none = looks.push({ shape: "circle", color: drawing.palette.second, alpha: 0.55, radius }) - 1;
   const lookOf = new Uint16Array(points.x.length).fill(nowhere);
   for (let i = 0; i < lookOf.length; i++) {
     const x = points.x[i] as number;
@@ -83,7 +86,7 @@ export function cloudOf(layer: Samples, drawing: Drawing): Cloud {
   }
   const picked = drawing.pickedIn(layer.data);
   if (picked.length > mostRings) {
-    const look = looks.push({ shape: "circle", color: drawing.palette.indigo, alpha: 1, radius: drawing.projector ? 4.5 : 3 }) - 1;
+    const look = looks.push({ shape: "circle", color: drawing.palette.indigo, alpha: 1, radius: radius + 0.5 }) - 1;
     for (const i of picked) if (lookOf[i] !== nowhere) lookOf[i] = look;
   }
   return { data: layer.data, x: points.x, y: points.y, lookOf, looks };

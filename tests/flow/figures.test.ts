@@ -57,6 +57,10 @@ describe("figures are saved for print", () => {
     const plain = (text: string | undefined): string => (text ?? "").replaceAll("&lt;", "<").replaceAll("&gt;", ">").replaceAll("&amp;", "&");
     expect(/<title[^>]*>(?<text>[^<]*)<\/title>/u.exec(svg)?.groups?.["text"]).toBe("Two lines, one crossing");
     expect(plain(/<desc[^>]*>(?<text>[^<]*)<\/desc>/u.exec(svg)?.groups?.["text"])).toBe(caption);
+    // The axes fill the figure, and the key of classes stands under them.
+    const plotted = /class="plotclip"[^>]*>\s*<rect[^>]*width="(?<width>[\d.]+)"/u.exec(svg)?.groups?.["width"];
+    expect(Number(plotted) / w).toBeGreaterThan(0.75);
+    expect(/<g class="key">(?<key>.*?)<\/g>/su.exec(svg)?.groups?.["key"]).toMatch(/EL \(3\).*harzburgite \(11\)/su);
     expect(svg).toContain('@font-face{font-family:"IBM Plex Sans"');
     expect(svg).toMatch(/rgb\(255, 255, 255\)/u);
     // Ground and ink of crossed polars.

@@ -119,9 +119,9 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
           <div role="img" aria-label={result === undefined ? "Plot, not calculated yet" : plotInWords(result)} className="h-full">
             {figure !== null && <PlotCanvas figure={figure} onHover={setHovered} onPick={onPick} onView={setCloseUp} />}
             {figure === null && <p className="p-3 text-second">{view.results === null ? "Calculating for the first time." : "Nothing to draw yet."}</p>}
+            {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}
           </div>
           {laid !== null && edits !== null && <AnnotationHandles result={laid.result} frame={laid.frame} onMove={moveAnnotation} />}
-          {hovered !== null && result !== undefined && <PlotHover hovered={hovered} result={result} view={view} width={width} />}
         </div>
         <div className="mt-1 flex flex-wrap items-baseline gap-x-4 gap-y-1 text-margin" role="group" aria-label="What dragging on the plot does">
           {drags

@@ -64,6 +64,7 @@ export function ExportDialog({ block, result, view, onClose }: ExportDialogProps
             if (shown.current !== null) URL.revokeObjectURL(shown.current);
             shown.current = URL.createObjectURL(new Blob([svg], { type: "image/svg+xml" }));
             setPreview(shown.current);
+            setFault(null);
           },
           (error: unknown) => isWanted && setFault(inWords(error)),
         );
@@ -112,7 +113,7 @@ export function ExportDialog({ block, result, view, onClose }: ExportDialogProps
       size="wide"
       onClose={onClose}
       title="Save the figure"
-      says="As it stands on the page, on white, at the size it will have in print. Picks are left off."
+      says="The whole figure, on white, at the size it will have in print. Picks and close-ups are left off."
       actions={
         <>
           <span role="status" className="mr-auto text-second">

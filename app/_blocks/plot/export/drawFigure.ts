@@ -13,6 +13,7 @@ import { embeddedFonts } from "./embeddedFonts";
 import { PIXELS_PER_MM, pixelsOf, type ExportSize } from "./exportSize";
 import { finishSvg } from "./finishSvg";
 import { withDensity } from "./pngDensity";
+import { printKey } from "./printKey";
 
 export interface FigureToDraw {
   readonly block: PlotBlock;
@@ -28,18 +29,24 @@ export interface FigureToDraw {
 const paper: Palette = { ...planeLight, paper: "#ffffff", surface: "#ffffff" };
 /** Density of the points of very large tables, which lie under the lines as a picture. */
 const CLOUD_DPI = 600;
+/** Less than this, in pixels, is no drawing. */
+const LEAST_HEIGHT = 110;
 
 /** The figure as an SVG that stands alone: exactly as large as asked, on white, with its caption and its type inside. */
 export async function figureSvg(figure: FigureToDraw, size: ExportSize): Promise<string> {
   const width = Number((size.widthMm * PIXELS_PER_MM).toFixed(4));
   const height = Number((size.heightMm * PIXELS_PER_MM).toFixed(4));
-  const laid = layOutPlot(figure.block, figure.result, { width, height }, null, (name) => figure.classIndex(name));
+  const classIndex = (name: string): number => figure.classIndex(name);
+  const key = printKey(figure.result, width, paper, classIndex);
+  const drawn = height - (key?.height ?? 0);
+  if (drawn < LEAST_HEIGHT) throw new Error("At this size the key of classes leaves no room for the drawing. Make the figure higher or wider.");
+  const laid = layOutPlot(figure.block, figure.result, { width, height: drawn }, null, classIndex);
   const nothing = (): [] => [];
   const drawing = {
     palette: paper,
     frame: laid.frame,
     projector: false,
-    classIndex: (name: string) => figure.classIndex(name),
+    classIndex,
     pickedIn: nothing,
     pickedByOthers: nothing,
   };
@@ -47,12 +54,18 @@ export async function figureSvg(figure: FigureToDraw, size: ExportSize): Promise
   const svg = await plotly.toImage(
     {
       data: made.data,
-      layout: { ...made.layout, paper_bgcolor: "#ffffff", plot_bgcolor: "rgba(0,0,0,0)", images: await underlay(made) },
+      layout: {
+        ...made.layout,
+        paper_bgcolor: "#ffffff",
+        plot_bgcolor: "rgba(0,0,0,0)",
+        images: await underlay(made),
+      },
       config: { staticPlot: true },
     },
-    { format: "svg", width, height, imageDataOnly: true },
+    { format: "svg", width, height: drawn, imageDataOnly: true },
   );
-  return finishSvg(svg, { size, width, height, title: figure.title, caption: figure.caption, fonts: await embeddedFonts(svg) });
+  const over = key?.svg(drawn) ?? "";
+  return finishSvg(svg, { size, width, height, title: figure.title, caption: figure.caption, fonts: await embeddedFonts(svg + over), over });
 }
 
 /** Points too many for marks of their own, as a picture under the axes. */

@@ -32,7 +32,9 @@ describe("an SVG for print", () => {
   it("has millimetres, a viewBox of its own pixels, title, caption and type", () => {
     const svg = finishSvg('<svg class="main-svg" width="340" height="264" style="background: #fff"><g/></svg>', parts);
     expect(svg).toContain('width="90mm" height="70mm" viewBox="0 0 340.1575 264.5669"');
-    expect(svg).toContain('<title id="figure-title">A &amp; B</title><desc id="figure-caption">x &lt; y</desc><style>@font-face{}</style><g/></svg>');
+    expect(svg).toContain(
+      '<title id="figure-title">A &amp; B</title><desc id="figure-caption">x &lt; y</desc><style>@font-face{}</style><rect width="340.1575" height="264.5669" fill="#ffffff"/><g/></svg>',
+    );
     expect(svg.match(/<svg/gu)).toHaveLength(1);
   });
 

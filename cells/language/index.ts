@@ -17,6 +17,7 @@ export type { FormulaLine, FormulaLines } from "./lines";
 export { namesUsed, renameInText } from "./nameUses";
 export type { NameUse, Renamed } from "./nameUses";
 export { parse } from "./parse";
+export { allPresent } from "./present";
 export type { CommonVariable, ExpressionPlace, Named, NamedLine, Scope, ScopeOffer } from "./scope";
 export { isPlainName, writeName } from "./tokens";
 export { traceRow } from "./trace";

@@ -1,5 +1,5 @@
 import { CellError } from "../errors";
-import { evaluateCondition, type Evaluated } from "../language";
+import { allPresent, evaluateCondition, type Evaluated } from "../language";
 import { plotAxis } from "../page/references";
 import type { PlotLayer, PlotPoints } from "../page/results";
 import type { Drawn, PlotBlock } from "../page/schema";
@@ -53,7 +53,9 @@ export function samplesLayer(
   const x = onAxis(drawing, table, expressions.x, axes.x);
   const y = expressions.y === null || axes.y === null ? null : onAxis(drawing, table, expressions.y, axes.y);
   const logs = { x: drawing.block.xAxis?.scale === "log", y: drawing.block.yAxis?.scale === "log" };
-  return samplesOf(table, drawn, place, ellipses, pointsOf(table, x, y, axes, chosen, logs));
+  // A triangle still takes out what lies outside of it, so its points must be its own.
+  const shared = drawing.block.plot === "scatter" ? asCalculated(table, x, y, axes, chosen, logs) : null;
+  return samplesOf(table, drawn, place, ellipses, shared ?? pointsOf(table, x, y, axes, chosen, logs));
 }
 
 export function samplesOf(table: Table, drawn: SamplesDrawn, place: number, ellipses: number, points: PlotPoints): SamplesLayer {
@@ -121,6 +123,24 @@ function pointsOf(
     points.correlation[row] = sigmaX === 0 || sigmaY === 0 ? 0 : ((correlation ?? x.sigma)[correlation?.length === 1 ? 0 : row] as number);
   }
   return points;
+}
+
+/** The calculated arrays themselves, where every row is drawn as it was calculated: of a large table mostly so. */
+function asCalculated(
+  table: Table,
+  x: Evaluated,
+  y: Evaluated | null,
+  axes: { readonly x: PlotAxis; readonly y: PlotAxis | null },
+  chosen: Uint8Array | undefined,
+  logs: { readonly x: boolean; readonly y: boolean },
+): PlotPoints | null {
+  if (y === null || chosen !== undefined || logs.x || logs.y) return null;
+  if (x.value.length !== table.rows || y.value.length !== table.rows) return null;
+  if (x.unit.symbol !== axes.x.unit.symbol || y.unit.symbol !== axes.y?.unit.symbol) return null;
+  if (!allPresent(x.state) || !allPresent(y.state) || !allPresent(table.setAside)) return null;
+  const correlation = x.correlation(y);
+  for (let row = 0; row < correlation.length; row++) if (x.sigma[row] === 0 || y.sigma[row] === 0) correlation[row] = 0;
+  return { x: x.value, y: y.value, sigmaX: x.sigma, sigmaY: y.sigma, correlation, state: x.state };
 }
 
 export function emptyPoints(rows: number): PlotPoints {

@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { State, type PlotLayer, type PlotResult } from "@/cells";
+import { createEngine, PAGE_FORMAT, readPageDocument, State, type PlotLayer, type PlotResult } from "@/cells";
+import { resultsText } from "../../support/resultsText";
 import { data, errorsOf, evaluate, lineOf, ratios, resultOf, trend } from "../page/pages";
 
 type Of<What extends PlotLayer["what"]> = Extract<PlotLayer, { what: What }>;
@@ -334,5 +335,31 @@ describe("a plot without samples", () => {
   it("still says at the character what nothing has", () => {
     const results = evaluate(budget, plot("Mg / Unobtainium"));
     expect(errorsOf(results, "p")[0]).toMatchObject({ field: "x" });
+  });
+});
+
+describe("arrays that a plot shares with its formula", () => {
+  it("stay what they were when a triangle of the same numbers leaves some out", () => {
+    const rows = Array.from({ length: 1500 }, (_, i) => `S-${i},${30 + (i % 7)},${20 + (i % 5)},${i % 3 === 0 ? -1 : 10}`);
+    const engine = createEngine();
+    engine.setSource("t.csv", new TextEncoder().encode(`Sample,a (wt%),b (wt%),c (wt%)\n${rows.join("\n")}\n`));
+    const columns = ["a", "b", "c"].map((name) => ({ header: `${name} (wt%)`, name, role: "quantity" as const, unit: "wt%" }));
+    const evaluate = (withTriangle: boolean) =>
+      engine.evaluate(
+        readPageDocument({
+          format: PAGE_FORMAT,
+          title: "",
+          blocks: [
+            { id: "d", kind: "data", source: { file: "t.csv" }, columns: [{ header: "Sample", role: "sample" }, ...columns] },
+            { id: "f", kind: "formula", data: "d", text: "x = a / (a + b + c)\ny = b / (a + b + c)" },
+            { id: "p", kind: "plot", plot: "scatter", drawn: [{ data: "d", x: "x", y: "y" }] },
+            ...(withTriangle ? [{ id: "q", kind: "plot" as const, plot: "ternary" as const, drawn: [{ data: "d", x: "a", y: "b", z: "c" }] }] : []),
+          ],
+        }),
+      );
+    const alone = resultsText(evaluate(false));
+    const triangle = evaluate(true).blocks.get("q");
+    expect(triangle?.problems.map((p) => p.code)).toContain("outside-triangle");
+    expect(resultsText(evaluate(false))).toBe(alone);
   });
 });

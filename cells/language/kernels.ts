@@ -136,6 +136,62 @@ export const kernels: Readonly<Record<Exclude<Instruction["op"], "load">, Kernel
   orZero,
 };
 
+const mulMul: Kernel = (to, a, b, c, n) => {
+  for (let i = 0; i < n; i += STEP) {
+    to[i] = (a[i] as number) * (b[i] as number) * (c[i] as number);
+    to[i + 1] = (a[i + 1] as number) * (b[i + 1] as number) * (c[i + 1] as number);
+    to[i + 2] = (a[i + 2] as number) * (b[i + 2] as number) * (c[i + 2] as number);
+    to[i + 3] = (a[i + 3] as number) * (b[i + 3] as number) * (c[i + 3] as number);
+  }
+};
+const addProduct: Kernel = (to, a, b, c, n) => {
+  for (let i = 0; i < n; i += STEP) {
+    to[i] = (a[i] as number) + (b[i] as number) * (c[i] as number);
+    to[i + 1] = (a[i + 1] as number) + (b[i + 1] as number) * (c[i + 1] as number);
+    to[i + 2] = (a[i + 2] as number) + (b[i + 2] as number) * (c[i + 2] as number);
+    to[i + 3] = (a[i + 3] as number) + (b[i + 3] as number) * (c[i + 3] as number);
+  }
+};
+const squareOfProduct: Kernel = (to, a, b, _c, n) => {
+  for (let i = 0; i < n; i += STEP) {
+    const p = (a[i] as number) * (b[i] as number);
+    const q = (a[i + 1] as number) * (b[i + 1] as number);
+    const r = (a[i + 2] as number) * (b[i + 2] as number);
+    const s = (a[i + 3] as number) * (b[i + 3] as number);
+    to[i] = p * p;
+    to[i + 1] = q * q;
+    to[i + 2] = r * r;
+    to[i + 3] = s * s;
+  }
+};
+const addSquareOfProduct: Kernel = (to, a, b, c, n) => {
+  for (let i = 0; i < n; i += STEP) {
+    const p = (b[i] as number) * (c[i] as number);
+    const q = (b[i + 1] as number) * (c[i + 1] as number);
+    const r = (b[i + 2] as number) * (c[i + 2] as number);
+    const s = (b[i + 3] as number) * (c[i + 3] as number);
+    to[i] = (a[i] as number) + p * p;
+    to[i + 1] = (a[i + 1] as number) + q * q;
+    to[i + 2] = (a[i + 2] as number) + r * r;
+    to[i + 3] = (a[i + 3] as number) + s * s;
+  }
+};
+const mulOrZero: Kernel = (to, a, b, _c, n) => {
+  for (let i = 0; i < n; i += STEP) {
+    const p = b[i] as number;
+    const q = b[i + 1] as number;
+    const r = b[i + 2] as number;
+    const s = b[i + 3] as number;
+    to[i] = (a[i] as number) * (p === p ? p : 0);
+    to[i + 1] = (a[i + 1] as number) * (q === q ? q : 0);
+    to[i + 2] = (a[i + 2] as number) * (r === r ? r : 0);
+    to[i + 3] = (a[i + 3] as number) * (s === s ? s : 0);
+  }
+};
+
+/** Two or three operations in one, each rounded as it would be alone: (a b) c, a + b c, (a b)², a + (b c)², a × (b or 0). */
+export const fusedKernels = { mulMul, addProduct, squareOfProduct, addSquareOfProduct, mulOrZero } as const;
+
 /** Copies `n` numbers of a column, from `start`, into a register. */
 export function loadChunk(to: Float64Array, column: Column, start: number, n: number): void {
   if (column instanceof Float64Array) to.set(column.subarray(start, start + n));

@@ -2,7 +2,9 @@ import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { Compiler } from "../../../cells/language/compiler";
 import { partialsOf } from "../../../cells/language/derivatives";
-import { interpret } from "../../../cells/language/interpreter";
+import { fusedSteps, stepsOf } from "../../../cells/language/fuse";
+import { Graph } from "../../../cells/language/graph";
+import { CHUNK, interpret } from "../../../cells/language/interpreter";
 import { parse } from "../../../cells/language/parse";
 import { lower, type Program } from "../../../cells/language/program";
 import { uncertaintyNodes } from "../../../cells/language/uncertainty";
@@ -90,5 +92,48 @@ describe("machine code", () => {
   it("refuses a program too large for it, which is then interpreted", () => {
     const program = programOf("a / b");
     expect(runMachine(program, ROWS, new Array<Float64Array>(2000).fill(new Float64Array(ROWS)))).toBe(false);
+  });
+});
+
+describe("the interpreter", () => {
+  it("gives the same bits one operation a step, for few rows, as with operations fused, for many", () => {
+    const few = CHUNK - 1;
+    fc.assert(
+      fc.property(expressions, (text) => {
+        const program = programOf(text);
+        const columns = (): Float64Array[] => program.results.map(() => new Float64Array(ROWS));
+        const [expected, given] = [columns(), columns()];
+        interpret(program, few, expected);
+        interpret(program, ROWS, given);
+        given.forEach((column, k) => {
+          for (let row = 0; row < few; row++) {
+            if (!Object.is(column[row], expected[k]?.[row]))
+              throw new Error(`${text}: result ${k} of row ${row} is ${column[row]}, expected ${expected[k]?.[row]}`);
+          }
+        });
+      }),
+      { seed, numRuns: 250 },
+    );
+  });
+
+  it("does two or three operations in one step where it can", () => {
+    const program = programOf("a / b");
+    expect(fusedSteps(program).length).toBeLessThan(program.instructions.length);
+    expect(stepsOf(program)).toHaveLength(program.instructions.length);
+  });
+
+  it("may write a result over a column that it reads", () => {
+    const graph = new Graph(100);
+    const column = Float64Array.from({ length: ROWS }, (_, i) => i / 7);
+    const before = column.slice();
+    const x = graph.load(column, "x");
+    const [double, square] = [graph.add(x, x), graph.mul(x, x)];
+    const program = lower(graph, [double, square], () => column);
+    const squares = new Float64Array(ROWS);
+    interpret(program, ROWS, [column, squares]);
+    before.forEach((value, row) => {
+      expect(column[row]).toBe(value + value);
+      expect(squares[row]).toBe(value * value);
+    });
   });
 });

@@ -50,7 +50,8 @@ function tolerantTokens(text: string): Token[] {
     } catch (error) {
       if (!(error instanceof CellError)) throw error;
       const fault = start + (error.place.span?.[0] ?? 0);
-      tokens.push(...shifted(lex(text.slice(start, fault)), start));
+      // Cut off at the fault, what stands before it may be faulty too: `d.` without the name that was in unclosed backticks.
+      tokens.push(...shifted(tolerantTokens(text.slice(start, fault)), start));
       start = Math.max(fault + 1, start + 1);
     }
   }

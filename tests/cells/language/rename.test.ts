@@ -92,4 +92,9 @@ describe("renaming", () => {
       { seed, numRuns: 500 },
     );
   });
+
+  it("reads what stands around a fault, also where cutting at it leaves another", () => {
+    expect(namesUsed("Mg / d.`unclosed + Si").map(({ name }) => name)).toEqual(["Mg", "unclosed", "Si"]);
+    expect(namesUsed("虼d.`J\u0007 + Al").map(({ name }) => name)).toContain("Al");
+  });
 });

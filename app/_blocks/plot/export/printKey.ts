@@ -25,16 +25,21 @@ export function printKey(result: PlotResult, width: number, palette: Palette, cl
   const classes = result.plot === "distribution" ? [] : classCounts(result, classIndex);
   if (classes.length === 0 || (classes.length === 1 && classes[0]?.name === "")) return null;
   const entries = classes.map(({ name, count }) => ({ index: name === "" ? -1 : classIndex(name), words: `${name === "" ? "no class" : name} (${count})` }));
-  const across = MARK + GAP + Math.ceil(Math.max(...entries.map(({ words }) => roughWidth(words, SIZE))));
-  const columns = Math.min(entries.length, Math.max(1, Math.floor((width - 2 * EDGE + GAP) / across)));
-  const left = (width - columns * across + GAP) / 2;
-  const height = Math.ceil(entries.length / columns) * ROW + 10;
+  const places: { readonly x: number; readonly row: number }[] = [];
+  let [x, row] = [EDGE, 0];
+  for (const { words } of entries) {
+    const across = MARK + Math.ceil(roughWidth(words, SIZE));
+    if (x > EDGE && x + across > width - EDGE) [x, row] = [EDGE, row + 1];
+    places.push({ x, row });
+    x += across + GAP;
+  }
+  const height = (row + 1) * ROW + 10;
   return {
     height,
     svg: (top) => {
       const marks = entries.map(({ index, words }, i) => {
-        const x = left + (i % columns) * across;
-        const y = top + Math.floor(i / columns) * ROW + ROW / 2;
+        const { x, row } = places[i] ?? { x: EDGE, row: 0 };
+        const y = top + row * ROW + ROW / 2;
         const look = looks(index, palette);
         const path = markerPath(index < 0 ? "circle" : classStyle(index).shape, x + 5, y, 3.75);
         const text = `<text x="${x + MARK}" y="${y + 4}" style="font-family: 'IBM Plex Sans', 'Helvetica Neue', Arial, sans-serif; font-size: ${SIZE}px; fill: ${palette.ink};">${escapedForXml(words)}</text>`;

@@ -4,6 +4,8 @@ import { captionOf } from "@/app/_blocks/plot/export/caption";
 import { coversAny, typeUsed } from "@/app/_blocks/plot/export/embeddedFonts";
 import { pixelsOf, sizeProblem } from "@/app/_blocks/plot/export/exportSize";
 import { finishSvg } from "@/app/_blocks/plot/export/finishSvg";
+import { printKey } from "@/app/_blocks/plot/export/printKey";
+import { planeLight } from "@/app/_blocks/shared/usePalette";
 import { withDensity } from "@/app/_blocks/plot/export/pngDensity";
 import type { PlotBlock } from "@/cells";
 import { data, evaluate, ratios, resultOf, trend } from "../../../cells/page/pages";
@@ -97,6 +99,25 @@ describe("a PNG for print", () => {
 
   it("is not made of other bytes", () => {
     expect(() => withDensity(Buffer.from("no picture"), 300)).toThrow("expected a PNG");
+  });
+});
+
+describe("a key in print", () => {
+  it("names every class with its count, in rows that stay inside the figure", () => {
+    const block = { id: "p", kind: "plot", plot: "scatter", drawn: [{ data: "ch", x: "mg_si", y: "al_si" }] };
+    const result = resultOf(evaluate(data(), ratios, block), "p", "plot");
+    const place = (name: string): number => ["CV", "CO", "XX"].indexOf(name);
+    const wide = printKey(result, 400, planeLight, place);
+    const slim = printKey(result, 120, planeLight, place);
+    expect([...(wide?.svg(0) ?? "").matchAll(/>([^<]+)<\/text>/gu)].map((found) => found[1])).toEqual(["CV (4)", "CO (4)", "XX (1)"]);
+    expect(slim?.height).toBeGreaterThan(wide?.height ?? Infinity);
+    const xs = [...(slim?.svg(0) ?? "").matchAll(/<text x="([\d.]+)"/gu)].map((found) => Number(found[1]));
+    for (const x of xs) expect(x).toBeLessThan(120 - 12);
+  });
+
+  it("is left off where nothing is to be told apart", () => {
+    const result = resultOf(evaluate({ id: "p", kind: "plot", plot: "scatter", x: "Mg / Si", y: "Al / Si", drawn: [{ bodies: ["CI"] }] }), "p", "plot");
+    expect(printKey(result, 400, planeLight, () => 0)).toBeNull();
   });
 });
 

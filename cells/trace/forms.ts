@@ -115,7 +115,7 @@ function sampleNodes({ context }: Tracing, source: SampleSource, parts: Parts, s
         ? [
             {
               kind: "constant",
-              label: `scatter of ${nameOfRow(table.samples[row], table.rowIds[row])} beyond its errors`,
+              label: `scatter of the samples of ${source.handle} beyond their errors`,
               value: null,
               sigma: null,
               unit: "",

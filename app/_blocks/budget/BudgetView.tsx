@@ -5,6 +5,7 @@ import { formatNumber, formatValue, withUnit } from "@/app/_ui/concise";
 import { quantilesInWords } from "@/app/_blocks/shared/simulatedWords";
 import { SimulateControl } from "@/app/_blocks/shared/SimulateControl";
 import { resultOf } from "@/app/_blocks/shared/tableOf";
+import { Asked } from "@/app/_blocks/trace/Asked";
 import type { BudgetBlock, BudgetResult } from "@/cells";
 import { BudgetBars } from "./BudgetBars";
 import { BudgetSteps } from "./BudgetSteps";
@@ -14,7 +15,7 @@ import { ReportTable } from "./ReportTable";
 
 export { stateInWords } from "./budgetWords";
 
-function LeftBehind({ left }: { readonly left: NonNullable<BudgetResult["left"]> }) {
+function LeftBehind({ left, onTrace }: { readonly left: NonNullable<BudgetResult["left"]>; onTrace(name: string): void }) {
   const parts = Object.entries(left.composition)
     .filter(([, v]) => v > 0)
     .sort((a, b) => b[1] - a[1]);
@@ -25,10 +26,22 @@ function LeftBehind({ left }: { readonly left: NonNullable<BudgetResult["left"]>
         {left.what}, <span className="font-mono">{formatNumber(left.mass, 3)}</span> kg per kg
       </summary>
       <dl className="grid grid-cols-[repeat(auto-fill,minmax(120px,1fr))] gap-x-4 pt-1">
+        <div className="flex justify-between">
+          <dt className="text-second">mass</dt>
+          <dd className="font-mono">
+            <Asked label={`the mass left behind, ${formatNumber(left.mass, 3)} kg per kg`} onAsk={() => onTrace("left.mass")}>
+              {formatNumber(left.mass, 3)}
+            </Asked>
+          </dd>
+        </div>
         {parts.map(([species, v]) => (
           <div key={species} className="flex justify-between">
             <dt className="text-second">{species}</dt>
-            <dd className="font-mono">{formatNumber(v * 100, 3)} wt%</dd>
+            <dd className="font-mono">
+              <Asked label={`${species} of what was left behind, ${formatNumber(v * 100, 3)} wt%`} onAsk={() => onTrace(`left.${species}`)}>
+                {formatNumber(v * 100, 3)} wt%
+              </Asked>
+            </dd>
           </div>
         ))}
       </dl>
@@ -49,14 +62,12 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
       {result === undefined && <p className="text-second">Calculating for the first time.</p>}
       {solved !== undefined && (
         <p className="font-mono text-solved font-medium max-[719px]:text-trace">
-          <button
-            type="button"
-            aria-label={`Trace the solved amount, ${withUnit(formatValue(solved.value, solved.sigma, { form }), solved.unit)}`}
-            className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo"
-            onClick={() => view.trace({ block: block.id, name: "solved" })}
+          <Asked
+            label={`the solved amount, ${withUnit(formatValue(solved.value, solved.sigma, { form }), solved.unit)}`}
+            onAsk={() => view.trace({ block: block.id, name: "solved" })}
           >
             {formatValue(solved.value, solved.sigma, { form })}
-          </button>
+          </Asked>
           <small className="ml-2 font-sans text-[14px] font-normal">
             {solved.unit === "1" ? "" : solved.unit} {solved.of}
             {solved.sigma === null ? ", σ unknown" : solved.sigmaIs === undefined ? ", 1σ" : ", 1σ at least"}
@@ -90,7 +101,7 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
             </p>
           )}
           <CompilationChart result={result} bodies={view.bodies} form={form} />
-          {result.left !== undefined && <LeftBehind left={result.left} />}
+          {result.left !== undefined && <LeftBehind left={result.left} onTrace={(name) => view.trace({ block: block.id, name })} />}
         </>
       )}
       {block.steps.length === 0 && (

@@ -1,7 +1,8 @@
 import { Fragment } from "react";
 import { classNames } from "@/app/_ui/classNames";
-import type { UncertaintyForm } from "@/app/_ui/concise";
+import { formatValue, type UncertaintyForm } from "@/app/_ui/concise";
 import { Value } from "@/app/_ui/Value";
+import { Asked } from "@/app/_blocks/trace/Asked";
 import { basisInWords, compactExpression } from "@/app/_blocks/shared/words";
 import type { BudgetBlock, BudgetReport, BudgetResult } from "@/cells";
 import { isSolvedFor, sharedBasis, targetName } from "./budgetWords";
@@ -24,11 +25,39 @@ function Miss({ miss, half }: { readonly miss: number; readonly half: number }) 
   );
 }
 
+function missText(miss: number): string {
+  return `${miss < 0 ? "−" : "+"}${Math.abs(miss).toFixed(1)}σ`;
+}
+
+interface SideProps {
+  readonly report: BudgetReport;
+  readonly side: "start" | "end" | "target";
+  readonly sigma: number | null;
+  readonly form: UncertaintyForm;
+  onTrace(name: string): void;
+}
+
+/** One side of a reported expression, to be asked where it comes from. */
+function Side({ report, side, sigma, form, onTrace }: SideProps) {
+  const value = report[side];
+  const shown = <Value value={value} sigma={sigma} form={form} unknown="" />;
+  if (value === null) return shown;
+  return (
+    <Asked
+      label={`${report.expression} at the ${side}, ${formatValue(value, sigma, { form, unknown: "" })}`}
+      onAsk={() => onTrace(`${report.expression}.${side}`)}
+    >
+      {shown}
+    </Asked>
+  );
+}
+
 export interface ReportTableProps {
   readonly block: BudgetBlock;
   readonly result: BudgetResult;
   readonly form: UncertaintyForm;
-  onTrace(expression: string): void;
+  /** Asks for a reported expression, with its side behind it. */
+  onTrace(name: string): void;
 }
 
 /** Every reported ratio at the start, at the end and at the target, and by how many σ it misses. */
@@ -81,7 +110,7 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
                   {basis === "" && r.basis !== null && <span className="ml-2 text-margin text-second">{basisInWords(r.basis)}</span>}
                 </th>
                 <td className={cell}>
-                  <Value value={r.start} sigma={r.startSigma} form={form} unknown="" />
+                  <Side report={r} side="start" sigma={r.startSigma} form={form} onTrace={onTrace} />
                 </td>
                 <td className={cell}>
                   <button
@@ -96,7 +125,7 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
                 {hasTarget && (
                   <>
                     <td className={cell}>
-                      <Value value={r.target} sigma={r.targetSigma} form={form} unknown="" />
+                      <Side report={r} side="target" sigma={r.targetSigma} form={form} onTrace={onTrace} />
                     </td>
                     <td className={classNames(cell, "max-[719px]:hidden")}>
                       {(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}
@@ -107,10 +136,13 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
                       ) : r.miss === null ? (
                         <span className="text-second">–</span>
                       ) : (
-                        <span className={Math.abs(r.miss) > 2 ? "text-vermilion" : "text-second"}>
-                          {r.miss < 0 ? "−" : "+"}
-                          {Math.abs(r.miss).toFixed(1)}σ
-                        </span>
+                        <Asked
+                          label={`the miss of ${r.expression}, ${missText(r.miss)}`}
+                          className={Math.abs(r.miss) > 2 ? "text-vermilion" : "text-second"}
+                          onAsk={() => onTrace(`${r.expression}.miss`)}
+                        >
+                          {missText(r.miss)}
+                        </Asked>
                       )}
                     </td>
                   </>

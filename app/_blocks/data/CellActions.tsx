@@ -5,8 +5,10 @@ import { Button } from "@/app/_ui/Button";
 import type { PageView } from "@/app/_page/contract";
 import type { DataBlock, RowId, Table } from "@/cells";
 import { TOTAL_COLUMN } from "@/app/_page/margin/footnotes";
+import { Menu } from "@/app/_ui/Menu";
 import type { GridColumn, GridModel } from "./gridModel";
 import { NearestDialog } from "./NearestDialog";
+import { usesOf } from "./usesOf";
 import type { CellPlace } from "./gridKeys";
 
 export interface CellActionsProps {
@@ -59,6 +61,7 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
   const valueAside = (block.setAside ?? []).find((s) => s.row === row && s.column !== undefined && matches(s.column));
   const rowAside = (block.setAside ?? []).find((s) => s.row === row && s.column === undefined);
   const canEdit = view.edits !== null;
+  const uses = usesOf(block.id, place.row, view);
   return (
     <div
       role="toolbar"
@@ -70,6 +73,11 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
         {isTotal ? "" : `, ${column.name}`}
       </span>
       {column?.quantity !== undefined ? <Button onClick={() => view.trace({ block: block.id, name: column.name, index: place.row })}>Trace</Button> : null}
+      {uses.length === 0 ? null : (
+        <Menu items={uses} align="start">
+          <Button>Where it is used</Button>
+        </Menu>
+      )}
       {view.nearest === undefined || model.table === undefined ? null : <Button onClick={() => setNear(place.row)}>Nearest</Button>}
       {near === null ? null : <NearestDialog block={block.id} index={near} sample={sampleAt(model.table, near)} view={view} onClose={() => setNear(null)} />}
       {made

@@ -10,7 +10,7 @@ import type { DataBlock, DataResult, RowId } from "@/cells";
 import { CellField } from "./CellField";
 import { GridHead } from "./GridHead";
 import { between, movedBy, type CellPlace } from "./gridKeys";
-import type { GridColumn, GridModel } from "./gridModel";
+import { rowShown, type GridColumn, type GridModel } from "./gridModel";
 import { GridRow } from "./GridRow";
 import { othersPicks, rowDrawer } from "./gridRows";
 import type { ActiveCell } from "./useActiveCell";
@@ -76,16 +76,18 @@ export function DataGrid({ block, blockKey, result, view, model, cell, onOpen, o
     const frame = document.querySelector(`[${FRAME_ATTRIBUTE}="${CSS.escape(blockKey)}"]`);
     const show = (event: Event) => {
       const { row, column } = (event as CustomEvent<ShowRow>).detail;
-      const at = model.rowIds.indexOf(row);
+      const at = rowShown(model, block.id, row);
       if (at < 0) return;
       const c = model.columns.findIndex((one) => one.name === column);
-      activate({ row: at, column: Math.max(0, c) });
+      // A σ that has no column here stands with its value.
+      const ofSigma = model.columns.findIndex((one) => column !== undefined && (one.quantity?.sigmaHeader === column || one.quantity?.header === column));
+      activate({ row: at, column: Math.max(0, c < 0 ? ofSigma : c) });
       reveal(at);
       scroller.current?.focus({ preventScroll: true });
     };
     frame?.addEventListener(SHOW_ROW_EVENT, show);
     return () => frame?.removeEventListener(SHOW_ROW_EVENT, show);
-  }, [blockKey, model, activate, reveal, scroller]);
+  }, [block.id, blockKey, model, activate, reveal, scroller]);
 
   const pick = (row: number, way: "only" | "toggle" | "range") => {
     if (table === undefined || row >= table.rows || view.mode === "frozen") return;

@@ -21,6 +21,7 @@ import { StackDialog } from "./StackDialog";
 import { AddColumnDialog } from "./AddColumnDialog";
 import { tableEdits } from "./tableEdits";
 import { useActiveCell } from "./useActiveCell";
+import { useShownWhenFolded } from "./useShownWhenFolded";
 
 const MOST_TYPED = 2000;
 
@@ -50,6 +51,7 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
   // A third of the page has no room for a table; what is folded is each person's own choice.
   const [folded, setFolded] = useState<boolean | null>(null);
   const isFolded = result?.table !== undefined && (folded ?? (block.width === 4 || (isMade && block.width === 6)));
+  useShownWhenFolded(blockKey, isFolded, () => setFolded(false));
   const made = edits === null ? null : tableEdits(edits, blockKey, block);
   const close = () => setAsking(null);
   const tables = view.blocks.filter((b) => b.block.kind === "data" && b.key !== blockKey).length;

@@ -73,6 +73,12 @@ export function gridModel(block: DataBlock, table: Table | undefined, form: Unce
   return { columns: ordered.map((o) => o.column), rows: rowIds.length, rowIds, typed, table };
 }
 
+/** The row of the grid that a row of the source is in: of analyses merged into one, that one; below 0 where there is none. */
+export function rowShown(model: GridModel, handle: string, row: RowId): number {
+  const at = model.rowIds.indexOf(row);
+  return at >= 0 ? at : (model.table?.origins.findIndex((origins) => origins.some((origin) => origin.table === handle && origin.row === row)) ?? -1);
+}
+
 /** Amended texts by place, for the decimals of the new value. */
 export function amendedTexts(block: DataBlock): ReadonlyMap<string, string> {
   return new Map((block.amendments ?? []).map((a) => [`${a.row}/${a.column}`, a.value]));

@@ -6,6 +6,7 @@ import { classNames } from "@/app/_ui/classNames";
 import { ClassMarker } from "@/app/_ui/ClassMarker";
 import { formatValue, withUnit } from "@/app/_ui/concise";
 import type { LineResult, Table } from "@/cells";
+import { Asked } from "@/app/_blocks/trace/Asked";
 import { countsText, natureText, rangeText } from "./headWords";
 import { lineSimulated } from "@/app/_blocks/shared/simulatedWords";
 import type { FormulaLine } from "./lines";
@@ -36,14 +37,9 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
       <div className={classNames("flex flex-wrap items-baseline gap-x-4 leading-6 transition-opacity delay-300 duration-200", isStale && "opacity-60")}>
         <b className="font-mono text-result font-medium">{line.name}</b>
         {isSingle ? (
-          <button
-            type="button"
-            className="border-b border-transparent font-mono text-result hover:border-indigo hover:text-indigo focus-visible:border-indigo"
-            onClick={() => view.trace({ block, name: line.name })}
-            aria-label={`Trace ${line.name}, ${range}`}
-          >
+          <Asked label={`${line.name}, ${range}`} className="font-mono text-result" onAsk={() => view.trace({ block, name: line.name })}>
             {range}
-          </button>
+          </Asked>
         ) : (
           <span className={classNames("font-mono text-result", result !== undefined && !result.ok && "text-vermilion")}>{range}</span>
         )}
@@ -64,7 +60,11 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
                 <ClassMarker index={name === "" ? -1 : view.classIndex(name)} className="mr-1.5" />
                 {name === "" ? "no class" : name}
               </dt>
-              <dd className="font-mono">{withUnit(formatValue(result.value[index] ?? NaN, result.sigma[index] ?? NaN, { form }), result.unit)}</dd>
+              <dd className="font-mono">
+                <Asked label={`${line.name} of ${name === "" ? "no class" : name}`} onAsk={() => view.trace({ block, name: line.name, index })}>
+                  {withUnit(formatValue(result.value[index] ?? NaN, result.sigma[index] ?? NaN, { form }), result.unit)}
+                </Asked>
+              </dd>
             </div>
           ))}
         </dl>

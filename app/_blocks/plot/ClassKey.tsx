@@ -3,6 +3,7 @@ import { ClassMarker } from "@/app/_ui/ClassMarker";
 import { classCodes } from "@/app/_blocks/shared/classCodes";
 import type { PlotResult } from "@/cells";
 import { isDrawn } from "./isDrawn";
+import { PickedPoints } from "./PickedPoints";
 
 /** Classes drawn on a plot, with how many samples of each; in the order of the page's class sequence. */
 export function classCounts(result: PlotResult, classIndex: (name: string) => number): readonly { readonly name: string; readonly count: number }[] {
@@ -43,28 +44,31 @@ function patternClasses(result: PlotResult, line: number): readonly string[] {
   );
 }
 
-/** The key of classes: marker, name and how many are drawn. */
+/** The key of classes: marker, name and how many are drawn; under it the numbers of the points that are picked. */
 export function ClassKey({ result, view }: { readonly result: PlotResult; readonly view: PageView }) {
   const counts = classCounts(result, (name) => view.classIndex(name));
   const aside = result.notDrawn["set aside"] ?? 0;
-  if (counts.length === 0) return null;
+  if (counts.length === 0) return <PickedPoints result={result} view={view} />;
   return (
-    <ul aria-label="Classes" className="grid grid-cols-[repeat(auto-fill,minmax(108px,1fr))] gap-x-3 gap-y-1 pt-3 text-margin">
-      {counts.map(({ name, count }) => (
-        <li key={name} className="flex min-w-0 items-baseline">
-          <ClassMarker index={name === "" ? -1 : view.classIndex(name)} className="mr-2 self-center" />
-          <span className="min-w-0 truncate">{name === "" ? "no class" : name}</span>
-          <span className="ml-1.5 text-second">{count}</span>
-        </li>
-      ))}
-      {aside > 0 && (
-        <li className="flex items-baseline text-second">
-          <span aria-hidden="true" className="mr-2">
-            ×
-          </span>
-          set aside <span className="ml-1.5">{aside}</span>
-        </li>
-      )}
-    </ul>
+    <>
+      <ul aria-label="Classes" className="grid grid-cols-[repeat(auto-fill,minmax(108px,1fr))] gap-x-3 gap-y-1 pt-3 text-margin">
+        {counts.map(({ name, count }) => (
+          <li key={name} className="flex min-w-0 items-baseline">
+            <ClassMarker index={name === "" ? -1 : view.classIndex(name)} className="mr-2 self-center" />
+            <span className="min-w-0 truncate">{name === "" ? "no class" : name}</span>
+            <span className="ml-1.5 text-second">{count}</span>
+          </li>
+        ))}
+        {aside > 0 && (
+          <li className="flex items-baseline text-second">
+            <span aria-hidden="true" className="mr-2">
+              ×
+            </span>
+            set aside <span className="ml-1.5">{aside}</span>
+          </li>
+        )}
+      </ul>
+      <PickedPoints result={result} view={view} />
+    </>
   );
 }

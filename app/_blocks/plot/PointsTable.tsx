@@ -4,12 +4,12 @@ import { useState } from "react";
 import type { PageView } from "@/app/_page/contract";
 import { Button } from "@/app/_ui/Button";
 import { ClassMarker } from "@/app/_ui/ClassMarker";
-import { Value } from "@/app/_ui/Value";
 import { originsOf, pickedIndices, rowLabel } from "@/app/_blocks/shared/picks";
-import { tableOf } from "@/app/_blocks/shared/tableOf";
+import { handleOf, tableOf } from "@/app/_blocks/shared/tableOf";
 import { State, stateName, type PlotResult } from "@/cells";
 import { hasPlace } from "./isDrawn";
 import { axisInWords } from "./plotWords";
+import { PointNumber, type PointAsked } from "./PointNumber";
 import { valuesAt } from "./underPointer";
 
 /** Rows shown at once; a table that nobody can read to its end only slows the page. */
@@ -17,8 +17,8 @@ const step = 200;
 
 /** The same as the drawing, as a table: for those who listen, for the keyboard, and for reading a number off. */
 export function PointsTable({ result, view }: { readonly result: PlotResult; readonly view: PageView }) {
+  const plot = handleOf(view.results, result);
   const [most, setMost] = useState(step);
-  const form = view.settings.uncertainty;
   const rows = result.layers.flatMap((layer) => {
     if (layer.what !== "samples") return [];
     const table = tableOf(view.results, layer.data);
@@ -27,13 +27,13 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
       hasPlace(row.layer.points, row.index, result.plot),
     );
   });
-  const bodies = result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies : []));
+  const bodies = result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies.map((body) => ({ ...body, drawn: layer.drawn })) : []));
   const hasY = result.plot !== "distribution";
   const isPattern = result.plot === "pattern";
   const isTernary = result.plot === "ternary";
   const hasCorrelation = result.plot === "scatter";
   const means = result.layers.flatMap((layer) =>
-    layer.what === "means" ? layer.classes.flatMap(({ name, points }) => points.map((point) => ({ name, ...point }))) : [],
+    layer.what === "means" ? layer.classes.flatMap(({ name, points }) => points.map((point) => ({ name, drawn: layer.drawn, ...point }))) : [],
   );
   const numbers =
     isTernary && result.corners !== undefined
@@ -43,18 +43,18 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
         : [axisInWords(result.x, undefined), ...(hasY ? [axisInWords(result.y, undefined)] : [])];
   const heads = ["sample", "class", ...numbers, ...(hasCorrelation ? ["correlation"] : [])];
   /** Cells of a place: what the pointer would say there, or the value's name and number in a pattern. */
-  const cells = (place: Parameters<typeof valuesAt>[1], of: string | undefined) =>
+  const cells = (place: Parameters<typeof valuesAt>[1], of: string | undefined, asks: PointAsked) =>
     isPattern ? (
       <>
         <td className="pr-3 text-right">{of}</td>
         <td className="pr-3 text-right">
-          <Value value={place.y} sigma={place.sigmaY} form={form} />
+          <PointNumber value={place.y} sigma={place.sigmaY} of={of ?? ""} name={`${asks.name}:${of ?? ""}`} asks={asks} view={view} plot={plot} />
         </td>
       </>
     ) : (
-      valuesAt(result, place, of).map((each) => (
+      valuesAt(result, place, of).map((each, i) => (
         <td key={each.of} className="pr-3 text-right">
-          <Value value={each.value} sigma={each.sigma} form={form} />
+          <PointNumber value={each.value} sigma={each.sigma} of={each.of} name={`${asks.name}:${"xyz"[i] ?? ""}`} asks={asks} view={view} plot={plot} />
         </td>
       ))
     );
@@ -86,7 +86,7 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
                 {b.body ?? b.name}
               </th>
               <td className="pr-3 text-second">body, {b.compilation}</td>
-              {cells(b, b.of)}
+              {cells(b, b.of, { name: `${b.drawn}:${b.body ?? b.name}`, title: b.body ?? b.name })}
               {hasCorrelation && <td className="pr-3 text-right font-mono">{b.correlation.toFixed(2).replace("-", "−")}</td>}
               {view.mode !== "frozen" && <td />}
             </tr>
@@ -100,7 +100,10 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
                 {mean.name !== "" && <ClassMarker index={view.classIndex(mean.name)} className="mr-2" />}
                 {mean.name}
               </td>
-              {cells({ x: mean.x, y: mean.y, sigmaX: 0, sigmaY: mean.sigmaY, correlation: 0 }, mean.of)}
+              {cells({ x: mean.x, y: mean.y, sigmaX: 0, sigmaY: mean.sigmaY, correlation: 0 }, mean.of, {
+                name: `${mean.drawn}:${mean.name}`,
+                title: `the mean of ${mean.name}`,
+              })}
               {view.mode !== "frozen" && <td />}
             </tr>
           ))}
@@ -130,6 +133,7 @@ export function PointsTable({ result, view }: { readonly result: PlotResult; rea
                     correlation,
                   },
                   layer.of,
+                  { name: String(layer.drawn), title: label, index },
                 )}
                 {hasCorrelation && (
                   <td className="pr-3 text-right font-mono">{Number.isFinite(correlation) ? correlation.toFixed(2).replace("-", "−") : "–"}</td>

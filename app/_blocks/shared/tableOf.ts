@@ -12,3 +12,9 @@ export function resultOf<K extends BlockKind>(results: PageResults | null, handl
   const result = results?.blocks.get(handle);
   return result?.kind === kind ? (result as Extract<BlockResult, { kind: K }>) : undefined;
 }
+
+/** The handle of the block that a result is of. */
+export function handleOf(results: PageResults | null, result: BlockResult): string {
+  for (const [handle, each] of results?.blocks ?? []) if (each === result) return handle;
+  return "";
+}

@@ -6,17 +6,46 @@ import { Button } from "@/app/_ui/Button";
 import { rowLabel } from "@/app/_blocks/shared/picks";
 import { quantilesInWords, wishInWords } from "@/app/_blocks/shared/simulatedWords";
 import { tableOf } from "@/app/_blocks/shared/tableOf";
-import { compactExpression } from "@/app/_blocks/shared/words";
-import { TraceBranches } from "./TraceBranch";
-import { askedInWords, hasShares, nodeValue } from "./traceWords";
+import { dominantOf, type PlotBlock, type TraceNode } from "@/cells";
+import { showCell, TraceBranches } from "./TraceBranch";
+import { askedInWords, askedTitle, cellOwner, hasShares, mostOfSigma, nodeValue } from "./traceWords";
 
 /** Which sample of which table a trace asks about, by its name; "" for single values. */
 function sampleOf(view: PageView): string {
   const request = view.traced?.request;
   if (request?.index === undefined) return "";
   const block = view.blocks.find((b) => b.block.id === request.block)?.block;
-  const data = block?.kind === "data" ? block.id : block !== undefined && "data" in block ? block.data : undefined;
+  const data =
+    block?.kind === "data"
+      ? block.id
+      : block?.kind === "plot"
+        ? drawnTable(block, request.name)
+        : block !== undefined && "data" in block
+          ? block.data
+          : undefined;
   return rowLabel(tableOf(view.results, data), request.index);
+}
+
+/** The table that a point of a plot is a row of: its name begins with its place in the plot's list. */
+function drawnTable(block: PlotBlock, name: string): string | undefined {
+  const drawn = block.drawn[Number(name.slice(0, name.indexOf(":")))];
+  return drawn !== undefined && "data" in drawn ? drawn.data : undefined;
+}
+
+const noPath: ReadonlySet<TraceNode> = new Set();
+
+/** What dominates the σ, in a sentence, with the way to its cell. */
+function Most({ node, view }: { readonly node: TraceNode; readonly view: PageView }) {
+  return mostOfSigma(node).map(({ text, cell }) => (
+    <p key={text} className="mt-1">
+      {text}{" "}
+      {cell !== undefined && (
+        <Button className="text-margin" aria-label={`Go to the cell ${cell.column} of ${cellOwner(cell)}`} onClick={() => showCell(view, cell)}>
+          Go to the cell
+        </Button>
+      )}
+    </p>
+  ));
 }
 
 /** The trace of the asked number, in the margin: where it comes from, down to the source cells. Escape closes it. */
@@ -39,11 +68,12 @@ export function TraceView({ view }: { readonly view: PageView }) {
     if (came.current instanceof HTMLElement && came.current.isConnected) came.current.focus({ preventScroll: true });
   };
   const sample = sampleOf(view);
+  const title = askedTitle(request, node);
   return (
     <section
       ref={frame}
       tabIndex={-1}
-      aria-label={`Trace of ${request.name}${sample === "" ? "" : `, ${sample}`}`}
+      aria-label={`Trace of ${title}${sample === "" ? "" : `, ${sample}`}`}
       aria-busy={node === null}
       className="break-inside-avoid border-t border-l border-indigo pt-2 pl-[19px] text-margin text-ink outline-none"
       onKeyDown={(event) => {
@@ -54,7 +84,7 @@ export function TraceView({ view }: { readonly view: PageView }) {
     >
       <p className="flex justify-between gap-2 text-second">
         <span className="min-w-0">
-          Trace of <b className="font-semibold text-ink">{compactExpression(request.name)}</b>
+          Trace of <b className="font-semibold text-ink">{title}</b>
           {sample === "" ? "" : `, ${sample}`}
         </span>
         <Button className="text-margin" onClick={close}>
@@ -76,11 +106,12 @@ export function TraceView({ view }: { readonly view: PageView }) {
               {quantilesInWords(node.simulated, node.unit)} ({wishInWords(node.simulated)})
             </p>
           )}
+          <Most node={node} view={view} />
           <div className="mt-2">
             <p className="pb-1 font-mono break-words">{node.label}</p>
             {hasShares(node) && <p className="pb-1 text-second">the branch’s width is its share of the variance</p>}
             {node.from.length > 0 ? (
-              <TraceBranches nodes={node.from} view={view} depth={0} />
+              <TraceBranches key={key} nodes={node.from} view={view} depth={0} path={dominantOf(node)?.path ?? noPath} />
             ) : (
               <p className="text-second">Nothing further stands behind this number.</p>
             )}

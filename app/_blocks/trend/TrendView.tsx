@@ -1,6 +1,6 @@
 "use client";
 
-import { useMemo, type ReactNode } from "react";
+import { Fragment, useMemo, type ReactNode } from "react";
 import type { BlockViewProps } from "@/app/_page/contract";
 import { Button } from "@/app/_ui/Button";
 import { formatNumber, formatP, formatValue, powerOfTen } from "@/app/_ui/concise";
@@ -9,6 +9,7 @@ import { pickedIndices } from "@/app/_blocks/shared/picks";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
 import { useRefusal } from "@/app/_blocks/shared/useRefusal";
 import { sentence } from "@/app/_blocks/shared/words";
+import { Asked } from "@/app/_blocks/trace/Asked";
 import type { BodyDistance, RowId, TrendBlock } from "@/cells";
 import { LeaveOut } from "./LeaveOut";
 import { MswdRuler } from "./MswdRuler";
@@ -27,17 +28,11 @@ function Row({ head, children }: { readonly head: string; readonly children: Rea
   );
 }
 
-/** A number that can be asked where it comes from. */
-function Asked({ text, label, onAsk }: { readonly text: string; readonly label: string; onAsk(): void }) {
+function AskedText({ text, label, onAsk }: { readonly text: string; readonly label: string; onAsk(): void }) {
   return (
-    <button
-      type="button"
-      aria-label={`Trace ${label}, ${text}`}
-      className="border-b border-transparent hover:border-indigo hover:text-indigo focus-visible:border-indigo"
-      onClick={onAsk}
-    >
+    <Asked label={`${label}, ${text}`} onAsk={onAsk}>
       {text}
-    </button>
+    </Asked>
   );
 }
 
@@ -49,12 +44,22 @@ function small(value: number): string {
   return mantissa.replace("-", "−") + powerOfTen(Number(exponent));
 }
 
-function distances(all: readonly BodyDistance[]): string {
-  return [...all]
-    .sort((a, b) => a.distance - b.distance)
-    .slice(0, 4)
-    .map((b) => `${b.body} ${b.distance.toFixed(1)}σ away, p ${formatP(b.p)}`)
-    .join("; ");
+/** The nearest bodies, each distance to be asked where it comes from. */
+function Distances({ all, from, onAsk }: { readonly all: readonly BodyDistance[]; readonly from: "line" | "crossing"; onAsk(name: string): void }) {
+  const nearest = [...all].sort((a, b) => a.distance - b.distance).slice(0, 4);
+  return nearest.map((b, i) => (
+    <Fragment key={b.body}>
+      {i > 0 && "; "}
+      {b.body}{" "}
+      <Asked
+        label={`the distance of ${b.body} from the ${from}, ${b.distance.toFixed(1)}σ`}
+        onAsk={() => onAsk(from === "line" ? `from_${b.body}` : `crossing.from_${b.body}`)}
+      >
+        {b.distance.toFixed(1)}σ
+      </Asked>{" "}
+      away, p {formatP(b.p)}
+    </Fragment>
+  ));
 }
 
 /** A trend: its line, how well the points keep to it, where it crosses another, and each sample's residual. */
@@ -80,9 +85,9 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
       {result === undefined && <p className="text-second">Calculating for the first time.</p>}
       {equation !== null && result !== undefined && (
         <p className="py-1 font-serif text-equation max-[719px]:text-[19px]">
-          {equation.y} = <Asked text={formatValue(equation.slope.value, equation.slope.sigma, { form })} label="the slope" onAsk={() => ask("slope")} />{" "}
+          {equation.y} = <AskedText label="the slope" text={formatValue(equation.slope.value, equation.slope.sigma, { form })} onAsk={() => ask("slope")} />{" "}
           {equation.x} {equation.sign}{" "}
-          <Asked text={formatValue(equation.intercept.value, equation.intercept.sigma, { form })} label="the intercept" onAsk={() => ask("intercept")} />
+          <AskedText label="the intercept" text={formatValue(equation.intercept.value, equation.intercept.sigma, { form })} onAsk={() => ask("intercept")} />
           {equation.withScatter && <span className="ml-2 text-[0.76em] text-second">{block.scatter === "root mswd" ? "σ × √MSWD" : "σ with scatter"}</span>}
         </p>
       )}
@@ -95,7 +100,10 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
         <>
           <dl className={grid}>
             <Row head="MSWD">
-              <span className="font-mono">{result.mswd.toFixed(2)}</span> {mswdPlace(result.mswd, result.mswdExpected)} the{" "}
+              <span className="font-mono">
+                <AskedText text={result.mswd.toFixed(2)} label="the MSWD" onAsk={() => ask("mswd")} />
+              </span>{" "}
+              {mswdPlace(result.mswd, result.mswdExpected)} the{" "}
               <span className="font-mono">{`${result.mswdExpected[0].toFixed(2)}–${result.mswdExpected[1].toFixed(2)}`}</span> expected of n = {result.n} (95 %)
             </Row>
           </dl>
@@ -104,7 +112,20 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
       )}
       {result?.ok && (
         <dl className={grid}>
-          {result.p !== undefined && <Row head="p(χ²)">{probabilityInWords(result)}</Row>}
+          {result.p !== undefined && (
+            <Row head="p(χ²)">
+              <AskedText text={formatP(result.p)} label="the probability" onAsk={() => ask("p")} />
+              {probabilityInWords(result).slice(formatP(result.p).length)}
+              {(result.scatter ?? 0) > 0 && (
+                <>
+                  {" "}
+                  <Button className="text-margin" aria-label="Trace the scatter that was added" onClick={() => ask("scatter")}>
+                    Trace it
+                  </Button>
+                </>
+              )}
+            </Row>
+          )}
           <Row head="n">
             <span className="font-mono">{result.n}</span>
             {samplesOfFit(result) === "" ? "" : `, ${samplesOfFit(result)}`}
@@ -114,30 +135,44 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
           )}
           {result.covariance !== undefined && (
             <Row head="covariance">
-              <span className="font-mono">{small(result.usesScatter ? (result.covarianceWithScatter ?? result.covariance) : result.covariance)}</span>, slope
-              with intercept
+              <span className="font-mono">
+                <AskedText
+                  text={small(result.usesScatter ? (result.covarianceWithScatter ?? result.covariance) : result.covariance)}
+                  label="the covariance"
+                  onAsk={() => ask("covariance")}
+                />
+              </span>
+              , slope with intercept
             </Row>
           )}
           {result.crossing !== undefined && (
             <Row head={`crosses ${result.crossing.with}`}>
               <span className="font-mono text-cell leading-5">
-                <Asked
+                <AskedText
                   text={formatValue(result.crossing.x.value, result.crossing.x.sigma, { form })}
                   label="the crossing across"
                   onAsk={() => ask("crossing.x")}
                 />
                 ,{" "}
-                <Asked
+                <AskedText
                   text={formatValue(result.crossing.y.value, result.crossing.y.sigma, { form })}
                   label="the crossing upwards"
                   onAsk={() => ask("crossing.y")}
                 />
               </span>
-              {result.crossing.fromBodies.length > 0 ? `; ${distances(result.crossing.fromBodies)}` : ""}
+              {result.crossing.fromBodies.length > 0 && (
+                <>
+                  ; <Distances all={result.crossing.fromBodies} from="crossing" onAsk={ask} />
+                </>
+              )}
               {result.crossing.region === "simulated" ? "; the slopes are too alike for an ellipse, its region is simulated" : ""}
             </Row>
           )}
-          {result.fromBodies.length > 0 && <Row head="from line">{distances(result.fromBodies)}</Row>}
+          {result.fromBodies.length > 0 && (
+            <Row head="from line">
+              <Distances all={result.fromBodies} from="line" onAsk={ask} />
+            </Row>
+          )}
         </dl>
       )}
       {result?.ok && (

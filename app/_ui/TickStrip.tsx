@@ -64,6 +64,27 @@ export function stripPlace(value: number, range: readonly [number, number], widt
   return width * (0.037 + 0.926 * ((value - range[0]) / span));
 }
 
+/** How many samples of each class stand on each pixel of a strip, by the class's place in the page's sequence. */
+export function crowds(
+  values: ArrayLike<number>,
+  range: readonly [number, number],
+  width: number,
+  classOf?: (index: number) => number,
+  hide?: ArrayLike<number>,
+): Map<number, Uint32Array> {
+  const found = new Map<number, Uint32Array>();
+  for (let i = 0; i < values.length; i++) {
+    const v = values[i] ?? NaN;
+    if (!(v >= range[0] && v <= range[1]) || hide?.[i]) continue;
+    const index = classOf?.(i) ?? -1;
+    let counts = found.get(index);
+    if (counts === undefined) found.set(index, (counts = new Uint32Array(Math.ceil(width))));
+    const pixel = Math.floor(stripPlace(v, range, width));
+    counts[pixel] = (counts[pixel] ?? 0) + 1;
+  }
+  return found;
+}
+
 function resolveColor(canvas: HTMLCanvasElement, css: string): string {
   const name = /^var\((--[\w-]+)\)$/.exec(css)?.[1];
   return name === undefined ? css : getComputedStyle(canvas).getPropertyValue(name).trim();
@@ -100,15 +121,24 @@ export function TickStrip({ values, classOf, hide, picked, range, marks, height 
     const shown = range ?? stripRange(values, hide);
     if (shown === undefined) return;
     const pickedSet = new Set(picked);
-    // Where there are more samples than pixels, thinner and lighter ticks keep the density readable.
-    const many = values.length > width;
-    context.globalAlpha = many ? Math.max(0.15, Math.min(1, (2 * width) / values.length)) : 1;
-    for (let i = 0; i < values.length; i++) {
-      const v = values[i] ?? NaN;
-      if (!Number.isFinite(v) || hide?.[i] || v < shown[0] || v > shown[1] || pickedSet.has(i)) continue;
-      context.fillStyle = colorOf(classOf?.(i) ?? -1);
-      context.fillRect(stripPlace(v, shown, width) - 0.7, height * 0.25, many ? 1 : 1.4, height * 0.75);
-    }
+    if (values.length > width) {
+      // More samples than pixels: where they crowd a tick is darker. One rectangle a pixel and class, however many samples.
+      const alpha = Math.max(0.15, Math.min(1, (2 * width) / values.length));
+      for (const [index, counts] of crowds(values, shown, width, classOf, hide)) {
+        context.fillStyle = colorOf(index);
+        counts.forEach((count, pixel) => {
+          if (count === 0) return;
+          context.globalAlpha = 1 - (1 - alpha) ** count;
+          context.fillRect(pixel, height * 0.25, 1, height * 0.75);
+        });
+      }
+    } else
+      for (let i = 0; i < values.length; i++) {
+        const v = values[i] ?? NaN;
+        if (!Number.isFinite(v) || hide?.[i] || v < shown[0] || v > shown[1] || pickedSet.has(i)) continue;
+        context.fillStyle = colorOf(classOf?.(i) ?? -1);
+        context.fillRect(stripPlace(v, shown, width) - 0.7, height * 0.25, 1.4, height * 0.75);
+      }
     context.globalAlpha = 1;
     context.fillStyle = resolveColor(canvas, "var(--indigo)");
     for (const i of pickedSet) {

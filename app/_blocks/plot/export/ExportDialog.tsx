@@ -47,7 +47,7 @@ export function ExportDialog({ block, result, view, onClose }: ExportDialogProps
   const figure = useMemo(() => {
     if (results === null) return null;
     const nameOf = (handle: string): string => view.blocks.find((b) => b.block.id === handle)?.block.name ?? handle;
-    const caption = captionOf({ block, result, results, nameOf });
+    const caption = captionOf({ block, result, results, ownBodies: view.ownBodies, nameOf });
     return { block, result, results, nameOf, classIndex: (name: string) => view.classIndex(name), title: block.name ?? block.id, caption };
   }, [block, result, results, view]);
 

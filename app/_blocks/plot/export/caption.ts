@@ -1,7 +1,7 @@
 import { counted, formatNumber, formatP, formatValue } from "@/app/_ui/concise";
 import { absent, listed } from "@/app/_blocks/shared/words";
 import { resultOf } from "@/app/_blocks/shared/tableOf";
-import { condensationTemperature, lookupBody, type PageResults, type PlotBlock, type PlotLayer, type PlotResult } from "@/cells";
+import { condensationTemperature, lookupBody, type OwnBody, type PageResults, type PlotBlock, type PlotLayer, type PlotResult } from "@/cells";
 import { heldBy } from "../ellipse";
 import { mostEllipses, axisInWords } from "../plotWords";
 import { sumInWords } from "../ternaryTraces";
@@ -10,6 +10,8 @@ export interface CaptionOf {
   readonly block: PlotBlock;
   readonly result: PlotResult;
   readonly results: PageResults;
+  /** Bodies of the group's own that the page carries, by id. */
+  readonly ownBodies: Readonly<Record<string, OwnBody>>;
   /** Name of a block by its handle. */
   nameOf(handle: string): string;
 }
@@ -139,7 +141,7 @@ function lineSays(layer: PlotLayer, { results, nameOf }: CaptionOf): string[] {
 }
 
 /** Every body that anything on the drawing leans on: alias, compilation, source, and whether its values were read. */
-function bodiesSay({ result }: CaptionOf): string[] {
+function bodiesSay({ result, ownBodies }: CaptionOf): string[] {
   const drawn = new Map(
     result.layers.flatMap((layer) => (layer.what === "bodies" ? layer.bodies.map((body) => [body.body ?? body.name, body.compilation] as const) : [])),
   );
@@ -150,9 +152,10 @@ function bodiesSay({ result }: CaptionOf): string[] {
       ? false
       : result.layers.some((layer) => layer.what === "bodies" && layer.bodies.some((body) => body.ellipse !== undefined));
   const each = [...used].map(([name, id]) => {
+    const own = Object.hasOwn(ownBodies, id) ? ownBodies[id] : undefined;
     const body = lookupBody(id);
-    const sources = [...new Set((body?.values ?? []).map(({ source }) => source))];
-    const memory = body?.fromMemory === true ? ", some of it written down from memory" : "";
+    const sources = own === undefined ? [...new Set((body?.values ?? []).map(({ source }) => source))] : [own.source];
+    const memory = own === undefined && body?.fromMemory === true ? ", some of it written down from memory" : "";
     return `${name === id ? id : `${name} is ${id}`}${sources.length > 0 ? ` (${sources.join("; ")}${memory})` : ""}`;
   });
   return [`Bodies: ${each.join("; ")}.${radii ? " Ellipses of bodies are as their sources give σ." : ""}`];

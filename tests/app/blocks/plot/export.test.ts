@@ -128,6 +128,7 @@ describe("a caption", () => {
       block: block as PlotBlock,
       result: resultOf(results, "p", "plot"),
       results,
+      ownBodies: {},
       nameOf: (handle) => (handle === "ch" ? "Chondrites" : handle),
     });
   };
@@ -146,6 +147,14 @@ describe("a caption", () => {
     expect(caption).toContain("Ellipses of samples are 2σ in two dimensions and hold 86 %");
     expect(caption).toMatch(/CI is CI_PLJ14 \(Palme[^)]*2014/u);
     expect(caption).toMatch(/Calculated with Cotectic, engine \d+\.\d+\.\d+\.$/u);
+  });
+
+  it("names the source of a body of the group's own", () => {
+    const block: PlotBlock = { id: "p", kind: "plot", plot: "scatter", drawn: [{ data: "ch", x: "mg_si", y: "al_si" }] };
+    const results = evaluate(data(), ratios, block);
+    const result = { ...resultOf(results, "p", "plot"), bodiesUsed: { DM: "OWN_MANTLE_1" } };
+    const ownBodies = { OWN_MANTLE_1: { name: "our mantle", source: "Halvorsen et al. 2025", fromMemory: false, values: [] } };
+    expect(captionOf({ block, result, results, ownBodies, nameOf: (handle) => handle })).toContain("DM is OWN_MANTLE_1 (Halvorsen et al. 2025)");
   });
 
   it("says how a line was fitted and what its band is", () => {

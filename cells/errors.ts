@@ -47,3 +47,12 @@ export class CellError extends Error {
 export class UnreadablePageError extends Error {
   override readonly name = "UnreadablePageError";
 }
+
+/** What is said of whole tables, and would otherwise be said again by every line and axis that uses them. */
+const ofTables: ReadonlySet<string> = new Set(["renormalised", "as-measured"]);
+
+/** Problems to be added to others, without those of whole tables that are among them already. */
+export function notYetSaid(more: readonly Problem[], problems: readonly Problem[]): Problem[] {
+  const said = new Set(problems.map(({ text }) => text));
+  return more.filter(({ code, text }) => !ofTables.has(code) || !said.has(text));
+}

@@ -9,9 +9,10 @@ import { declare } from "./declared";
 import { sourceGrid, typedGrid } from "./grid";
 import { joinTables } from "./join";
 import { mapColumns } from "./mapColumns";
-import { membersOf } from "./members";
+import { membersOf, type Member } from "./members";
 import { Problems } from "./problems";
 import { readGrid } from "./readGrid";
+import { asMeasured, renormalise, renormalisedText, withMeasured } from "./renormalise";
 import { mergeReplicates } from "./replicates";
 import { screen } from "./screening/screen";
 import { setAside } from "./setAside";
@@ -27,7 +28,7 @@ interface Made {
 
 /**
  * Reads a data block: its source, typed rows, or the tables it is made of, with amendments, set-asides, assumed σ,
- * correlations and substitutions laid over it, and replicates merged. Values are in canonical units, σ are 1σ and NaN where
+ * correlations and substitutions laid over it, renormalised where that is asked for, and replicates merged. Values are in canonical units, σ are 1σ and NaN where
  * unknown. Whatever is wrong is a problem with its place; a block that cannot be read at all has no table.
  *
  * @param source bytes of the block's source; undefined where they are not there, or the block has none
@@ -36,8 +37,8 @@ export function evaluateData(block: DataBlock, context: BlockContext, source: Ui
   const problems = new Problems(block.id);
   try {
     const { table: whole, proposed, amended } = make(block, context, source, problems);
-    const table = block.replicates === undefined || block.join !== undefined ? whole : mergeReplicates(whole, block.replicates, problems);
-    const { flags: screening, totals } = screen(block, table, problems, (handle) => totalsOf(context, handle));
+    const { table, measured } = merged(block, whole, problems);
+    const { flags: screening, totals } = screen(block, measured, problems, (handle) => totalsOf(context, handle));
     const aside = sum(table.setAside);
     return {
       kind: "data",
@@ -70,6 +71,17 @@ export function evaluateData(block: DataBlock, context: BlockContext, source: Ui
   }
 }
 
+/** Replicates made one row a sample, where the block asks for it, and the same of what was measured. */
+function merged(block: DataBlock, whole: Table, problems: Problems): { readonly table: Table; readonly measured: Table } {
+  const { replicates } = block;
+  const measured = asMeasured(whole);
+  if (replicates === undefined || block.join !== undefined) return { table: whole, measured };
+  const table = mergeReplicates(whole, replicates, problems);
+  if (table === whole || measured === whole) return { table, measured: measured === whole ? table : measured };
+  const mergedMeasured = mergeReplicates(measured, replicates, new Problems(block.id));
+  return { table: withMeasured(table, mergedMeasured), measured: mergedMeasured };
+}
+
 /** The range of totals that a table's own block sets. */
 function totalsOf(context: BlockContext, handle: string): DataBlock["totals"] {
   const other = context.block(handle);
@@ -86,7 +98,7 @@ function make(block: DataBlock, context: BlockContext, source: Uint8Array | unde
   const sampleAt = mapping.tied.find((mapped) => mapped.column.role === "sample")?.at;
   const sourceSamples = sampleAt === undefined ? [] : grid.rows.map((row) => row[sampleAt] ?? "");
   setAside(block, table, sourceSamples, problems);
-  return { table: declare(block, table, problems), proposed, amended: count };
+  return { table: renormalise(block, declare(block, table, problems), problems), proposed, amended: count };
 }
 
 function makeOfTables(block: DataBlock, context: BlockContext, problems: Problems): Made {
@@ -102,17 +114,30 @@ function makeOfTables(block: DataBlock, context: BlockContext, problems: Problem
       `${block.id} is made of other tables, so its values are amended where they are read; the amendments here are not applied. Amend them in the tables themselves.`,
       { field: "amendments" },
     );
-  const made =
-    block.stack === undefined ? joined(block, context, problems) : stackTables(block.id, membersOf(block.stack, "stack", context, problems), problems);
-  setAside(block, made, [], problems);
-  const table = declare(block, made, problems);
+  const members = block.stack === undefined ? membersOf(block.join ?? [], "join", context, problems) : membersOf(block.stack, "stack", context, problems);
+  const made = madeOf(block, members, problems);
+  const measured = members.every(({ table }) => asMeasured(table) === table)
+    ? undefined
+    : madeOf(
+        block,
+        members.map(({ handle, table }) => ({ handle, table: asMeasured(table) })),
+        new Problems(block.id),
+      );
+  const table = renormalise(block, measured === undefined ? made : withMeasured(made, measured), problems);
   return { table, proposed: false, amended: amendedCells(table) };
 }
 
+/** Tables put together, with what the block lays over them. */
+function madeOf(block: DataBlock, members: readonly Member[], problems: Problems): Table {
+  const made = block.stack === undefined ? joined(block, members, problems) : stackTables(block.id, members, problems);
+  setAside(block, made, [], problems);
+  const renormalised = renormalisedText(members.map(({ table }) => table));
+  return declare(block, renormalised === undefined ? made : { ...made, renormalised }, problems);
+}
+
 /** Replicates of a join are merged in each of its tables, before the samples are matched. */
-function joined(block: DataBlock, context: BlockContext, problems: Problems): Table {
+function joined(block: DataBlock, members: readonly Member[], problems: Problems): Table {
   const { replicates } = block;
-  const members = membersOf(block.join ?? [], "join", context, problems);
   return joinTables(
     block.id,
     replicates === undefined ? members : members.map((member) => ({ ...member, table: mergeReplicates(member.table, replicates, problems) })),

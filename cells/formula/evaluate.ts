@@ -1,4 +1,4 @@
-import { CellError, type Problem } from "../errors";
+import { CellError, notYetSaid, type Problem } from "../errors";
 import { evaluateExpression, parseLines, type Evaluated, type FormulaLine, type Scope } from "../language";
 import type { BlockContext } from "../page/context";
 import type { FormulaResult, LineCorrelation, LineResult } from "../page/results";
@@ -57,7 +57,7 @@ function scopeOf(block: FormulaBlock, context: BlockContext, problems: Problem[]
 function calculate(block: FormulaBlock, line: FormulaLine, scope: Scope, problems: Problem[]): Evaluated | undefined {
   try {
     const evaluated = evaluateExpression(scope, line.text, { block: block.id, offset: line.expressionSpan[0] });
-    problems.push(...evaluated.problems);
+    problems.push(...notYetSaid(evaluated.problems, problems));
     return evaluated;
   } catch (error) {
     if (!(error instanceof CellError)) throw error;

@@ -2,7 +2,7 @@ import { CellError, type Span } from "../errors";
 import type { Basis } from "../page/schema";
 import { State } from "../quantity/state";
 import { units, type Unit } from "../quantity/unit";
-import { massFactor, parseSpecies, resolveSpecies, speciesOfBody, type Body, type Resolved } from "../species";
+import { massFactor, parseSpecies, resolveSpecies, speciesOfBody, underRenormalisation, type Body, type Resolved } from "../species";
 import type { Table, TextColumn } from "../table/table";
 import type { Compiled, CompiledValue } from "./compiled";
 import type { Compiler } from "./compiler";
@@ -135,6 +135,15 @@ function fromResolution(compiler: Compiler, table: Table, resolution: Resolved):
   if (table.substitution !== undefined) {
     const text = `Values below detection in ${table.handle} count as ${table.substitution.fraction} of their limit: ${table.substitution.reason}`;
     uses.warnings.set(`substitution|${table.handle}`, text);
+  }
+  if (table.renormalised !== undefined) {
+    uses.warnings.set(`renormalised|${table.handle}`, table.renormalised);
+    for (const { column } of used.flatMap((place) => resolution.candidates[place]?.terms ?? []))
+      if (underRenormalisation(column) === "as measured")
+        uses.warnings.set(
+          `as-measured|${table.handle}.${column.name}`,
+          `${column.name} of ${table.handle} stays as measured, per mass of the rock with its volatiles: a ratio of it to a renormalised value mixes the two. Take both from a table that is not renormalised.`,
+        );
   }
   const meaning = columnMeaning(resolution.unit, resolution.species, resolution.basis);
   return {

@@ -129,6 +129,8 @@ export const dataBlockSchema = z
     correlations: z.array(correlationSchema).max(300).optional(),
     /** Range of oxide totals that screening accepts, wt%. */
     totals: z.strictObject({ from: z.number(), to: z.number() }).optional(),
+    /** Oxides and elements by mass are divided by their row's sum without volatiles; the total stays as measured. Never unless asked. */
+    renormalise: z.literal("volatile-free").optional(),
     /** Declared substitution for values below detection: this fraction of the limit. Every result says so. */
     substitute: z.strictObject({ fraction: z.number().min(0).max(1), reason: reasonSchema }).optional(),
   })

@@ -1,4 +1,4 @@
-import { CellError, type Problem } from "../errors";
+import { CellError, notYetSaid, type Problem } from "../errors";
 import { evaluateExpression, type Evaluated } from "../language";
 import type { BlockContext } from "../page/context";
 import type { PlotBlock } from "../page/schema";
@@ -33,7 +33,7 @@ export class Drawing {
     const scope = this.context.scope(data);
     const evaluated = evaluateExpression(scope, text, { block: this.block.id, field });
     this.#known.set(key, evaluated);
-    for (const problem of evaluated.problems) this.note(problem);
+    for (const problem of notYetSaid(evaluated.problems, this.problems)) this.note(problem);
     Object.assign(this.bodiesUsed, evaluated.bodiesUsed);
     return evaluated;
   }

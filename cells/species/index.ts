@@ -21,4 +21,5 @@ export {
 export type { OwnBody, OwnBodyFault, OwnValue } from "./ownBody";
 export type { Candidate, Refused, Resolution, ResolutionWarning, Resolved, Term } from "./resolution";
 export { resolveSpecies } from "./resolve";
+export { isVolatile, underRenormalisation } from "./volatiles";
 export { elementsOfBody, shortNumber, speciesOfBody } from "./speciesOfBody";

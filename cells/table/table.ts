@@ -25,6 +25,8 @@ export interface Table {
   readonly columns: readonly TableColumn[];
   /** Error correlation of two columns, row by row. */
   readonly correlations: readonly ColumnCorrelation[];
+  /** That values were renormalised, for the sentence every result says. */
+  readonly renormalised?: string;
   /** What a declared substitution for values below detection is, for the sentence every result says. */
   readonly substitution?: { readonly fraction: number; readonly reason: string };
 }

@@ -1,11 +1,13 @@
 import { columnOrigins } from "../data/members";
+import { renormalisedOf } from "../data/renormalise";
 import { replicateWeights } from "../data/replicateWeights";
 import { unmergedOf } from "../data/replicates";
 import type { BlockContext } from "../page/context";
 import type { TraceNode } from "../page/results";
 import type { DataBlock } from "../page/schema";
 import { State } from "../quantity/state";
-import { sigmaFromCanonical } from "../quantity/unit";
+import { sigmaFromCanonical, units } from "../quantity/unit";
+import { underRenormalisation } from "../species";
 import type { QuantityColumn, RowOrigin, Table } from "../table/table";
 import { byShare, inUnit, short } from "./node";
 
@@ -22,6 +24,8 @@ export function cellNodes(context: BlockContext, table: Table, column: QuantityC
     if (group.length === 1 && only !== undefined) return cellNodes(context, merging.table, before, only, share);
     return [mergedNode(context, { ...merging, column: before, group }, { table, column, row }, share)];
   }
+  const scaledFrom = beforeRenormalising(table, column, row);
+  if (scaledFrom !== undefined) return [renormalisedNode(context, scaledFrom, { table, column, row }, share)];
   const origins = (table.origins[row] ?? []).filter((origin) => origin.table !== table.handle);
   const members = origins.length === 0 ? [] : membersOf(context, table, column, row);
   const [first] = members;
@@ -32,6 +36,30 @@ export function cellNodes(context: BlockContext, table: Table, column: QuantityC
   const rule = block?.kind === "data" ? block.replicates : undefined;
   if (rule === undefined) return [cellNode(context, table, column, row, share)];
   return [mergedNode(context, { table: first.table, column: first.column, group: first.rows, rule }, { table, column, row }, share)];
+}
+
+/** The value that a renormalised one was made from; undefined where this one is as measured. */
+function beforeRenormalising(table: Table, column: QuantityColumn, row: number): (Place & { readonly factor: number }) | undefined {
+  const renormalised = renormalisedOf(table);
+  const factor = renormalised?.factors[row] ?? Number.NaN;
+  if (renormalised === undefined || Number.isNaN(factor) || underRenormalisation(column) !== "scaled") return undefined;
+  const from = renormalised.table.columns.find((each): each is QuantityColumn => each.kind === "quantity" && each.name === column.name);
+  return from === undefined ? undefined : { table: renormalised.table, column: from, row, factor };
+}
+
+/** The step from what was measured to its share in the volatile-free rock. */
+function renormalisedNode(context: BlockContext, from: Place & { readonly factor: number }, { column, row }: Place, share: number | null): TraceNode {
+  const sum = sigmaFromCanonical(1 / from.factor, units["wt%"]);
+  return {
+    kind: "conversion",
+    label: `${column.name} × ${short(from.factor, 6)}`,
+    ...inUnit(column.value[row] ?? Number.NaN, column.sigma[row] ?? Number.NaN, column.unit),
+    share,
+    notes: [
+      `Renormalised volatile-free: the oxides of this sample sum to ${short(sum, 6)} wt% without volatiles, and 100 over that is the factor. The error of the sum is not counted.`,
+    ],
+    from: cellNodes(context, from.table, from.column, from.row, share),
+  };
 }
 
 /** Analyses of one sample, as they were before they became one. */

@@ -1,4 +1,4 @@
-import { CellError, type Problem } from "../errors";
+import { CellError, notYetSaid, type Problem } from "../errors";
 import { evaluateCondition, evaluateExpression, type Evaluated, type Scope } from "../language";
 import type { BlockContext } from "../page/context";
 import { emptyTrend } from "../page/emptyResult";
@@ -42,7 +42,7 @@ function evaluateLine(block: TrendBlock, context: BlockContext): TrendResult {
   const weighs = block.method === "york";
   const chosen = choose(block, read, weighs, problems);
   if (chosen === undefined) return emptyTrend(block, problems);
-  problems.push(...x.problems, ...y.problems, ...chosen.problems, ...aboutPoints(block, chosen), ...aboutClosure(block, x, y));
+  problems.push(...x.problems, ...notYetSaid(y.problems, x.problems), ...chosen.problems, ...aboutPoints(block, chosen), ...aboutClosure(block, x, y));
   const base: TrendResult = {
     ...emptyTrend(block, []),
     n: chosen.rows.length,

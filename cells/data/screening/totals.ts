@@ -1,5 +1,5 @@
 import { State } from "../../quantity/state";
-import { measuredColumns, oxides, type Measured } from "../../species";
+import { isVolatile, measuredColumns, oxides, type Measured } from "../../species";
 import type { QuantityColumn, Table } from "../../table/table";
 import type { Problems } from "../problems";
 import type { Flags } from "./flags";
@@ -9,7 +9,6 @@ const COMMON = { from: 98.5, to: 101.5 } as const;
 /** Without these a sum of oxides means nothing. */
 const majors = ["SiO2", "Al2O3", "MgO", "CaO"] as const;
 const known: ReadonlySet<string> = new Set(oxides);
-const volatileOxides: ReadonlySet<string> = new Set(["H2O", "CO2", "SO2", "SO3"]);
 
 export interface TotalsRange {
   readonly from: number;
@@ -39,7 +38,20 @@ interface Counted {
  */
 export function oxideTotals(table: Table, problems: Problems): Totals | undefined {
   const counted = countedColumns(table, problems);
+  return counted === undefined ? undefined : { total: sumsOf(table, counted), columns: counted.columns };
+}
+
+/**
+ * Sums of the same oxides and elements without the volatiles (loss on ignition, water, carbon and sulphur), in wt%; NaN and
+ * undefined as {@link oxideTotals} has them.
+ */
+export function volatileFreeSums(table: Table, problems: Problems): Float64Array | undefined {
+  const counted = countedColumns(table, problems);
   if (counted === undefined) return undefined;
+  return sumsOf(table, { ...counted, columns: counted.columns.filter(({ name, species }) => name !== "LOI" && species !== undefined && !isVolatile(species)) });
+}
+
+function sumsOf(table: Table, counted: Counted): Float64Array {
   const total = new Float64Array(table.rows).fill(Number.NaN);
   for (let row = 0; row < table.rows; row++) {
     const given = (column: QuantityColumn): boolean => column.state[row] === State.present;
@@ -51,7 +63,7 @@ export function oxideTotals(table: Table, problems: Problems): Totals | undefine
     for (const column of iron) sum += 100 * (column.value[row] ?? Number.NaN);
     total[row] = sum;
   }
-  return { total, columns: counted.columns };
+  return total;
 }
 
 /** Flags totals outside a range, for rows in use. */
@@ -96,7 +108,7 @@ function oxidesOf(measured: readonly Measured[], hasIgnition: boolean): readonly
     for (const { column, species } of measured) {
       if (species === undefined || taken.has(species.element) || known.has(species.name) !== oxide) continue;
       // Loss on ignition holds the volatiles already.
-      if (hasIgnition && (volatileOxides.has(species.name) || ["H", "C", "S"].includes(species.element))) continue;
+      if (hasIgnition && isVolatile(species.name)) continue;
       taken.add(species.element);
       found.push(column);
     }

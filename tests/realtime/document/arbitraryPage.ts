@@ -56,6 +56,7 @@ const data = fc
         setAside: list(setAside),
         correlations: list(correlation),
         totals: fc.record({ from: number, to: number }),
+        renormalise: fc.constant("volatile-free"),
       },
     ),
   )

@@ -24,7 +24,8 @@ function sideNode(tracing: Tracing, block: BudgetBlock, result: BudgetResult, na
   const place = placeOf(result, name);
   const report = result.report[place];
   if (report === undefined || report[side] === null) return null;
-  const form = formsOf(result)?.side?.(place, side);
+  // What was solved for misses by nothing; what rounding leaves has no shares worth telling.
+  const form = side === "miss" && report.miss === 0 ? undefined : formsOf(result)?.side?.(place, side);
   const { from, notes } = form === undefined || typeof form === "string" ? { from: [], notes: [] } : formBranches(tracing, form);
   const isMiss = side === "miss";
   const sigma = side === "start" ? report.startSigma : side === "target" ? report.targetSigma : null;
@@ -38,7 +39,8 @@ function sideNode(tracing: Tracing, block: BudgetBlock, result: BudgetResult, na
     ...(isMiss ? {} : { basis: report.basis }),
     share: from.some(({ share }) => share !== null) ? 1 : null,
     notes: [
-      ...(isMiss
+      ...(isMiss && report.miss === 0 ? ["The end is at the target: this is what the budget was solved for."] : []),
+      ...(isMiss && report.miss !== 0
         ? [
             `The end less the target, ${short((report.end ?? Number.NaN) - (report.target ?? Number.NaN), 4)}, over the σ of this difference, in which what both share has cancelled. The shares are of that σ.`,
           ]

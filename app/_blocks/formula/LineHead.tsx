@@ -61,14 +61,24 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
                 {name === "" ? "no class" : name}
               </dt>
               <dd className="font-mono">
-                <Asked label={`${line.name} of ${name === "" ? "no class" : name}`} onAsk={() => view.trace({ block, name: line.name, index })}>
-                  {withUnit(formatValue(result.value[index] ?? NaN, result.sigma[index] ?? NaN, { form }), result.unit)}
-                </Asked>
+                <ClassValue
+                  label={`${line.name} of ${name === "" ? "no class" : name}`}
+                  text={withUnit(formatValue(result.value[index] ?? NaN, result.sigma[index] ?? NaN, { form }), result.unit)}
+                  onAsk={() => view.trace({ block, name: line.name, index })}
+                />
               </dd>
             </div>
           ))}
         </dl>
       )}
     </div>
+  );
+}
+
+function ClassValue({ label, text, onAsk }: { readonly label: string; readonly text: string; onAsk(): void }) {
+  return (
+    <Asked label={`${label}, ${text}`} onAsk={onAsk}>
+      {text}
+    </Asked>
   );
 }

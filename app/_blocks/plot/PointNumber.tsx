@@ -1,4 +1,5 @@
 import type { PageView } from "@/app/_page/contract";
+import { formatValue } from "@/app/_ui/concise";
 import { Value } from "@/app/_ui/Value";
 import { Asked } from "@/app/_blocks/trace/Asked";
 
@@ -28,7 +29,10 @@ export function PointNumber({ value, sigma, of, name, asks, view, plot }: PointN
   if (value === null || !Number.isFinite(value)) return shown;
   const { title, index } = asks;
   return (
-    <Asked label={`${of} of ${title}`} onAsk={() => view.trace({ block: plot, name, ...(index === undefined ? {} : { index }) })}>
+    <Asked
+      label={`${of} of ${title}, ${formatValue(value, sigma, { form: view.settings.uncertainty })}`}
+      onAsk={() => view.trace({ block: plot, name, ...(index === undefined ? {} : { index }) })}
+    >
       {shown}
     </Asked>
   );

@@ -119,8 +119,8 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
               {(result.scatter ?? 0) > 0 && (
                 <>
                   {" "}
-                  <Button className="text-margin" aria-label="Trace the scatter that was added" onClick={() => ask("scatter")}>
-                    Trace it
+                  <Button className="text-margin" onClick={() => ask("scatter")}>
+                    Trace the scatter
                   </Button>
                 </>
               )}

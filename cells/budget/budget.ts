@@ -65,8 +65,8 @@ export function readBudget(
       return body;
     },
     needed: [...new Set(measures.flatMap((made) => made.species))],
-    note: (text) => {
-      if (!problems.some((known) => known.text === text)) problems.push({ code: "budget-note", severity: "note", block: block.id, text });
+    note: (text, severity = "note") => {
+      if (!problems.some((known) => known.text === text)) problems.push({ code: "budget-note", severity, block: block.id, text });
     },
   };
   const plan = planOf(block, access);

@@ -15,7 +15,7 @@ export interface Access {
   body(name: string): Body | undefined;
   /** Elements that the budget's expressions need: they decide which samples of a class are complete. */
   readonly needed: readonly string[];
-  note(text: string): void;
+  note(text: string, severity?: "note" | "warning"): void;
 }
 
 /**

@@ -22,7 +22,7 @@ export function sampleOf(data: string, which: { readonly sample: string } | { re
 function tableOf(data: string, access: Access): Table {
   const { table } = access.context.scope(data);
   if (table === null) throw new CellError("no-table", `There is no table ${data}.`);
-  if (table.renormalised !== undefined) access.note(table.renormalised);
+  if (table.renormalised !== undefined) access.note(table.renormalised, "warning");
   return table;
 }
 

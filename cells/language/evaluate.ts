@@ -36,8 +36,7 @@ function finish(compiler: Compiler, value: CompiledValue, at: ExpressionPlace): 
   const measured = measure(compiler, value, graph.mul(canonical, graph.constant(unit.per)));
   const problems = [...uses.warnings].map(([key, text]): Problem => ({
     code: key.split("|")[0] ?? "warning",
-    // What somebody asked for is to be known, and no fault.
-    severity: key.startsWith("renormalised|") ? "note" : "warning",
+    severity: "warning",
     block: at.block,
     ...(at.field === undefined ? {} : { field: at.field }),
     text,

@@ -71,6 +71,11 @@ export function CellActions({ block, model, place, view, onAmend, onSetAside, on
       <span className="text-second">
         {sample}
         {isTotal ? "" : `, ${column.name}`}
+        {model.table?.renormalised === undefined || column?.quantity === undefined ? null : (
+          <>
+            , in the source <span className="font-mono">{target.raw === "" ? "empty" : target.raw}</span>
+          </>
+        )}
       </span>
       {column?.quantity !== undefined ? <Button onClick={() => view.trace({ block: block.id, name: column.name, index: place.row })}>Trace</Button> : null}
       {uses.length === 0 ? null : (

@@ -138,6 +138,11 @@ export function DataView({ blockKey, block, view }: BlockViewProps<DataBlock>) {
                 {block.source?.sha256 === undefined ? null : <Button onClick={() => void remap()}>How it is read</Button>}
                 {block.stack === undefined ? null : <Button onClick={() => setAsking({ what: "stack" })}>Change what is stacked</Button>}
                 {block.typed === undefined ? null : <Button onClick={() => setAsking({ what: "column" })}>Add a column</Button>}
+                {block.renormalise === undefined && result?.totals === undefined ? null : (
+                  <Button onClick={() => run(() => made.renormalise(block.renormalise === undefined))}>
+                    {block.renormalise === undefined ? "Renormalise volatile-free" : "Take values as measured"}
+                  </Button>
+                )}
               </>
             )}
           </GridLegend>

@@ -51,6 +51,7 @@ export function GridLegend({ block, result, short, children }: GridLegendProps) 
     ...assumedTogether(block.assumed ?? []).map(
       ({ columns: names, first }) => `° ${names.join(", ")}: σ assumed ${assumedWords(first)}. ${signedReason(first, people)}`,
     ),
+    result?.table?.renormalised !== undefined && "renormalised volatile-free; the total is as measured",
     block.substitute !== undefined && `below detection counted as ${block.substitute.fraction} of the limit: ${signedReason(block.substitute, people)}`,
     result?.proposed === true && "read as the program proposes; nobody has looked at the mapping yet",
   ].filter((sign): sign is string => typeof sign === "string" && sign !== "");

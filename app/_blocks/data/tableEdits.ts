@@ -21,6 +21,7 @@ export interface TableEdits {
   setSource(uploaded: Uploaded, columns: readonly Column[]): void;
   setColumns(columns: readonly Column[]): void;
   setStack(handles: readonly string[]): void;
+  renormalise(isAsked: boolean): void;
   startTyped(columns: readonly Column[]): void;
   addColumn(column: Column): void;
   removeColumn(name: string): void;
@@ -65,6 +66,7 @@ export function tableEdits(edits: PageEdits, key: string, block: DataBlock): Tab
     },
     setColumns: (mapped) => edits.setField(key, "columns", mapped),
     setStack: (handles) => edits.setField(key, "stack", [...handles]),
+    renormalise: (isAsked) => edits.setField(key, "renormalise", isAsked ? "volatile-free" : undefined),
     startTyped: (mapped) => edits.setField(key, "columns", mapped),
     addColumn: (column) => void edits.putEntry(key, "columns", column),
     removeColumn(name) {

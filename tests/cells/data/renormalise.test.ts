@@ -164,7 +164,7 @@ describe("renormalising volatile-free", () => {
     const said = "Values of ch are renormalised volatile-free, 1 sample without a total left as measured; their σ do not count the error of the sum.";
     for (const id of ["r", "t", "p", "b"]) {
       const texts = (page.results.blocks.get(id)?.problems ?? []).filter(({ text }) => text === said);
-      expect(texts.map(({ severity }) => severity)).toEqual(["note"]);
+      expect(texts.map(({ severity }) => severity)).toEqual(["warning"]);
     }
     expect(
       formulaOf(page)

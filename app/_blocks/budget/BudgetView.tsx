@@ -75,7 +75,7 @@ export function BudgetView({ blockKey, block, view }: BlockViewProps<BudgetBlock
         </p>
       )}
       {solved !== undefined && result?.simulated?.solved != null && (
-        <p className="text-margin text-second">{quantilesInWords(result.simulated.solved, solved.unit)}</p>
+        <p className="pb-1.5 text-margin text-second">{quantilesInWords(result.simulated.solved, solved.unit)}</p>
       )}
       {otherRoots.length > 0 && (
         <p className="text-margin text-second">

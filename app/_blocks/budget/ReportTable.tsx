@@ -3,6 +3,7 @@ import { classNames } from "@/app/_ui/classNames";
 import { formatValue, type UncertaintyForm } from "@/app/_ui/concise";
 import { Value } from "@/app/_ui/Value";
 import { Asked } from "@/app/_blocks/trace/Asked";
+import { quantilesInWords } from "@/app/_blocks/shared/simulatedWords";
 import { basisInWords, compactExpression } from "@/app/_blocks/shared/words";
 import type { BudgetBlock, BudgetReport, BudgetResult } from "@/cells";
 import { isSolvedFor, sharedBasis, targetName } from "./budgetWords";
@@ -99,9 +100,11 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
         </tr>
       </thead>
       <tbody>
-        {result.report.map((r) => {
+        {result.report.map((r, i) => {
+          const drawn = result.simulated?.report[i];
+          const said = [drawn == null ? "" : quantilesInWords(drawn, ""), r.note ?? ""].filter((text) => text !== "");
           // What is said of a ratio stands under it, over the whole width, and the line under both.
-          const cell = r.note === undefined ? classNames(plain, "border-b border-hairline") : plain;
+          const cell = said.length === 0 ? classNames(plain, "border-b border-hairline") : plain;
           return (
             <Fragment key={r.expression}>
               <tr>
@@ -148,10 +151,12 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
                   </>
                 )}
               </tr>
-              {r.note === undefined ? null : (
+              {said.length === 0 ? null : (
                 <tr>
                   <td colSpan={columns} className="border-b border-hairline pb-1.5 text-margin text-second">
-                    {r.note}
+                    {said.map((text) => (
+                      <p key={text}>{text}</p>
+                    ))}
                   </td>
                 </tr>
               )}

@@ -1,9 +1,11 @@
 "use client";
 
-import { useEffect, useState } from "react";
+import { useEffect, useState, type ReactNode } from "react";
 import type { PageView } from "@/app/_page/contract";
 import { Button } from "@/app/_ui/Button";
+import { ClassMarker } from "@/app/_ui/ClassMarker";
 import { Dialog } from "@/app/_ui/Dialog";
+import { tableOf } from "@/app/_blocks/shared/tableOf";
 import type { Nearest, NearestOne } from "@/cells";
 import { missingInWords, nearestInWords } from "./nearestWords";
 
@@ -39,10 +41,11 @@ export function NearestDialog({ block, index, sample, view, onClose }: NearestDi
     <Dialog open onClose={onClose} size="wide" title={`Nearest to ${sample}`} says={nearestInWords(answer)}>
       {answer === "asked" || answer === null ? null : (
         <div className="grid gap-8 min-[720px]:grid-cols-2">
-          <List title="Bodies" all={answer.bodies} />
+          <List title="Bodies" all={answer.bodies} said={(one) => one.of} />
           <List
             title="Samples"
             all={answer.samples}
+            said={(one) => <OfTable one={one} view={view} />}
             onShow={(one) => {
               onClose();
               if (one.row !== undefined) view.show?.({ block: one.of, row: one.row });
@@ -54,7 +57,32 @@ export function NearestDialog({ block, index, sample, view, onClose }: NearestDi
   );
 }
 
-function List({ title, all, onShow }: { readonly title: string; readonly all: readonly NearestOne[]; readonly onShow?: (one: NearestOne) => void }) {
+/** The class of a sample, with its marker, and the table that it is of. */
+function OfTable({ one: { of, row }, view }: { readonly one: NearestOne; readonly view: PageView }) {
+  const table = tableOf(view.results, of);
+  const name = row === undefined ? "" : (table?.classes[table.rowIds.indexOf(row)] ?? "");
+  return (
+    <>
+      {name === "" ? null : (
+        <span className="mr-2">
+          <ClassMarker index={view.classIndex(name)} className="mr-1.5" />
+          {name}
+        </span>
+      )}
+      <span className="font-mono">{of}</span>
+    </>
+  );
+}
+
+interface ListProps {
+  readonly title: string;
+  readonly all: readonly NearestOne[];
+  /** What stands beside a name. */
+  readonly said: (one: NearestOne) => ReactNode;
+  readonly onShow?: (one: NearestOne) => void;
+}
+
+function List({ title, all, said, onShow }: ListProps) {
   return (
     <section>
       <h3 className="border-b border-hairline pb-1 font-medium">{title}</h3>
@@ -63,11 +91,15 @@ function List({ title, all, onShow }: { readonly title: string; readonly all: re
         {all.map((one) => (
           <li key={`${one.of} ${one.row ?? ""} ${one.name}`} className="grid grid-cols-[1fr_auto] gap-x-4 border-b border-hairline py-1">
             <span className="min-w-0">
-              {onShow === undefined ? one.name : <Button onClick={() => onShow(one)}>{one.name === "" ? `row ${one.row ?? ""}` : one.name}</Button>}{" "}
-              <span className="text-second">{one.of}</span>
+              {onShow === undefined ? (
+                <span className="font-mono">{one.name}</span>
+              ) : (
+                <Button onClick={() => onShow(one)}>{one.name === "" ? `row ${one.row ?? ""}` : one.name}</Button>
+              )}
+              <span className="ml-2 text-second">{said(one)}</span>
             </span>
             <span className="font-mono">{one.distance.toFixed(3)}</span>
-            <span className="col-span-2 text-second">{missingInWords(one)}</span>
+            {one.missing.length === 0 ? null : <span className="col-span-2 text-second">{missingInWords(one)}</span>}
           </li>
         ))}
       </ol>

@@ -9,7 +9,7 @@ export function nearestInWords(answer: Nearest | null | "asked"): string {
   return `Log-ratio distance (Aitchison 1986) over ${listed(answer.components)}, as far as the other has them; the order is by distance for each element. It compares ratios alone, without errors.${left}`;
 }
 
-/** Which elements a comparison rests on, where some are missing. */
+/** Which elements a comparison rests on, where some are missing; "" where it has all. */
 export function missingInWords({ used, missing }: NearestOne): string {
-  return missing.length === 0 ? `all ${used.length} elements` : `${used.length} elements, without ${listed(missing)}`;
+  return missing.length === 0 ? "" : `${used.length} elements, without ${listed(missing)}`;
 }

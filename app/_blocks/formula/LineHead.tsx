@@ -48,7 +48,7 @@ export function LineHead({ block, line, result, table, picked, view, reachesMarg
         </span>
         <span className="ml-auto text-margin text-second max-[719px]:ml-0 max-[719px]:basis-full">{result === undefined ? "" : countsText(result)}</span>
       </div>
-      {result !== undefined && lineSimulated(result) !== "" && <p className="text-margin text-second">{lineSimulated(result)}</p>}
+      {result !== undefined && lineSimulated(result) !== "" && <p className="pb-1.5 text-margin text-second">{lineSimulated(result)}</p>}
       {result?.ok && drawn?.ok && (drawn.perSample || drawn.byClass !== undefined) && (
         <LineStrip block={block} line={drawn} table={table} picked={picked} view={view} reachesMargin={reachesMargin} />
       )}

@@ -34,11 +34,12 @@ export function natureText(line: LineResult): string {
   return parts.join(", ");
 }
 
-/** How many samples stand behind the line, and what became of the others. */
+/** How many samples a line has a value for, and what became of the others; of a line of classes how many it has. */
 export function countsText(line: LineResult): string {
   if (!line.ok) return "";
-  if (line.byClass !== undefined) return `${counted(line.byClass.length, "class", "classes")} of ${samplesInWords(line.n, line.states)}`;
-  if (!line.perSample && line.n === 0) return "no samples in it";
+  // A line that is not one of samples counts its values: how many samples are behind them it does not say.
+  if (line.byClass !== undefined) return counted(line.byClass.length, "class", "classes");
+  if (!line.perSample) return line.n === 0 ? "no samples in it" : "one value";
   return samplesInWords(line.n, line.states);
 }
 

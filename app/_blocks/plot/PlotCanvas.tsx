@@ -5,6 +5,7 @@ import "./plotlyStyles";
 import plotly from "plotly.js-dist-min";
 import { useMemo, useRef, useState } from "react";
 import createPlotlyComponent from "react-plotly.js/factory";
+import { ON_DATA, type Note } from "./annotations";
 import { CloudCanvas } from "./cloud/CloudCanvas";
 import type { CloudView } from "./cloud/cloud";
 import { insideOutline, nearestInCloud, type Found, type Outline } from "./cloud/findInCloud";
@@ -14,6 +15,9 @@ import { plotFrame, type ViewRange } from "./frame";
 import type { PointRef } from "./traces";
 
 const Plotly = createPlotlyComponent(plotly);
+
+/** Pixels that the pointer moves at least in a drag; less is a click. */
+const DRAGGED = 4;
 
 /** What is under the pointer, and where on the drawing. */
 export interface Hovered {
@@ -117,9 +121,11 @@ export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps)
       onRelayouting={(update: Readonly<Record<string, unknown>>) => {
         const x = rangeOf(update, "xaxis");
         const y = rangeOf(update, "yaxis");
+        showWordsOnData(graph.current, figure, false);
         if (figure.cloud !== null && x !== null && y !== null) setMoved({ of: figure.cloud, view: movedTo(figure.cloud, { x, y }) });
       }}
       onRelayout={(update: Readonly<Record<string, unknown>>) => {
+        showWordsOnData(graph.current, figure, true);
         const x = rangeOf(update, "xaxis");
         const y = rangeOf(update, "yaxis");
         if (x !== null && y !== null) onView({ x, y });
@@ -127,7 +133,22 @@ export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps)
       }}
     />
   );
-  if (figure.cloud === null) return plot;
+  // What the pointer was on when a drag began says nothing of what is being dragged over.
+  const onDragStart = ({ clientX, clientY }: { readonly clientX: number; readonly clientY: number }): void => {
+    const onMove = (move: PointerEvent): void => {
+      if (Math.hypot(move.clientX - clientX, move.clientY - clientY) < DRAGGED) return;
+      isOverTrace.current = false;
+      onHover(null);
+      onEnd();
+    };
+    const onEnd = (): void => {
+      window.removeEventListener("pointermove", onMove);
+      window.removeEventListener("pointerup", onEnd);
+    };
+    window.addEventListener("pointermove", onMove);
+    window.addEventListener("pointerup", onEnd);
+  };
+  if (figure.cloud === null) return <div onPointerDownCapture={onDragStart}>{plot}</div>;
   const { clouds } = figure.cloud;
   const foundAt = (event: { readonly clientX: number; readonly clientY: number; readonly currentTarget: Element }): Found | null => {
     const box = event.currentTarget.getBoundingClientRect();
@@ -141,12 +162,13 @@ export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps)
       }}
       onPointerLeave={() => onHover(null)}
       onPointerDownCapture={(event) => {
+        onDragStart(event);
         const found = isOverTrace.current ? null : foundAt(event);
         if (found === null) return;
         const { clientX, clientY } = event;
         // Plotly covers the page while a button is down, so that its end comes to the window alone.
         const onUp = (up: PointerEvent): void => {
-          if (Math.hypot(up.clientX - clientX, up.clientY - clientY) < 4) onPick([found.ref], up.shiftKey);
+          if (Math.hypot(up.clientX - clientX, up.clientY - clientY) < DRAGGED) onPick([found.ref], up.shiftKey);
         };
         window.addEventListener("pointerup", onUp, { once: true });
       }}
@@ -155,6 +177,12 @@ export function PlotCanvas({ figure, onHover, onPick, onView }: PlotCanvasProps)
       <div className="relative">{plot}</div>
     </div>
   );
+}
+
+/** Hides what is written beside data while the data moves away from under it. Axes keep their words. */
+function showWordsOnData(graph: HTMLElement | null, { layout }: Figure, isShown: boolean): void {
+  for (const note of graph?.querySelectorAll<SVGElement>(".infolayer .annotation") ?? [])
+    if ((layout.annotations?.[Number(note.dataset["index"])] as Note | undefined)?.name === ON_DATA) note.style.visibility = isShown ? "" : "hidden";
 }
 
 /** The same clouds while the axes are being dragged. */

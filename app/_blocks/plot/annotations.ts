@@ -11,7 +11,11 @@ import { overlap, placeLabels, roughWidth, type Box, type LabelRequest, type Obs
 import { ternaryWords } from "./ternaryTraces";
 import { normalAt, washOf, type Drawing } from "./traces";
 
-type Note = Partial<Annotations>;
+/** One note as Plotly takes it; its types do not know that a note may have a name. */
+export type Note = Partial<Annotations> & { readonly name?: string };
+
+/** Name of what is written beside data, and not beside an axis: it holds only for the view that it was placed in. */
+export const ON_DATA = "on data";
 
 const sans = '"IBM Plex Sans", "Helvetica Neue", Arial, sans-serif';
 
@@ -245,6 +249,7 @@ export function buildAnnotations(
     placed.map(({ box }) => box),
   );
   const taken: Box[] = placed.map(({ box }) => box);
+  const fixed = notes.length;
   for (const { layer, box } of placed) if (overlap(box, inside) > 0) notes.push(textAt(box.left, box.top, layer.text, 12, palette.ink, 400, drawing));
   labels.forEach((label, i) => {
     const place = places[i];
@@ -259,7 +264,7 @@ export function buildAnnotations(
       if (note !== null) notes.push(note);
     } else if (layer.what === "path") notes.push(...tickFigures(layer, drawing, inside, taken));
   }
-  return notes;
+  return notes.map((note, i) => (i < fixed ? note : { ...note, name: ON_DATA }));
 }
 
 /** Where a person's own words stand: they begin at their point, at half their height. */

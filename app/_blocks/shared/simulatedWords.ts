@@ -1,4 +1,4 @@
-import { formatNumber, withUnit } from "@/app/_ui/concise";
+import { decimalsOf, formatNumber, withUnit } from "@/app/_ui/concise";
 import { rangeInWords, type LineResult, type Quantiles, type SimulationWish } from "@/cells";
 import { median } from "./spread";
 
@@ -9,9 +9,17 @@ export function wishInWords({ draws, seed }: SimulationWish): string {
   return `${thousands(draws)} draws, seed ${seed}`;
 }
 
-/** "simulated: 68 % within 1.4 to 3.4, 95 % within 1.1 to 5.2 wt%, middle 2.1" */
+/** "simulated: 68 % within 1.4 to 3.4, 95 % within 1.1 to 5.2 wt%, median 2.1" */
 export function quantilesInWords({ median: middle, from68, to68, from95, to95 }: Quantiles, unit: string): string {
-  return `simulated: 68 % within ${rangeInWords(from68, to68)}, 95 % within ${withUnit(rangeInWords(from95, to95), unit)}, middle ${formatNumber(middle, 3)}`;
+  const range = rangeInWords(from68, to68);
+  return `simulated: 68 % within ${range}, 95 % within ${withUnit(rangeInWords(from95, to95), unit)}, median ${asFineAs(range, middle)}`;
+}
+
+/** A number with as many decimals as the ends of a range have. */
+function asFineAs(range: string, value: number): string {
+  const ends = range.split(" to ");
+  if (!ends.every((end) => /^[-−]?\d+(?:\.\d+)?$/u.test(end))) return formatNumber(value, 3);
+  return value.toFixed(Math.max(...ends.map(decimalsOf))).replace("-", "−");
 }
 
 /** What the simulation says of a line, beside what first order says; "" where it says nothing. */
@@ -29,5 +37,5 @@ export function lineSimulated(line: LineResult): string {
   if (typical === null) return "";
   const n = widths.reduce((count, width) => (Number.isFinite(width) ? count + 1 : count), 0);
   const part = simulated.asked ? "" : `, for ${n} where first order cannot be trusted`;
-  return `simulated: half of the range of 68 % is ${formatNumber(typical, 2)} in the middle${part}`;
+  return `simulated: median of half the 68 % range ${formatNumber(typical, 2)}${part}`;
 }

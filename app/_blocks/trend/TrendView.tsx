@@ -57,7 +57,7 @@ function Distances({ all, from, onAsk }: { readonly all: readonly BodyDistance[]
       >
         {b.distance.toFixed(1)}σ
       </Asked>{" "}
-      away, p {formatP(b.p)}
+      away, <span className="whitespace-nowrap">p {formatP(b.p)}</span>
     </Fragment>
   ));
 }
@@ -92,7 +92,7 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
         </p>
       )}
       {errors.map((p, index) => (
-        <p key={index} className={p.severity === "error" ? "py-1 text-vermilion" : "py-1 text-margin text-second"}>
+        <p key={index} className={p.severity === "error" ? "py-1 text-vermilion" : "pt-1 pb-2 text-margin text-second"}>
           {p.text}
         </p>
       ))}

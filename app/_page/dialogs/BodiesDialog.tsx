@@ -80,7 +80,7 @@ export function BodiesDialog({ onClose }: { readonly onClose: () => void }) {
         </>
       }
     >
-      <ul className="flex flex-col gap-2">
+      <ul className="flex flex-col gap-4">
         {rows.map((row, i) => (
           <li key={i} className="grid grid-cols-[88px_auto_minmax(0,1fr)_auto] items-center gap-x-3 phone:grid-cols-[64px_auto_minmax(0,1fr)]">
             <input
@@ -98,11 +98,16 @@ export function BodiesDialog({ onClose }: { readonly onClose: () => void }) {
               onChoose={(id) => set(i, { id })}
               aria-describedby={`body-${i}`}
             />
-            <Button look="quiet" aria-label={`Take off ${row.alias}`} onClick={() => setRows((old) => old.filter((_, j) => j !== i))}>
+            <Button
+              look="quiet"
+              className="phone:order-last phone:col-span-full phone:text-margin"
+              aria-label={`Take off ${row.alias}`}
+              onClick={() => setRows((old) => old.filter((_, j) => j !== i))}
+            >
               Take off
             </Button>
-            <p id={`body-${i}`} className="col-span-full text-margin wrap-anywhere text-second">
-              <About body={find(row.id)} newer={newerThan(row.id, offered, newest)} />
+            <p id={`body-${i}`} className="col-span-full pt-1 text-margin wrap-anywhere text-second">
+              <About body={find(row.id)} newer={newerThan(row.id, offered, newest)} onNewer={(id) => set(i, { id })} />
             </p>
           </li>
         ))}
@@ -149,12 +154,14 @@ function newerThan(id: string, offered: readonly Offered[], newest: ReadonlyMap<
 }
 
 /** Where the chosen compilation is from, and which of its values nobody looked up. */
-function About({ body, newer }: { readonly body: Body | undefined; readonly newer: string | undefined }) {
+function About({ body, newer, onNewer }: { readonly body: Body | undefined; readonly newer: string | undefined; onNewer(id: string): void }) {
   if (body === undefined) return <span className="text-vermilion">This page has no such body. Choose another.</span>;
   const memory = remembered(body);
   const [source] = body.values;
   return (
     <>
+      {/* The list cuts a long name short. */}
+      {isOwnBodyId(body.id) ? `${body.what}. ` : ""}
       {source?.source}
       {source === undefined ? "" : ". "}
       {memory.length === 0 ? null : (
@@ -163,7 +170,14 @@ function About({ body, newer }: { readonly body: Body | undefined; readonly newe
           memory, not read in a copy of the source.{" "}
         </span>
       )}
-      {newer === undefined ? null : <>Your group has a newer version, {newer}.</>}
+      {newer === undefined ? null : (
+        <>
+          Your group has a newer version, {newer}.{" "}
+          <Button className="text-margin" onClick={() => onNewer(newer)}>
+            Choose it
+          </Button>
+        </>
+      )}
     </>
   );
 }

@@ -32,6 +32,12 @@ describe("head of a formula line", () => {
     expect(countsText(line({}))).toBe("29 samples, 1 set aside");
   });
 
+  it("never takes one value of many samples, or one value a class, for samples", () => {
+    expect(countsText(line({ perSample: false, n: 1, states: {} }))).toBe("one value");
+    expect(countsText(line({ perSample: false, n: 0, states: {} }))).toBe("no samples in it");
+    expect(countsText(line({ perSample: false, n: 2, states: {}, byClass: ["CM", "CV"] }))).toBe("2 classes");
+  });
+
   it("never takes an unknown σ for none", () => {
     expect(natureText(line({ sigma: Float64Array.of(NaN, NaN, NaN), sigmaCommon: Float64Array.of(NaN, NaN, NaN) }))).toBe("by mass, σ unknown");
   });

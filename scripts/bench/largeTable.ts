@@ -139,7 +139,7 @@ try {
     await page.keyboard.press("End");
     await page.evaluate(() => ((window as unknown as { held: number[] }).held.length = 0));
     const typed = performance.now();
-    await page.keyboard.type(n % 2 === 0 ? " * 2" : " / 2", { delay: 0 });
+    await page.keyboard.insertText(n % 2 === 0 ? " * 2" : " / 2");
     first = await plotChanges(page, first);
     edits.push(performance.now() - typed);
     await page.waitForTimeout(300);

@@ -58,7 +58,7 @@ export type {
 
 // Simulated propagation
 export { Simulation, USUAL_WISH, range as rangeInWords } from "./simulate";
-export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulationWish } from "./simulate";
+export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulatedTrend, SimulationWish } from "./simulate";
 
 // Tables
 export { ownSigmaKinds, readOwnTable } from "./table/readOwnTable";

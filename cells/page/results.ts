@@ -1,5 +1,5 @@
 import type { Problem, Span } from "../errors";
-import type { SimulatedBudget, SimulatedLine, SimulatedNumber } from "../simulate/simulated";
+import type { SimulatedBudget, SimulatedLine, SimulatedNumber, SimulatedTrend } from "../simulate/simulated";
 import type { Simulation } from "../simulate/simulation";
 import type { StateName } from "../quantity/state";
 import type { Table } from "../table/table";
@@ -172,6 +172,8 @@ export interface TrendResult extends AnyResult {
   readonly crossing?: Crossing;
   /** Distance of each body of the page from the line. */
   readonly fromBodies: readonly BodyDistance[];
+  /** Quantiles of draws, where the block simulates. */
+  readonly simulated?: SimulatedTrend;
 }
 
 export interface AxisInfo {

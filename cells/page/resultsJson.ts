@@ -143,6 +143,7 @@ function trendJson(result: TrendResult): object {
     outliers: result.points.filter((point) => point.outlier).map(({ row, sample }) => ({ row, sample })),
     fromBodies: result.fromBodies,
     ...(result.crossing === undefined ? {} : { crossing: crossingJson(result.crossing) }),
+    ...(result.simulated === undefined ? {} : { simulated: result.simulated }),
     ...tail(result),
   };
 }

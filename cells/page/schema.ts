@@ -173,6 +173,7 @@ export const trendBlockSchema = z.strictObject({
   scatter: z.enum(["likelihood", "root mswd", "none"]).optional(),
   leaveOut: z.array(leaveOutSchema).max(20_000).optional(),
   crossWith: handleSchema.optional(),
+  simulate: simulateSchema.optional(),
 });
 
 /** A composition named in a budget: exactly one way of saying what it is. */

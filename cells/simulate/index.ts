@@ -6,6 +6,6 @@ export { simulatedNumber } from "./ofNumber";
 export { quantilesOf } from "./quantiles";
 export { capital, count, differs, range, wishWords } from "./sentences";
 export { MOST_UNASKED, USUAL_WISH } from "./simulated";
-export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulationWish } from "./simulated";
+export type { Quantiles, SimulatedBudget, SimulatedLine, SimulatedNumber, SimulatedTrend, SimulationWish } from "./simulated";
 export { Simulation, simulationOf, withSimulation } from "./simulation";
 export type { StartSimulation } from "./simulation";

@@ -1,4 +1,5 @@
 import type { BlockResult, TraceNode, TraceRequest } from "../page/results";
+import type { Quantiles, SimulatedTrend } from "./simulated";
 
 /** What a simulation says of one number of a block; undefined where that number was not simulated. */
 export function simulatedNumber(result: BlockResult | undefined, { name, index }: TraceRequest): TraceNode["simulated"] {
@@ -17,5 +18,15 @@ export function simulatedNumber(result: BlockResult | undefined, { name, index }
     const found = report[result.report.findIndex(({ expression }) => expression === name)];
     return found == null ? undefined : { draws, seed, ...found };
   }
+  return result?.kind === "trend" ? ofTrend(result.simulated, name) : undefined;
+}
+
+function ofTrend(simulated: SimulatedTrend | undefined, name: string): TraceNode["simulated"] {
+  if (simulated === undefined) return undefined;
+  const { draws, seed, withoutLine, crossing } = simulated;
+  const of = (found: Quantiles | null | undefined, withoutValue: number): TraceNode["simulated"] =>
+    found == null ? undefined : { draws, seed, ...found, withoutValue };
+  if (name === "slope" || name === "intercept") return of(simulated[name], withoutLine);
+  if (name === "crossing.x" || name === "crossing.y") return of(crossing?.[name === "crossing.x" ? "x" : "y"], crossing?.withoutCrossing ?? 0);
   return undefined;
 }

@@ -48,3 +48,19 @@ export interface SimulatedBudget extends SimulationWish {
   /** Reported expressions at the end, in the report's order; null where there is none. */
   readonly report: readonly (SimulatedNumber | null)[];
 }
+
+/** A trend, simulated: its line fitted again through the points of every draw. */
+export interface SimulatedTrend extends SimulationWish {
+  /** Draws through whose points no line was found. */
+  readonly withoutLine: number;
+  /** null where no draw has a line. */
+  readonly slope: Quantiles | null;
+  readonly intercept: Quantiles | null;
+  /** Where the trend crosses another: where the two lines of a draw meet. */
+  readonly crossing?: {
+    /** Draws in which they do not. */
+    readonly withoutCrossing: number;
+    readonly x: Quantiles | null;
+    readonly y: Quantiles | null;
+  };
+}

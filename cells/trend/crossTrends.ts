@@ -110,7 +110,7 @@ function warnings(first: TrendFit, second: TrendFit): Pick<Problem, "code" | "se
 }
 
 /** The second trend's line in the units of the first. */
-function onAxesOf(first: TrendFit, second: TrendFit): LineForms | undefined {
+export function onAxesOf(first: TrendFit, second: TrendFit): LineForms | undefined {
   const { slope, intercept } = second.line;
   const byX = unitFactor(second.x.unit, first.x.unit);
   const byY = unitFactor(second.y.unit, first.y.unit);

@@ -5,6 +5,7 @@ import { emptyTrend } from "../page/emptyResult";
 import type { AxisInfo, FitParameter, TrendPoint, TrendResult } from "../page/results";
 import type { TrendBlock } from "../page/schema";
 import { formatNumber } from "../quantity/format";
+import { withSimulation } from "../simulate";
 import type { Table } from "../table/table";
 import { bodyPoint } from "./bodyPoint";
 import { choosePoints, valueAt, type Chosen } from "./choosePoints";
@@ -16,7 +17,9 @@ import { fitLine, type FittedLine, type LineCovariance } from "./fitLine";
 import { covariance, hasUnknown, variance } from "./linearForm";
 import { residuals } from "./outliers";
 import { calibrated, rawPulls, type Pulls } from "./pulls";
+import { refitOf } from "./refit";
 import type { ClassPoint, SampleSource } from "./sampleSource";
+import { simulateTrend } from "./simulate";
 import { commonTerms, fitOf, sampleVariables, withFit, type AxisOfFit, type TrendFit } from "./trendFit";
 
 /**
@@ -259,7 +262,15 @@ function lineResult(
     ...(line.byErrorsAlone === undefined ? {} : { byErrorsAlone: line.byErrorsAlone[which] }),
     ...(partlyKnown || hasUnknown(plain[which]) ? { sigmaIs: "lower bound" as const } : {}),
   });
-  const fit: TrendFit = { handle: block.id, ...axes, ...inUse, quantile: line.quantile, partlyKnown };
+  const fit: TrendFit = {
+    handle: block.id,
+    ...axes,
+    ...inUse,
+    points: chosen.points,
+    refit: refitOf(block.method, chosen.points, line),
+    quantile: line.quantile,
+    partlyKnown,
+  };
   const result: TrendResult = {
     ...base,
     ok: true,
@@ -276,7 +287,7 @@ function lineResult(
     problems,
     bodiesUsed,
   };
-  return withFit(result, fit);
+  return withSimulation(withFit(result, fit), (shown, wish) => simulateTrend(shown, fit, undefined, wish));
 }
 
 function pullsOf(method: TrendBlock["method"], { rows, points, classes }: FitChosen, line: FittedLine, covariance: LineCovariance): Pulls {
@@ -387,7 +398,7 @@ function evaluateCrossing(block: TrendBlock, crossWith: string, line: TrendResul
     return point === undefined ? [] : [{ body, point }];
   });
   const { crossing, problems, ...crossed } = crossTrends(block.id, first, second, bodies);
-  return withCrossed(
+  const made = withCrossed(
     {
       ...line,
       ...(crossing === undefined ? {} : { crossing }),
@@ -396,4 +407,6 @@ function evaluateCrossing(block: TrendBlock, crossWith: string, line: TrendResul
     },
     crossed,
   );
+  // Where the crossing is refused, none is simulated either; the line is.
+  return withSimulation(made, (shown, wish) => simulateTrend(shown, first, crossing === undefined ? undefined : second, wish));
 }

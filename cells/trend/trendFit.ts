@@ -3,8 +3,9 @@ import type { CommonVariable } from "../language/scope";
 import type { TrendResult } from "../page/results";
 import type { Unit } from "../quantity/unit";
 import type { LineForms } from "./crossing";
-import type { Influence } from "./lineFit";
+import type { FitPoints, Influence } from "./lineFit";
 import type { LinearForm } from "./linearForm";
+import type { Refit } from "./refit";
 import { isSampleVariable, type SampleSource, type SampleVariable } from "./sampleSource";
 import { aggregateCovariance, columnCovariance, sharedCovariance } from "./sharedSamples";
 
@@ -17,6 +18,9 @@ export interface TrendFit extends AxesOfFit {
   /** The line in display units, with the σ that is in use: with scatter where the points scatter more than their errors say. */
   readonly line: LineForms;
   readonly source: SampleSource;
+  readonly points: FitPoints;
+  /** Fits the line again with its points elsewhere. */
+  readonly refit: Refit;
   /** Half-width of a 95 % band over its 1σ: 1.96, or Student's t where σ comes from the spread of the points. */
   readonly quantile: number;
   /** True where some of the σ it rests on are unknown. */

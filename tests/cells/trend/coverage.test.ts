@@ -47,6 +47,8 @@ function trendOf(handle: string, line: FittedLine): TrendFit {
     x: axis,
     y: axis,
     source,
+    points: { x: nobody, y: nobody, sigmaX: nobody, sigmaY: nobody, correlation: nobody },
+    refit: () => undefined,
     quantile: line.quantile,
     partlyKnown: false,
     line: {

@@ -67,7 +67,7 @@ const formula = some({ kind: fc.constant("formula"), id: handle, text }, { ...ti
 const note = some({ kind: fc.constant("note"), id: handle, text }, title);
 const trend = some(
   { kind: fc.constant("trend"), id: handle, data: handle, x: word, y: word, method: fc.constantFrom("york", "ordinary least squares") },
-  { ...title, where: word, leaveOut: list(some({ row, reason: word }, { sample: word, ...by })), crossWith: handle },
+  { ...title, where: word, leaveOut: list(some({ row, reason: word }, { sample: word, ...by })), crossWith: handle, simulate },
 );
 const substance = fc.oneof(
   fc.record({ body: word }),

@@ -13,11 +13,22 @@ export interface FitToDraw {
   readonly points: FitPoints;
 }
 
-/** How one point of a fit moves: with which independent chances, by how much in x and y. */
+/** Samples that are prepared before whoever waits may go first. */
+const SAMPLES_AT_ONCE = 500;
+
+/** How the points of a fit move: for each, the chances from `from[i]` to `from[i + 1]`, and by how much they move x and y. */
 interface Moves {
+  readonly from: Int32Array;
   readonly at: Int32Array;
   readonly x: Float64Array;
   readonly y: Float64Array;
+}
+
+/** How the points of a fit move with something common to them. */
+interface CommonMoves {
+  readonly noise: Float64Array;
+  readonly x: Float64Array | null;
+  readonly y: Float64Array | null;
 }
 
 /** A measured value that points depend on, by every table it is met in. */
@@ -28,6 +39,12 @@ interface Cell {
   at: number;
 }
 
+/** What the points of a sample depend on: its cells, in the order of their names, and the root of their correlations. */
+interface Sample {
+  readonly cells: Cell[];
+  root?: readonly Float64Array[];
+}
+
 /**
  * The points of fits, moved within their errors, draw by draw: each measured value by its own chance, with the correlations that
  * its table declares, so that x and y of a sample err together as their formulas make them, and a sample that stands in several
@@ -35,89 +52,117 @@ interface Cell {
  * counts scatter beyond the errors, that too. All of it to first order in the values, normal. What has no known σ stands still.
  *
  * Every chance follows from the seed and the name of what it moves, so that nothing else on a page can change it.
+ *
+ * @returns step by step, 0 at each: many samples take a while to prepare
  */
-export class DrawnPoints {
+export function* drawnPoints(fits: readonly FitToDraw[], wish: SimulationWish): Generator<number, DrawnPoints> {
+  const chances: Random[] = [];
+  const chance = (name: string): number => chances.push(streamOf(wish.seed, name)) - 1;
+  const samples = yield* samplesOf(fits);
+  let prepared = 0;
+  for (const sample of samples.values()) {
+    const { cells } = sample;
+    cells.sort((a, b) => (a.key < b.key ? -1 : 1));
+    for (const cell of cells) cell.at = chance(`cell|${cell.key}`);
+    if (cells.some(({ met }) => met.some(({ variable }) => variable.table.correlations.length > 0)))
+      sample.root = lowerRoot(cells.map((a, i) => Float64Array.from(cells, (b, j) => (i === j ? 1 : correlationOf(a, b)))));
+    if (++prepared % SAMPLES_AT_ONCE === 0) yield 0;
+  }
+  const scatters = new Map<string, number>();
+  const scatterOf = (key: string): number => {
+    const own = scatters.get(key) ?? chance(key);
+    scatters.set(key, own);
+    return own;
+  };
+  const moves: Moves[] = [];
+  for (const { source } of fits) moves.push(yield* movesOf(source, samples, scatterOf));
+  return new DrawnPoints(fits, chances, moves, commonsOf(fits, wish));
+}
+
+function* movesOf(source: SampleSource, samples: ReadonlyMap<string, Sample>, scatterOf: (key: string) => number): Generator<number, Moves> {
+  const { rows, classes, handle, yMeaning } = source;
+  const { extraY, from: ofErrors, factor } = source.errors;
+  const scatters = ofErrors === "errors" && extraY > 0;
+  const [inX, inY] = [source.x.inputs, source.y.inputs];
+  const from = new Int32Array(rows.length + 1);
+  const at: number[] = [];
+  const x: number[] = [];
+  const y: number[] = [];
+  for (const [i, row] of rows.entries()) {
+    const key = classes === undefined ? sampleKey(source, row) : `${handle}|${i}`;
+    const { cells, root } = samples.get(key) ?? { cells: [] };
+    const begin = at.length;
+    for (const cell of cells) {
+      at.push(cell.at);
+      x.push(0);
+      y.push(0);
+    }
+    const gather = (inputs: Evaluated["inputs"], into: number[]): void => {
+      for (const { variable, partial } of inputs) {
+        const size = factor * (entry(partial, row) ?? 0) * (variable.column.sigma[row] ?? 0);
+        if (size !== size || size === 0) continue;
+        const place = cells.findIndex(({ met }) => met.some((each) => each.variable.column === variable.column && each.row === row));
+        if (root === undefined) into[begin + place] = (into[begin + place] ?? 0) + size;
+        else for (let j = 0; j <= place; j++) into[begin + j] = (into[begin + j] ?? 0) + size * (root[place]?.[j] ?? 0);
+      }
+    };
+    gather(inX, x);
+    gather(inY, y);
+    if (scatters) {
+      at.push(scatterOf(`scatter|${yMeaning}|${key}`));
+      x.push(0);
+      y.push(extraY);
+    }
+    from[i + 1] = at.length;
+    if (i % SAMPLES_AT_ONCE === 0) yield 0;
+  }
+  return { from, at: Int32Array.from(at), x: Float64Array.from(x), y: Float64Array.from(y) };
+}
+
+/** Points of fits that move: see {@link drawnPoints}. */
+class DrawnPoints {
   /** By fit: the points of the present draw. */
   readonly x: readonly Float64Array[];
   readonly y: readonly Float64Array[];
   /** False where no error is known that could move anything. */
   readonly areMoving: boolean;
-  readonly #moves: readonly (readonly Moves[])[];
-  readonly #chances: Random[] = [];
   readonly #z: Float64Array;
-  readonly #commons: readonly (readonly { readonly noise: Float64Array; readonly x: Float64Array | null; readonly y: Float64Array | null }[])[];
   #draw = 0;
 
   constructor(
     private readonly fits: readonly FitToDraw[],
-    wish: SimulationWish,
+    private readonly chances: readonly Random[],
+    private readonly moves: readonly Moves[],
+    private readonly commons: readonly (readonly CommonMoves[])[],
   ) {
-    const samples = samplesOf(fits);
-    const roots = new Map<string, readonly Float64Array[]>();
-    const scatters = new Map<string, number>();
-    const chance = (name: string): number => this.#chances.push(streamOf(wish.seed, name)) - 1;
-    for (const [sample, cells] of samples) {
-      cells.sort((a, b) => (a.key < b.key ? -1 : 1));
-      for (const cell of cells) cell.at = chance(`cell|${cell.key}`);
-      roots.set(sample, lowerRoot(cells.map((a, i) => Float64Array.from(cells, (b, j) => (i === j ? 1 : correlationOf(a, b))))));
-    }
-    this.#moves = fits.map(({ source }) => {
-      const [inX, inY] = [source.x.inputs, source.y.inputs];
-      const { extraY, from, factor } = source.errors;
-      return Array.from(source.rows, (row, i): Moves => {
-        const sample = source.classes === undefined ? sampleKey(source, row) : `${source.handle}|${i}`;
-        const cells = samples.get(sample) ?? [];
-        const root = roots.get(sample) ?? [];
-        const gather = (inputs: Evaluated["inputs"]): number[] => {
-          const by = new Array<number>(cells.length).fill(0);
-          for (const { variable, partial } of inputs) {
-            const place = cells.findIndex(({ key }) => key === cellKey(variable, row));
-            const size = factor * (entry(partial, row) ?? 0) * (variable.column.sigma[row] ?? 0);
-            if (size === size && size !== 0) for (let j = 0; j <= place; j++) by[j] = (by[j] ?? 0) + size * (root[place]?.[j] ?? 0);
-          }
-          return by;
-        };
-        const [at, x, y] = [cells.map((cell) => cell.at), gather(inX), gather(inY)];
-        if (from === "errors" && extraY > 0) {
-          const key = `scatter|${source.yMeaning}|${sample}`;
-          const own = scatters.get(key) ?? chance(key);
-          scatters.set(key, own);
-          at.push(own);
-          x.push(0);
-          y.push(extraY);
-        }
-        return { at: Int32Array.from(at), x: Float64Array.from(x), y: Float64Array.from(y) };
-      });
-    });
-    this.#z = new Float64Array(this.#chances.length);
-    this.#commons = commonsOf(fits, wish);
+    this.#z = new Float64Array(chances.length);
     this.x = fits.map(({ points }) => Float64Array.from(points.x));
     this.y = fits.map(({ points }) => Float64Array.from(points.y));
-    const moves = this.#moves.some((all) => all.some((each) => each.x.some((d) => d !== 0) || each.y.some((d) => d !== 0)));
-    this.areMoving = moves || this.#commons.some((all) => all.length > 0);
+    const isMove = (by: number): boolean => by !== 0;
+    this.areMoving = moves.some((each) => each.x.some(isMove) || each.y.some(isMove)) || commons.some((all) => all.length > 0);
   }
 
   /** Goes on to the next draw. */
   next(): void {
-    for (let i = 0; i < this.#chances.length; i++) this.#z[i] = this.#chances[i]?.normal() ?? 0;
+    const z = this.#z;
+    for (let i = 0; i < z.length; i++) z[i] = (this.chances[i] as Random).normal();
     const k = this.#draw++;
     this.fits.forEach(({ points }, f) => {
-      const [x, y, moves] = [this.x[f], this.y[f], this.#moves[f]];
+      const [x, y, moves] = [this.x[f], this.y[f], this.moves[f]];
       if (x === undefined || y === undefined || moves === undefined) return;
+      const { from, at, x: byX, y: byY } = moves;
       for (let i = 0; i < x.length; i++) {
         let dx = 0;
         let dy = 0;
-        const own = moves[i];
-        if (own !== undefined)
-          for (let j = 0; j < own.at.length; j++) {
-            const z = this.#z[own.at[j] as number] as number;
-            dx += (own.x[j] as number) * z;
-            dy += (own.y[j] as number) * z;
-          }
-        for (const { noise, x: byX, y: byY } of this.#commons[f] ?? []) {
-          const z = noise[k] as number;
-          if (byX !== null) dx += (byX[i] as number) * z;
-          if (byY !== null) dy += (byY[i] as number) * z;
+        for (let j = from[i] as number; j < (from[i + 1] as number); j++) {
+          const own = z[at[j] as number] as number;
+          dx += (byX[j] as number) * own;
+          dy += (byY[j] as number) * own;
+        }
+        for (const common of this.commons[f] ?? []) {
+          const own = common.noise[k] as number;
+          if (common.x !== null) dx += (common.x[i] as number) * own;
+          if (common.y !== null) dy += (common.y[i] as number) * own;
         }
         x[i] = (points.x[i] as number) + dx;
         y[i] = (points.y[i] as number) + dy;
@@ -147,23 +192,25 @@ function cellKey({ table, column }: ColumnVariable, row: number): string {
 }
 
 /** The measured values with a known σ that the points of some fits depend on, by sample. */
-function samplesOf(fits: readonly FitToDraw[]): Map<string, Cell[]> {
-  const samples = new Map<string, Cell[]>();
+function* samplesOf(fits: readonly FitToDraw[]): Generator<number, Map<string, Sample>> {
+  const samples = new Map<string, Sample>();
   for (const { source } of fits) {
     // Class means have their errors in common variables.
     if (source.classes !== undefined) continue;
-    const inputs = [...source.x.inputs, ...source.y.inputs].map(({ variable }) => variable);
-    for (const row of source.rows) {
-      const sample = sampleKey(source, row);
-      const cells = samples.get(sample) ?? [];
-      samples.set(sample, cells);
+    const byColumn = new Map([...source.x.inputs, ...source.y.inputs].map(({ variable }) => [variable.column, variable]));
+    const inputs = [...byColumn.values()];
+    for (const [i, row] of source.rows.entries()) {
+      const key = sampleKey(source, row);
+      const sample = samples.get(key) ?? { cells: [] };
+      samples.set(key, sample);
       for (const variable of inputs) {
         if (!((variable.column.sigma[row] ?? Number.NaN) > 0)) continue;
-        const key = cellKey(variable, row);
-        const known = cells.find((cell) => cell.key === key);
-        if (known === undefined) cells.push({ key, met: [{ variable, row }], at: -1 });
+        const own = cellKey(variable, row);
+        const known = sample.cells.find((cell) => cell.key === own);
+        if (known === undefined) sample.cells.push({ key: own, met: [{ variable, row }], at: -1 });
         else known.met.push({ variable, row });
       }
+      if (i % SAMPLES_AT_ONCE === 0) yield 0;
     }
   }
   return samples;
@@ -180,15 +227,12 @@ function correlationOf(a: Cell, b: Cell): number {
 }
 
 /** By fit: the common variables with a known σ, their draws, and how each point moves with them. */
-function commonsOf(
-  fits: readonly FitToDraw[],
-  wish: SimulationWish,
-): { readonly noise: Float64Array; readonly x: Float64Array | null; readonly y: Float64Array | null }[][] {
+function commonsOf(fits: readonly FitToDraw[], wish: SimulationWish): CommonMoves[][] {
   const all = new Map<string, CommonVariable>();
   for (const { source } of fits) for (const { variable } of [...source.x.common, ...source.y.common]) all.set(variable.key, variable);
   const noise = commonNoise([...all.values()].sort(byKey), wish);
   return fits.map(({ source: { rows, x, y, errors, classes } }) => {
-    const found: { noise: Float64Array; x: Float64Array | null; y: Float64Array | null }[] = [];
+    const found: CommonMoves[] = [];
     for (const [axis, evaluated] of [["x", x] as const, ["y", y] as const])
       for (const { variable, partial, place } of evaluated.common) {
         const own = noise.get(variable.key);

@@ -6,7 +6,10 @@ import type { FitPoints } from "./lineFit";
 import { ordinaryLeastSquares } from "./ordinaryLeastSquares";
 import { reducedMajorAxis } from "./reducedMajorAxis";
 import { theilSen } from "./theilSen";
-import { york } from "./york";
+import { york, yorkNear } from "./york";
+
+/** With more points than this a draw is taken not to carry the line from one minimum of S to another, and is followed from the line alone. */
+const MANY = 100;
 
 /** The line through the same points at other places; undefined where there is none. */
 export type Refit = (x: Float64Array, y: Float64Array) => { readonly slope: number; readonly intercept: number } | undefined;
@@ -18,10 +21,11 @@ export type Refit = (x: Float64Array, y: Float64Array) => { readonly slope: numb
 export function refitOf(method: TrendBlock["method"], points: FitPoints, line: FittedLine): Refit {
   const { extraY, from } = line.errors;
   const weighed = method === "york" && from === "errors" && extraY > 0 ? widenedPoints(points, extraY * extraY) : points;
+  const isLarge = points.x.length > MANY;
   const fit = (moved: FitPoints): { readonly slope: number; readonly intercept: number } | undefined => {
     switch (method) {
       case "york": {
-        const found = york(moved, line.slope);
+        const found = isLarge ? yorkNear(moved, line.slope) : york(moved, line.slope);
         return found.converged ? found : undefined;
       }
       case "ordinary least squares":

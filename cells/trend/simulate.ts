@@ -2,7 +2,7 @@ import type { Problem } from "../errors";
 import type { TrendResult } from "../page/results";
 import { count, quantilesOf, Simulation, wishWords, type Quantiles, type SimulatedTrend, type SimulationWish } from "../simulate";
 import { onAxesOf } from "./crossTrends";
-import { DrawnPoints } from "./drawnPoints";
+import { drawnPoints } from "./drawnPoints";
 import { exact } from "./linearForm";
 import type { TrendFit } from "./trendFit";
 
@@ -21,7 +21,7 @@ export function simulateTrend(base: TrendResult, first: TrendFit, second: TrendF
   return new Simulation(wish.draws, run(wish));
 
   function* run(used: SimulationWish): Generator<number, TrendResult> {
-    const drawn = new DrawnPoints(fits, used);
+    const drawn = yield* drawnPoints(fits, used);
     if (!drawn.areMoving) return { ...base, problems: [...base.problems, nothingMoves] };
     const [slope, intercept] = [new Collected(used.draws), new Collected(used.draws)];
     const [x, y] = [new Collected(used.draws), new Collected(used.draws)];

@@ -53,6 +53,12 @@ export function york(points: FitPoints, start?: number): YorkFit {
   return other !== undefined && better(other, fit) ? other : (fit ?? failed(points));
 }
 
+/** The same line, followed from one slope that is known to be near; all the starts are tried only where that comes to no rest. */
+export function yorkNear(points: FitPoints, start: number): YorkFit {
+  const fit = yorkFrom(points, startAt(start));
+  return fit?.converged === true ? fit : york(points, start);
+}
+
 /** The least S that the starts lead to. Unless all are asked for, those are left out that begin above what has converged. */
 function bestFrom(points: FitPoints, starts: readonly Start[], all: boolean): YorkFit | undefined {
   let best: YorkFit | undefined;

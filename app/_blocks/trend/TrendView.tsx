@@ -6,6 +6,7 @@ import { Button } from "@/app/_ui/Button";
 import { formatNumber, formatP, formatValue, powerOfTen } from "@/app/_ui/concise";
 import { Popover } from "@/app/_ui/Popover";
 import { pickedIndices } from "@/app/_blocks/shared/picks";
+import { SimulateControl } from "@/app/_blocks/shared/SimulateControl";
 import { resultOf, tableOf } from "@/app/_blocks/shared/tableOf";
 import { useRefusal } from "@/app/_blocks/shared/useRefusal";
 import { sentence } from "@/app/_blocks/shared/words";
@@ -15,7 +16,7 @@ import { LeaveOut } from "./LeaveOut";
 import { MswdRuler } from "./MswdRuler";
 import { ResidualStrip } from "./ResidualStrip";
 import { TrendSettings } from "./TrendSettings";
-import { equationOf, mswdPlace, probabilityInWords, samplesOfFit } from "./trendWords";
+import { equationOf, mswdPlace, probabilityInWords, samplesOfFit, trendSimulated } from "./trendWords";
 
 export { stateInWords } from "./trendWords";
 
@@ -168,6 +169,11 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
               {result.crossing.region === "simulated" ? "; the slopes are too alike for an ellipse, its region is simulated" : ""}
             </Row>
           )}
+          {(result.simulated === undefined ? [] : trendSimulated(result)).map(({ head, text }) => (
+            <Row key={head} head={head}>
+              {text}
+            </Row>
+          ))}
           {result.fromBodies.length > 0 && (
             <Row head="from line">
               <Distances all={result.fromBodies} from="line" onAsk={ask} />
@@ -184,6 +190,7 @@ export function TrendView({ blockKey, block, view }: BlockViewProps<TrendBlock>)
           onLeaveOut={edits === null ? undefined : (point, reason) => leaveOut([point], reason)}
         />
       )}
+      {result?.ok && <SimulateControl blockKey={blockKey} handle={block.id} wish={block.simulate} view={view} />}
       {(block.leaveOut ?? []).length > 0 && (
         <ul className="mt-2 text-margin text-second" aria-label="Left out of this fit">
           {(block.leaveOut ?? []).map((entry) => (

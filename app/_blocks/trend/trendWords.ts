@@ -1,4 +1,5 @@
 import { formatNumber, formatP } from "@/app/_ui/concise";
+import { quantilesInWords } from "@/app/_blocks/shared/simulatedWords";
 import { compactExpression, listed } from "@/app/_blocks/shared/words";
 import type { AxisInfo, TrendResult } from "@/cells";
 
@@ -100,4 +101,17 @@ export function stateInWords(result: TrendResult | undefined): { readonly text: 
   if (result.problems.some((p) => p.severity === "error")) return { text: "has a problem", problem: true };
   if (result.p !== undefined && result.p < 0.05) return { text: "scatter beyond errors", problem: true };
   return { text: result.method === "york" ? "converged" : `n = ${result.n}`, problem: false };
+}
+
+/** What the simulation says of slope, intercept and crossing, each under its name. */
+export function trendSimulated({ simulated, x, y }: TrendResult): readonly { readonly head: string; readonly text: string }[] {
+  if (simulated === undefined) return [];
+  const { slope, intercept, crossing } = simulated;
+  const said = [
+    { head: "slope", of: slope, unit: "1" },
+    { head: "intercept", of: intercept, unit: y.unit },
+    { head: "crossing, across", of: crossing?.x, unit: x.unit },
+    { head: "crossing, upwards", of: crossing?.y, unit: y.unit },
+  ];
+  return said.flatMap(({ head, of, unit }) => (of == null ? [] : [{ head, text: quantilesInWords(of, unit) }]));
 }

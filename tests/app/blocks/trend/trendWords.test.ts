@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { residualLayout } from "@/app/_blocks/trend/residualLayout";
-import { equationOf, mswdPlace, probabilityInWords, rulerEnd, samplesOfFit, stateInWords } from "@/app/_blocks/trend/trendWords";
+import { equationOf, mswdPlace, probabilityInWords, rulerEnd, samplesOfFit, stateInWords, trendSimulated } from "@/app/_blocks/trend/trendWords";
 import type { TrendPoint, TrendResult } from "@/cells";
 
 const axis = (label: string) => ({ expression: label, label, unit: "1", basis: "mass" as const });
@@ -95,5 +95,24 @@ describe("residuals on their strip", () => {
     const layout = residualLayout([point(0, { residual: 100 }), point(1)], 428);
     expect(layout.clipped).toBe(1);
     expect(layout.height).toBeLessThan(260);
+  });
+});
+
+describe("a simulated trend", () => {
+  const quantiles = (at: number) => ({ median: at, from68: at - 0.01, to68: at + 0.01, from95: at - 0.02, to95: at + 0.02 });
+
+  it("is said number by number, those without draws left out", () => {
+    expect(trendSimulated(trend())).toEqual([]);
+    const simulated = {
+      draws: 2000,
+      seed: 1,
+      withoutLine: 0,
+      slope: quantiles(0.16),
+      intercept: null,
+      crossing: { withoutCrossing: 3, x: quantiles(1.05), y: quantiles(0.1) },
+    };
+    const said = trendSimulated(trend({ simulated }));
+    expect(said.map(({ head }) => head)).toEqual(["slope", "crossing, across", "crossing, upwards"]);
+    expect(said[0]?.text).toContain("68 % within 0.150 to 0.170");
   });
 });

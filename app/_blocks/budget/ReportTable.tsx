@@ -70,6 +70,8 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
   const isWhole = block.steps.some((s) => s.do === "share with metal");
   const head = "border-b border-ink pb-1 pl-3 text-right text-margin font-normal text-second max-[719px]:pl-2";
   const plain = "h-7 pl-3 text-right text-cell leading-[23px] max-[719px]:pl-2 max-[719px]:text-[11.5px]";
+  // Half a page has no room for the scale of misses; its figures stay.
+  const scale = block.width === 4 || block.width === 6 ? "hidden" : "max-[719px]:hidden";
   const columns = hasTarget ? 6 : 3;
   return (
     <table className="mt-3 w-full border-collapse">
@@ -89,7 +91,7 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
               <th scope="col" className={head}>
                 {targetName(block.target)}
               </th>
-              <th scope="col" className={classNames(head, "max-[719px]:hidden")}>
+              <th scope="col" className={classNames(head, scale)}>
                 miss, −{half}σ to +{half}σ
               </th>
               <th scope="col" className={head}>
@@ -130,7 +132,7 @@ export function ReportTable({ block, result, form, onTrace }: ReportTableProps) 
                     <td className={cell}>
                       <Side report={r} side="target" sigma={r.targetSigma} form={form} onTrace={onTrace} />
                     </td>
-                    <td className={classNames(cell, "max-[719px]:hidden")}>
+                    <td className={classNames(cell, scale)}>
                       {(r.miss !== null || isSolvedFor(r, block.target)) && <Miss miss={isSolvedFor(r, block.target) ? 0 : (r.miss ?? 0)} half={half} />}
                     </td>
                     <td className={classNames(cell, "font-mono whitespace-nowrap")}>

@@ -17,8 +17,8 @@ export interface SimulateControlProps {
   readonly view: PageView;
 }
 
-/** A field within a sentence: its label before it, as wide as the longest number it takes. */
-const inline = "flex items-baseline gap-2 [&_input]:w-20 [&_input]:py-0";
+/** A field within a sentence: its label before it. */
+const inline = "flex items-baseline gap-2 [&_input]:py-0";
 
 /** Whether a block draws its inputs as well, with how many draws and which seed, and how far that is. */
 export function SimulateControl({ blockKey, handle, wish, view }: SimulateControlProps) {
@@ -56,8 +56,22 @@ export function SimulateControl({ blockKey, handle, wish, view }: SimulateContro
       {edits !== null && wish !== undefined && (
         <div className="flex flex-wrap items-baseline gap-x-4 gap-y-1">
           <span>Simulation:</span>
-          <CommitField className={inline} label="draws" mono inputMode="decimal" value={String(wish.draws)} onCommit={(text) => put("draws", text)} />
-          <CommitField className={inline} label="seed" mono inputMode="decimal" value={String(wish.seed)} onCommit={(text) => put("seed", text)} />
+          <CommitField
+            className={`${inline} [&_input]:w-12`}
+            label="draws"
+            mono
+            inputMode="decimal"
+            value={String(wish.draws)}
+            onCommit={(text) => put("draws", text)}
+          />
+          <CommitField
+            className={`${inline} [&_input]:w-20`}
+            label="seed"
+            mono
+            inputMode="decimal"
+            value={String(wish.seed)}
+            onCommit={(text) => put("seed", text)}
+          />
           <Button look="quiet" className="text-margin" onClick={() => set(undefined)}>
             Do not simulate
           </Button>

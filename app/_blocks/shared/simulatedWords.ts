@@ -37,5 +37,5 @@ export function lineSimulated(line: LineResult): string {
   if (typical === null) return "";
   const n = widths.reduce((count, width) => (Number.isFinite(width) ? count + 1 : count), 0);
   const part = simulated.asked ? "" : `, for ${n} where first order cannot be trusted`;
-  return `simulated: median of half the 68 % range ${formatNumber(typical, 2)}${part}`;
+  return `simulated: median half-width ${formatNumber(typical, 2)} (68 %)${part}`;
 }

@@ -25,6 +25,6 @@ describe("words of a simulation", () => {
   it("says one value's ranges, and the usual width over samples", () => {
     const [single, many] = [lineOf("m = mean(Mg / Si)"), lineOf("r = Mg / Si")];
     expect(single === undefined ? "" : lineSimulated(single)).toMatch(/^simulated: 68 % within [\d.]+ to [\d.]+, 95 % within/u);
-    expect(many === undefined ? "" : lineSimulated(many)).toMatch(/^simulated: median of half the 68 % range 0\.[01]\d+$/u);
+    expect(many === undefined ? "" : lineSimulated(many)).toMatch(/^simulated: median half-width 0\.[01]\d+ \(68 %\)$/u);
   });
 });

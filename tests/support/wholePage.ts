@@ -74,10 +74,10 @@ export function wholePage(): PageDocument {
       },
       { id: "s", kind: "formula", data: "few", text: "mg = Mg / Si\nal = Al / Si\nca_al = Ca / Al" },
       { id: "o", kind: "formula", data: "other", text: "rise = Mg / Si\nrise_al = Al / Si" },
-      { id: "t", kind: "trend", data: "few", x: "mg", y: "al", where: 'Group != ""', method: "york", crossWith: "u" },
+      { id: "t", kind: "trend", data: "few", x: "mg", y: "al", where: 'Group != ""', method: "york", crossWith: "u", simulate: { draws: 200, seed: 3 } },
       { id: "u", kind: "trend", data: "other", x: "rise", y: "rise_al", where: 'Group != "dunite"', method: "york", crossWith: "t" },
       { id: "ols", kind: "trend", data: "few", x: "mg", y: "al", where: 'Group == "dunite"', method: "ordinary least squares" },
-      { id: "v", kind: "trend", data: "few", x: "mg", y: "ca_al", method: "reduced major axis" },
+      { id: "v", kind: "trend", data: "few", x: "mg", y: "ca_al", method: "reduced major axis", simulate: { draws: 200, seed: 4 } },
       { id: "w", kind: "trend", data: "few", x: "mg", y: "ca_al", method: "theil-sen" },
       {
         id: "core",

@@ -100,7 +100,7 @@ export function PlotView({ blockKey, block, view }: BlockViewProps<PlotBlock>) {
     if (edits !== null && shown !== undefined && "annotation" in shown) changeEntry(edits, blockKey, "drawn", index, shown, { ...shown, x, y });
   };
   const errors = (result?.problems ?? []).filter((p) => p.severity === "error");
-  const warnings = (result?.problems ?? []).filter((p) => ["not-on-log-axis", "outside-triangle", "mean-without-detection"].includes(p.code));
+  const warnings = (result?.problems ?? []).filter((p) => p.severity === "warning");
   // A new annotation stands in the middle of what is seen.
   const middle =
     laid === null

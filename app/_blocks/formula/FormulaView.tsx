@@ -67,7 +67,9 @@ export function FormulaView({ blockKey, block, view }: BlockViewProps<FormulaBlo
         isReadOnly
           ? []
           : [
-              formulaCompletion(() => suggestionsFor(latest.current.block, latest.current.view.results, latest.current.view.bodies, latest.current.view.ownBodies)),
+              formulaCompletion(() =>
+                suggestionsFor(latest.current.block, latest.current.view.results, latest.current.view.bodies, latest.current.view.ownBodies),
+              ),
               keymap.of(completionKeymap),
             ],
         watchText(setWritten),

@@ -23,7 +23,8 @@ type Answer = "asked" | Nearest | null;
 /** Bodies and samples whose ratios of elements are most like those of one sample. */
 export function NearestDialog({ block, index, sample, view, onClose }: NearestDialogProps) {
   const [answer, setAnswer] = useState<Answer>("asked");
-  const { nearest } = view;
+  // Asked once, of the page as it was when the sheet opened: what it shows does not jump while somebody reads it.
+  const [nearest] = useState(() => view.nearest);
   useEffect(() => {
     let mine = true;
     const ask = nearest?.({ block, index }) ?? Promise.resolve(null);
@@ -34,9 +35,7 @@ export function NearestDialog({ block, index, sample, view, onClose }: NearestDi
     return () => {
       mine = false;
     };
-    // Asked once, when the sheet opens: what it shows does not jump while somebody reads it.
-    // eslint-disable-next-line react-hooks/exhaustive-deps
-  }, [block, index]);
+  }, [nearest, block, index]);
   return (
     <Dialog open onClose={onClose} size="wide" title={`Nearest to ${sample}`} says={nearestInWords(answer)}>
       {answer === "asked" || answer === null ? null : (

@@ -1,5 +1,6 @@
 "use client";
 
+import Image from "next/image";
 import { useEffect, useMemo, useRef, useState } from "react";
 import type { PageView } from "@/app/_page/contract";
 import { readNumber } from "@/app/_blocks/shared/readNumber";
@@ -131,8 +132,14 @@ export function ExportDialog({ block, result, view, onClose }: ExportDialogProps
             {preview === null ? (
               <p className="text-[#525b61]">Drawing the figure.</p>
             ) : (
-              // eslint-disable-next-line @next/next/no-img-element -- made here, from no address
-              <img src={preview} alt="The figure as it will be saved" className="max-h-[46vh] max-w-full" />
+              <Image
+                unoptimized
+                src={preview}
+                alt="The figure as it will be saved"
+                width={Math.round(4 * size.widthMm)}
+                height={Math.round(4 * size.heightMm)}
+                className="max-h-[46vh] w-auto max-w-full object-contain"
+              />
             )}
           </div>
         </div>

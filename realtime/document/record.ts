@@ -73,17 +73,24 @@ function renamedInColumns(transaction: Y.Transaction, block: BlockMap): Readonly
 const cellsOf = (entry: Entry | null): Readonly<Record<string, unknown>> =>
   typeof entry?.cells === "object" && entry.cells !== null ? (entry.cells as Readonly<Record<string, unknown>>) : {};
 
-/** A typed table that declares no columns has them from its rows: a row in which one cell changed its name, and nothing else, renames it. */
+/**
+ * A typed table that declares no columns has them from its rows: a row in which a cell changed its name and kept its text renames
+ * it. Rows that lost against somebody else's of the same moment count too: what came with them was written under their names.
+ */
 function renamedInRows(transaction: Y.Transaction, block: BlockMap): ReadonlyMap<unknown, unknown> {
   const names = new Map<unknown, unknown>();
   const typed = listOf(block, "typed");
-  if (typed === undefined || !transaction.changed.has(typed as Y.AbstractType<unknown> as never)) return names;
-  for (const [key, value] of typed.entries()) {
-    const [was, is] = [cellsOf(entryIn(standingBefore(transaction, typed, key))), cellsOf(storedEntry(value)?.entry ?? null)];
-    const gone = Object.keys(was).filter((name) => !(name in is));
-    const come = Object.keys(is).filter((name) => !(name in was));
-    const [from, to] = [gone[0], come[0]];
-    if (gone.length === 1 && come.length === 1 && from !== undefined && to !== undefined && was[from] === is[to]) names.set(to, from);
+  if (typed === undefined) return names;
+  for (const item of newItems(transaction)) {
+    if (item.parent !== typed || item.parentSub === null) continue;
+    const [was, is] = [cellsOf(entryIn(standingBefore(transaction, typed, item.parentSub))), cellsOf(entryIn(item))];
+    // Two may have given one name to two columns: a cell is known by its text, not by whether its name is new.
+    for (const to of Object.keys(is)) {
+      if (was[to] === is[to]) continue;
+      const [from, another] = Object.keys(was).filter((name) => was[name] === is[to]);
+      const isAlone = Object.keys(is).filter((name) => is[name] === is[to]).length === 1;
+      if (from !== undefined && another === undefined && isAlone) names.set(to, from);
+    }
   }
   return names;
 }

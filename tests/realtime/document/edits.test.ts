@@ -204,6 +204,28 @@ test("D3 every edit that the product makes is one the server takes, whatever oth
   );
 }, 120_000);
 
+test.each(
+  [
+    ["one column in two ways", "Mg", "Mg2"],
+    ["two columns of the same typed rows", "Si", "Mg2"],
+    ["two columns to one name", "Si", "Fe"],
+  ].flatMap(([what = "", from = "", to = ""]) => [[what, from, to, 9, 5] as const, [what, from, to, 5, 9] as const]),
+)("D6 two who rename at once are both taken: %s (%s to %s, clients %i and %i)", (_, other, to, first, second) => {
+  const server = fresh(encodeNewPage(page));
+  const rename = (clientId: number, id: string, from: string, name: string): Uint8Array => {
+    const doc = fresh(encodeNewPage(page));
+    doc.clientID = clientId;
+    let update = new Uint8Array();
+    doc.on("update", (made: Uint8Array) => (update = Uint8Array.from(made)));
+    createEdits(doc, { id }).renameColumn(pick(tables(doc), 0).key, from, name);
+    return update;
+  };
+  // Whoever loses wrote the amendment, which is Ada's, under a name that no column has in the end.
+  const [byCleo, byBen] = [rename(first, "cleo", other, to), rename(second, "ben", "Mg", "Fe")];
+  expect(applyAndWatch(server, byCleo, "cleo").foreign).toStrictEqual([]);
+  expect(applyAndWatch(server, byBen, "ben").foreign).toStrictEqual([]);
+});
+
 const find = (doc: Y.Doc, id: string): { readonly key: string; readonly block: Block } => {
   const found = readPage(doc).blocks.find((b) => b.block.id === id);
   if (found === undefined) throw new Error(`no block ${id}`);

@@ -26,7 +26,7 @@ def normal(source):
 
 def record(about, sources, remade, cases):
     """
-    Prints the recording.
+    Prints what is to be kept.
 
     remade: relative and absolute difference within which another machine, or another version of the packages, makes the
     same numbers again, and why it is not smaller.

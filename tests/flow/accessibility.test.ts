@@ -1,19 +1,9 @@
-import axe from "axe-core";
-import type { Browser, Page } from "playwright-core";
+import type { Browser } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, test } from "vitest";
 import { demoPassword, demoPeople } from "@/db/seed/people";
 import { launchBrowser } from "../support/browser";
+import { faults } from "./faults";
 import { analyses, freeze, open, readingLink, signIn, type Person } from "./people";
-
-/** Serious and critical faults that axe finds, each as a short line. */
-async function faults(page: Page): Promise<string[]> {
-  await page.evaluate(axe.source);
-  const found = await page.evaluate(async () => {
-    const { violations } = await (window as unknown as { axe: typeof axe }).axe.run(document, { resultTypes: ["violations"] });
-    return violations.map(({ id, impact, nodes }) => ({ id, impact, at: nodes.slice(0, 3).map((node) => node.target.join(" ")) }));
-  });
-  return found.filter(({ impact }) => impact === "serious" || impact === "critical").map(({ id, at }) => `${id}: ${at.join(" | ")}`);
-}
 
 describe("axe finds nothing serious or critical", () => {
   let browser: Browser;

@@ -1,18 +1,8 @@
-import axe from "axe-core";
-import type { Browser, Page } from "playwright-core";
+import type { Browser } from "playwright-core";
 import { afterAll, afterEach, beforeAll, describe, expect, test } from "vitest";
 import { launchBrowser } from "../support/browser";
+import { faults } from "./faults";
 import { block, open, shoot, signUp, type Person } from "./people";
-
-/** Serious and critical faults that axe finds, each as a short line. */
-async function faults(page: Page): Promise<string[]> {
-  await page.evaluate(axe.source);
-  const found = await page.evaluate(async () => {
-    const { violations } = await (window as unknown as { axe: typeof axe }).axe.run(document, { resultTypes: ["violations"] });
-    return violations.map(({ id, impact, nodes }) => ({ id, impact, at: nodes.slice(0, 3).map((node) => node.target.join(" ")) }));
-  });
-  return found.filter(({ impact }) => impact === "serious" || impact === "critical").map(({ id, at }) => `${id}: ${at.join(" | ")}`);
-}
 
 /** Invented: 5,000 samples on a lattice, 100 across and 50 upwards, so that how many lie in a box is known beforehand. */
 const ACROSS = 100;

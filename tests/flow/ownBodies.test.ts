@@ -1,19 +1,9 @@
-import axe from "axe-core";
-import type { Browser, Page } from "playwright-core";
+import type { Browser } from "playwright-core";
 import { afterAll, afterEach, beforeAll, describe, expect, test } from "vitest";
 import { launchBrowser } from "../support/browser";
+import { faults } from "./faults";
 import { keyboard } from "./hands";
 import { block, freeze, invite, join, open, saved, shoot, signUp, type Person } from "./people";
-
-/** Serious and critical faults that axe finds, each as a short line. */
-async function faults(page: Page): Promise<string[]> {
-  await page.evaluate(axe.source);
-  const found = await page.evaluate(async () => {
-    const { violations } = await (window as unknown as { axe: typeof axe }).axe.run(document, { resultTypes: ["violations"] });
-    return violations.map(({ id, impact, nodes }) => ({ id, impact, at: nodes.slice(0, 3).map((node) => node.target.join(" ")) }));
-  });
-  return found.filter(({ impact }) => impact === "serious" || impact === "critical").map(({ id, at }) => `${id}: ${at.join(" | ")}`);
-}
 
 /** A group's own body, from its pasted table to a number on a page and into a snapshot, by keyboard alone. */
 describe("a body of the group's own", () => {

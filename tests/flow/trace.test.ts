@@ -1,8 +1,8 @@
-import axe from "axe-core";
 import type { Browser, Locator, Page } from "playwright-core";
 import { afterAll, afterEach, beforeAll, describe, expect, test } from "vitest";
 import { demoPassword, demoPeople } from "@/db/seed/people";
 import { launchBrowser } from "../support/browser";
+import { faults } from "./faults";
 import { keyboard } from "./hands";
 import { block, open, shoot, signIn, type Person } from "./people";
 
@@ -56,15 +56,6 @@ describe("a number leads to its measurement", () => {
         return box.top >= 0 && box.bottom <= window.innerHeight;
       }),
     };
-  }
-
-  async function faults(page: Page): Promise<string[]> {
-    await page.evaluate(axe.source);
-    const found = await page.evaluate(async () => {
-      const { violations } = await (window as unknown as { axe: typeof axe }).axe.run(document, { resultTypes: ["violations"] });
-      return violations.map(({ id, impact, nodes }) => ({ id, impact, at: nodes.slice(0, 3).map((node) => node.target.join(" ")) }));
-    });
-    return found.filter(({ impact }) => impact === "serious" || impact === "critical").map(({ id, at }) => `${id}: ${at.join(" | ")}`);
   }
 
   test("by keyboard: from a crossing to the measurement that brings most, into its folded table", async () => {

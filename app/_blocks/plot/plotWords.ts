@@ -4,7 +4,7 @@ import type { AxisInfo, Drawn, PlotLayer, PlotResult } from "@/cells";
 import { ellipseInWords } from "./ellipse";
 import { isDrawn } from "./isDrawn";
 
-/** Samples up to this many are drawn with ellipses, as vectors; more are drawn as points on the graphics card. */
+/** Samples up to this many are drawn with ellipses, each a marker of its own; more are painted as a cloud of points. */
 export const mostEllipses = 2000;
 
 /** An axis in words: its label, unit and basis. */

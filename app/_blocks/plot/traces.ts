@@ -62,7 +62,6 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
       else rows.push(i);
     }
   }
-  const type = "scatter";
   const traces: Data[] = [];
   if (layer.ellipses > 0) {
     for (const [index, rows] of rowsOf) {
@@ -86,7 +85,7 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
     const look = looks(index, palette);
     traces.push({
       ...quiet,
-      type,
+      type: "scatter",
       mode: "markers",
       x: rows.map((i) => points.x[i] ?? null),
       y: rows.map((i) => points.y[i] ?? null),
@@ -102,7 +101,7 @@ export function samplesTraces(layer: Samples, drawing: Drawing): Data[] {
   if (aside.length > 0) {
     traces.push({
       ...quiet,
-      type,
+      type: "scatter",
       mode: "markers",
       x: aside.map((i) => points.x[i] ?? null),
       y: aside.map((i) => points.y[i] ?? null),

@@ -1,6 +1,5 @@
 import { classStyle } from "@/app/_ui/classStyle";
 import { classCodes } from "@/app/_blocks/shared/classCodes";
-import type { Palette } from "@/app/_blocks/shared/usePalette";
 import { State, type PlotLayer } from "@/cells";
 import type { Frame } from "../frame";
 import { mostEllipses } from "../plotWords";
@@ -54,12 +53,8 @@ function looksOf(names: readonly string[], drawing: Drawing, radius: number): Cl
     const index = name === "" ? -1 : drawing.classIndex(name);
     if (index < 0) return { shape: "circle", color: palette.second, alpha: 0.55, radius };
     const style = classStyle(index);
-    return { shape: style.shape, color: colorOn(palette, style), alpha: 0.55, radius };
+    return { shape: style.shape, color: style[palette.light].fill, alpha: 0.55, radius };
   });
-}
-
-function colorOn(palette: Palette, style: ReturnType<typeof classStyle>): string {
-  return style[palette.light].fill;
 }
 
 /** Whether a layer has too many samples for markers of their own. */

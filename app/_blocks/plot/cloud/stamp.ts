@@ -9,7 +9,7 @@ export interface Stamp {
 
 export type StampShape = MarkerShape | "cross";
 
-/** Half the width of a pixel's grid of probes, which tell how much of it a marker covers. */
+/** So many probes across and upwards in each pixel tell how much of it a marker covers. */
 const probes = 4;
 const made = new Map<string, Stamp>();
 
